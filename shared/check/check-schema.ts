@@ -1,0 +1,46 @@
+import { z } from 'zod';
+import { characteristic } from '../tolerance/sheet-schema.ts';
+
+/** What a check answers for one checkpoint. Places in metres, design frame; deviations, limits and uncertainties in millimetres; + is proud or high. */
+
+export const verdicts = ['within', 'outside', 'too-close-to-call', 'undecided', 'not-measured', 'no-tolerance'] as const;
+export const verdict = z.enum(verdicts);
+export type Verdict = z.infer<typeof verdict>;
+
+const vector = z.tuple([z.number(), z.number(), z.number()]);
+
+export const deviationSchema = z.object({
+	checkpointId: z.string(),
+	elementId: z.string(),
+	characteristic,
+	place: vector,
+	direction: vector.nullable(),
+	label: z.string(),
+	/** Design frame, after the fit and any offset; null with a reason where nothing was measured. */
+	measured: vector.nullable(),
+	notMeasuredReason: z.string().nullable(),
+	/** The survey point it was measured by. */
+	pointName: z.string().nullable(),
+	setupId: z.string().nullable(),
+	pointCount: z.number().int(),
+	deviationMm: z.number().nullable(),
+	/** Plan only: as-built less design, east and north. */
+	offsetMm: z.tuple([z.number(), z.number()]).nullable(),
+	/** Plan only: of the offset. */
+	covarianceMm2: z.tuple([z.tuple([z.number(), z.number()]), z.tuple([z.number(), z.number()])]).nullable(),
+	/** Its parts, standard uncertainties along the direction (plan: along the long axis): fit ⊕ point ⊕ common. */
+	standardUncertaintyPartsMm: z.object({ fit: z.number().nullable(), point: z.number().nullable(), common: z.number() }).nullable(),
+	/** U = 2u, or Student's t where the fit has no σ. */
+	expandedUncertaintyMm: z.number().nullable(),
+	/** Plan: [null, radius]. */
+	limitsMm: z.tuple([z.number().nullable(), z.number().nullable()]).nullable(),
+	ruleId: z.string().nullable(),
+	verdict,
+	/** How far beyond the limit it is exceeding, mm, where outside. */
+	beyondMm: z.number().nullable(),
+	conformity: z.number().nullable(),
+});
+export type Deviation = z.infer<typeof deviationSchema>;
+
+export const checkSummary = z.record(verdict, z.number().int());
+export type CheckSummary = z.infer<typeof checkSummary>;
