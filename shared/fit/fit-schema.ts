@@ -1,14 +1,24 @@
-import { z } from 'zod';
+import { z } from "zod";
 
 /** What a fit asks for and answers: the shapes of the command line's `fit`, used alike by server, browser and command line. Metres and radians. */
 
-export const fitKinds = ['height', 'levelled', 'levelled-scaled', 'free', 'free-scaled'] as const;
+export const fitKinds = [
+	"height",
+	"levelled",
+	"levelled-scaled",
+	"free",
+	"free-scaled",
+] as const;
 export const fitKind = z.enum(fitKinds);
 export type FitKind = z.infer<typeof fitKind>;
 
 /** x, y, z; a coordinate that is not known (a benchmark's plan) is null. */
 const vector = z.tuple([z.number(), z.number(), z.number()]);
-const partialVector = z.tuple([z.number().nullable(), z.number().nullable(), z.number().nullable()]);
+const partialVector = z.tuple([
+	z.number().nullable(),
+	z.number().nullable(),
+	z.number().nullable(),
+]);
 const matrix3 = z.tuple([vector, vector, vector]);
 
 export const fitPair = z.object({
@@ -32,7 +42,15 @@ export const fitInput = z.object({
 	/** Where the instrument stood, survey frame. */
 	station: vector.optional(),
 	/** Points to carry over, with covariance. */
-	carry: z.array(z.object({ name: z.string(), survey: vector, surveySigma: vector.optional() })).optional(),
+	carry: z
+		.array(
+			z.object({
+				name: z.string(),
+				survey: vector,
+				surveySigma: vector.optional(),
+			}),
+		)
+		.optional(),
 	confidence: z.number().gt(0).lt(1).optional(),
 });
 export type FitInput = z.infer<typeof fitInput>;
@@ -72,25 +90,49 @@ export const fitResult = z.object({
 	rms: z.number(),
 	redundancy: z.number().int(),
 	varianceFactor: z.number().nullable(),
-	chiSquare: z.object({ statistic: z.number(), lower: z.number(), upper: z.number(), passes: z.boolean() }).nullable(),
+	chiSquare: z
+		.object({
+			statistic: z.number(),
+			lower: z.number(),
+			upper: z.number(),
+			passes: z.boolean(),
+		})
+		.nullable(),
 	pairs: z.array(fitPairResult),
 	carried: z.array(
 		z.object({
 			name: z.string(),
 			point: vector,
 			covariance: matrix3.nullable(),
-			hiddenBlunder: z.object({ metres: z.number(), pair: z.string() }).nullable(),
+			hiddenBlunder: z
+				.object({ metres: z.number(), pair: z.string() })
+				.nullable(),
 		}),
 	),
 	findings: z.array(findingSchema),
 });
 export type FitResult = z.infer<typeof fitResult>;
 
-export const fitRefusalCodes = ['bad-input', 'not-finite', 'duplicate-name', 'too-few-pairs', 'no-spread', 'on-a-line', 'bad-sigma', 'no-solution'] as const;
+export const fitRefusalCodes = [
+	"bad-input",
+	"not-finite",
+	"duplicate-name",
+	"too-few-pairs",
+	"no-spread",
+	"on-a-line",
+	"bad-sigma",
+	"no-solution",
+] as const;
 export type FitRefusalCode = (typeof fitRefusalCodes)[number];
 
 /** An input that has no answer: which condition failed, in words, and where in the input. */
-export const fitRefusal = z.object({ code: z.enum(fitRefusalCodes), message: z.string(), where: z.string().optional() });
+export const fitRefusal = z.object({
+	code: z.enum(fitRefusalCodes),
+	message: z.string(),
+	where: z.string().optional(),
+});
 export type FitRefusal = z.infer<typeof fitRefusal>;
 
-export type FitOutcome = { ok: true; result: FitResult } | { ok: false; refusal: FitRefusal };
+export type FitOutcome =
+	| { ok: true; result: FitResult }
+	| { ok: false; refusal: FitRefusal };

@@ -1,6 +1,6 @@
-import { z } from 'zod';
-import { findingSchema } from '../fit/fit-schema.ts';
-import { characteristic } from '../tolerance/sheet-schema.ts';
+import { z } from "zod";
+import { findingSchema } from "../fit/fit-schema.ts";
+import { characteristic } from "../tolerance/sheet-schema.ts";
 
 /** What reading an IFC file gives. Metres, design frame (the file's own engineering coordinates, Z up), double precision. */
 
@@ -20,7 +20,11 @@ export const elementSchema = z.object({
 	/** The same for people: "Column C/3, ground". */
 	title: z.string(),
 	/** Sizes of the body, null where the shape does not give them. */
-	sizesM: z.object({ length: z.number().nullable(), height: z.number().nullable(), thickness: z.number().nullable() }),
+	sizesM: z.object({
+		length: z.number().nullable(),
+		height: z.number().nullable(),
+		thickness: z.number().nullable(),
+	}),
 	/** Box in the design frame; null without geometry. */
 	boxM: z.object({ min: vector, max: vector }).nullable(),
 });
@@ -61,7 +65,11 @@ export const mapConversion = z.object({
 export type MapConversion = z.infer<typeof mapConversion>;
 
 /** An axis of an IfcGrid as a polyline in plan, design frame. */
-export const gridAxis = z.object({ tag: z.string(), direction: z.enum(['u', 'v', 'w']), points: z.array(z.tuple([z.number(), z.number()])) });
+export const gridAxis = z.object({
+	tag: z.string(),
+	direction: z.enum(["u", "v", "w"]),
+	points: z.array(z.tuple([z.number(), z.number()])),
+});
 export type GridAxis = z.infer<typeof gridAxis>;
 
 export const modelReading = z.object({
@@ -71,11 +79,20 @@ export const modelReading = z.object({
 	metresPerUnit: z.number(),
 	project: z.string(),
 	mapConversion: mapConversion.nullable(),
-	storeys: z.array(z.object({ name: z.string(), elevationM: z.number().nullable() })),
+	storeys: z.array(
+		z.object({ name: z.string(), elevationM: z.number().nullable() }),
+	),
 	grid: z.array(gridAxis),
 	elements: z.array(elementSchema),
 	checkpoints: z.array(checkpointSchema),
-	skipped: z.array(z.object({ entityNumber: z.number().int(), globalId: z.string(), class: z.string(), why: z.string() })),
+	skipped: z.array(
+		z.object({
+			entityNumber: z.number().int(),
+			globalId: z.string(),
+			class: z.string(),
+			why: z.string(),
+		}),
+	),
 	findings: z.array(findingSchema),
 });
 export type ModelReading = z.infer<typeof modelReading>;
