@@ -19,7 +19,14 @@ export default defineConfig(({ mode }) =>
 		? {
 				publicDir: false,
 				ssr: { external: true },
-				build: { ssr: true, target: 'node20', sourcemap: true, outDir: 'dist/server', emptyOutDir: true, rollupOptions: { input: serverPrograms } },
+				build: {
+					ssr: true,
+					target: 'node20',
+					sourcemap: true,
+					outDir: 'dist/server',
+					emptyOutDir: true,
+					rollupOptions: { input: serverPrograms },
+				},
 			}
 		: {
 				plugins: [react(), tailwindcss()],
@@ -28,7 +35,14 @@ export default defineConfig(({ mode }) =>
 					projects: [
 						{ test: { name: 'units', include: ['tests/**/*.test.{ts,tsx}'], exclude: routeTests, testTimeout: 30_000 } },
 						...['pglite', 'postgres'].map((name) => ({
-							test: { name, include: routeTests, globalSetup: 'tests/routes/template.ts', testTimeout: 60_000, hookTimeout: 60_000, env: { TEST_DATABASE: name } },
+							test: {
+								name,
+								include: routeTests,
+								globalSetup: 'tests/routes/template.ts',
+								testTimeout: 60_000,
+								hookTimeout: 60_000,
+								env: { TEST_DATABASE: name },
+							},
 						})),
 					],
 				},

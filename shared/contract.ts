@@ -1,13 +1,13 @@
-import { accountContract } from "./account/contract.ts";
-import { checkContract } from "./check/contract.ts";
-import { controlContract } from "./control/contract.ts";
-import { fitContract } from "./fit/contract.ts";
-import { jobContract } from "./job/contract.ts";
-import { modelContract } from "./model/contract.ts";
-import { pourContract } from "./pour/contract.ts";
-import { siteContract } from "./site/contract.ts";
-import { surveyContract } from "./survey/contract.ts";
-import { toleranceContract } from "./tolerance/contract.ts";
+import { accountContract } from './account/contract.ts';
+import { checkContract } from './check/contract.ts';
+import { controlContract } from './control/contract.ts';
+import { fitContract } from './fit/contract.ts';
+import { jobContract } from './job/contract.ts';
+import { modelContract } from './model/contract.ts';
+import { pourContract } from './pour/contract.ts';
+import { siteContract } from './site/contract.ts';
+import { surveyContract } from './survey/contract.ts';
+import { toleranceContract } from './tolerance/contract.ts';
 
 /** The API, whole. */
 export const contract = {

@@ -1,50 +1,36 @@
 /** Who may do what: the table of roles as data. The server's guard and the client's hiding read the same. */
 
-export const roles = [
-	"site-engineer",
-	"project-engineer",
-	"contractor",
-	"owners-representative",
-	"observer",
-] as const;
+export const roles = ['site-engineer', 'project-engineer', 'contractor', 'owners-representative', 'observer'] as const;
 export type Role = (typeof roles)[number];
 
 const everybody: readonly Role[] = roles;
 
 /** `public`: without a session. `signed-in`: any person with a session. All others: a role on the site of the request. */
 export const permissions = {
-	"site.see": everybody,
-	"model.see": everybody,
-	"model.write": ["project-engineer"],
-	"control.see": everybody,
-	"control.write": ["site-engineer"],
-	"survey.see": everybody,
-	"survey.write": ["site-engineer"],
-	"fit.see": everybody,
-	"fit.write": ["site-engineer"],
-	"fit.adopt": ["site-engineer"],
-	"tolerance.see": everybody,
-	"check.see": everybody,
-	"check.write": ["site-engineer"],
-	"pour.see": everybody,
-	"pour.write": ["project-engineer"],
-	"job.see": [
-		"site-engineer",
-		"project-engineer",
-		"owners-representative",
-		"observer",
-	],
-	"job.cancel": ["site-engineer", "project-engineer"],
+	'site.see': everybody,
+	'model.see': everybody,
+	'model.write': ['project-engineer'],
+	'control.see': everybody,
+	'control.write': ['site-engineer'],
+	'survey.see': everybody,
+	'survey.write': ['site-engineer'],
+	'fit.see': everybody,
+	'fit.write': ['site-engineer'],
+	'fit.adopt': ['site-engineer'],
+	'tolerance.see': everybody,
+	'check.see': everybody,
+	'check.write': ['site-engineer'],
+	'pour.see': everybody,
+	'pour.write': ['project-engineer'],
+	'job.see': ['site-engineer', 'project-engineer', 'owners-representative', 'observer'],
+	'job.cancel': ['site-engineer', 'project-engineer'],
 } as const satisfies Record<string, readonly Role[]>;
 
 export type SitePermission = keyof typeof permissions;
-export type Permission = SitePermission | "public" | "signed-in";
+export type Permission = SitePermission | 'public' | 'signed-in';
 
 /** True where one of a member's roles on a site carries the permission. */
-export function mayWith(
-	memberRoles: readonly Role[],
-	permission: SitePermission,
-): boolean {
+export function mayWith(memberRoles: readonly Role[], permission: SitePermission): boolean {
 	const allowed: readonly Role[] = permissions[permission];
 	return memberRoles.some((role) => allowed.includes(role));
 }

@@ -1,16 +1,9 @@
-import { z } from "zod";
-import { characteristic } from "../tolerance/sheet-schema.ts";
+import { z } from 'zod';
+import { characteristic } from '../tolerance/sheet-schema.ts';
 
 /** What a check answers for one checkpoint. Places in metres, design frame; deviations, limits and uncertainties in millimetres; + is proud or high. */
 
-export const verdicts = [
-	"within",
-	"outside",
-	"too-close-to-call",
-	"undecided",
-	"not-measured",
-	"no-tolerance",
-] as const;
+export const verdicts = ['within', 'outside', 'too-close-to-call', 'undecided', 'not-measured', 'no-tolerance'] as const;
 export const verdict = z.enum(verdicts);
 export type Verdict = z.infer<typeof verdict>;
 
@@ -34,12 +27,7 @@ export const deviationSchema = z.object({
 	/** Plan only: as-built less design, east and north. */
 	offsetMm: z.tuple([z.number(), z.number()]).nullable(),
 	/** Plan only: of the offset. */
-	covarianceMm2: z
-		.tuple([
-			z.tuple([z.number(), z.number()]),
-			z.tuple([z.number(), z.number()]),
-		])
-		.nullable(),
+	covarianceMm2: z.tuple([z.tuple([z.number(), z.number()]), z.tuple([z.number(), z.number()])]).nullable(),
 	/** Its parts, standard uncertainties along the direction (plan: along the long axis): fit ⊕ point ⊕ common. */
 	standardUncertaintyPartsMm: z
 		.object({

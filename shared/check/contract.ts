@@ -1,16 +1,10 @@
-import { z } from "zod";
-import { base, siteInput } from "../base-contract.ts";
-import { findingSchema } from "../fit/fit-schema.ts";
-import { decisionRule, stage } from "../tolerance/sheet-schema.ts";
-import { checkSummary, deviationSchema } from "./check-schema.ts";
+import { z } from 'zod';
+import { base, siteInput } from '../base-contract.ts';
+import { findingSchema } from '../fit/fit-schema.ts';
+import { decisionRule, stage } from '../tolerance/sheet-schema.ts';
+import { checkSummary, deviationSchema } from './check-schema.ts';
 
-export const checkState = z.enum([
-	"computing",
-	"trial",
-	"published",
-	"withdrawn",
-	"failed",
-]);
+export const checkState = z.enum(['computing', 'trial', 'published', 'withdrawn', 'failed']);
 
 export const checkHead = z.object({
 	checkId: z.uuid(),
@@ -75,9 +69,7 @@ export type CheckElement = z.infer<typeof checkElement>;
 export const checkDetail = checkHead.extend({
 	findings: z.array(findingSchema),
 	/** Points of the survey that met no checkpoint. */
-	unmatchedPoints: z.array(
-		z.object({ name: z.string(), setupId: z.string(), reason: z.string() }),
-	),
+	unmatchedPoints: z.array(z.object({ name: z.string(), setupId: z.string(), reason: z.string() })),
 	elements: z.array(checkElement),
 	/** In checkpoint order. For a contractor only those of its own pours. */
 	deviations: z.array(deviationSchema),
@@ -88,21 +80,12 @@ const checkInput = siteInput.extend({ checkId: z.uuid() });
 
 export const checkContract = {
 	/** Newest first. */
-	list: base
-		.meta({ permission: "check.see" })
-		.input(siteInput)
-		.output(z.array(checkHead)),
-	get: base
-		.meta({ permission: "check.see" })
-		.input(checkInput)
-		.output(checkDetail),
-	csv: base
-		.meta({ permission: "check.see" })
-		.input(checkInput)
-		.output(z.instanceof(Blob)),
+	list: base.meta({ permission: 'check.see' }).input(siteInput).output(z.array(checkHead)),
+	get: base.meta({ permission: 'check.see' }).input(checkInput).output(checkDetail),
+	csv: base.meta({ permission: 'check.see' }).input(checkInput).output(z.instanceof(Blob)),
 	/** On the adopted fits of the survey's set-ups; a job computes it. Starts as a trial. */
 	run: base
-		.meta({ permission: "check.write" })
+		.meta({ permission: 'check.write' })
 		.input(
 			siteInput.extend({
 				revisionId: z.uuid(),

@@ -1,24 +1,16 @@
-import { z } from "zod";
-import { base, plainText, siteInput } from "../base-contract.ts";
-import { pointTableReading, rowFault } from "../survey/point-table-schema.ts";
+import { z } from 'zod';
+import { base, plainText, siteInput } from '../base-contract.ts';
+import { pointTableReading, rowFault } from '../survey/point-table-schema.ts';
 
-export const controlFrame = z.enum(["design", "map"]);
+export const controlFrame = z.enum(['design', 'map']);
 
 export const controlPoint = z.object({
 	controlPointId: z.uuid(),
 	name: z.string(),
 	/** As given, in the set's frame; a coordinate that is not known is null. */
-	givenM: z.tuple([
-		z.number().nullable(),
-		z.number().nullable(),
-		z.number().nullable(),
-	]),
+	givenM: z.tuple([z.number().nullable(), z.number().nullable(), z.number().nullable()]),
 	/** Design frame. */
-	designM: z.tuple([
-		z.number().nullable(),
-		z.number().nullable(),
-		z.number().nullable(),
-	]),
+	designM: z.tuple([z.number().nullable(), z.number().nullable(), z.number().nullable()]),
 	sigmaPlanM: z.number().nullable(),
 	sigmaHeightM: z.number().nullable(),
 	code: z.string(),
@@ -40,21 +32,18 @@ export type ControlSetSummary = z.infer<typeof controlSetSummary>;
 
 export const controlContract = {
 	/** Newest first. */
-	list: base
-		.meta({ permission: "control.see" })
-		.input(siteInput)
-		.output(z.array(controlSetSummary)),
+	list: base.meta({ permission: 'control.see' }).input(siteInput).output(z.array(controlSetSummary)),
 	get: base
-		.meta({ permission: "control.see" })
+		.meta({ permission: 'control.see' })
 		.input(siteInput.extend({ controlSetId: z.uuid() }))
 		.output(controlSetSummary.extend({ points: z.array(controlPoint) })),
 	/** All rows or none. */
 	store: base
-		.meta({ permission: "control.write" })
+		.meta({ permission: 'control.write' })
 		.errors({
 			FAULTS: {
 				status: 422,
-				message: "Some rows cannot be read; nothing was stored.",
+				message: 'Some rows cannot be read; nothing was stored.',
 				data: z.object({
 					rowCount: z.number().int(),
 					faults: z.array(rowFault),

@@ -1,9 +1,9 @@
-import { z } from "zod";
-import { base, plainText, siteInput } from "../base-contract.ts";
-import { fitInput, fitKind, fitRefusal, fitResult } from "./fit-schema.ts";
+import { z } from 'zod';
+import { base, plainText, siteInput } from '../base-contract.ts';
+import { fitInput, fitKind, fitRefusal, fitResult } from './fit-schema.ts';
 
 /** in the fit · held back: checked against it, never in it · set aside: with a reason. */
-export const shelfNames = ["in-the-fit", "held-back", "set-aside"] as const;
+export const shelfNames = ['in-the-fit', 'held-back', 'set-aside'] as const;
 export const shelf = z.enum(shelfNames);
 export type Shelf = z.infer<typeof shelf>;
 
@@ -37,7 +37,7 @@ export const fitSummary = z.object({
 	setupName: z.string(),
 	controlSetId: z.uuid(),
 	kind: fitKind,
-	state: z.enum(["made", "adopted", "superseded"]),
+	state: z.enum(['made', 'adopted', 'superseded']),
 	rmsM: z.number(),
 	pairCount: z.number().int(),
 	madeBy: z.string(),
@@ -67,26 +67,23 @@ const setupInput = siteInput.extend({
 });
 
 export const fitContract = {
-	pairs: base
-		.meta({ permission: "fit.see" })
-		.input(setupInput)
-		.output(pairsOfSetup),
+	pairs: base.meta({ permission: 'fit.see' }).input(setupInput).output(pairsOfSetup),
 	/** Newest first; all of the site, or one set-up's. */
 	list: base
-		.meta({ permission: "fit.see" })
+		.meta({ permission: 'fit.see' })
 		.input(siteInput.extend({ setupId: z.uuid().optional() }))
 		.output(z.array(fitSummary)),
 	get: base
-		.meta({ permission: "fit.see" })
+		.meta({ permission: 'fit.see' })
 		.input(siteInput.extend({ fitId: z.uuid() }))
 		.output(fitDetail),
 	/** The server computes what is stored. */
 	make: base
-		.meta({ permission: "fit.write" })
+		.meta({ permission: 'fit.write' })
 		.errors({
 			NO_FIT: {
 				status: 422,
-				message: "There is no fit on these pairs.",
+				message: 'There is no fit on these pairs.',
 				data: fitRefusal,
 			},
 		})
@@ -100,11 +97,11 @@ export const fitContract = {
 		.output(fitDetail),
 	/** Once; a newer adopted fit of the set-up supersedes it, nothing edits it. */
 	adopt: base
-		.meta({ permission: "fit.adopt" })
+		.meta({ permission: 'fit.adopt' })
 		.errors({
 			STALE: {
 				status: 409,
-				message: "The control changed since this fit was made. Fit again.",
+				message: 'The control changed since this fit was made. Fit again.',
 			},
 		})
 		.input(siteInput.extend({ fitId: z.uuid(), reason: plainText(500) }))

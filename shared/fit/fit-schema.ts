@@ -1,24 +1,14 @@
-import { z } from "zod";
+import { z } from 'zod';
 
 /** What a fit asks for and answers: the shapes of the command line's `fit`, used alike by server, browser and command line. Metres and radians. */
 
-export const fitKinds = [
-	"height",
-	"levelled",
-	"levelled-scaled",
-	"free",
-	"free-scaled",
-] as const;
+export const fitKinds = ['height', 'levelled', 'levelled-scaled', 'free', 'free-scaled'] as const;
 export const fitKind = z.enum(fitKinds);
 export type FitKind = z.infer<typeof fitKind>;
 
 /** x, y, z; a coordinate that is not known (a benchmark's plan) is null. */
 const vector = z.tuple([z.number(), z.number(), z.number()]);
-const partialVector = z.tuple([
-	z.number().nullable(),
-	z.number().nullable(),
-	z.number().nullable(),
-]);
+const partialVector = z.tuple([z.number().nullable(), z.number().nullable(), z.number().nullable()]);
 const matrix3 = z.tuple([vector, vector, vector]);
 
 export const fitPair = z.object({
@@ -104,9 +94,7 @@ export const fitResult = z.object({
 			name: z.string(),
 			point: vector,
 			covariance: matrix3.nullable(),
-			hiddenBlunder: z
-				.object({ metres: z.number(), pair: z.string() })
-				.nullable(),
+			hiddenBlunder: z.object({ metres: z.number(), pair: z.string() }).nullable(),
 		}),
 	),
 	findings: z.array(findingSchema),
@@ -114,14 +102,14 @@ export const fitResult = z.object({
 export type FitResult = z.infer<typeof fitResult>;
 
 export const fitRefusalCodes = [
-	"bad-input",
-	"not-finite",
-	"duplicate-name",
-	"too-few-pairs",
-	"no-spread",
-	"on-a-line",
-	"bad-sigma",
-	"no-solution",
+	'bad-input',
+	'not-finite',
+	'duplicate-name',
+	'too-few-pairs',
+	'no-spread',
+	'on-a-line',
+	'bad-sigma',
+	'no-solution',
 ] as const;
 export type FitRefusalCode = (typeof fitRefusalCodes)[number];
 
@@ -133,6 +121,4 @@ export const fitRefusal = z.object({
 });
 export type FitRefusal = z.infer<typeof fitRefusal>;
 
-export type FitOutcome =
-	| { ok: true; result: FitResult }
-	| { ok: false; refusal: FitRefusal };
+export type FitOutcome = { ok: true; result: FitResult } | { ok: false; refusal: FitRefusal };

@@ -9,6 +9,6 @@ declare const frame: unique symbol;
 export type Vector3 = readonly [number, number, number];
 export type Matrix3 = readonly [Vector3, Vector3, Vector3];
 
-export type SurveyPoint = Vector3 & { readonly [frame]?: "survey" };
-export type DesignPoint = Vector3 & { readonly [frame]?: "design" };
-export type MapPoint = Vector3 & { readonly [frame]?: "map" };
+export type SurveyPoint = Vector3 & { readonly [frame]?: 'survey' };
+export type DesignPoint = Vector3 & { readonly [frame]?: 'design' };
+export type MapPoint = Vector3 & { readonly [frame]?: 'map' };

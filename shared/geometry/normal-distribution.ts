@@ -1,7 +1,5 @@
 /** e^(−k²h²) for h = ½, k = 1 … 13: the weights of the trapezoidal sum in `upperErrorFunction`. */
-const trapezoidWeights = Array.from({ length: 13 }, (_, index) =>
-	Math.exp(-((index + 1) * (index + 1)) / 4),
-);
+const trapezoidWeights = Array.from({ length: 13 }, (_, index) => Math.exp(-((index + 1) * (index + 1)) / 4));
 const twoOverSqrtPi = 2 / Math.sqrt(Math.PI);
 
 /** Σ 2ⁿ·x^(2n+1)/(1·3·5…(2n+1)), Abramowitz & Stegun 7.1.6: all terms of one sign, so nothing cancels. For |x| up to about 1. */
@@ -28,8 +26,7 @@ export function upperErrorFunction(x: number): number {
 	if (x > 27.3) return 0;
 	const square = x * x;
 	let sum = 1 / (2 * square);
-	for (let k = 1; k <= trapezoidWeights.length; k++)
-		sum += trapezoidWeights[k - 1]! / ((k * k) / 4 + square);
+	for (let k = 1; k <= trapezoidWeights.length; k++) sum += trapezoidWeights[k - 1]! / ((k * k) / 4 + square);
 	const main = (x / Math.PI) * Math.exp(-square) * sum;
 	return x < 2 * Math.PI ? main - 2 / Math.expm1(4 * Math.PI * x) : main;
 }
@@ -42,24 +39,9 @@ export function normalBelow(z: number): number {
 /** Φ(to) − Φ(from), from ≤ to, taken on the side where nothing cancels: right to 1e-15, small probabilities in both tails included. */
 export function normalBetween(from: number, to: number): number {
 	if (!(from < to)) return 0;
-	if (from > 0)
-		return (
-			(upperErrorFunction(from / Math.SQRT2) -
-				upperErrorFunction(to / Math.SQRT2)) /
-			2
-		);
-	if (to < 0)
-		return (
-			(upperErrorFunction(-to / Math.SQRT2) -
-				upperErrorFunction(-from / Math.SQRT2)) /
-			2
-		);
-	return (
-		1 -
-		(upperErrorFunction(-from / Math.SQRT2) +
-			upperErrorFunction(to / Math.SQRT2)) /
-			2
-	);
+	if (from > 0) return (upperErrorFunction(from / Math.SQRT2) - upperErrorFunction(to / Math.SQRT2)) / 2;
+	if (to < 0) return (upperErrorFunction(-to / Math.SQRT2) - upperErrorFunction(-from / Math.SQRT2)) / 2;
+	return 1 - (upperErrorFunction(-from / Math.SQRT2) + upperErrorFunction(to / Math.SQRT2)) / 2;
 }
 
 /** The density of the standard normal distribution at z. */

@@ -1,14 +1,8 @@
-import { eventIterator } from "@orpc/contract";
-import { z } from "zod";
-import { base, siteInput } from "../base-contract.ts";
+import { eventIterator } from '@orpc/contract';
+import { z } from 'zod';
+import { base, siteInput } from '../base-contract.ts';
 
-export const jobState = z.enum([
-	"waiting",
-	"running",
-	"done",
-	"failed",
-	"cancelled",
-]);
+export const jobState = z.enum(['waiting', 'running', 'done', 'failed', 'cancelled']);
 export const jobProgress = z.object({
 	jobId: z.uuid(),
 	kind: z.string(),
@@ -27,14 +21,8 @@ export type JobProgress = z.infer<typeof jobProgress>;
 const jobInput = siteInput.extend({ jobId: z.uuid() });
 
 export const jobContract = {
-	get: base.meta({ permission: "job.see" }).input(jobInput).output(jobProgress),
+	get: base.meta({ permission: 'job.see' }).input(jobInput).output(jobProgress),
 	/** Each change until it ends. */
-	follow: base
-		.meta({ permission: "job.see" })
-		.input(jobInput)
-		.output(eventIterator(jobProgress)),
-	cancel: base
-		.meta({ permission: "job.cancel" })
-		.input(jobInput)
-		.output(jobProgress),
+	follow: base.meta({ permission: 'job.see' }).input(jobInput).output(eventIterator(jobProgress)),
+	cancel: base.meta({ permission: 'job.cancel' }).input(jobInput).output(jobProgress),
 };

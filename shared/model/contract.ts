@@ -1,17 +1,8 @@
-import { z } from "zod";
-import { base, plainText, siteInput } from "../base-contract.ts";
-import {
-	checkpointSchema,
-	elementSchema,
-	modelReading,
-} from "./model-schema.ts";
+import { z } from 'zod';
+import { base, plainText, siteInput } from '../base-contract.ts';
+import { checkpointSchema, elementSchema, modelReading } from './model-schema.ts';
 
-export const revisionState = z.enum([
-	"reading",
-	"ready",
-	"failed",
-	"cancelled",
-]);
+export const revisionState = z.enum(['reading', 'ready', 'failed', 'cancelled']);
 export const revisionSummary = z.object({
 	revisionId: z.uuid(),
 	modelId: z.uuid(),
@@ -66,38 +57,20 @@ export type RevisionDetail = z.infer<typeof revisionDetail>;
 const revisionInput = siteInput.extend({ revisionId: z.uuid() });
 
 export const modelContract = {
-	list: base
-		.meta({ permission: "model.see" })
-		.input(siteInput)
-		.output(z.array(modelSummary)),
+	list: base.meta({ permission: 'model.see' }).input(siteInput).output(z.array(modelSummary)),
 	/** An uploaded IFC file becomes the next revision of a model, or the first of a new one; a job reads it. */
 	read: base
-		.meta({ permission: "model.write" })
+		.meta({ permission: 'model.write' })
 		.input(
 			siteInput.extend({
 				uploadId: z.string().min(8).max(80),
-				model: z.union([
-					z.object({ modelId: z.uuid() }),
-					z.object({ newName: plainText(60) }),
-				]),
+				model: z.union([z.object({ modelId: z.uuid() }), z.object({ newName: plainText(60) })]),
 			}),
 		)
 		.output(z.object({ revisionId: z.uuid(), jobId: z.uuid() })),
-	revision: base
-		.meta({ permission: "model.see" })
-		.input(revisionInput)
-		.output(revisionDetail),
-	elements: base
-		.meta({ permission: "model.see" })
-		.input(revisionInput)
-		.output(z.array(storedElement)),
-	checkpoints: base
-		.meta({ permission: "model.see" })
-		.input(revisionInput)
-		.output(z.array(storedCheckpoint)),
+	revision: base.meta({ permission: 'model.see' }).input(revisionInput).output(revisionDetail),
+	elements: base.meta({ permission: 'model.see' }).input(revisionInput).output(z.array(storedElement)),
+	checkpoints: base.meta({ permission: 'model.see' }).input(revisionInput).output(z.array(storedCheckpoint)),
 	/** The picture: binary glTF, metres less a whole-metre origin that stands in its extras. Never measured on. */
-	picture: base
-		.meta({ permission: "model.see" })
-		.input(revisionInput)
-		.output(z.instanceof(Blob)),
+	picture: base.meta({ permission: 'model.see' }).input(revisionInput).output(z.instanceof(Blob)),
 };

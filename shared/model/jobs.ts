@@ -1,8 +1,8 @@
-import { z } from "zod";
+import { z } from 'zod';
 
 export const modelJobs = {
 	readIfc: {
-		name: "model.read-ifc",
+		name: 'model.read-ifc',
 		input: z.object({
 			jobId: z.uuid(),
 			siteId: z.uuid(),

@@ -1,6 +1,6 @@
-import { z } from "zod";
-import { findingSchema } from "../fit/fit-schema.ts";
-import { characteristic } from "../tolerance/sheet-schema.ts";
+import { z } from 'zod';
+import { findingSchema } from '../fit/fit-schema.ts';
+import { characteristic } from '../tolerance/sheet-schema.ts';
 
 /** What reading an IFC file gives. Metres, design frame (the file's own engineering coordinates, Z up), double precision. */
 
@@ -67,7 +67,7 @@ export type MapConversion = z.infer<typeof mapConversion>;
 /** An axis of an IfcGrid as a polyline in plan, design frame. */
 export const gridAxis = z.object({
 	tag: z.string(),
-	direction: z.enum(["u", "v", "w"]),
+	direction: z.enum(['u', 'v', 'w']),
 	points: z.array(z.tuple([z.number(), z.number()])),
 });
 export type GridAxis = z.infer<typeof gridAxis>;
@@ -79,9 +79,7 @@ export const modelReading = z.object({
 	metresPerUnit: z.number(),
 	project: z.string(),
 	mapConversion: mapConversion.nullable(),
-	storeys: z.array(
-		z.object({ name: z.string(), elevationM: z.number().nullable() }),
-	),
+	storeys: z.array(z.object({ name: z.string(), elevationM: z.number().nullable() })),
 	grid: z.array(gridAxis),
 	elements: z.array(elementSchema),
 	checkpoints: z.array(checkpointSchema),

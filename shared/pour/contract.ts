@@ -1,5 +1,5 @@
-import { z } from "zod";
-import { base, plainText, siteInput } from "../base-contract.ts";
+import { z } from 'zod';
+import { base, plainText, siteInput } from '../base-contract.ts';
 
 export const pourSummary = z.object({
 	pourId: z.uuid(),
@@ -21,18 +21,15 @@ export const pourForm = z.object({
 	modelId: z.uuid(),
 	elements: z
 		.array(z.object({ storey: z.string().max(200), class: z.string().max(60) }))
-		.min(1, "Choose at least one kind of element.")
+		.min(1, 'Choose at least one kind of element.')
 		.max(200),
 });
 
 export const pourContract = {
 	/** By planned hour. A contractor sees those of its company. */
-	list: base
-		.meta({ permission: "pour.see" })
-		.input(siteInput)
-		.output(z.array(pourSummary)),
+	list: base.meta({ permission: 'pour.see' }).input(siteInput).output(z.array(pourSummary)),
 	add: base
-		.meta({ permission: "pour.write" })
+		.meta({ permission: 'pour.write' })
 		.input(siteInput.extend({ pour: pourForm }))
 		.output(pourSummary),
 };

@@ -1,25 +1,15 @@
-import { z } from "zod";
-import { base, plainText, siteInput } from "../base-contract.ts";
-import { roles } from "../permissions.ts";
+import { z } from 'zod';
+import { base, plainText, siteInput } from '../base-contract.ts';
+import { roles } from '../permissions.ts';
 
 export const role = z.enum(roles);
 
 /** The seven places of the line, in their order. */
-export const knots = [
-	"model",
-	"control",
-	"surveys",
-	"check",
-	"flags",
-	"pours",
-	"records",
-] as const;
+export const knots = ['model', 'control', 'surveys', 'check', 'flags', 'pours', 'records'] as const;
 /** solid: in order. half: in hand. open: nothing yet. */
-export const knotState = z.enum(["solid", "half", "open"]);
+export const knotState = z.enum(['solid', 'half', 'open']);
 export const lineSchema = z.object({
-	knots: z.array(
-		z.object({ knot: z.enum(knots), state: knotState, figure: z.string() }),
-	),
+	knots: z.array(z.object({ knot: z.enum(knots), state: knotState, figure: z.string() })),
 	/** The newest check, where there is one: the line's knot "Check" leads to it. */
 	newestCheckId: z.uuid().nullable(),
 	/** False where something rests on what is no longer the newest. */
@@ -38,19 +28,16 @@ export const siteDetail = siteSummary.extend({
 	buildings: z.array(z.object({ buildingId: z.uuid(), name: z.string() })),
 	companies: z.array(z.object({ companyId: z.uuid(), name: z.string() })),
 	/** What was answered the last time an order of columns had to be asked. */
-	columnOrder: z.enum(["PENZD", "PNEZD"]).nullable(),
+	columnOrder: z.enum(['PENZD', 'PNEZD']).nullable(),
 	line: lineSchema,
 });
 
 export const siteContract = {
-	list: base.meta({ permission: "signed-in" }).output(z.array(siteSummary)),
+	list: base.meta({ permission: 'signed-in' }).output(z.array(siteSummary)),
 	/** The founder is site and project engineer of a new site, with a starter sheet issued. */
 	found: base
-		.meta({ permission: "signed-in" })
+		.meta({ permission: 'signed-in' })
 		.input(z.object({ name: plainText(80), timeZone: plainText(60) }))
 		.output(siteSummary),
-	get: base
-		.meta({ permission: "site.see" })
-		.input(siteInput)
-		.output(siteDetail),
+	get: base.meta({ permission: 'site.see' }).input(siteInput).output(siteDetail),
 };

@@ -1,13 +1,13 @@
-import { z } from "zod";
-import { base, plainText, siteInput } from "../base-contract.ts";
-import { stage } from "../tolerance/sheet-schema.ts";
-import { pointTableReading, rowFault } from "./point-table-schema.ts";
+import { z } from 'zod';
+import { base, plainText, siteInput } from '../base-contract.ts';
+import { stage } from '../tolerance/sheet-schema.ts';
+import { pointTableReading, rowFault } from './point-table-schema.ts';
 
 export const setupInput = z.object({
 	/** As the file's set-up column names it; "1" where the file has none. */
 	name: plainText(40),
 	/** levelled: Z is plumb. free: no compensator. */
-	levelling: z.enum(["levelled", "free"]),
+	levelling: z.enum(['levelled', 'free']),
 	/** The instrument brings its own scale, so the fit has none. */
 	bringsScale: z.boolean(),
 	/** For points that bring none; null: not known. */
@@ -26,7 +26,7 @@ export type SetupInput = z.infer<typeof setupInput>;
 export const surveyForm = z.object({
 	name: plainText(60),
 	stage,
-	surveyedOn: z.iso.date("Write the date as 2026-12-01."),
+	surveyedOn: z.iso.date('Write the date as 2026-12-01.'),
 	observer: plainText(80),
 	instrument: plainText(80),
 	serial: plainText(60),
@@ -48,7 +48,7 @@ export const surveySummary = surveyForm.extend({
 	fileName: z.string(),
 	fileSha256: z.string(),
 	pointCount: z.number().int(),
-	state: z.enum(["storing", "ready", "failed"]),
+	state: z.enum(['storing', 'ready', 'failed']),
 	reason: z.string().nullable(),
 	jobId: z.uuid().nullable(),
 	storedBy: z.string(),
@@ -74,33 +74,25 @@ const surveyInput = siteInput.extend({ surveyId: z.uuid() });
 
 export const surveyContract = {
 	/** Newest first. */
-	list: base
-		.meta({ permission: "survey.see" })
-		.input(siteInput)
-		.output(z.array(surveySummary)),
-	get: base
-		.meta({ permission: "survey.see" })
-		.input(surveyInput)
-		.output(surveySummary),
+	list: base.meta({ permission: 'survey.see' }).input(siteInput).output(z.array(surveySummary)),
+	get: base.meta({ permission: 'survey.see' }).input(surveyInput).output(surveySummary),
 	/** In the file's order, at most `limit` from `offset`. */
 	points: base
-		.meta({ permission: "survey.see" })
+		.meta({ permission: 'survey.see' })
 		.input(
 			surveyInput.extend({
 				offset: z.number().int().min(0).default(0),
 				limit: z.number().int().min(1).max(20_000).default(20_000),
 			}),
 		)
-		.output(
-			z.object({ total: z.number().int(), points: z.array(surveyPoint) }),
-		),
+		.output(z.object({ total: z.number().int(), points: z.array(surveyPoint) })),
 	/** All rows or none; more than 10 000 rows are stored by a job. */
 	store: base
-		.meta({ permission: "survey.write" })
+		.meta({ permission: 'survey.write' })
 		.errors({
 			FAULTS: {
 				status: 422,
-				message: "Some rows cannot be read; nothing was stored.",
+				message: 'Some rows cannot be read; nothing was stored.',
 				data: z.object({
 					rowCount: z.number().int(),
 					faults: z.array(rowFault),

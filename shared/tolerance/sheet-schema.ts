@@ -1,28 +1,17 @@
-import { z } from "zod";
+import { z } from 'zod';
 
 /** A tolerance sheet as the command line reads it: ordered rules, the first that fits decides. Millimetres. */
 
-export const characteristics = ["plan", "level", "face"] as const;
+export const characteristics = ['plan', 'level', 'face'] as const;
 export const characteristic = z.enum(characteristics);
 export type Characteristic = z.infer<typeof characteristic>;
-export const derivedCharacteristics = [
-	"plumb",
-	"section",
-	"flatness",
-	"flatness-best-fit",
-	"bolt-distance",
-] as const;
+export const derivedCharacteristics = ['plumb', 'section', 'flatness', 'flatness-best-fit', 'bolt-distance'] as const;
 
-export const stages = [
-	"before-pour",
-	"as-cast-shored",
-	"as-cast",
-	"later",
-] as const;
+export const stages = ['before-pour', 'as-cast-shored', 'as-cast', 'later'] as const;
 export const stage = z.enum(stages);
 export type Stage = z.infer<typeof stage>;
 
-const sizeOf = z.enum(["length", "height", "thickness"]);
+const sizeOf = z.enum(['length', 'height', 'thickness']);
 const term = z.union([
 	z.number(),
 	z.strictObject({ heightOver: z.number().positive() }),
@@ -41,18 +30,12 @@ const positiveLimit = z.union([
 	z.strictObject({ lesserOf: twoTerms, atMost: z.number().optional() }),
 ]);
 /** null: no limit on that side. `minus` turns a limit round for the lower side. */
-export const limit = z.union([
-	z.null(),
-	positiveLimit,
-	z.strictObject({ minus: positiveLimit }),
-]);
+export const limit = z.union([z.null(), positiveLimit, z.strictObject({ minus: positiveLimit })]);
 export type Limit = z.infer<typeof limit>;
 
 export const ruleMatch = z.strictObject({
 	class: z.string().optional(),
-	characteristic: z
-		.enum([...characteristics, ...derivedCharacteristics])
-		.optional(),
+	characteristic: z.enum([...characteristics, ...derivedCharacteristics]).optional(),
 	storey: z.string().optional(),
 	building: z.string().optional(),
 	tag: z.string().optional(),
@@ -70,9 +53,9 @@ export const toleranceRule = z.strictObject({
 	match: ruleMatch,
 	lowerMm: limit,
 	upperMm: limit,
-	shape: z.enum(["disc", "box"]).optional(),
-	axes: z.enum(["grid", "element"]).optional(),
-	reference: z.enum(["frame", "grid", "below", "group", "best-fit"]).optional(),
+	shape: z.enum(['disc', 'box']).optional(),
+	axes: z.enum(['grid', 'element']).optional(),
+	reference: z.enum(['frame', 'grid', 'below', 'group', 'best-fit']).optional(),
 	straightedgeM: z.number().positive().optional(),
 	source: z.string().optional(),
 	clause: z.string().optional(),
@@ -80,7 +63,7 @@ export const toleranceRule = z.strictObject({
 });
 export type ToleranceRule = z.infer<typeof toleranceRule>;
 
-export const decisionRule = z.enum(["simple", "guarded"]);
+export const decisionRule = z.enum(['simple', 'guarded']);
 export type DecisionRule = z.infer<typeof decisionRule>;
 
 export const toleranceSheet = z.strictObject({

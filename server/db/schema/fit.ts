@@ -1,0 +1,59 @@
+import { sql } from 'drizzle-orm';
+import { check, doublePrecision, foreignKey, integer, jsonb, pgEnum, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import type { PairsOfSetup, Shelving } from '../../../shared/fit/contract.ts';
+import { type FitResult, fitKinds } from '../../../shared/fit/fit-schema.ts';
+import { users } from './account.ts';
+import { at, id, sha256, siteId } from './columns.ts';
+import { controlSets } from './control.ts';
+import { setups } from './survey.ts';
+
+export const fitKindEnum = pgEnum('fit_kind', fitKinds);
+export const fitStateEnum = pgEnum('fit_state', ['made', 'adopted', 'superseded']);
+
+/** Never edited: adopted once, superseded by a newer one. */
+export const fits = pgTable(
+	'fits',
+	{
+		id: id(),
+		siteId: siteId(),
+		number: integer('number').notNull(),
+		setupId: uuid('setup_id').notNull(),
+		controlSetId: uuid('control_set_id').notNull(),
+		kind: fitKindEnum('kind').notNull(),
+		knownScale: doublePrecision('known_scale'),
+		shelves: jsonb('shelves').$type<Shelving[]>().notNull(),
+		/** The pairs as they were, so that the fit can be computed again from itself. */
+		pairs: jsonb('pairs').$type<PairsOfSetup>().notNull(),
+		result: jsonb('result').$type<FitResult>().notNull(),
+		inputsSha256: sha256('inputs_sha256').notNull(),
+		state: fitStateEnum('state').notNull(),
+		madeBy: uuid('made_by')
+			.notNull()
+			.references(() => users.id),
+		madeAt: at('made_at').notNull(),
+		adoptedBy: uuid('adopted_by').references(() => users.id),
+		adoptedAt: at('adopted_at'),
+		adoptedReason: text('adopted_reason'),
+		/** The second person. */
+		checkedBy: uuid('checked_by').references(() => users.id),
+		checkedAt: at('checked_at'),
+	},
+	(t) => [
+		foreignKey({
+			columns: [t.siteId, t.setupId],
+			foreignColumns: [setups.siteId, setups.id],
+		}),
+		foreignKey({
+			columns: [t.siteId, t.controlSetId],
+			foreignColumns: [controlSets.siteId, controlSets.id],
+		}),
+		unique('fits_site_id').on(t.siteId, t.id),
+		unique('fits_number').on(t.siteId, t.number),
+		uniqueIndex('fits_one_adopted').on(t.setupId).where(sql`state = 'adopted'`),
+		check(
+			'fits_adopted_says_who',
+			sql`${t.state} = 'made' or (${t.adoptedBy} is not null and ${t.adoptedAt} is not null and length(${t.adoptedReason}) > 0)`,
+		),
+		check('fits_checked_by_another', sql`${t.checkedBy} is null or ${t.checkedBy} <> ${t.adoptedBy}`),
+	],
+);
