@@ -1,0 +1,76 @@
+import type { z } from 'zod';
+import type { Role } from '#shared/permissions.ts';
+import type { Db, Transaction } from '../db/database.ts';
+
+/** What a command may use of the world. One value, made at the start and handed on; tests make their own. */
+export interface Platform {
+	db: Db;
+	/** Commits when `work` resolves, else rolls back. No file, mail or hashing inside. */
+	transaction: <T>(work: (tx: Transaction) => Promise<T>) => Promise<T>;
+	files: FileStore;
+	jobs: JobQueue;
+	now: () => Date;
+	newId: () => string;
+}
+
+/** Bytes by their SHA-256, kept once, never changed. */
+export interface FileStore {
+	/** Takes the bytes and answers their hash and length; the same bytes twice are one file. */
+	keep: (bytes: Uint8Array) => Promise<KeptFile>;
+	/** The same for a file already on this disk, which is moved in. */
+	keepFrom: (path: string) => Promise<KeptFile>;
+	/** Where a program of ours can read it. */
+	pathOf: (sha256: string) => string;
+	read: (sha256: string) => Promise<Uint8Array>;
+}
+
+export interface KeptFile {
+	sha256: string;
+	bytes: number;
+}
+
+/** The name and input of long work, from `shared/<noun>/jobs.ts`. Every input names our own row. */
+export interface JobDefinition<Input extends { jobId: string; siteId: string } = { jobId: string; siteId: string }> {
+	name: string;
+	input: z.ZodType<Input>;
+}
+
+export interface JobQueue {
+	/** Sent inside the transaction: gone after a rollback, there after the commit. Throws where the queue is not known. */
+	enqueue: <Input extends { jobId: string; siteId: string }>(
+		tx: Transaction,
+		definition: JobDefinition<Input>,
+		input: Input,
+	) => Promise<void>;
+}
+
+/** What a job's runner is handed besides its input. */
+export interface JobContext {
+	platform: Platform;
+	/** Kept at most four times a second. */
+	report: (progress: { doing: string; done: number; of: number }) => void;
+	/** Aborted by the person's cancel, by the time limit, or by the server's end. */
+	signal: AbortSignal;
+}
+
+/** How a job ended for the person. A refusal is the input's fault and says why; a throw is ours and is tried again. */
+export type JobEnd = { state: 'done' } | { state: 'failed'; reason: string } | { state: 'cancelled' };
+
+export interface JobRunner {
+	name: string;
+	run: (input: unknown, context: JobContext) => Promise<JobEnd>;
+}
+
+/** A person with a session. */
+export interface SignedIn {
+	userId: string;
+	name: string;
+	email: string;
+}
+
+/** A person on the site of the request. */
+export interface Member extends SignedIn {
+	siteId: string;
+	roles: readonly Role[];
+	companyIds: readonly string[];
+}
