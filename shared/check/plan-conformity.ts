@@ -1,5 +1,5 @@
 import { integrateBetween } from '../geometry/adaptive-quadrature.ts';
-import { normalBetween, normalDensity } from '../geometry/normal-distribution.ts';
+import { normalBetween, normalDensity } from '../geometry/error-function.ts';
 import { type PlanCovariance, principalAxes } from '../geometry/plan-covariance.ts';
 
 /**

@@ -42,7 +42,11 @@ export function principalAxes(covariance: PlanCovariance): PrincipalAxes {
 	const short = long > 0 ? Math.max(0, determinant(a, b, c) / long) : 0;
 	const turnRad = Math.atan2(2 * b, a - c) / 2;
 	const unit = Math.sqrt(largest);
-	return { longSigma: unit * Math.sqrt(Math.max(0, long)), shortSigma: unit * Math.sqrt(short), long: [Math.cos(turnRad), Math.sin(turnRad)] };
+	return {
+		longSigma: unit * Math.sqrt(Math.max(0, long)),
+		shortSigma: unit * Math.sqrt(short),
+		long: [Math.cos(turnRad), Math.sin(turnRad)],
+	};
 }
 
 /** The standard deviation along a direction (any length but zero). For a zero direction the long axis, as CLI.md `judge` asks. */
