@@ -1,0 +1,25 @@
+import { randomUUID } from 'node:crypto';
+import { sql } from 'drizzle-orm';
+import type { AuditEntry } from '#shared/record/audit-entry.ts';
+import type { Transaction } from '../db/database.ts';
+import { auditEntries } from '../db/schema/record.ts';
+import type { Member, SignedIn } from './platform.ts';
+
+/**
+ * Writes who did what, as what, inside the transaction that does it: no act without its entry, no entry without its act.
+ * A member's entry belongs to the site, a signed-in person's to nobody but them; `siteId` names the site where the act made one.
+ * The time is the database's, so that the order of entries does not depend on which process wrote them.
+ */
+export async function audit(tx: Transaction, actor: Member | SignedIn, entry: AuditEntry, siteId?: string): Promise<void> {
+	const member = 'siteId' in actor ? actor : null;
+	await tx.insert(auditEntries).values({
+		id: randomUUID(),
+		siteId: member?.siteId ?? siteId ?? null,
+		userId: actor.userId,
+		roles: [...(member?.roles ?? [])],
+		kind: entry.kind,
+		subjectId: entry.subjectId,
+		data: entry.data,
+		at: sql`now()`,
+	});
+}

@@ -1,0 +1,31 @@
+/** What an audit entry tells of. Closed, so that a reader of the list knows every word in it. */
+export const auditKinds = [
+	'person-added',
+	'signed-in',
+	'signed-out',
+	'site-founded',
+	'member-added',
+	'model-uploaded',
+	'model-read',
+	'model-failed',
+	'control-stored',
+	'survey-stored',
+	'survey-failed',
+	'fit-made',
+	'fit-adopted',
+	'sheet-issued',
+	'check-run',
+	'check-computed',
+	'check-failed',
+	'pour-added',
+	'job-cancel-wished',
+] as const;
+export type AuditKind = (typeof auditKinds)[number];
+
+export interface AuditEntry {
+	kind: AuditKind;
+	/** The row it is about; null where it is about the person alone. */
+	subjectId: string | null;
+	/** What a reader needs besides: names, numbers, hashes. No secrets, no coordinates. */
+	data: Record<string, unknown>;
+}
