@@ -75,6 +75,12 @@ export const fitResult = z.object({
 	translation: vector,
 	/** control ≈ s·R·(survey − origin) + shift; survey frame. */
 	origin: vector,
+	/** Where the fit puts the origin, control frame: carrying by origin and shift loses nothing at map size, by translation a nanometre. */
+	shift: vector.optional(),
+	/** Whether standard deviations were given: their covariances are then not scaled by the variance factor. */
+	sigmaGiven: z.boolean().optional(),
+	/** False where a known scale multiplies plan only (levelled fits that do not estimate it). */
+	scalesHeights: z.boolean().optional(),
 	/** Q for small changes of shift (E, N, H, metres), turns about E, N, H (radians, after R), relative scale; unknowns the fit has not are left out. */
 	parameterCovariance: z.array(z.array(z.number())),
 	rms: z.number(),

@@ -1,0 +1,143 @@
+import { invertPositiveDefinite } from '#shared/geometry/cholesky.ts';
+import type { FitObservations } from './fit-observations.ts';
+import { clonePose, type FitPose, movePose } from './fit-pose.ts';
+import { fitUnknowns } from './least-pairs.ts';
+import { formNormalEquations, type NormalEquations, newNormalEquations } from './normal-equations.ts';
+
+/** Plain steps before Newton's take over: sound surveys need three to six. */
+const PLAIN_STEPS = 12;
+const STEPS = 120;
+/** A step under this share (of the span in metres, of a radian, of the scale) ends the iteration. */
+const STEP_END = 1e-13;
+
+export interface Adjustment {
+	pose: FitPose;
+	/** Formed at `pose`. */
+	equations: NormalEquations;
+	/** Q on the unknowns of the fit, unknowns × unknowns, row by row. */
+	cofactor: Float64Array;
+	iterations: number;
+	/** `singular`: the unknowns are not determined. `sigma`: some Σ is singular, or a number overflowed. */
+	state: 'converged' | 'stalled' | 'singular' | 'sigma';
+}
+
+/**
+ * Takes a pose to the nearest minimum of F = Σ rᵀ·Σ⁻¹·r, Σ moving along (normal-equations.ts). Every step lowers F.
+ *
+ * δ = (ÂᵀΣ⁻¹Â)⁻¹·ÂᵀΣ⁻¹r converges at a rate of about residual/span; where that is slow (coarse σ, gross errors) Newton steps
+ * with the second derivatives by differences of the exact gradient take over.
+ * @param start is left as it is
+ * @param skip a pair to leave out; −1 for none
+ */
+export function adjust(observations: FitObservations, start: FitPose, skip = -1): Adjustment {
+	const unknowns = fitUnknowns(observations.kind);
+	const size = unknowns.length;
+	const span = spanOf(observations.control);
+	let pose = clonePose(start);
+	let equations = newNormalEquations(observations.count);
+	let trial = newNormalEquations(observations.count);
+	const cofactor = new Float64Array(size * size);
+	const change = new Float64Array(7);
+	let state: Adjustment['state'] = 'stalled';
+	let iterations = 0;
+	if (!formNormalEquations(observations, pose, equations, skip)) return { pose, equations, cofactor, iterations, state: 'sigma' };
+	let lastStep = Infinity;
+	for (; iterations < STEPS; iterations++) {
+		if (!cofactorOf(equations, unknowns, cofactor)) return { pose, equations, cofactor, iterations, state: 'singular' };
+		change.fill(0);
+		const newton = iterations >= PLAIN_STEPS && newtonStep(observations, pose, equations, unknowns, span, change, skip);
+		if (!newton) solveStep(cofactor, equations.gradient, unknowns, change);
+		let step = stepLength(change, span);
+		if (step < STEP_END || (step < 1e-9 && step > lastStep / 2)) {
+			state = 'converged';
+			break;
+		}
+		let accepted = false;
+		for (let halving = 0; halving < 40; halving++) {
+			const moved = clonePose(pose);
+			movePose(moved, change);
+			if (formNormalEquations(observations, moved, trial, skip) && trial.objective <= equations.objective * (1 + 1e-13) + 1e-300) {
+				pose = moved;
+				[equations, trial] = [trial, equations];
+				accepted = true;
+				break;
+			}
+			for (let k = 0; k < 7; k++) change[k] = change[k]! / 2;
+			step /= 2;
+		}
+		if (!accepted) {
+			// No lower point along the step: the minimum to working precision, if the step was small.
+			state = step * 2 ** 40 < 1e-6 ? 'converged' : 'stalled';
+			break;
+		}
+		lastStep = step;
+	}
+	return { pose, equations, cofactor, iterations, state };
+}
+
+/** Q = N⁻¹ on the unknowns of the fit. False where they are not determined. */
+export function cofactorOf(equations: NormalEquations, unknowns: readonly number[], cofactor: Float64Array): boolean {
+	const size = unknowns.length;
+	for (let i = 0; i < size; i++) for (let j = 0; j < size; j++) cofactor[i * size + j] = equations.normal[7 * unknowns[i]! + unknowns[j]!]!;
+	return invertPositiveDefinite(cofactor, size);
+}
+
+function solveStep(cofactor: Float64Array, gradient: Float64Array, unknowns: readonly number[], change: Float64Array): void {
+	const size = unknowns.length;
+	for (let i = 0; i < size; i++) {
+		let sum = 0;
+		for (let j = 0; j < size; j++) sum += cofactor[i * size + j]! * gradient[unknowns[j]!]!;
+		change[unknowns[i]!] = sum;
+	}
+}
+
+/** Newton's step; false where the second derivatives are not positive definite (far from a minimum). */
+function newtonStep(
+	observations: FitObservations,
+	pose: FitPose,
+	equations: NormalEquations,
+	unknowns: readonly number[],
+	span: number,
+	change: Float64Array,
+	skip: number,
+): boolean {
+	const size = unknowns.length;
+	const hessian = new Float64Array(size * size);
+	const scratch = newNormalEquations(observations.count);
+	const move = new Float64Array(7);
+	const ahead = new Float64Array(7);
+	for (let j = 0; j < size; j++) {
+		const unknown = unknowns[j]!;
+		const h = (unknown < 3 ? span : 1) * 1e-5;
+		move.fill(0);
+		move[unknown] = h;
+		const forward = clonePose(pose);
+		movePose(forward, move);
+		if (!formNormalEquations(observations, forward, scratch, skip)) return false;
+		ahead.set(scratch.gradient);
+		move[unknown] = -h;
+		const backward = clonePose(pose);
+		movePose(backward, move);
+		if (!formNormalEquations(observations, backward, scratch, skip)) return false;
+		for (let i = 0; i < size; i++) hessian[i * size + j] = (scratch.gradient[unknowns[i]!]! - ahead[unknowns[i]!]!) / (2 * h);
+	}
+	for (let i = 0; i < size; i++) {
+		for (let j = 0; j < i; j++) hessian[i * size + j] = hessian[j * size + i] = (hessian[i * size + j]! + hessian[j * size + i]!) / 2;
+	}
+	if (!invertPositiveDefinite(hessian, size)) return false;
+	solveStep(hessian, equations.gradient, unknowns, change);
+	return true;
+}
+
+function stepLength(change: Float64Array, span: number): number {
+	let longest = 0;
+	for (let k = 0; k < 7; k++) longest = Math.max(longest, Math.abs(change[k]!) / (k < 3 ? span : 1));
+	return longest;
+}
+
+/** The root mean square distance from the reduced origin, metres; 1 for a single pair. */
+function spanOf(control: Float64Array): number {
+	let square = 0;
+	for (const value of control) square += value * value;
+	return Math.sqrt((3 * square) / Math.max(control.length, 1)) || 1;
+}

@@ -1,0 +1,159 @@
+import { yawRotation } from '#shared/geometry/rotation.ts';
+import { bestRotation } from '#shared/geometry/singular-values.ts';
+import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
+import type { FitPose } from './fit-pose.ts';
+import { isLevelled, isScaled } from './least-pairs.ts';
+
+/**
+ * The fit in closed form. With weights it is the global minimum of Σ w·‖control − s·R·survey − t‖²; with σ it is where the adjustment starts.
+ * Sources: Arun, Huang & Blostein 1987 (singular values), Horn 1987, Umeyama 1991 (determinant, scale); levelled: the same in plan, and a height shift.
+ */
+
+/** Share of the largest possible gain under which the best rotation counts as not unique. */
+const UNIQUE = 1e-11;
+
+/**
+ * @param unique false where another rotation fits exactly as well (a mirrored square), or none at a positive scale
+ */
+export interface ClosedForm {
+	pose: FitPose;
+	unique: boolean;
+}
+
+/**
+ * @param observations at least the least pairs, with spread
+ * @param planWeight one positive number a pair, used for E and N
+ * @param heightWeight the same for H; free fits use planWeight for all three
+ */
+export function closedForm(observations: FitObservations, planWeight: Float64Array, heightWeight: Float64Array): ClosedForm {
+	if (observations.kind === 'height') return heightForm(observations, heightWeight);
+	return isLevelled(observations.kind) ? levelledForm(observations, planWeight, heightWeight) : freeForm(observations, planWeight);
+}
+
+function heightForm({ count, survey, control }: FitObservations, weight: Float64Array): ClosedForm {
+	let total = 0;
+	let sum = 0;
+	for (let i = 0; i < count; i++) {
+		total += weight[i]!;
+		sum += weight[i]! * (control[3 * i + 2]! - survey[3 * i + 2]!);
+	}
+	return { pose: { rotation: yawRotation(0), shift: Float64Array.of(0, 0, sum / total), planScale: 1, heightScale: 1 }, unique: true };
+}
+
+function levelledForm(observations: FitObservations, planWeight: Float64Array, heightWeight: Float64Array): ClosedForm {
+	const { count, survey, control, known } = observations;
+	const total = [0, 0, 0];
+	const meanSurvey = [0, 0, 0];
+	const meanControl = [0, 0, 0];
+	for (let i = 0; i < count; i++) {
+		for (let k = 0; k < 3; k++) {
+			if ((known[i]! & (k < 2 ? KNOWN_PLAN : KNOWN_HEIGHT)) === 0) continue;
+			const weight = k < 2 ? planWeight[i]! : heightWeight[i]!;
+			total[k]! += weight;
+			meanSurvey[k]! += weight * survey[3 * i + k]!;
+			meanControl[k]! += weight * control[3 * i + k]!;
+		}
+	}
+	for (let k = 0; k < 3; k++) {
+		meanSurvey[k]! /= total[k]!;
+		meanControl[k]! /= total[k]!;
+	}
+	let along = 0;
+	let across = 0;
+	let upward = 0;
+	let surveySquare = 0;
+	let surveyPlanSquare = 0;
+	let controlPlanSquare = 0;
+	for (let i = 0; i < count; i++) {
+		if ((known[i]! & KNOWN_PLAN) !== 0) {
+			const weight = planWeight[i]!;
+			const x = survey[3 * i]! - meanSurvey[0]!;
+			const y = survey[3 * i + 1]! - meanSurvey[1]!;
+			const e = control[3 * i]! - meanControl[0]!;
+			const n = control[3 * i + 1]! - meanControl[1]!;
+			along += weight * (x * e + y * n);
+			across += weight * (x * n - y * e);
+			surveyPlanSquare += weight * (x * x + y * y);
+			controlPlanSquare += weight * (e * e + n * n);
+		}
+		if ((known[i]! & KNOWN_HEIGHT) !== 0) {
+			const z = survey[3 * i + 2]! - meanSurvey[2]!;
+			upward += heightWeight[i]! * z * (control[3 * i + 2]! - meanControl[2]!);
+			surveySquare += heightWeight[i]! * z * z;
+		}
+	}
+	surveySquare += surveyPlanSquare;
+	const gain = Math.hypot(along, across);
+	let unique = gain > UNIQUE * Math.sqrt(surveyPlanSquare * controlPlanSquare);
+	const rotation = yawRotation(Math.atan2(across, along));
+	let planScale = observations.fixedScale;
+	if (isScaled(observations.kind)) {
+		planScale = (gain + upward) / surveySquare;
+		if (!(planScale > 0)) {
+			unique = false;
+			planScale = gain > 0 ? gain / surveyPlanSquare : 1;
+		}
+	}
+	const heightScale = observations.scalesHeights ? planScale : 1;
+	return { pose: poseThrough(rotation, planScale, heightScale, meanSurvey, meanControl), unique };
+}
+
+function freeForm(observations: FitObservations, weights: Float64Array): ClosedForm {
+	const { count, survey, control } = observations;
+	let total = 0;
+	let [sx, sy, sz, cx, cy, cz] = [0, 0, 0, 0, 0, 0];
+	for (let i = 0; i < count; i++) {
+		const weight = weights[i]!;
+		total += weight;
+		sx += weight * survey[3 * i]!;
+		sy += weight * survey[3 * i + 1]!;
+		sz += weight * survey[3 * i + 2]!;
+		cx += weight * control[3 * i]!;
+		cy += weight * control[3 * i + 1]!;
+		cz += weight * control[3 * i + 2]!;
+	}
+	sx /= total;
+	sy /= total;
+	sz /= total;
+	cx /= total;
+	cy /= total;
+	cz /= total;
+	const cross = new Float64Array(9);
+	let surveySquare = 0;
+	for (let i = 0; i < count; i++) {
+		const weight = weights[i]!;
+		const x = survey[3 * i]! - sx;
+		const y = survey[3 * i + 1]! - sy;
+		const z = survey[3 * i + 2]! - sz;
+		const e = weight * (control[3 * i]! - cx);
+		const n = weight * (control[3 * i + 1]! - cy);
+		const h = weight * (control[3 * i + 2]! - cz);
+		surveySquare += weight * (x * x + y * y + z * z);
+		cross[0]! += x * e;
+		cross[1]! += x * n;
+		cross[2]! += x * h;
+		cross[3]! += y * e;
+		cross[4]! += y * n;
+		cross[5]! += y * h;
+		cross[6]! += z * e;
+		cross[7]! += z * n;
+		cross[8]! += z * h;
+	}
+	const rotation = new Float64Array(9);
+	const singular = new Float64Array(3);
+	bestRotation(cross, rotation, singular);
+	const unique = singular[1]! + singular[2]! > 1e-14 * singular[0]! && singular[1]! + singular[2]! > UNIQUE * singular[1]!;
+	let scale = observations.fixedScale;
+	if (isScaled(observations.kind)) scale = (singular[0]! + singular[1]! + singular[2]!) / surveySquare;
+	return { pose: poseThrough(rotation, scale, scale, [sx, sy, sz], [cx, cy, cz]), unique };
+}
+
+/** The pose that takes one point to another. */
+function poseThrough(rotation: Float64Array, planScale: number, heightScale: number, from: number[], to: number[]): FitPose {
+	const shift = new Float64Array(3);
+	for (let row = 0; row < 3; row++) {
+		const turned = rotation[3 * row]! * from[0]! + rotation[3 * row + 1]! * from[1]! + rotation[3 * row + 2]! * from[2]!;
+		shift[row] = to[row]! - (row < 2 ? planScale : heightScale) * turned;
+	}
+	return { rotation, shift, planScale, heightScale };
+}
