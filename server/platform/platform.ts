@@ -8,6 +8,8 @@ export interface Platform {
 	/** Commits when `work` resolves, else rolls back. No file, mail or hashing inside. */
 	transaction: <T>(work: (tx: Transaction) => Promise<T>) => Promise<T>;
 	files: FileStore;
+	/** Where uploads lie until a command takes them (`takeUpload`). */
+	uploadFolder: string;
 	jobs: JobQueue;
 	now: () => Date;
 	newId: () => string;
@@ -59,6 +61,8 @@ export type JobEnd = { state: 'done' } | { state: 'failed'; reason: string } | {
 export interface JobRunner {
 	name: string;
 	run: (input: unknown, context: JobContext) => Promise<JobEnd>;
+	/** Called once when all tries threw: what the job was to make must not stay "being made". */
+	giveUp?: (input: unknown, platform: Platform, reason: string) => Promise<void>;
 }
 
 /** A person with a session. */
