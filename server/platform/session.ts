@@ -1,0 +1,96 @@
+import { createHash, randomBytes } from 'node:crypto';
+import { DrizzlePostgreSQLAdapter } from '@lucia-auth/adapter-drizzle';
+import { type Adapter, Lucia, TimeSpan, verifyRequestOrigin } from 'lucia';
+import type { Db } from '../db/database.ts';
+import { sessions, users } from '../db/schema/account.ts';
+import type { SignedIn } from './platform.ts';
+
+/** The only file that knows the session library (docs/decisions/002). */
+export interface Sessions {
+	/** A new session; answers the cookie to set. */
+	create: (userId: string) => Promise<string>;
+	/** Who sends this cookie header, and a cookie to set where the session was prolonged. */
+	validate: (cookieHeader: string | undefined) => Promise<{ signedIn: SignedIn | null; cookie: string | null }>;
+	/** Ends the session of this cookie header; answers the cookie that clears it. */
+	end: (cookieHeader: string | undefined) => Promise<string>;
+	/** Ends all of a person, as after a change of password. */
+	endAll: (userId: string) => Promise<void>;
+	deleteExpired: () => Promise<void>;
+}
+
+/** A session that is used lives on, up to this long after its start. */
+const longestMs = 90 * 24 * 3_600_000;
+
+declare module 'lucia' {
+	interface Register {
+		Lucia: Lucia<Record<never, never>, { name: string; email: string }>;
+		DatabaseUserAttributes: { name: string; email: string };
+	}
+}
+
+/** `isSecure`: the cookie travels by TLS only; browsers make an exception for this very machine. */
+export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean; now: () => Date }): Sessions {
+	const lucia = new Lucia(hashingIds(new DrizzlePostgreSQLAdapter(db, sessions, users)), {
+		sessionExpiresIn: new TimeSpan(30, 'd'),
+		sessionCookie: { name: 'bb-session', attributes: { secure: isSecure, sameSite: 'lax', path: '/' } },
+		getUserAttributes: ({ name, email }) => ({ name, email }),
+	});
+	const nobody = { signedIn: null, cookie: null };
+	const sessionIdIn = (cookieHeader: string | undefined): string | null => {
+		try {
+			return lucia.readSessionCookie(cookieHeader ?? '');
+		} catch {
+			// A header whose escapes cannot be decoded holds no cookie of ours.
+			return null;
+		}
+	};
+	return {
+		create: async (userId) => {
+			// The start is part of the secret: who changes it changes the hash, and has no session.
+			const sessionId = `${now().getTime().toString(36)}.${randomBytes(32).toString('base64url')}`;
+			const session = await lucia.createSession(userId, {}, { sessionId });
+			return lucia.createSessionCookie(session.id).serialize();
+		},
+		validate: async (cookieHeader) => {
+			const sessionId = sessionIdIn(cookieHeader);
+			if (sessionId === null) return nobody;
+			const { user, session } = await lucia.validateSession(sessionId);
+			if (session === null) return nobody;
+			if (now().getTime() - Number.parseInt(sessionId, 36) > longestMs) {
+				await lucia.invalidateSession(sessionId);
+				return nobody;
+			}
+			const signedIn = { userId: user.id, name: user.name, email: user.email };
+			return { signedIn, cookie: session.fresh ? lucia.createSessionCookie(sessionId).serialize() : null };
+		},
+		end: async (cookieHeader) => {
+			const sessionId = sessionIdIn(cookieHeader);
+			if (sessionId !== null) await lucia.invalidateSession(sessionId);
+			return lucia.createBlankSessionCookie().serialize();
+		},
+		endAll: (userId) => lucia.invalidateUserSessions(userId),
+		deleteExpired: () => lucia.deleteExpiredSessions(),
+	};
+}
+
+/** The table holds the SHA-256 of what the cookie holds: who reads the table or a backup of it is not signed in. */
+function hashingIds(adapter: Adapter): Adapter {
+	const hashed = (sessionId: string) => createHash('sha256').update(sessionId).digest('hex');
+	return {
+		getSessionAndUser: async (sessionId) => {
+			const [session, user] = await adapter.getSessionAndUser(hashed(sessionId));
+			return [session && { ...session, id: sessionId }, user];
+		},
+		getUserSessions: (userId) => adapter.getUserSessions(userId),
+		setSession: (session) => adapter.setSession({ ...session, id: hashed(session.id) }),
+		updateSessionExpiration: (sessionId, expiresAt) => adapter.updateSessionExpiration(hashed(sessionId), expiresAt),
+		deleteSession: (sessionId) => adapter.deleteSession(hashed(sessionId)),
+		deleteUserSessions: (userId) => adapter.deleteUserSessions(userId),
+		deleteExpiredSessions: () => adapter.deleteExpiredSessions(),
+	};
+}
+
+/** A request that changes something must come from a page of ours: browsers send Origin with each such request. */
+export function isOwnOrigin(origin: string | undefined, host: string | undefined): boolean {
+	return origin !== undefined && host !== undefined && verifyRequestOrigin(origin, [host]);
+}
