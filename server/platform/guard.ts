@@ -5,6 +5,7 @@ import { mayWith, type Permission, type SitePermission } from '#shared/permissio
 import { memberOf } from './membership.ts';
 import type { Member, Platform, SignedIn } from './platform.ts';
 import { Conflict, NotFound, Refused } from './refuse.ts';
+import type { Tries } from './tries.ts';
 
 /** The session of this request. What is set goes out with the answer as a cookie. */
 export interface SessionDoor {
@@ -19,6 +20,7 @@ export interface RequestContext {
 	session: SessionDoor;
 	/** The client's network address, for the limit on tries. */
 	address: string;
+	tries: Tries;
 }
 
 /**

@@ -1,0 +1,25 @@
+import { setTimeout } from 'node:timers/promises';
+import type { JobProgress } from '#shared/job/contract.ts';
+import type { Db } from '../../db/database.ts';
+import { progressOf } from './queries.ts';
+
+const pollMs = 200;
+const ended: readonly JobProgress['state'][] = ['done', 'failed', 'cancelled'];
+
+/** The job as it is, then each change, until it ends or nobody listens any more. */
+export async function* followJob(
+	db: Db,
+	siteId: string,
+	jobId: string,
+	signal: AbortSignal | undefined,
+): AsyncGenerator<JobProgress, void> {
+	let last = '';
+	while (!signal?.aborted) {
+		const progress = await progressOf(db, siteId, jobId);
+		const seen = JSON.stringify(progress);
+		if (seen !== last) yield progress;
+		last = seen;
+		if (ended.includes(progress.state)) return;
+		await setTimeout(pollMs);
+	}
+}
