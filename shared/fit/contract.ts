@@ -26,6 +26,8 @@ export const pairsOfSetup = z.object({
 	targetsWithoutControl: z.array(z.string()),
 	/** Why σ are not used, where they are not. */
 	sigmaNote: z.string().nullable(),
+	/** What was taken for the same mark though written differently, and repeats that were averaged: sentences. */
+	notes: z.array(z.string()).optional(),
 });
 export type PairsOfSetup = z.infer<typeof pairsOfSetup>;
 

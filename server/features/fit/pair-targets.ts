@@ -1,0 +1,131 @@
+import type { PairsOfSetup } from '#shared/fit/contract.ts';
+import type { FitPair } from '#shared/fit/fit-schema.ts';
+import { isTargetCode, matchMarks } from '#shared/survey/match-marks.ts';
+
+/** A point of a set-up, survey frame, metres; σ already its own or the set-up's. */
+export interface SetupPoint {
+	name: string;
+	code: string;
+	surveyM: readonly [number, number, number];
+	sigmaM: readonly [number, number, number] | null;
+}
+
+/** A control point, design frame, metres; a benchmark has no plan. */
+export interface ControlMark {
+	name: string;
+	designM: readonly [number | null, number | null, number | null];
+	sigmaPlanM: number | null;
+	sigmaHeightM: number | null;
+}
+
+type Axes<Value> = [Value, Value, Value];
+
+/**
+ * The pairs of a set-up: targets and control points that are the same mark (`matchMarks`), in the order of the control list.
+ * Repeats of a target are averaged, σ of the mean = √(Σσ²)/n. σ are used for all pairs or none; `sigmaNote` says why not.
+ */
+export function pairTargets(points: readonly SetupPoint[], marks: readonly ControlMark[]): Omit<PairsOfSetup, 'setupId' | 'controlSetId'> {
+	const matches = matchMarks(
+		points.map(({ name }) => name),
+		marks.map(({ name }) => name),
+	);
+	const sighted = new Map<string, SetupPoint[]>();
+	for (const point of points) {
+		const match = matches.get(point.name);
+		if (match !== undefined) sighted.set(match.mark, [...(sighted.get(match.mark) ?? []), point]);
+	}
+	const paired = marks.flatMap((mark) => {
+		const sights = sighted.get(mark.name);
+		return sights === undefined ? [] : [pairOf(mark, sights)];
+	});
+	const sigmaNote = whyNoSigma(paired);
+	const unmatched = points.filter(({ name, code }) => isTargetCode(code) && !matches.has(name));
+	return {
+		pairs: paired.map(({ pair }) => (sigmaNote === null ? pair : { name: pair.name, survey: pair.survey, control: pair.control })),
+		controlWithoutTarget: marks.filter(({ name }) => !sighted.has(name)).map(({ name }) => name),
+		targetsWithoutControl: [...new Set(unmatched.map(({ name }) => name))],
+		sigmaNote,
+		notes: [...looseNotes(matches), ...paired.flatMap(({ note }) => note ?? [])],
+	};
+}
+
+interface Paired {
+	pair: FitPair;
+	note: string | null;
+	lacksSurveySigma: boolean;
+	lacksControlSigma: boolean;
+}
+
+function pairOf(mark: ControlMark, sights: readonly SetupPoint[]): Paired {
+	const n = sights.length;
+	const first = sights[0]!.surveyM;
+	const survey = axes((k) => first[k] + sights.reduce((sum, { surveyM }) => sum + (surveyM[k] - first[k]), 0) / n);
+	const sigmas = sights.map(({ sigmaM }) => sigmaM);
+	const surveySigma = sigmas.every((sigma) => sigma !== null)
+		? axes((k) => Math.sqrt(sigmas.reduce((sum, sigma) => sum + sigma[k] ** 2, 0)) / n)
+		: null;
+	const given = axes((k) => (k < 2 ? mark.sigmaPlanM : mark.sigmaHeightM));
+	const isControlKnown = axes((k) => mark.designM[k] === null || given[k] !== null).every(Boolean);
+	// An axis that is not known is not in the fit, so any σ does there.
+	const controlSigma = axes((k) => given[k] ?? 0);
+	const isWeighable = surveySigma !== null && isControlKnown;
+	return {
+		pair: { name: mark.name, survey, control: [...mark.designM], ...(isWeighable ? { surveySigma, controlSigma } : {}) },
+		note: repeatNote(mark.name, sights),
+		lacksSurveySigma: surveySigma === null,
+		lacksControlSigma: !isControlKnown,
+	};
+}
+
+function whyNoSigma(paired: readonly Paired[]): string | null {
+	const lacking = (side: 'lacksSurveySigma' | 'lacksControlSigma'): string[] => paired.flatMap((one) => (one[side] ? [one.pair.name] : []));
+	const [survey, control] = [lacking('lacksSurveySigma'), lacking('lacksControlSigma')];
+	const zero = paired.flatMap(({ pair }) => (isZeroOnBothSides(pair) ? [pair.name] : []));
+	const reasons = [
+		...(control.length > 0 ? [`the control list gives none for ${listed(control)}`] : []),
+		...(survey.length > 0 ? [`neither the survey nor its set-up gives one for ${listed(survey)}`] : []),
+		...(zero.length > 0 ? [`it is nil on both sides for ${listed(zero)}`] : []),
+	];
+	if (reasons.length === 0) return null;
+	return `Standard deviations are used for all pairs or for none. Here for none: ${reasons.join('; ')}.`;
+}
+
+function isZeroOnBothSides({ surveySigma, controlSigma, control }: FitPair): boolean {
+	if (surveySigma === undefined || controlSigma === undefined) return false;
+	return axes((k) => control[k] !== null && surveySigma[k] === 0 && controlSigma[k] === 0).some(Boolean);
+}
+
+function looseNotes(matches: ReturnType<typeof matchMarks>): string[] {
+	return [...matches].flatMap(([name, { mark, isLoose }]) =>
+		isLoose ? [`Target "${name}" was taken for control point "${mark}": they differ only in how they are written.`] : [],
+	);
+}
+
+/** Repeats are said, and how far apart the two furthest are; beyond 3σ√2 along an axis they are called too far apart. */
+function repeatNote(name: string, sights: readonly SetupPoint[]): string | null {
+	if (sights.length === 1) return null;
+	let apartM = 0;
+	let isTooFar = false;
+	for (const [i, one] of sights.entries()) {
+		for (const other of sights.slice(0, i)) {
+			const differenceM = axes((k) => one.surveyM[k] - other.surveyM[k]);
+			apartM = Math.max(apartM, Math.hypot(...differenceM));
+			const [sigma, sigmaOther] = [one.sigmaM, other.sigmaM];
+			if (sigma !== null && sigmaOther !== null) {
+				isTooFar ||= axes((k) => Math.abs(differenceM[k]) > 3 * Math.hypot(sigma[k], sigmaOther[k])).some(Boolean);
+			}
+		}
+	}
+	const apart = `${(apartM * 1000).toFixed(1)} mm apart`;
+	const said = `${name} was sighted ${sights.length} times, at most ${apart}; the mean is used.`;
+	return isTooFar ? `${said} That is more than three standard deviations of a difference: the instrument may have moved.` : said;
+}
+
+function axes<Value>(of: (axis: 0 | 1 | 2) => Value): Axes<Value> {
+	return [of(0), of(1), of(2)];
+}
+
+function listed(names: readonly string[]): string {
+	const shown = names.slice(0, 5).join(', ');
+	return names.length > 5 ? `${shown} and ${names.length - 5} more` : shown;
+}

@@ -1,0 +1,21 @@
+import { siteRoutes } from '../../platform/guard.ts';
+import { adoptFit } from './adopt-fit.ts';
+import { makeFit } from './make-fit.ts';
+import { fitOf, fitsOf } from './queries.ts';
+import { setupPairs } from './setup-pairs.ts';
+
+export const fitRoutes = {
+	pairs: siteRoutes.fit.pairs.handler(async ({ input, context: { platform } }) => (await setupPairs(platform.db, input)).pairs),
+	list: siteRoutes.fit.list.handler(({ input, context: { platform, member } }) => fitsOf(platform.db, member.siteId, input.setupId)),
+	get: siteRoutes.fit.get.handler(({ input, context: { platform, member } }) => fitOf(platform.db, member.siteId, input.fitId)),
+	make: siteRoutes.fit.make.handler(async ({ input, context: { platform, member }, errors }) => {
+		const made = await makeFit(platform, member, input);
+		if (!made.ok) throw errors.NO_FIT({ message: made.refusal.message, data: made.refusal });
+		return made.fit;
+	}),
+	adopt: siteRoutes.fit.adopt.handler(async ({ input, context: { platform, member }, errors }) => {
+		const adopted = await adoptFit(platform, member, input);
+		if (adopted === 'stale') throw errors.STALE();
+		return adopted;
+	}),
+};

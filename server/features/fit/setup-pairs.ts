@@ -1,0 +1,76 @@
+import { and, asc, eq, isNull } from 'drizzle-orm';
+import type { PairsOfSetup } from '#shared/fit/contract.ts';
+import type { Handle } from '../../db/database.ts';
+import { vectorOf } from '../../db/model-rows.ts';
+import { controlPoints, controlSets } from '../../db/schema/control.ts';
+import { setups, surveyPoints, surveys } from '../../db/schema/survey.ts';
+import { foundOne, Refused } from '../../platform/refuse.ts';
+import { pairTargets } from './pair-targets.ts';
+
+export interface SetupAndControl {
+	siteId: string;
+	setupId: string;
+	controlSetId: string;
+}
+
+/** A set-up's pairs against a control set, with the hashes of the files that both came from. */
+export interface SetupPairs {
+	pairs: PairsOfSetup;
+	surveyFileSha256: string;
+	controlFileSha256: string;
+}
+
+/** Reads both of the site and pairs them; NOT_FOUND for another site's, refused while the survey is not stored whole. */
+export async function setupPairs(db: Handle, { siteId, setupId, controlSetId }: SetupAndControl): Promise<SetupPairs> {
+	const { setup, survey } = foundOne(
+		await db
+			.select({ setup: setups, survey: surveys })
+			.from(setups)
+			.innerJoin(surveys, eq(surveys.id, setups.surveyId))
+			.where(and(eq(setups.siteId, siteId), eq(setups.id, setupId))),
+	);
+	const control = foundOne(
+		await db
+			.select()
+			.from(controlSets)
+			.where(and(eq(controlSets.siteId, siteId), eq(controlSets.id, controlSetId))),
+	);
+	if (survey.state !== 'ready') {
+		throw new Refused(
+			'survey-not-ready',
+			survey.reason ?? 'The points of this survey are still being stored. Wait for it, then fit.',
+			'setupId',
+		);
+	}
+	const marks = await db
+		.select()
+		.from(controlPoints)
+		.where(and(eq(controlPoints.controlSetId, controlSetId), eq(controlPoints.state, 'in-use')))
+		.orderBy(asc(controlPoints.name));
+	const points = await db
+		.select()
+		.from(surveyPoints)
+		.where(and(eq(surveyPoints.setupId, setupId), isNull(surveyPoints.voidedReason)))
+		.orderBy(asc(surveyPoints.row));
+	const { pointSigmaPlanM: plan, pointSigmaHeightM: height } = setup;
+	const setupSigmaM = plan === null || height === null ? null : ([plan, plan, height] as const);
+	const paired = pairTargets(
+		points.map(({ name, code, xM, yM, zM, sigmaM }) => ({
+			name,
+			code,
+			surveyM: [xM, yM, zM],
+			sigmaM: sigmaM === null ? setupSigmaM : vectorOf(sigmaM),
+		})),
+		marks.map(({ name, designXM, designYM, designZM, sigmaPlanM, sigmaHeightM }) => ({
+			name,
+			designM: [designXM, designYM, designZM],
+			sigmaPlanM,
+			sigmaHeightM,
+		})),
+	);
+	return {
+		pairs: { setupId, controlSetId, ...paired },
+		surveyFileSha256: survey.fileSha256,
+		controlFileSha256: control.fileSha256,
+	};
+}
