@@ -5,6 +5,7 @@ import { popeTau } from '#shared/geometry/student-t.ts';
 import type { Adjustment } from './adjust.ts';
 import { carriedPointCovariance, carryPoint, fitCovarianceAt } from './carry-point.ts';
 import { designRows } from './design-rows.ts';
+import { fitFindings } from './fit-findings.ts';
 import { type FitObservations, observationCount, observationsOf } from './fit-observations.ts';
 import { poseMatrix } from './fit-pose.ts';
 import type { FitInput, FitOutcome, FitPair, FitPairResult, FitResult } from './fit-schema.ts';
@@ -16,17 +17,23 @@ import { solveFit } from './solve-fit.ts';
 /**
  * The fit from survey to control, with every figure that says how good it is. docs/fit.md has the mathematics.
  * @param input of readFitInput: shape, names and σ are sound. Metres, radians
+ * @param options findings: false leaves the search for causes out; the numbers are the same
  * @returns a refusal where the pairs do not determine the fit, or its best rotation is not unique
  */
-export function computeFit(input: FitInput): FitOutcome {
+export function computeFit(input: FitInput, options: { findings: boolean } = { findings: true }): FitOutcome {
 	const inFit = input.pairs.filter((pair) => !pair.heldBack);
 	const observations = observationsOf(input, inFit);
 	const solution = solveFit(observations);
 	if (!solution.ok) return solution;
 	const result = describe(input, inFit, observations, solution.adjustment);
-	return everyNumberFinite(result)
-		? { ok: true, result }
-		: { ok: false, refusal: { code: 'not-finite', message: 'The numbers are too large or too small: the computation overflows.' } };
+	if (!everyNumberFinite(result)) {
+		return { ok: false, refusal: { code: 'not-finite', message: 'The numbers are too large or too small: the computation overflows.' } };
+	}
+	if (options.findings) {
+		const names = inFit.map(({ name }) => name);
+		result.findings = fitFindings(input, names, observations, solution.adjustment);
+	}
+	return { ok: true, result };
 }
 
 function describe(input: FitInput, inFit: readonly FitPair[], observations: FitObservations, adjustment: Adjustment): FitResult {

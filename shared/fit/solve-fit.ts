@@ -60,6 +60,19 @@ export function solveFit(observations: FitObservations): Solution {
 	return { ok: true, adjustment: best };
 }
 
+/**
+ * The minimum that the closed form leads to, without looking for others: for searches that try many subsets. Null where the pairs do not
+ * determine the fit, or the iteration found no minimum.
+ */
+export function quickFit(observations: FitObservations): Adjustment | null {
+	if (refuseGeometry(observations)) return null;
+	const { planWeight, heightWeight } = startWeights(observations);
+	const start = closedForm(observations, planWeight, heightWeight);
+	if (!start.unique) return null;
+	const adjustment = adjust(observations, start.pose);
+	return adjustment.state === 'converged' ? adjustment : null;
+}
+
 function notUnique(): FitRefusal {
 	return {
 		code: 'no-solution',

@@ -10,6 +10,12 @@ export function studentTwoSidedTail(value: number, degrees: number): number {
 	return incompleteBeta(degrees / (degrees + value * value), (value * value) / (degrees + value * value), degrees / 2, 0.5);
 }
 
+/** The probability that a ratio of two variance estimates, with `upper` and `lower` degrees ≥ 1, is beyond `value` ≥ 0 (Fisher's F). */
+export function varianceRatioTail(value: number, upper: number, lower: number): number {
+	const whole = lower + upper * value;
+	return incompleteBeta(lower / whole, (upper * value) / whole, lower / 2, upper / 2);
+}
+
 /** I_x(a, b); `rest` = 1 − x is given by the caller, so that nothing is lost near x = 1. */
 function incompleteBeta(x: number, rest: number, a: number, b: number): number {
 	if (x <= 0) return 0;
