@@ -1,0 +1,24 @@
+import type { ErrorRequestHandler, RequestHandler, Response } from 'express';
+
+/** For what nobody answers. */
+export const notFoundPage: RequestHandler = (request, response) => {
+	sendSentence(response, 404, request.path, 'There is nothing at this address.');
+};
+
+/** For a fault of ours: written to the log, never shown. A malformed address is the sender's. */
+export const errorPage: ErrorRequestHandler = (error: unknown, request, response, next) => {
+	if (response.headersSent) return next(error);
+	if (error instanceof URIError) return sendSentence(response, 400, request.path, 'This address cannot be read.');
+	console.error(`${request.method} ${request.path} failed:`, error);
+	sendSentence(response, 500, request.path, 'Something went wrong on the server. What was stored before is safe; try again.');
+};
+
+function sendSentence(response: Response, status: number, path: string, sentence: string): void {
+	response.status(status).set('cache-control', 'no-store');
+	if (/^\/(rpc|api)\//.test(path)) response.json({ message: sentence });
+	else response.type('html').send(page(status, sentence));
+}
+
+function page(status: number, sentence: string): string {
+	return `<!doctype html><html lang="en"><meta charset="utf-8"><title>${status} · Batterboard</title><body><h1>${sentence}</h1><p><a href="/">To the sites</a></p></body></html>`;
+}

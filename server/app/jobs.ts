@@ -1,0 +1,4 @@
+import type { JobRunner } from '../platform/platform.ts';
+
+/** All job runners. */
+export const jobRunners: readonly JobRunner[] = [];

@@ -1,0 +1,17 @@
+import { accountRoutes } from '../features/account/routes.ts';
+import { jobRoutes } from '../features/job/routes.ts';
+import { modelRoutes } from '../features/model/routes.ts';
+import { pourRoutes } from '../features/pour/routes.ts';
+import { siteRoutes } from '../features/site/routes.ts';
+import { toleranceRoutes } from '../features/tolerance/routes.ts';
+import { foundSiteRoute } from '../workflows/found-site.ts';
+
+/** All routes of the contract. */
+export const router = {
+	account: accountRoutes,
+	site: { ...siteRoutes, found: foundSiteRoute },
+	job: jobRoutes,
+	model: modelRoutes,
+	tolerance: toleranceRoutes,
+	pour: pourRoutes,
+};

@@ -1,0 +1,86 @@
+import { randomUUID } from 'node:crypto';
+import { createServer, type Server } from 'node:http';
+import { join } from 'node:path';
+import { connectDatabase } from '../db/connect.ts';
+import type { Connection } from '../db/connection.ts';
+import { diskFiles } from '../platform/disk-files.ts';
+import type { JobRunner, Platform } from '../platform/platform.ts';
+import { openQueue, type Queue } from '../platform/queue.ts';
+import { openSessions } from '../platform/session.ts';
+import { openUploads } from '../platform/upload-server.ts';
+import { clientOf } from './client.ts';
+import type { Configuration } from './configuration.ts';
+import { httpApp, uploadsPath } from './http.ts';
+import { jobRunners } from './jobs.ts';
+import { router } from './router.ts';
+
+/** A server that answers, and works on its jobs. */
+export interface RunningServer {
+	address: string;
+	platform: Platform;
+	/** Lets go of everything: connections, jobs (they go back into the queue), database, lock. */
+	close: () => Promise<void>;
+}
+
+/** Opens the database, listens, then takes up the jobs. Throws a plain sentence where one of them cannot be had; nothing stays open then. */
+export async function startServer(configuration: Configuration): Promise<RunningServer> {
+	const connection = await connectDatabase(configuration);
+	try {
+		return await startOn(connection, configuration, jobRunners);
+	} catch (error) {
+		await connection.close();
+		throw error;
+	}
+}
+
+/** The same on an open database, as in tests. `close` closes it. */
+export async function startOn(connection: Connection, configuration: Configuration, runners: readonly JobRunner[]): Promise<RunningServer> {
+	const queue = openQueue(connection, runners);
+	const platform: Platform = {
+		db: connection.db,
+		transaction: queue.transaction,
+		files: diskFiles(join(configuration.dataDir, 'files')),
+		uploadFolder: join(configuration.dataDir, 'uploads'),
+		jobs: queue.jobs,
+		now: () => new Date(),
+		newId: randomUUID,
+	};
+	const sessions = openSessions({ db: platform.db, isSecure: configuration.isCookieSecure, now: platform.now });
+	const uploads = openUploads({ platform, path: uploadsPath, largestBytes: configuration.largestUploadBytes });
+	await sessions.deleteExpired();
+	await uploads.sweep();
+	const server = createServer();
+	const client = await clientOf({ isDevelopment: configuration.isDevelopment, server });
+	server.on('request', httpApp({ platform, sessions, uploads, router, client: client.handler, settings: configuration }));
+	const address = await listen(server, configuration);
+	await queue.start(platform);
+	return { address, platform, close: () => closeAll(server, client.close, queue, connection) };
+}
+
+async function closeAll(server: Server, closeClient: () => Promise<void>, queue: Queue, connection: Connection): Promise<void> {
+	server.close();
+	server.closeAllConnections();
+	await closeClient();
+	await queue.stop();
+	await connection.close();
+	await queue.abandon();
+}
+
+function listen(server: Server, { port, host }: Configuration): Promise<string> {
+	return new Promise((resolve, reject) => {
+		server.once('error', (error: NodeJS.ErrnoException) => reject(new Error(sentenceOf(error, port, host), { cause: error })));
+		server.listen(port, host, () => {
+			const bound = server.address();
+			const name = host.includes(':') ? `[${host}]` : host;
+			resolve(`http://${name}:${typeof bound === 'object' && bound !== null ? bound.port : port}`);
+		});
+	});
+}
+
+function sentenceOf(error: NodeJS.ErrnoException, port: number, host: string): string {
+	if (error.code === 'EADDRINUSE')
+		return `Port ${port} on ${host} is taken by another program. Stop that one, or set PORT to another number.`;
+	if (error.code === 'EACCES') return `This user may not listen on port ${port}. Set PORT to a number over 1023.`;
+	if (error.code === 'EADDRNOTAVAIL') return `This machine has no address ${host}. Set HOST to one it has, or to 127.0.0.1.`;
+	return `The server cannot listen on ${host}, port ${port}: ${error.message}`;
+}

@@ -1,0 +1,23 @@
+import { once } from 'node:events';
+import { readConfiguration } from './app/configuration.ts';
+import { startServer } from './app/start.ts';
+
+// Before the database is opened: a stop in the middle of the start must not leave the folder half made.
+const stop = new AbortController();
+for (const signal of ['SIGTERM', 'SIGINT'] as const) process.once(signal, () => stop.abort());
+
+try {
+	const running = await startServer(readConfiguration(process.env, process.argv.slice(2)));
+	console.log(`Batterboard is at ${running.address}`);
+	if (!stop.signal.aborted) await once(stop.signal, 'abort');
+	await running.close();
+	process.exit(0);
+} catch (error) {
+	console.error(isExpected(error) ? error.message : error);
+	process.exit(1);
+}
+
+/** A sentence for a person, or a defect with its stack. */
+function isExpected(error: unknown): error is Error {
+	return error instanceof Error && error.constructor === Error;
+}
