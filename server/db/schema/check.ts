@@ -127,6 +127,10 @@ export const deviations = pgTable(
 		hasLimits: boolean('has_limits').notNull(),
 		lowerMm: millimetres('lower_mm'),
 		upperMm: millimetres('upper_mm'),
+		/** A box in plan: its first axis, counter-clockwise from east. */
+		boxYawRad: doublePrecision('box_yaw_rad'),
+		/** Between repeats of the point. */
+		spreadMm: millimetres('spread_mm'),
 		ruleId: text('rule_id'),
 		verdict: verdictEnum('verdict').notNull(),
 		beyondMm: millimetres('beyond_mm'),
