@@ -1,0 +1,218 @@
+import { add } from './affine.ts';
+import { type CheckpointDraft, faceDraft, levelDraft, planDraft, type ShapeAnswer } from './checkpoint-draft.ts';
+import { largestPair, type PrismAxis, prismAxes, sectionOf } from './element-shape.ts';
+import { edgeFaces, LEVEL_NZ, levelFace, longestEdge, planExtents, spreadOverFace, treadLevels } from './level-checkpoints.ts';
+import { type PlanarFace, planarFaces } from './planar-face.ts';
+import { beamCheckpoints, inclinedCheckpoints, wallCheckpoints } from './side-checkpoints.ts';
+import { type SolidMesh, weldMesh } from './solid-mesh.ts';
+import { boltCheckpoints, columnCheckpoints } from './upright-checkpoints.ts';
+
+/** What an element is taken for when its checkpoints are placed: from class, name and shape together. */
+export type ElementKind = 'column' | 'pile' | 'bolt' | 'wall' | 'beam' | 'member' | 'slab' | 'footing' | 'plate' | 'stair' | 'none';
+
+export type PlacedElement = ShapeAnswer & { kind: ElementKind };
+
+const NO_SIZES = { length: null, height: null, thickness: null };
+
+/** Parts of a building's structure by class. Doors, pipes, furniture, bars and the like are not checked by points. */
+const STRUCTURAL =
+	/^Ifc(Column|Pile|Wall|Beam|Member|Slab|Roof|Footing|Plate|DiscreteAccessory|MechanicalFastener|Fastener|Stair|Ramp|BuildingElementProxy|BuildingElementPart|BuiltElement|Bearing|DeepFoundation|CaissonFoundation|Course|Pavement|Kerb|Chimney|ElementAssembly|Mooringdevice)/i;
+
+/** Turned so that it points up, or along a level axis east or north. */
+const upward = (axes: readonly PrismAxis[], isSteep: (axis: PrismAxis) => boolean): PrismAxis | null => axes.find(isSteep) ?? null;
+
+const isUpright = (axis: PrismAxis): boolean => axis.direction[2] > 0.7;
+
+function inPieces(drafts: readonly CheckpointDraft[], sizesM: ShapeAnswer['sizesM'], kind: ElementKind, why: string): PlacedElement {
+	return { kind, drafts: [...drafts], sizesM, why: drafts.length === 0 ? why : null };
+}
+
+function slabCheckpoints(
+	mesh: SolidMesh,
+	faces: readonly PlanarFace[],
+	kind: 'slab' | 'footing',
+	axes: readonly PrismAxis[],
+): PlacedElement {
+	const top = levelFace(faces, true);
+	const soffit = levelFace(faces, false);
+	const pair = largestPair(faces);
+	const isFlat = pair !== null && Math.abs(pair.first.normal[2]) > 0.7;
+	const along = top ? longestEdge(mesh, top) : null;
+	const extents = along ? planExtents(mesh, along) : null;
+	const sizesM = {
+		length: extents?.longerM ?? null,
+		height: mesh.max[2] - mesh.min[2],
+		thickness: isFlat ? pair.distanceM : null,
+	};
+	if (!top && isFlat && Math.abs(pair.first.normal[2]) <= LEVEL_NZ)
+		return inPieces(
+			[...spreadOverFace(mesh, pair.first), ...spreadOverFace(mesh, pair.second)],
+			sizesM,
+			kind,
+			'no place on its sides is clear of edges',
+		);
+	if (!top && !soffit && pair) return { kind, ...wallCheckpoints(mesh, faces) };
+	const drafts: CheckpointDraft[] = [];
+	if (kind === 'footing') {
+		const axis = upward(axes, (candidate) => candidate.direction[2] > 0.9999);
+		if (axis && extents && extents.longerM <= 4) drafts.push(planDraft(axis.to, 'Its middle, on top', 'H'));
+	}
+	for (const face of [top, soffit]) if (face) drafts.push(...spreadOverFace(mesh, face));
+	drafts.push(...edgeFaces(mesh, faces));
+	return inPieces(drafts, sizesM, kind, 'it has no flat outer top or soffit');
+}
+
+function plateCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axes: readonly PrismAxis[]): PlacedElement {
+	const outer = faces.filter((face) => face.isOuter && face.isProven && !face.isCurved);
+	const main = outer[0];
+	if (!main) return { kind: 'plate', drafts: [], sizesM: NO_SIZES, why: 'it has no flat outer face whose outer side is proven' };
+	const twin = outer.find(
+		(face) =>
+			face !== main &&
+			face.areaM2 > main.areaM2 * 0.99 &&
+			face.normal[0] * main.normal[0] + face.normal[1] * main.normal[1] + face.normal[2] * main.normal[2] < -0.999,
+	);
+	const pair = largestPair(faces);
+	const axis = axes[0];
+	const section = axis ? sectionOf(mesh, faces, axis) : null;
+	const sizesM = { length: axis ? Math.max(axis.lengthM, section!.widthM) : null, height: null, thickness: pair ? pair.distanceM : null };
+	if (Math.abs(main.normal[2]) > LEVEL_NZ) {
+		// Of two equal faces the upper one is the one that can be seen; a plate cast into a soffit has its anchors above, so its lower face is the larger.
+		const face = twin && main.normal[2] < 0 ? twin : main;
+		return {
+			kind: 'plate',
+			drafts: [
+				planDraft(face.centroid, 'Its middle', 'H'),
+				levelDraft(
+					mesh,
+					face,
+					face.centroid[0],
+					face.centroid[1],
+					face.normal[2] > 0 ? 'Top, middle' : 'Soffit, middle',
+					face.normal[2] > 0 ? 'T' : 'U',
+				),
+			],
+			sizesM,
+			why: null,
+		};
+	}
+	const drafts: CheckpointDraft[] = [
+		planDraft(main.centroid, 'Its middle', 'H'),
+		faceDraft(main, main.centroid, 'Outer face, middle', 'F'),
+	];
+	if (twin) {
+		drafts[0] = planDraft(
+			[(main.centroid[0] + twin.centroid[0]) / 2, (main.centroid[1] + twin.centroid[1]) / 2, (main.centroid[2] + twin.centroid[2]) / 2],
+			'Its middle',
+			'H',
+		);
+		drafts.push(faceDraft(twin, twin.centroid, 'Other face, middle', 'G'));
+	}
+	return { kind: 'plate', drafts, sizesM, why: null };
+}
+
+function stairCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[]): PlacedElement {
+	const drafts = treadLevels(mesh, faces);
+	for (const face of faces.slice(0, 40)) {
+		if (!face.isOuter || !face.isProven || face.isCurved || face.areaM2 < 0.5) continue;
+		if (Math.abs(face.normal[2]) > LEVEL_NZ) continue;
+		if (face.normal[2] < -0.1 || (face.normal[2] > 0.1 && drafts.length === 0)) drafts.push(...spreadOverFace(mesh, face));
+	}
+	const box = { length: null, height: mesh.max[2] - mesh.min[2], thickness: null };
+	return inPieces(drafts, box, 'stair', 'it has no flat treads or sides that its shape proves');
+}
+
+const longEnough = (axis: PrismAxis, mesh: SolidMesh, faces: readonly PlanarFace[]): boolean =>
+	axis.lengthM > 1.6 * sectionOf(mesh, faces, axis).widthM;
+
+/** Chooses the kind: the class where it says enough and the shape agrees, else the shape. */
+function byShape(
+	className: string,
+	name: string,
+	mesh: SolidMesh,
+	faces: readonly PlanarFace[],
+	axes: readonly PrismAxis[],
+): PlacedElement {
+	const is = (...words: string[]): boolean => words.some((word) => className.startsWith(`Ifc${word}`));
+	const saysBolt = /bolt|anker|dowel|d[üu]bel|stud|rod/i.test(name);
+	const longest = axes[0] ?? null;
+	const isSlender = longest !== null && longEnough(longest, mesh, faces);
+	if (is('MechanicalFastener', 'Fastener') || (is('DiscreteAccessory', 'BuildingElementProxy') && saysBolt && isSlender))
+		return { kind: 'bolt', ...boltCheckpoints(mesh, faces, longest) };
+	if (is('Stair', 'Ramp')) return stairCheckpoints(mesh, faces);
+	if (is('Wall')) return { kind: 'wall', ...wallCheckpoints(mesh, faces) };
+	if (is('Column', 'Pile', 'DeepFoundation', 'CaissonFoundation')) {
+		const axis = upward(axes, isUpright);
+		const kind = is('Column') ? 'column' : 'pile';
+		if (axis) return { kind, ...columnCheckpoints(mesh, faces, axis) };
+		if (longest && isSlender) return { kind: 'member', ...inclinedCheckpoints(mesh, faces, longest) };
+		return columnByFaces(mesh, faces, kind);
+	}
+	if (is('Slab', 'Roof', 'Course', 'Pavement', 'Kerb')) return slabCheckpoints(mesh, faces, 'slab', axes);
+	if (is('Footing')) return slabCheckpoints(mesh, faces, 'footing', axes);
+	if (is('Plate', 'DiscreteAccessory') && !(isSlender && is('Plate'))) return plateCheckpoints(mesh, faces, axes);
+	const main = largestPair(faces);
+	const isPlateLike = main !== null && isThin(mesh, faces, axes, main.distanceM);
+	if (longest && isSlender && !isPlateLike) {
+		const slope = Math.abs(longest.direction[2]);
+		if (slope > 0.966) return { kind: 'column', ...columnCheckpoints(mesh, faces, longest) };
+		if (slope < 0.05) return { kind: 'beam', ...beamCheckpoints(mesh, faces, longest) };
+		return { kind: 'member', ...inclinedCheckpoints(mesh, faces, longest) };
+	}
+	if (is('Beam', 'Member') && !isPlateLike)
+		return { kind: 'beam', ...beamCheckpoints(mesh, faces, longest && Math.abs(longest.direction[2]) < 0.05 ? longest : null) };
+	if (!main) return { kind: 'none', drafts: [], sizesM: NO_SIZES, why: 'it has no flat, opposite outer sides' };
+	if (Math.max(mesh.max[0] - mesh.min[0], mesh.max[1] - mesh.min[1], mesh.max[2] - mesh.min[2]) < 1)
+		return plateCheckpoints(mesh, faces, axes);
+	if (Math.abs(main.first.normal[2]) > 0.7) return slabCheckpoints(mesh, faces, 'slab', axes);
+	return { kind: 'wall', ...wallCheckpoints(mesh, faces) };
+}
+
+/** A plate whatever its class says: two extents at least eight times the third. */
+function isThin(mesh: SolidMesh, faces: readonly PlanarFace[], axes: readonly PrismAxis[], thicknessM: number): boolean {
+	const longest = axes[0];
+	if (!longest) return false;
+	const section = sectionOf(mesh, faces, longest);
+	return !section.isRound && section.depthM < 1.05 * thicknessM && section.widthM > 8 * section.depthM;
+}
+
+/** A column without a proven axis (brackets, haunches): what its outer faces show alone. */
+function columnByFaces(mesh: SolidMesh, faces: readonly PlanarFace[], kind: 'column' | 'pile'): PlacedElement {
+	const top = levelFace(faces, true);
+	const drafts: CheckpointDraft[] = top ? [levelDraft(mesh, top, top.centroid[0], top.centroid[1], 'Top', 'T')] : [];
+	const sides = wallCheckpoints(mesh, faces).drafts.filter((draft) => draft.characteristic === 'face');
+	return inPieces(
+		[...drafts, ...sides],
+		{ length: null, height: mesh.max[2] - mesh.min[2], thickness: null },
+		kind,
+		'no two equal ends prove its axis, and it has no flat outer sides',
+	);
+}
+
+/**
+ * Places the checkpoints of one element from its triangles (absolute coordinates, metres, design frame). Orientation is proven by the
+ * enclosed volume or the support plane; where it is not, the answer has `why` and no checkpoint. Places in the answer are absolute.
+ */
+export function placeCheckpoints(element: { class: string; name: string; xyzM: Float64Array; triangles: Uint32Array }): PlacedElement {
+	if (!STRUCTURAL.test(element.class))
+		return { kind: 'none', drafts: [], sizesM: NO_SIZES, why: `parts of class ${element.class} are not checked by points` };
+	if (element.triangles.length > 180_000)
+		return {
+			kind: 'none',
+			drafts: [],
+			sizesM: NO_SIZES,
+			why: `its body has ${element.triangles.length / 3} triangles: too finely shaped for flat faces`,
+		};
+	const mesh = weldMesh(element.xyzM, element.triangles);
+	if (!mesh) return { kind: 'none', drafts: [], sizesM: NO_SIZES, why: 'its body has no surface' };
+	const faces = planarFaces(mesh);
+	if (!faces)
+		return {
+			kind: 'none',
+			drafts: [],
+			sizesM: NO_SIZES,
+			why: 'its body is curved or twisted: it has no flat faces to place checkpoints on',
+		};
+	const placed = byShape(element.class, element.name, mesh, faces, prismAxes(mesh, faces));
+	return { ...placed, drafts: placed.drafts.map((draft) => ({ ...draft, place: add(draft.place, mesh.originM) })) };
+}
