@@ -3,8 +3,9 @@ import { readConfiguration } from './app/configuration.ts';
 import { startServer } from './app/start.ts';
 
 // Before the database is opened: a stop in the middle of the start must not leave the folder half made.
+// Not once: a terminal and npm both pass a Ctrl-C on, and the second must not cut the closing short.
 const stop = new AbortController();
-for (const signal of ['SIGTERM', 'SIGINT'] as const) process.once(signal, () => stop.abort());
+for (const signal of ['SIGTERM', 'SIGINT'] as const) process.on(signal, () => stop.abort());
 
 try {
 	const running = await startServer(readConfiguration(process.env, process.argv.slice(2)));

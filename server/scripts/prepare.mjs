@@ -1,0 +1,82 @@
+// Makes the checkout ready to run: packages as locked, then client and server built. Compares stamps, so that a second start does neither.
+// Imports only what Node brings: it runs before anything is installed. All output on standard error: the command line's standard output is JSON.
+import { spawnSync } from 'node:child_process';
+import { createHash } from 'node:crypto';
+import { existsSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { dirname, join, resolve } from 'node:path';
+import { fileURLToPath } from 'node:url';
+
+/** The checkout. */
+export const root = resolve(dirname(fileURLToPath(import.meta.url)), '../..');
+
+const installStamp = join(root, 'node_modules/.bb-lock');
+const buildStamp = join(root, 'dist/.bb-src');
+/** What goes into the built files. */
+const sources = ['shared', 'server', 'src', 'public', 'index.html', 'vite.config.ts', 'package-lock.json'];
+
+const [major, minor] = process.versions.node.split('.').map(Number);
+if (major < 20 || (major === 20 && minor < 19)) {
+	console.error(`Batterboard needs Node 20.19 or newer; this is ${process.versions.node}.`);
+	process.exit(1);
+}
+
+/** Installs what the lock file says, where it is not there yet. Exits with a sentence where that fails. */
+export function install() {
+	const wanted = sha256(readFileSync(join(root, 'package-lock.json')));
+	if (stampOf(installStamp) === wanted) return;
+	console.error('Installing packages …');
+	// Development packages too: they build the client. NODE_ENV=production would leave them out.
+	if (!runNpm(['ci', '--include=dev', '--no-audit', '--no-fund'])) stop('The packages could not be installed. See the lines above.');
+	writeFileSync(installStamp, wanted);
+}
+
+/** Builds client and server, where a source changed since. */
+export function build() {
+	const hash = createHash('sha256');
+	for (const file of sources.flatMap(filesUnder)) hash.update(`${file}\0`).update(readFileSync(join(root, file)));
+	const wanted = hash.digest('hex');
+	if (stampOf(buildStamp) === wanted) return;
+	console.error('Building …');
+	rmSync(buildStamp, { force: true });
+	for (const mode of [[], ['--mode', 'server']]) {
+		if (!runNode([join(root, 'node_modules/vite/bin/vite.js'), 'build', ...mode])) stop('The build failed. See the lines above.');
+	}
+	mkdirSync(dirname(buildStamp), { recursive: true });
+	writeFileSync(buildStamp, wanted);
+}
+
+/** Runs a program of ours with Node, its output on standard error. True where it ended well. */
+export function runNode(args) {
+	return spawnSync(process.execPath, args, { cwd: root, stdio: ['ignore', 2, 2] }).status === 0;
+}
+
+function runNpm(args) {
+	// Under npm its own program is named; without (as a bin) the one on the path is taken.
+	const npm = process.env.npm_execpath;
+	if (npm?.endsWith('.js')) return runNode([npm, ...args]);
+	const isWindows = process.platform === 'win32';
+	return spawnSync(isWindows ? 'npm.cmd' : 'npm', args, { cwd: root, stdio: ['ignore', 2, 2], shell: isWindows }).status === 0;
+}
+
+function filesUnder(path) {
+	if (!existsSync(join(root, path))) return [];
+	const names = /\.[a-z]+$/.test(path) ? null : readdirSync(join(root, path), { recursive: true, withFileTypes: true });
+	if (names === null) return [path];
+	return names
+		.filter((entry) => entry.isFile())
+		.map((entry) => join(entry.parentPath, entry.name).slice(root.length + 1))
+		.sort();
+}
+
+function stampOf(file) {
+	return existsSync(file) ? readFileSync(file, 'utf8').trim() : null;
+}
+
+function sha256(bytes) {
+	return createHash('sha256').update(bytes).digest('hex');
+}
+
+function stop(sentence) {
+	console.error(sentence);
+	process.exit(1);
+}
