@@ -1,0 +1,198 @@
+import { type DragEvent, type KeyboardEvent, type ReactNode, useRef, useState } from 'react';
+import type { PairsOfSetup, Shelf } from '#shared/fit/contract.ts';
+import { noFigure, signedNumber } from '#src/lib/format.ts';
+import { Rod, rodScaleMm } from '#src/ui/rod.tsx';
+import { type Axis, axisNames, type PairFigures, pairSentence } from './pair-figures.ts';
+
+export const shelfWords: Record<Shelf, string> = { 'in-the-fit': 'In the fit', 'held-back': 'Held back', 'set-aside': 'Set aside' };
+const shelfOrder = ['in-the-fit', 'held-back', 'set-aside'] as const;
+const shelfKeys: Record<string, Shelf> = { f: 'in-the-fit', h: 'held-back', a: 'set-aside' };
+
+interface PairTableProps {
+	pairs: PairsOfSetup['pairs'];
+	figures: ReadonlyMap<string, PairFigures>;
+	shelfOf: (name: string) => Shelf;
+	reasonOf: (name: string) => string | null;
+	chosenName: string | null;
+	onChoose: (name: string) => void;
+	/** Null: this person does not move pairs, or the fit is already made. */
+	onMove: ((name: string, shelf: Shelf) => void) | null;
+}
+
+/** Every pair on its shelf, with its misfit; moved by press, drag or key (F in the fit, H held back, A set aside). */
+export function PairTable({ pairs, figures, shelfOf, reasonOf, chosenName, onChoose, onMove }: PairTableProps) {
+	const [overShelf, setOverShelf] = useState<Shelf | null>(null);
+	const body = useRef<HTMLTableElement>(null);
+	const shown = [...figures.values()];
+	const scaleMm = rodScaleMm(
+		shown.map(({ boundMm, worstAxis }) => [null, boundMm[worstAxis]]),
+		shown.map(({ residualMm, worstAxis }) => residualMm[worstAxis]),
+	);
+	const ordered = shelfOrder.flatMap((shelf) => pairs.filter(({ name }) => shelfOf(name) === shelf));
+	const step = (event: KeyboardEvent) => {
+		const at = ordered.findIndex(({ name }) => name === chosenName);
+		const move = event.key === 'ArrowDown' ? 1 : event.key === 'ArrowUp' ? -1 : 0;
+		if (move !== 0) {
+			event.preventDefault();
+			const next = ordered[Math.max(0, Math.min(ordered.length - 1, at + move))];
+			if (!next) return;
+			onChoose(next.name);
+			body.current?.querySelector<HTMLButtonElement>(`[data-pair="${CSS.escape(next.name)}"]`)?.focus();
+		}
+		const shelf = shelfKeys[event.key.toLowerCase()];
+		const isCommand = !event.ctrlKey && !event.metaKey && !event.altKey;
+		if (shelf && isCommand && onMove && chosenName && shelfOf(chosenName) !== shelf) onMove(chosenName, shelf);
+	};
+	const drop = (event: DragEvent, shelf: Shelf) => {
+		event.preventDefault();
+		setOverShelf(null);
+		const name = event.dataTransfer.getData('text/plain');
+		if (onMove && pairs.some((pair) => pair.name === name) && shelfOf(name) !== shelf) onMove(name, shelf);
+	};
+	return (
+		<div className="sheet overflow-x-auto">
+			<table ref={body} className="w-full border-collapse" onKeyDown={step}>
+				<thead className="border-b border-ink text-small text-second">
+					<tr>
+						<th scope="col" className="px-3 py-2.5 text-left font-medium">
+							Target
+						</th>
+						{axisNames.map((axis) => (
+							<th key={axis} scope="col" className="px-2 py-2.5 text-right font-medium">
+								{axis}
+							</th>
+						))}
+						<th scope="col" className="px-2 py-2.5 text-left font-medium max-desk:hidden">
+							Worst axis against chance
+						</th>
+						<th scope="col" className="px-2 py-2.5 text-right font-medium max-tablet:hidden">
+							Left out
+						</th>
+						{onMove && (
+							<th scope="col" className="px-3 py-2.5 text-left font-medium">
+								Shelf
+							</th>
+						)}
+					</tr>
+				</thead>
+				{shelfOrder.map((shelf) => {
+					const here = pairs.filter(({ name }) => shelfOf(name) === shelf);
+					return (
+						<tbody
+							key={shelf}
+							onDragOver={(event) => {
+								if (!onMove) return;
+								event.preventDefault();
+								setOverShelf(shelf);
+							}}
+							onDragLeave={() => setOverShelf(null)}
+							onDrop={(event) => drop(event, shelf)}
+							className={overShelf === shelf ? 'outline-2 -outline-offset-2 outline-dashed outline-ink' : ''}
+						>
+							<tr className="border-b border-hair bg-ground">
+								<th scope="colgroup" colSpan={onMove ? 7 : 6} className="h-11 px-3 text-left font-strong">
+									{shelfWords[shelf]} <span className="font-normal text-second">{here.length === 0 ? 'nothing' : here.length}</span>
+								</th>
+							</tr>
+							{here.map((pair) => (
+								<PairRow
+									key={pair.name}
+									figures={figures.get(pair.name)}
+									name={pair.name}
+									shelf={shelf}
+									reason={reasonOf(pair.name)}
+									scaleMm={scaleMm}
+									isChosen={pair.name === chosenName}
+									onChoose={onChoose}
+									onMove={onMove}
+								/>
+							))}
+						</tbody>
+					);
+				})}
+			</table>
+		</div>
+	);
+}
+
+interface PairRowProps {
+	name: string;
+	figures: PairFigures | undefined;
+	shelf: Shelf;
+	reason: string | null;
+	scaleMm: number;
+	isChosen: boolean;
+	onChoose: (name: string) => void;
+	onMove: ((name: string, shelf: Shelf) => void) | null;
+}
+
+function PairRow({ name, figures, shelf, reason, scaleMm, isChosen, onChoose, onMove }: PairRowProps) {
+	const axis: Axis = figures?.worstAxis ?? 2;
+	const bound = figures?.boundMm[axis] ?? null;
+	return (
+		<tr
+			draggable={onMove !== null}
+			onDragStart={(event) => event.dataTransfer.setData('text/plain', name)}
+			className={`border-b border-hair ${isChosen ? 'row-chosen' : ''}`}
+		>
+			<th scope="row" className="h-11 px-3 text-left font-strong">
+				<button
+					type="button"
+					data-pair={name}
+					aria-pressed={isChosen}
+					onClick={() => onChoose(name)}
+					className="min-h-11 w-full text-left pointer-coarse:min-h-12"
+				>
+					{name}
+					{reason && <span className="block text-small font-normal text-second">{reason}</span>}
+				</button>
+			</th>
+			{figures?.residualMm.map((value, index) => (
+				<td key={axisNames[index]} className={`px-2 text-right ${figures.isBeyond && index === axis ? 'font-strong' : ''}`}>
+					{figure(value)}
+				</td>
+			))}
+			<td className="px-2 max-desk:hidden">
+				{figures && shelf !== 'set-aside' && (
+					<span className="flex items-center gap-2">
+						<Rod
+							deviationMm={figures.residualMm[axis]}
+							limitsMm={bound === null ? null : [-bound, bound]}
+							expandedUncertaintyMm={null}
+							scaleMm={scaleMm}
+							glyph={figures.isBeyond ? ((figures.residualMm[axis] ?? 0) >= 0 ? 'proud' : 'shy') : 'within'}
+							sentence={pairSentence(figures)}
+							widthPx={132}
+						/>
+						<span className="text-small text-second">{axisNames[axis].toLowerCase()}</span>
+					</span>
+				)}
+			</td>
+			<td className="px-2 text-right max-tablet:hidden">{figure(figures?.leftOutMm?.[axis] ?? null)}</td>
+			{onMove && (
+				<td className="px-3">
+					<label>
+						<span className="sr-only">Shelf of {name}</span>
+						<select
+							value={shelf}
+							onChange={(event) => onMove(name, event.currentTarget.value as Shelf)}
+							className="min-h-9 rounded-corner border border-field bg-sheet px-2 text-ink pointer-coarse:min-h-12"
+						>
+							{shelfOrder.map((option) => (
+								<option key={option} value={option}>
+									{shelfWords[option]}
+								</option>
+							))}
+						</select>
+					</label>
+				</td>
+			)}
+		</tr>
+	);
+}
+
+function figure(valueMm: number | null): ReactNode {
+	if (valueMm === null) return noFigure;
+	const text = signedNumber(valueMm, 1);
+	return Number(valueMm.toFixed(1)) > 0 ? `+${text}` : text;
+}
