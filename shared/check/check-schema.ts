@@ -26,7 +26,7 @@ export const deviationSchema = z.object({
 	deviationMm: z.number().nullable(),
 	/** Plan only: as-built less design, east and north. */
 	offsetMm: z.tuple([z.number(), z.number()]).nullable(),
-	/** Plan only: of the offset. */
+	/** Plan only: of the offset, such that U = 2u (with no σ it is widened to Student's factor), so that `judge` recomputes the verdict from it. */
 	covarianceMm2: z.tuple([z.tuple([z.number(), z.number()]), z.tuple([z.number(), z.number()])]).nullable(),
 	/** Its parts, standard uncertainties along the direction (plan: along the long axis): fit ⊕ point ⊕ common. */
 	standardUncertaintyPartsMm: z
@@ -38,8 +38,12 @@ export const deviationSchema = z.object({
 		.nullable(),
 	/** U = 2u, or Student's t where the fit has no σ. */
 	expandedUncertaintyMm: z.number().nullable(),
-	/** Plan: [null, radius]. */
+	/** Plan: [null, radius], or of a box its lower and upper side along each axis. */
 	limitsMm: z.tuple([z.number().nullable(), z.number().nullable()]).nullable(),
+	/** Only where the rule is a box in plan: its first axis, counter-clockwise from east. */
+	boxYawRad: z.number().nullable().optional(),
+	/** The greatest distance between repeats of the point; null or absent for a single one. */
+	spreadMm: z.number().nullable().optional(),
 	ruleId: z.string().nullable(),
 	verdict,
 	/** How far beyond the limit it is exceeding, mm, where outside. */

@@ -22,8 +22,24 @@ export interface MatchedRule {
 }
 
 /** Names are compared whole, without regard to case and to blanks about them; there are no wildcards. */
-function isSameName(wanted: string | undefined, found: string | null | undefined): boolean {
-	return wanted === undefined || wanted.trim().toLowerCase() === (found ?? '').trim().toLowerCase();
+function comparable(name: string | null | undefined): string {
+	return (name ?? '').trim().toLowerCase();
+}
+
+const named = ['class', 'storey', 'building', 'tag', 'mark'] as const;
+
+/** A rule with its names made ready to compare, so that a sheet of 500 rules against thousands of elements lower-cases each name once. */
+export interface PreparedRule {
+	readonly rule: ToleranceRule;
+	readonly wanted: readonly (readonly [(typeof named)[number], string])[];
+}
+
+/** Makes a sheet's rules ready for `matchPreparedRule`, in their order. */
+export function prepareRules(rules: readonly ToleranceRule[]): PreparedRule[] {
+	return rules.map((rule) => ({
+		rule,
+		wanted: named.flatMap((name) => (rule.match[name] === undefined ? [] : [[name, comparable(rule.match[name])] as const])),
+	}));
 }
 
 /** Over the first, up to and with the second. Without `of` the length is meant. */
@@ -34,27 +50,24 @@ function fitsSize(match: RuleMatch, sizesM: ElementSizesM): boolean | 'unknown' 
 	return sizeMm > match.sizeMm[0] && sizeMm <= match.sizeMm[1];
 }
 
-function fitsAllButSize(match: RuleMatch, subject: RuleSubject): boolean {
-	return (
-		isSameName(match.class, subject.class) &&
-		(match.characteristic === undefined || match.characteristic === subject.characteristic) &&
-		isSameName(match.storey, subject.storey) &&
-		isSameName(match.building, subject.building) &&
-		isSameName(match.tag, subject.tag) &&
-		isSameName(match.mark, subject.mark) &&
-		(match.stage === undefined || match.stage === subject.stage) &&
-		(match.exposed === undefined || match.exposed === subject.exposed)
-	);
-}
-
-/** The first rule of the sheet that fits decides; null where none does. */
-export function matchRule(rules: readonly ToleranceRule[], subject: RuleSubject): MatchedRule {
+/** The first of the prepared rules that fits decides; null where none does. */
+export function matchPreparedRule(rules: readonly PreparedRule[], subject: RuleSubject): MatchedRule {
+	const found = Object.fromEntries(named.map((name) => [name, comparable(subject[name])])) as Record<(typeof named)[number], string>;
 	const withoutSize: ToleranceRule[] = [];
-	for (const rule of rules) {
-		if (!fitsAllButSize(rule.match, subject)) continue;
-		const fits = fitsSize(rule.match, subject.sizesM);
+	for (const { rule, wanted } of rules) {
+		const { match } = rule;
+		if (match.characteristic !== undefined && match.characteristic !== subject.characteristic) continue;
+		if (match.stage !== undefined && match.stage !== subject.stage) continue;
+		if (match.exposed !== undefined && match.exposed !== subject.exposed) continue;
+		if (!wanted.every(([name, value]) => value === found[name])) continue;
+		const fits = fitsSize(match, subject.sizesM);
 		if (fits === true) return { rule, withoutSize };
 		if (fits === 'unknown') withoutSize.push(rule);
 	}
 	return { rule: null, withoutSize };
+}
+
+/** The first rule of the sheet that fits decides; null where none does. */
+export function matchRule(rules: readonly ToleranceRule[], subject: RuleSubject): MatchedRule {
+	return matchPreparedRule(prepareRules(rules), subject);
 }
