@@ -1,5 +1,6 @@
 import { existsSync } from 'node:fs';
-import { fileURLToPath } from 'node:url';
+import { createRequire } from 'node:module';
+import { fileURLToPath, pathToFileURL } from 'node:url';
 import { type TransferListItem, Worker } from 'node:worker_threads';
 
 /** A worker's file beside the module that names it: `{ file: './compute-check.worker.ts', from: import.meta.url }`. */
@@ -56,7 +57,10 @@ export function runInThread<Input, Output>(worker: WorkerFile, input: Input, opt
 /** In the source tree the TypeScript file beside the caller; built, the program of that name, beside the bundle or one folder up. */
 function startOf({ file, from }: WorkerFile): { url: URL; options: { execArgv?: string[] } } {
 	const source = new URL(file, from);
-	if (existsSync(fileURLToPath(source))) return { url: source, options: { execArgv: ['--import', 'tsx'] } };
+	if (existsSync(fileURLToPath(source))) {
+		const tsx = pathToFileURL(createRequire(from).resolve('tsx')).href;
+		return { url: source, options: { execArgv: ['--import', tsx] } };
+	}
 	const name = file.replace(/\.ts$/, '.js');
 	for (const place of [name, `../${name}`]) {
 		const built = new URL(place, from);

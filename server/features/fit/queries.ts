@@ -11,7 +11,6 @@ import { foundOne } from '../../platform/refuse.ts';
 const maker = alias(users, 'maker');
 const adopter = alias(users, 'adopter');
 const checker = alias(users, 'checker');
-const newer = alias(controlSets, 'newer_control');
 
 function fitRows(db: Handle, where: SQL | undefined) {
 	return db
@@ -22,7 +21,7 @@ function fitRows(db: Handle, where: SQL | undefined) {
 			madeBy: maker.name,
 			adoptedBy: adopter.name,
 			checkedBy: checker.name,
-			isNewest: sql<boolean>`not exists (select 1 from ${controlSets} as ${sql.identifier('newer_control')} where ${newer.siteId} = ${controlSets.siteId} and ${newer.number} > ${controlSets.number})`,
+			isNewest: sql<boolean>`not exists (select 1 from control_sets as newer where newer.site_id = ${controlSets.siteId} and newer.number > ${controlSets.number})`,
 		})
 		.from(fits)
 		.innerJoin(setups, eq(setups.id, fits.setupId))

@@ -8,7 +8,7 @@ import { revisions } from '../../db/schema/model.ts';
 import { audit } from '../../platform/audit.ts';
 import { endOfAborted } from '../../platform/end-of-aborted.ts';
 import { runnerOf } from '../../platform/job-runner.ts';
-import type { JobContext, JobEnd, KeptFile, Platform } from '../../platform/platform.ts';
+import type { JobContext, JobEnd, Platform } from '../../platform/platform.ts';
 import { readIfcInChild } from './read-ifc-in-child.ts';
 import { storeReading } from './store-reading.ts';
 
@@ -45,7 +45,7 @@ async function readRevision(input: RevisionInput & { jobId: string }, { platform
 		const { reading } = outcome;
 		if (reading.elements.length === 0) return await fail(platform, input, noElements);
 		report({ doing: 'Storing elements and checkpoints', done: reading.elements.length, of: reading.elements.length });
-		const picture = await keepPicture(platform, glbPath);
+		const picture = outcome.hasPicture ? await platform.files.keepFrom(glbPath) : null;
 		await platform.transaction(async (tx) => {
 			if (!(await storeReading(tx, input, reading, picture, platform))) return;
 			const data = { elements: reading.elements.length, checkpoints: reading.checkpoints.length, skipped: reading.skipped.length };
@@ -54,16 +54,6 @@ async function readRevision(input: RevisionInput & { jobId: string }, { platform
 		return { state: 'done' };
 	} finally {
 		await rm(glbPath, { force: true });
-	}
-}
-
-/** The picture that the child wrote; a model without shapes has none. */
-async function keepPicture({ files }: Platform, glbPath: string): Promise<KeptFile | null> {
-	try {
-		return await files.keepFrom(glbPath);
-	} catch (error) {
-		if (error instanceof Error && 'code' in error && error.code === 'ENOENT') return null;
-		throw error;
 	}
 }
 

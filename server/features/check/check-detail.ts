@@ -1,0 +1,81 @@
+import { and, asc, eq } from 'drizzle-orm';
+import type { CheckDetail, CheckElement } from '#shared/check/contract.ts';
+import type { Finding } from '#shared/fit/fit-schema.ts';
+import type { Handle } from '../../db/database.ts';
+import { checkpointOf } from '../../db/model-rows.ts';
+import { deviations } from '../../db/schema/check.ts';
+import { checkpoints, elements, revisions } from '../../db/schema/model.ts';
+import { pourElements, pours } from '../../db/schema/pour.ts';
+import type { Member } from '../../platform/platform.ts';
+import { foundOne } from '../../platform/refuse.ts';
+import { narrowedTo } from './policy.ts';
+import { checkHeadOf, ownElement } from './queries.ts';
+import { deviationOf } from './store-deviations.ts';
+
+/**
+ * A check with its deviations in checkpoint order and the elements they stand on. Who is only a contractor gets the elements of its own
+ * companies' pours, and of the findings those that speak of nothing else.
+ */
+export async function checkDetailOf(db: Handle, member: Member, checkId: string): Promise<CheckDetail> {
+	const { head, row } = await checkHeadOf(db, member, checkId);
+	const companyIds = narrowedTo(member);
+	const pourIdsOf = await pourIdsByGlobalId(db, row.revision.revisionId, companyIds);
+	const elementRows = await db
+		.select()
+		.from(elements)
+		.where(eq(elements.revisionId, row.revision.revisionId))
+		.orderBy(asc(elements.entityNumber));
+	const seen = companyIds === null ? elementRows : elementRows.filter(({ globalId }) => pourIdsOf.has(globalId));
+	const byId = new Map(seen.map((element) => [element.id, element]));
+	const stored = await db
+		.select({ deviation: deviations, checkpoint: checkpoints })
+		.from(deviations)
+		.innerJoin(checkpoints, and(eq(checkpoints.revisionId, deviations.revisionId), eq(checkpoints.id, deviations.checkpointId)))
+		.where(eq(deviations.checkId, checkId))
+		.orderBy(asc(deviations.position));
+	const own = stored.filter(({ checkpoint }) => byId.has(checkpoint.elementId));
+	const shown = new Set(own.map(({ checkpoint }) => checkpoint.elementId));
+	return {
+		...head,
+		findings: findingsFor(row.check.findings ?? [], companyIds === null ? null : new Set(seen.map(({ mark }) => mark))),
+		unmatchedPoints: companyIds === null ? (row.check.unmatchedPoints ?? []) : [],
+		elements: seen
+			.filter(({ id }) => shown.has(id))
+			.map(
+				(element): CheckElement => ({
+					elementId: element.id,
+					globalId: element.globalId,
+					entityNumber: element.entityNumber,
+					class: element.class,
+					title: element.title,
+					mark: element.mark,
+					storey: element.storey,
+					pourIds: pourIdsOf.get(element.globalId) ?? [],
+				}),
+			),
+		deviations: own.map(({ deviation, checkpoint }) => {
+			const element = foundOne([byId.get(checkpoint.elementId)].filter((one) => one !== undefined));
+			return deviationOf(deviation, checkpointOf(checkpoint, element));
+		}),
+	};
+}
+
+/** Of all pours, or of those companies'. */
+async function pourIdsByGlobalId(db: Handle, revisionId: string, companyIds: readonly string[] | null): Promise<Map<string, string[]>> {
+	const pourIdsOf = new Map<string, string[]>();
+	if (companyIds?.length === 0) return pourIdsOf;
+	const rows = await db
+		.select({ globalId: pourElements.globalId, pourId: pours.id })
+		.from(pourElements)
+		.innerJoin(pours, eq(pours.id, pourElements.pourId))
+		.innerJoin(revisions, eq(revisions.modelId, pourElements.modelId))
+		.where(and(eq(revisions.id, revisionId), companyIds === null ? undefined : ownElement(companyIds)))
+		.orderBy(asc(pours.number));
+	for (const { globalId, pourId } of rows) pourIdsOf.set(globalId, [...(pourIdsOf.get(globalId) ?? []), pourId]);
+	return pourIdsOf;
+}
+
+function findingsFor(findings: readonly Finding[], ownMarks: ReadonlySet<string> | null): Finding[] {
+	if (ownMarks === null) return [...findings];
+	return findings.filter(({ pairs }) => pairs.length > 0 && pairs.every((name) => ownMarks.has(name)));
+}

@@ -1,0 +1,111 @@
+import { and, asc, eq } from 'drizzle-orm';
+import type { CheckInput } from '#shared/check/check-input.ts';
+import type { GridAxis } from '#shared/model/model-schema.ts';
+import { matchMarks } from '#shared/survey/match-marks.ts';
+import type { Handle } from '../../db/database.ts';
+import { checkpointOf, elementOf, vectorOf } from '../../db/model-rows.ts';
+import { checkFits, type checks } from '../../db/schema/check.ts';
+import { controlPoints } from '../../db/schema/control.ts';
+import { fits } from '../../db/schema/fit.ts';
+import { checkpoints, elements, models, revisions } from '../../db/schema/model.ts';
+import { buildings } from '../../db/schema/site.ts';
+import { setups, surveyPoints } from '../../db/schema/survey.ts';
+import { sheets } from '../../db/schema/tolerance.ts';
+import { foundOne } from '../../platform/refuse.ts';
+
+/** A check's input for the engine, and what it leaves out: the set-ups that have no adopted fit, with how many points of theirs. */
+export interface LoadedCheck {
+	input: CheckInput;
+	withoutFit: { name: string; pointCount: number }[];
+}
+
+/** Reads all that a check rests on. Targets are left out: they are control, not work. */
+export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): Promise<LoadedCheck> {
+	const { revision, buildingName } = foundOne(
+		await db
+			.select({ revision: revisions, buildingName: buildings.name })
+			.from(revisions)
+			.innerJoin(models, eq(models.id, revisions.modelId))
+			.leftJoin(buildings, eq(buildings.id, models.buildingId))
+			.where(eq(revisions.id, check.revisionId)),
+	);
+	const { sheet } = foundOne(await db.select({ sheet: sheets.sheet }).from(sheets).where(eq(sheets.id, check.sheetId)));
+	const carriedBy = await db
+		.select({ setup: setups, result: fits.result, controlSetId: fits.controlSetId })
+		.from(checkFits)
+		.innerJoin(setups, eq(setups.id, checkFits.setupId))
+		.innerJoin(fits, eq(fits.id, checkFits.fitId))
+		.where(eq(checkFits.checkId, check.id))
+		.orderBy(asc(setups.name));
+	const allSetups = await db.select().from(setups).where(eq(setups.surveyId, check.surveyId)).orderBy(asc(setups.name));
+	const rows = await db.select().from(surveyPoints).where(eq(surveyPoints.surveyId, check.surveyId)).orderBy(asc(surveyPoints.row));
+	const targets = new Map<string, ReadonlySet<string>>();
+	for (const { setup, controlSetId } of carriedBy) {
+		const names = rows.flatMap(({ setupId, name }) => (setupId === setup.id ? [name] : []));
+		const marks = await db.select({ name: controlPoints.name }).from(controlPoints).where(eq(controlPoints.controlSetId, controlSetId));
+		const matched = matchMarks(
+			names,
+			marks.map(({ name }) => name),
+		);
+		targets.set(setup.id, new Set(matched.keys()));
+	}
+	const used = rows.filter(({ setupId, name }) => targets.has(setupId) && targets.get(setupId)?.has(name) !== true);
+	const withoutFit = allSetups
+		.filter(({ id }) => !targets.has(id))
+		.map(({ id, name }) => ({ name, pointCount: rows.filter(({ setupId }) => setupId === id).length }))
+		.filter(({ pointCount }) => pointCount > 0);
+	const elementRows = await db.select().from(elements).where(eq(elements.revisionId, check.revisionId)).orderBy(asc(elements.entityNumber));
+	const read = elementRows.map(elementOf);
+	const byId = new Map(read.map((element) => [element.elementId, element]));
+	const checkpointRows = await db
+		.select()
+		.from(checkpoints)
+		.where(and(eq(checkpoints.revisionId, check.revisionId)))
+		.orderBy(asc(checkpoints.position));
+	return {
+		input: {
+			elements: read.map(({ elementId, class: ifcClass, name, tag, storey, mark, title, sizesM }) => ({
+				id: elementId,
+				class: ifcClass,
+				name,
+				tag,
+				storey,
+				mark,
+				title,
+				sizesM,
+			})),
+			checkpoints: checkpointRows.map((row) => checkpointOf(row, foundOne([byId.get(row.elementId)].filter((one) => one !== undefined)))),
+			setups: carriedBy.map(({ setup, result }) => ({
+				id: setup.id,
+				name: setup.name,
+				fit: result,
+				commonMm: setup.commonMm,
+				pointSigmaM:
+					setup.pointSigmaPlanM === null || setup.pointSigmaHeightM === null
+						? null
+						: [setup.pointSigmaPlanM, setup.pointSigmaPlanM, setup.pointSigmaHeightM],
+			})),
+			points: used.map(({ name, setupId, xM, yM, zM, sigmaM, offsetMm, code, voidedReason }) => ({
+				name,
+				setupId,
+				surveyPoint: [xM, yM, zM],
+				sigmaM: sigmaM === null ? null : vectorOf(sigmaM),
+				offsetMm,
+				code,
+				voided: voidedReason !== null,
+			})),
+			sheet,
+			stage: check.stage,
+			...(buildingName === null ? {} : { building: buildingName }),
+			gridYawRad: gridYawRad(revision.reading?.grid ?? []),
+		},
+		withoutFit,
+	};
+}
+
+/** Which way the grid's first axis runs, counter-clockwise from east; null without a grid. */
+function gridYawRad(grid: readonly GridAxis[]): number | null {
+	const axis = grid.find(({ direction, points }) => direction === 'u' && points.length > 1) ?? grid.find(({ points }) => points.length > 1);
+	const [from, to] = [axis?.points[0], axis?.points.at(-1)];
+	return from === undefined || to === undefined ? null : Math.atan2(to[1] - from[1], to[0] - from[0]);
+}
