@@ -171,7 +171,7 @@ export function Table<Row>(props: TableProps<Row>) {
 					{parts.map((part) => {
 						if (part.kind === 'space') {
 							return (
-								<tr key={`space ${part.before}`} aria-hidden="true" style={{ height: part.heightPx }}>
+								<tr key={`space ${part.before}`} style={{ height: part.heightPx }}>
 									<td colSpan={columns.length} className="p-0" />
 								</tr>
 							);

@@ -1,0 +1,69 @@
+import type { ComponentType } from 'react';
+import { createBrowserRouter, type LazyRouteFunction, Navigate, type RouteObject } from 'react-router-dom';
+import type { Place } from '#src/features/site/site-line.tsx';
+import { Gate } from './gate.tsx';
+import { ListLayout } from './list-layout.tsx';
+import { LoadingPage } from './loading-page.tsx';
+import type { PageHandle } from './page-handle.ts';
+import { RouteFault } from './route-fault.tsx';
+import { SiteLayout } from './site-layout.tsx';
+
+type PageModule = { default: ComponentType };
+
+/** A page's code comes when its address is gone to. */
+const page =
+	(load: () => Promise<PageModule>): LazyRouteFunction<RouteObject> =>
+	async () => ({ Component: (await load()).default });
+
+/** A page of a site: where on the line it hangs, and what its way back is called on a phone. */
+const sitePage = (path: string, place: Place, load: () => Promise<PageModule>, back?: PageHandle['back']): RouteObject => ({
+	path,
+	lazy: page(load),
+	errorElement: <RouteFault />,
+	handle: { place, ...(back && { back }) } satisfies PageHandle,
+});
+
+/** All addresses of the program. A new page is a line here. */
+export const routes: RouteObject[] = [
+	{
+		errorElement: <RouteFault isWhole />,
+		hydrateFallbackElement: <LoadingPage />,
+		children: [
+			{ path: '/sign-in', lazy: page(() => import('#src/pages/sign-in/sign-in-page.tsx')) },
+			{
+				element: <Gate />,
+				children: [
+					{ index: true, element: <Navigate to="/sites" replace /> },
+					{
+						element: <ListLayout />,
+						children: [{ path: '/sites', lazy: page(() => import('#src/pages/sites/sites-page.tsx')), errorElement: <RouteFault /> }],
+					},
+					{
+						path: '/sites/:siteId',
+						element: <SiteLayout />,
+						errorElement: <RouteFault isWhole />,
+						children: [
+							{
+								index: true,
+								lazy: page(() => import('#src/pages/board/board-page.tsx')),
+								errorElement: <RouteFault />,
+								handle: { place: null } satisfies PageHandle,
+							},
+							{ path: '*', lazy: page(() => import('#src/pages/not-found/not-found-page.tsx')) },
+						],
+					},
+				],
+			},
+			{ path: '*', lazy: page(() => import('#src/pages/not-found/not-found-page.tsx')) },
+		],
+	},
+];
+
+/** Sites' pages as they come; `sitePage` keeps them alike. */
+export const sitePages: RouteObject[] = [];
+void sitePage;
+
+/** The router over the browser's address. */
+export function createRouter() {
+	return createBrowserRouter(routes);
+}

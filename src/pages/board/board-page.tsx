@@ -1,0 +1,101 @@
+import { useQuery, useSuspenseQueries } from '@tanstack/react-query';
+import { Link } from 'react-router-dom';
+import type { CheckDetail } from '#shared/check/contract.ts';
+import { nextActs } from '#src/features/site/next-acts.ts';
+import { NextForYou } from '#src/features/site/next-for-you.tsx';
+import { PlacesList } from '#src/features/site/places-list.tsx';
+import { api } from '#src/lib/api.ts';
+import { moment } from '#src/lib/format.ts';
+import { useNow } from '#src/lib/now.ts';
+import { useMay, useSite } from '#src/lib/session.ts';
+import { ButtonLink } from '#src/ui/button.tsx';
+import { Headline } from '#src/ui/headline.tsx';
+import { Notice } from '#src/ui/notice.tsx';
+import { Strip } from '#src/ui/strip.tsx';
+import { PourRows } from './pour-rows.tsx';
+import { homeless } from './pour-standing.ts';
+
+/** The site's first page: what waits for one, then the pours by the hour of their concrete. */
+export default function BoardPage() {
+	const site = useSite();
+	const now = useNow();
+	const { siteId, timeZone, line } = site;
+	const input = { siteId };
+	const [{ data: surveys }, { data: checks }, { data: pours }] = useSuspenseQueries({
+		queries: [api.survey.list.queryOptions({ input }), api.check.list.queryOptions({ input }), api.pour.list.queryOptions({ input })],
+	});
+	// The check's figures are many: the page stands before they come.
+	const judged = checks.find((check) => check.state === 'trial' || check.state === 'published');
+	const detail = useQuery(api.check.get.queryOptions({ input: { siteId, checkId: judged?.checkId ?? '' }, enabled: judged !== undefined }));
+	const check = judged === undefined || detail.isError ? null : detail.data;
+
+	const next = pours.find((pour) => pour.plannedAt !== null && pour.plannedAt > now);
+	const acts = nextActs({ roles: site.roles, line, surveys, checks, pourCount: pours.length });
+	return (
+		<div className="pt-2">
+			{site.isInvented && (
+				<Strip items={[<b key="invented">This site is invented</b>, 'its names and figures are nobody’s; try anything']} />
+			)}
+			<section className="mb-6.5 max-w-[62rem]">
+				<Headline title={site.name}>Next for you</Headline>
+				<NextForYou siteId={siteId} acts={acts} nextPour={next?.plannedAt ? moment(next.plannedAt, timeZone, now) : null} />
+			</section>
+			<section aria-labelledby="pours">
+				<h2 id="pours" className="m-0 mb-1 text-h1-phone font-strong tracking-[-0.015em] tablet:text-h1">
+					Pours, by their concrete
+				</h2>
+				{pours.length === 0 ? (
+					<NoPours siteId={siteId} />
+				) : (
+					<PourRows pours={pours} check={check} isCheckTaut={line.isTaut} timeZone={timeZone} now={now} />
+				)}
+				{check && <Homeless siteId={siteId} check={check} />}
+			</section>
+			<PlacesList siteId={siteId} line={line} />
+		</div>
+	);
+}
+
+function NoPours({ siteId }: { siteId: string }) {
+	const mayPlan = useMay('pour.write');
+	return (
+		<Notice
+			kind="empty"
+			title="No pour is planned yet."
+			act={
+				mayPlan && (
+					<ButtonLink to={`/sites/${siteId}/pours`} weight="quiet">
+						Plan a pour
+					</ButtonLink>
+				)
+			}
+		>
+			{mayPlan
+				? 'Say what is concreted together, by whom and when.'
+				: 'The project engineer plans them; each then stands here on its own string.'}
+		</Notice>
+	);
+}
+
+/** Rows without a home, last. */
+function Homeless({ siteId, check }: { siteId: string; check: CheckDetail }) {
+	const rows = homeless(check);
+	if (rows.length === 0) return null;
+	return (
+		<ul className="m-0 list-none p-0">
+			{rows.map((row) => (
+				<li key={row.words} className="border-b border-hair">
+					<Link
+						to={`/sites/${siteId}/checks/${check.checkId}`}
+						className="flex min-h-12 items-center gap-4 text-ink no-underline hover:bg-hair"
+					>
+						<span className="w-40 shrink-0 text-second">{row.words}</span>
+						<span>
+							{row.why} of check {check.number}
+						</span>
+					</Link>
+				</li>
+			))}
+		</ul>
+	);
+}

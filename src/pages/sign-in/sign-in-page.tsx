@@ -1,0 +1,36 @@
+import { useQuery } from '@tanstack/react-query';
+import { Navigate, useNavigate, useSearchParams } from 'react-router-dom';
+import { SignInForm } from '#src/features/account/sign-in-form.tsx';
+import { api } from '#src/lib/api.ts';
+import { Headline } from '#src/ui/headline.tsx';
+import { Mark } from '#src/ui/mark.tsx';
+
+/** Sign in, and go on to where one wanted to go. */
+export default function SignInPage() {
+	const [parameters] = useSearchParams();
+	const navigate = useNavigate();
+	const back = backOf(parameters.get('back'));
+	const { data: me } = useQuery(api.account.me.queryOptions());
+	if (me) return <Navigate to={back} replace />;
+	return (
+		<div className="mx-auto flex min-h-dvh w-full max-w-100 flex-col px-4 pt-[12vh] pb-8">
+			<p className="m-0 mb-6 flex items-center gap-2.5 text-lead font-heavy tracking-[-0.01em]">
+				<Mark sizePx={36} />
+				Batterboard
+			</p>
+			<main className="sheet px-5 py-5">
+				<Headline title="Sign in">Near enough to the design?</Headline>
+				<p className="m-0 mb-5 text-second">
+					{back === '/sites' ? 'Sign in to see your sites.' : 'Sign in; you will be brought to the page you asked for.'}
+				</p>
+				<SignInForm onSignedIn={() => navigate(back, { replace: true })} />
+			</main>
+			<p className="mt-4 text-small text-second">No account? Whoever leads your site invites you.</p>
+		</div>
+	);
+}
+
+/** Only addresses of this program: "//elsewhere" and "https:…" lead out of it. */
+export function backOf(asked: string | null): string {
+	return asked?.startsWith('/') && !asked.startsWith('//') && !asked.startsWith('/\\') && !asked.startsWith('/sign-in') ? asked : '/sites';
+}
