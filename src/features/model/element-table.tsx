@@ -108,7 +108,9 @@ function groupsOf(elements: readonly StoredElement[], find: string): TableGroup<
 		const text = `${element.title} ${element.mark} ${element.class} ${element.tag} ${element.name} ${element.storey}`.toLowerCase();
 		if (!words.every((word) => text.includes(word))) continue;
 		const storey = element.storey || 'On no storey';
-		byStorey.set(storey, [...(byStorey.get(storey) ?? []), element]);
+		const here = byStorey.get(storey);
+		if (here) here.push(element);
+		else byStorey.set(storey, [element]);
 	}
 	return [...byStorey].map(([storey, rows]) => ({
 		key: storey,

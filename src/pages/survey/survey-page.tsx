@@ -1,0 +1,107 @@
+import { useQueryClient, useSuspenseQueries } from '@tanstack/react-query';
+import { Link, useParams } from 'react-router-dom';
+import { mayWith } from '#shared/permissions.ts';
+import { SurveyPointTable } from '#src/features/survey/survey-point-table.tsx';
+import { setupWords, stageWords, surveyHeadline } from '#src/features/survey/survey-words.ts';
+import { api } from '#src/lib/api.ts';
+import { count, counted } from '#src/lib/format.ts';
+import { useJob } from '#src/lib/job-progress.ts';
+import { ButtonLink } from '#src/ui/button.tsx';
+import { Headline } from '#src/ui/headline.tsx';
+import { Notice } from '#src/ui/notice.tsx';
+import { Progress } from '#src/ui/progress.tsx';
+import { Strip } from '#src/ui/strip.tsx';
+
+const shownPoints = 20_000;
+
+/** One survey: how it was made, its set-ups and their fits, its points. */
+export default function SurveyPage() {
+	const { siteId = '', surveyId = '' } = useParams();
+	const [{ data: site }, { data: survey }, { data: measured }] = useSuspenseQueries({
+		queries: [
+			api.site.get.queryOptions({ input: { siteId } }),
+			api.survey.get.queryOptions({ input: { siteId, surveyId } }),
+			api.survey.points.queryOptions({ input: { siteId, surveyId, offset: 0, limit: shownPoints } }),
+		],
+	});
+	const mayCheck = mayWith(site.roles, 'check.write');
+	const isTied = survey.setups.some((setup) => setup.adoptedFitId !== null);
+	return (
+		<>
+			<Strip
+				items={[
+					<Link key="all" to={`/sites/${siteId}/surveys`} className="underline underline-offset-3">
+						all surveys
+					</Link>,
+					survey.name,
+					`${survey.surveyedOn}, ${stageWords[survey.stage]}`,
+					survey.observer,
+					`${survey.instrument}, serial ${survey.serial}`,
+					survey.fileName,
+				]}
+			/>
+			<Headline
+				title={`Survey ${survey.number}`}
+				acts={
+					mayCheck &&
+					isTied && (
+						<ButtonLink weight="act" to={`/sites/${siteId}/check?survey=${surveyId}`}>
+							Check this survey
+						</ButtonLink>
+					)
+				}
+			>
+				{surveyHeadline(survey)}
+			</Headline>
+			<div className="flex flex-col gap-6">
+				{survey.state === 'storing' && survey.jobId && mayWith(site.roles, 'job.see') && <Storing siteId={siteId} jobId={survey.jobId} />}
+				{survey.state === 'failed' && (
+					<Notice kind="wrong" title="Nothing of it was stored">
+						{survey.reason}
+					</Notice>
+				)}
+				<ul className="m-0 flex list-none flex-col gap-3 p-0">
+					{survey.setups.map((setup) => (
+						<li key={setup.setupId} className="sheet flex flex-wrap items-center gap-x-6 gap-y-2 px-4.5 py-3.5">
+							<span className="min-w-0 flex-1 basis-72">
+								<b className="text-lead">Set-up {setup.name}</b>
+								<span className="block">
+									{counted(setup.targetCount, 'target')} in the newest control, {count(setup.pointCount)} points
+								</span>
+								<span className="block text-second">{setupWords(setup)}</span>
+							</span>
+							<ButtonLink weight={setup.adoptedFitId ? 'quiet' : 'act'} to={`/sites/${siteId}/surveys/${surveyId}/setups/${setup.setupId}`}>
+								{setup.adoptedFitId ? 'See its fit' : 'Fit it'}
+							</ButtonLink>
+						</li>
+					))}
+				</ul>
+				<section aria-label="Points" className="flex flex-col gap-3">
+					<h2 className="m-0 text-h2 font-strong">
+						{measured.total > shownPoints
+							? `The first ${count(shownPoints)} of ${count(measured.total)} points`
+							: `${count(measured.total)} points`}
+					</h2>
+					<SurveyPointTable points={measured.points} setups={survey.setups} />
+				</section>
+			</div>
+		</>
+	);
+}
+
+function Storing({ siteId, jobId }: { siteId: string; jobId: string }) {
+	const queries = useQueryClient();
+	const { job, cancel, isCancelling } = useJob(siteId, jobId, () => {
+		for (const queryKey of [api.survey.key(), api.site.key()]) queries.invalidateQueries({ queryKey });
+	});
+	return (
+		<Progress
+			doing={job?.doing ?? 'Waiting its turn'}
+			done={job?.done ?? 0}
+			of={job?.of ?? 0}
+			onCancel={cancel}
+			isCancelling={isCancelling}
+			note="You can leave this page; it goes on."
+		/>
+	);
+}
