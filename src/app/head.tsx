@@ -7,13 +7,13 @@ import { Mark } from '#src/ui/mark.tsx';
 interface HeadProps {
 	/** Beside the mark: the site's name. */
 	children?: ReactNode;
-	role: string;
+	memberRole: string;
 	/** On a phone in place of the mark: "‹ Surveys". */
 	back?: { to: string; word: string } | null;
 }
 
 /** The head of every signed-in page. */
-export function Head({ children, role, back = null }: HeadProps) {
+export function Head({ children, memberRole, back = null }: HeadProps) {
 	const me = useMe();
 	const navigate = useNavigate();
 	return (
@@ -34,9 +34,9 @@ export function Head({ children, role, back = null }: HeadProps) {
 			<span className="min-w-0 truncate text-second max-tablet:hidden">{children}</span>
 			<span className="ml-auto flex shrink-0 items-center gap-2.5">
 				<SunPress />
-				<span className="text-second max-cabin:hidden">{role}</span>
+				<span className="text-second max-cabin:hidden">{memberRole}</span>
 				<span className="max-tablet:hidden">{me.name}</span>
-				<AccountMenu person={me} role={role} onSignedOut={() => navigate('/sign-in')} />
+				<AccountMenu person={me} role={memberRole} onSignedOut={() => navigate('/sign-in')} />
 			</span>
 		</header>
 	);

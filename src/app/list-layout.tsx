@@ -3,5 +3,5 @@ import { PageFrame } from './page-frame.tsx';
 
 /** Round pages that belong to no site. */
 export function ListLayout() {
-	return <PageFrame head={<Head role="" />} />;
+	return <PageFrame head={<Head memberRole="" />} />;
 }

@@ -22,7 +22,7 @@ function SiteFrame() {
 			head={
 				<>
 					<Head
-						role={roleWords(site.roles)}
+						memberRole={roleWords(site.roles)}
 						back={place === null ? null : back ? { to: `${home}/${back.path}`, word: back.word } : { to: home, word: site.name }}
 					>
 						<Link to={home} className="text-second no-underline hover:underline hover:underline-offset-4">

@@ -71,3 +71,7 @@ export function Glyph({ kind, sizePx = 16, turnRad = 0, label }: GlyphProps) {
 		</svg>
 	);
 }
+
+function round(value: number): number {
+	return Math.round(value * 100) / 100;
+}

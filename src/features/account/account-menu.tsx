@@ -45,7 +45,7 @@ export function AccountMenu({ person, role, onSignedOut }: AccountMenuProps) {
 			<button
 				type="button"
 				popoverTarget={menuId}
-				aria-label={`${person.name}: colours and sign out`}
+				aria-label={`${initialsOf(person.name)}, ${person.name}: colours and sign out`}
 				className="grid size-8 shrink-0 place-items-center rounded-full bg-action text-small font-medium text-on-action pointer-coarse:size-12"
 			>
 				{initialsOf(person.name)}

@@ -14,10 +14,10 @@ export default function SignInPage() {
 	if (me) return <Navigate to={back} replace />;
 	return (
 		<div className="mx-auto flex min-h-dvh w-full max-w-100 flex-col px-4 pt-[12vh] pb-8">
-			<p className="m-0 mb-6 flex items-center gap-2.5 text-lead font-heavy tracking-[-0.01em]">
+			<header className="mb-6 flex items-center gap-2.5 text-lead font-heavy tracking-[-0.01em]">
 				<Mark sizePx={36} />
 				Batterboard
-			</p>
+			</header>
 			<main className="sheet px-5 py-5">
 				<Headline title="Sign in">Near enough to the design?</Headline>
 				<p className="m-0 mb-5 text-second">
@@ -25,7 +25,7 @@ export default function SignInPage() {
 				</p>
 				<SignInForm onSignedIn={() => navigate(back, { replace: true })} />
 			</main>
-			<p className="mt-4 text-small text-second">No account? Whoever leads your site invites you.</p>
+			<footer className="mt-4 text-small text-second">No account? Whoever leads your site invites you.</footer>
 		</div>
 	);
 }
