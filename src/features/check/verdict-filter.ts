@@ -1,0 +1,55 @@
+import type { Deviation } from '#shared/check/check-schema.ts';
+import { type GlyphKind, glyphKindOf } from '#src/ui/glyph-kind.ts';
+
+/** What the chips tell apart: as they stand in the address. */
+export const verdictFilters = ['proud', 'shy', 'plan', 'close', 'undecided', 'unmeasured', 'norule', 'within'] as const;
+export type VerdictFilter = (typeof verdictFilters)[number];
+
+/** All but what is within: where one looks first. */
+export const offVerdicts: readonly VerdictFilter[] = verdictFilters.filter((filter) => filter !== 'within');
+
+export const glyphOfFilter: Record<VerdictFilter, GlyphKind> = {
+	proud: 'proud',
+	shy: 'shy',
+	plan: 'plan',
+	close: 'close',
+	undecided: 'close',
+	unmeasured: 'none',
+	norule: 'none',
+	within: 'within',
+};
+
+/** The chip a deviation belongs to. */
+export function filterOf(deviation: Deviation): VerdictFilter {
+	if (deviation.verdict === 'undecided') return 'undecided';
+	if (deviation.verdict === 'no-tolerance') return 'norule';
+	const kind = glyphKindOf(deviation);
+	return kind === 'none' ? 'unmeasured' : kind;
+}
+
+/** How many there are of each. */
+export function countsOf(deviations: readonly Deviation[]): Record<VerdictFilter, number> {
+	const counts: Record<VerdictFilter, number> = { proud: 0, shy: 0, plan: 0, close: 0, undecided: 0, unmeasured: 0, norule: 0, within: 0 };
+	for (const deviation of deviations) counts[filterOf(deviation)] += 1;
+	return counts;
+}
+
+/** The chip's words. Faces stand proud or shy, levels are high or low: the word follows what is there. */
+export function wordOfFilter(filter: VerdictFilter, deviations: readonly Deviation[]): string {
+	if (filter === 'proud' || filter === 'shy') {
+		const off = deviations.filter((deviation) => filterOf(deviation) === filter);
+		const words = [
+			...(off.some((deviation) => deviation.characteristic !== 'level') ? [filter] : []),
+			...(off.some((deviation) => deviation.characteristic === 'level') ? [filter === 'proud' ? 'high' : 'low'] : []),
+		];
+		return words.length === 0 ? filter : words.join(' or ');
+	}
+	return {
+		plan: 'off in plan',
+		close: 'too close to call',
+		undecided: 'undecided',
+		unmeasured: 'not measured',
+		norule: 'no tolerance',
+		within: 'within',
+	}[filter];
+}

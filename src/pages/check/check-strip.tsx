@@ -1,0 +1,56 @@
+import { Link } from 'react-router-dom';
+import type { CheckHead } from '#shared/check/contract.ts';
+import { calendarDay, counted } from '#src/lib/format.ts';
+import { useAddressId } from '#src/lib/session.ts';
+import { Strip } from '#src/ui/strip.tsx';
+
+const stateWords: Record<CheckHead['state'], string | null> = {
+	computing: null,
+	trial: 'trial, not published',
+	published: 'published',
+	withdrawn: 'withdrawn',
+	failed: 'no result',
+};
+
+/** Who stands behind the fits, each name once: "fits by Jo Marsh, checked by T. Okoro". */
+function fitWords(fits: CheckHead['fits']): string {
+	const word = fits.length === 1 ? 'fit' : `${fits.length} fits`;
+	const makers = [...new Set(fits.map((fit) => fit.adoptedBy))].join(' and ');
+	const checkers = [...new Set(fits.flatMap((fit) => (fit.checkedBy === null ? [] : [fit.checkedBy])))].join(' and ');
+	const unchecked = fits.filter((fit) => fit.checkedBy === null).length;
+	if (unchecked === fits.length) return `${word} by ${makers}, unchecked`;
+	return `${word} by ${makers}, checked by ${checkers}${unchecked > 0 ? `, ${unchecked} unchecked` : ''}`;
+}
+
+/** What the check rests on, and whether that is the newest. Each leads to the thing itself. */
+export function CheckStrip({ check }: { check: CheckHead }) {
+	const siteId = useAddressId('siteId');
+	const { revision, survey, fits, sheet } = check;
+	const isFitOld = fits.some((fit) => !fit.isNewest);
+	const quiet = 'text-second no-underline hover:underline hover:underline-offset-3';
+	const state = stateWords[check.state];
+	return (
+		<Strip
+			items={[
+				<Link key="revision" to={`/sites/${siteId}/model`} className={quiet}>
+					rev {revision.number}
+					{revision.isNewest ? ', newest' : <b>, not the newest</b>}
+				</Link>,
+				<Link key="survey" to={`/sites/${siteId}/surveys`} className={quiet}>
+					survey {survey.number}, {calendarDay(survey.surveyedOn, check.madeAt)}, {counted(survey.setupCount, 'set-up')}
+				</Link>,
+				fits.length > 0 && (
+					<span key="fits">
+						{fitWords(fits)}
+						{isFitOld && <b>, a newer one is adopted</b>}
+					</span>
+				),
+				<span key="sheet">
+					sheet {sheet.name}, {sheet.decision}
+					{!sheet.isNewest && <b>, superseded</b>}
+				</span>,
+				state !== null && <b key="state">{state}</b>,
+			]}
+		/>
+	);
+}

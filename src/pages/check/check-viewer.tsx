@@ -1,0 +1,240 @@
+import { useQuery } from '@tanstack/react-query';
+import { lazy, type RefObject, Suspense, useCallback, useEffect, useMemo, useReducer, useRef, useState } from 'react';
+import type { CheckDetail } from '#shared/check/contract.ts';
+import { exaggerationOf, nearestMark } from '#src/features/check/deviation-mark.ts';
+import { DeviationPlan } from '#src/features/check/deviation-plan.tsx';
+import { drawnAxes } from '#src/features/model/grid-frame.ts';
+import { ModelPlan } from '#src/features/model/model-plan.tsx';
+import { api } from '#src/lib/api.ts';
+import { PressChip, Segmented } from '#src/ui/chip.tsx';
+import { hasWebGl2 } from '#src/ui/has-webgl.ts';
+import { type PlanScale, PlanStage } from '#src/ui/plan-stage.tsx';
+import { boxAround, grown, type ViewBox, type ViewCommands } from '#src/ui/view-commands.ts';
+import { type CheckView, worstMarkOf } from './use-check-view.ts';
+
+/** Everything of three.js lies behind this: it comes when a model is first looked at. */
+const CheckScene = lazy(() => import('./check-scene.tsx'));
+
+interface CheckViewerProps {
+	check: CheckDetail;
+	siteId: string;
+	view: CheckView;
+	/** away: kept, but not seen (a phone that shows the table). */
+	mode: 'model' | 'plan' | 'away';
+	/** Without it the choice between the two stands elsewhere. */
+	onMode?: (mode: 'model' | 'plan') => void;
+	commands: RefObject<ViewCommands | null>;
+	/** Put here: frames what is chosen, at the next drawing. */
+	frameChosen: RefObject<(checkpointId: string) => void>;
+}
+
+const noElements: never[] = [];
+
+/** How near a press must fall, pixels. */
+export const reachPx = { fine: 14, coarse: 26 };
+
+/** Model and plan of a check: the same marks, the same choice, the same acts. The plan stands in while the model is on its way, and where there is no 3D. */
+export function CheckViewer({ check, siteId, view, mode, onMode, commands, frameChosen }: CheckViewerProps) {
+	const { revisionId } = check.revision;
+	const input = { siteId, revisionId };
+	// A revision never changes once it is read.
+	const forever = { staleTime: Number.POSITIVE_INFINITY };
+	const revision = useQuery({ ...api.model.revision.queryOptions({ input }), ...forever });
+	const modelElements = useQuery({ ...api.model.elements.queryOptions({ input }), ...forever });
+	const elements = modelElements.data ?? noElements;
+
+	const [hasGraphics] = useState(hasWebGl2);
+	const [fault, setFault] = useState<string | null>(null);
+	const [isReady, setReady] = useState(false);
+	const [wasAsked, setWasAsked] = useState(mode === 'model');
+	useEffect(() => {
+		if (mode === 'model') setWasAsked(true);
+	}, [mode]);
+	const may3d = hasGraphics && fault === null;
+	const is3d = mode === 'model' && may3d && isReady;
+
+	const [isOnlyThese, setOnlyThese] = useState(false);
+	const [putAway, setPutAway] = useState<ReadonlySet<number>>(new Set());
+	const marks = useMemo(() => view.drawnMarks(isOnlyThese), [view.drawnMarks, isOnlyThese]);
+	const allMarks = useMemo(() => view.drawnMarks(false), [view.drawnMarks]);
+	const shownEntities = useMemo(() => new Set(view.shown.map((group) => group.element.entityNumber)), [view.shown]);
+	const { storey } = view;
+	const hidden = useMemo(() => {
+		const away = new Set(putAway);
+		for (const { entityNumber, storey: itsStorey } of elements) {
+			if ((isOnlyThese && !shownEntities.has(entityNumber)) || (storey !== null && itsStorey !== storey)) away.add(entityNumber);
+		}
+		return away;
+	}, [elements, isOnlyThese, shownEntities, putAway, storey]);
+
+	const box = useMemo((): ViewBox => {
+		const boxes = elements.flatMap((element) => (element.boxM === null ? [] : [element.boxM]));
+		const places = check.deviations.map(({ place }) => ({ min: place, max: place }));
+		return boxAround(boxes) ?? grown(boxAround(places) ?? { min: [0, 0, 0], max: [10, 10, 3] }, 0.5);
+	}, [elements, check.deviations]);
+	const axes = useMemo(() => drawnAxes(revision.data?.reading.grid ?? [], box), [revision.data, box]);
+	const times = useMemo(() => exaggerationOf(allMarks, Math.max(box.max[0] - box.min[0], box.max[1] - box.min[1])), [allMarks, box]);
+	const chosenEntity = view.chosenElement?.entityNumber ?? null;
+
+	const { chosen } = view;
+	const frame = useCallback(() => {
+		if (chosen === null) return;
+		const element = elements.find((each) => each.entityNumber === chosenEntity);
+		const near = grown({ min: chosen.place, max: chosen.place }, 0.75);
+		// A whole slab would frame the whole site: then the place and its surroundings.
+		const isSmall = element?.boxM != null && Math.max(...[0, 1, 2].map((axis) => element.boxM!.max[axis]! - element.boxM!.min[axis]!)) < 9;
+		commands.current?.frame(isSmall ? (boxAround([near, element.boxM!]) ?? near) : grown(near, 2));
+	}, [chosen, chosenEntity, elements, commands]);
+	// Asked for together with a choice, it waits until that choice is the page's.
+	const wanted = useRef<string | null>(null);
+	const [, askFrame] = useReducer((asked: number) => asked + 1, 0);
+	useEffect(() => {
+		frameChosen.current = (checkpointId) => {
+			wanted.current = checkpointId;
+			askFrame();
+		};
+	}, [frameChosen]);
+	useEffect(() => {
+		if (wanted.current === null || wanted.current !== chosen?.checkpointId) return;
+		wanted.current = null;
+		frame();
+	});
+
+	const { choose } = view;
+	const pickElement = useCallback(
+		(entityNumber: number) => {
+			const group = view.groups.find(({ element }) => element.entityNumber === entityNumber);
+			const worst = group && (worstMarkOf(marks, group.key)?.checkpointId ?? group.rows[0]?.checkpointId);
+			if (worst !== undefined) choose(worst);
+		},
+		[view.groups, marks, choose],
+	);
+	const pressPlan = useCallback(
+		({ x, y, scale, isCoarse }: { x: number; y: number; scale: PlanScale; isCoarse: boolean }) => {
+			const placesPx = marks.flatMap(({ place }) => [scale.x(place[0]), scale.y(place[1])]);
+			const mark = nearestMark(placesPx, x, y, isCoarse ? reachPx.coarse : reachPx.fine);
+			if (mark !== null) choose(marks[mark]!.checkpointId);
+		},
+		[marks, choose],
+	);
+	const note = `lines \u00d7 ${times}`;
+	const drawPlan = useCallback(
+		(scale: PlanScale) => (
+			<>
+				<ModelPlan elements={elements} hidden={hidden} chosen={chosenEntity} axes={axes} scale={scale} />
+				<DeviationPlan marks={marks} chosenId={view.chosenId} times={times} scale={scale} />
+			</>
+		),
+		[elements, hidden, chosenEntity, axes, marks, view.chosenId, times],
+	);
+	const lost = useCallback(
+		() => setFault('The device took the graphics away. The plan takes the model’s place; load the page again for the model.'),
+		[],
+	);
+	const failed = useCallback((why: string) => setFault(why), []);
+	const ready = useCallback(() => setReady(true), []);
+
+	const message = !hasGraphics
+		? 'This browser draws no 3D here, so the plan takes the model’s place.'
+		: (fault ?? (mode === 'model' && !isReady ? 'The model is on its way; the plan meanwhile.' : null));
+	const label = `${marks.length} checkpoints${is3d ? ' on the model' : ' on the plan'}; the table says the same in words.`;
+	return (
+		<div className="sheet relative h-full min-h-80 overflow-hidden">
+			{may3d && wasAsked && (
+				<div className={is3d ? '' : 'invisible'}>
+					<Suspense fallback={null}>
+						<CheckScene
+							siteId={siteId}
+							revisionId={revisionId}
+							label={label}
+							box={box}
+							axes={axes}
+							storeys={revision.data?.reading.storeys ?? noElements}
+							marks={marks}
+							chosenId={view.chosenId}
+							chosenEntity={chosenEntity}
+							hidden={hidden}
+							times={times}
+							note={note}
+							commands={is3d ? commands : noCommands}
+							onChoose={choose}
+							onPickElement={pickElement}
+							onReady={ready}
+							onFailed={failed}
+							onLost={lost}
+						/>
+					</Suspense>
+				</div>
+			)}
+			{!is3d && mode !== 'away' && (
+				<PlanStage label={label} box={box} commands={commands} onPress={pressPlan} note={note}>
+					{drawPlan}
+				</PlanStage>
+			)}
+			<div className="pointer-events-none absolute inset-x-2.5 top-2.5 flex flex-wrap justify-between gap-1.5 [&>*]:pointer-events-auto">
+				{onMode && may3d ? (
+					<Segmented
+						legend="View"
+						value={mode === 'plan' ? 'plan' : 'model'}
+						onChange={onMode}
+						options={[
+							{ value: 'model', label: 'Model' },
+							{ value: 'plan', label: 'Plan' },
+						]}
+					/>
+				) : (
+					<span />
+				)}
+				<div className="flex flex-wrap justify-end gap-1.5">
+					<ToggleChip isOn={isOnlyThese} onPress={() => setOnlyThese(!isOnlyThese)} title="Draw only the elements the table shows">
+						Only these
+					</ToggleChip>
+					{chosen !== null && (
+						<>
+							<PressChip onPress={frame} title="Fill the view with what is chosen (F)">
+								Frame
+							</PressChip>
+							<PressChip
+								onPress={() => chosenEntity !== null && setPutAway(new Set([...putAway, chosenEntity]))}
+								title="Take this element out of the view until Whole"
+							>
+								Put away
+							</PressChip>
+						</>
+					)}
+					<PressChip
+						onPress={() => {
+							setOnlyThese(false);
+							setPutAway(new Set());
+							commands.current?.whole();
+						}}
+						title="Everything back, seen whole"
+					>
+						Whole
+					</PressChip>
+				</div>
+			</div>
+			{message !== null && (
+				<p role="status" className="pointer-events-none absolute inset-x-12 bottom-2 m-0 text-center text-small text-second">
+					{message}
+				</p>
+			)}
+		</div>
+	);
+}
+
+const noCommands: RefObject<ViewCommands | null> = { current: null };
+
+function ToggleChip({ isOn, onPress, title, children }: { isOn: boolean; onPress: () => void; title: string; children: string }) {
+	return (
+		<button
+			type="button"
+			aria-pressed={isOn}
+			title={title}
+			onClick={onPress}
+			className="inline-flex min-h-10 items-center rounded-round border border-rule bg-sheet px-3.5 leading-tight hover:border-ink aria-pressed:border-ink aria-pressed:shadow-[inset_0_0_0_1px_var(--color-ink)] pointer-coarse:min-h-12"
+		>
+			{children}
+		</button>
+	);
+}

@@ -1,0 +1,217 @@
+import { useMutation } from '@tanstack/react-query';
+import { useCallback, useMemo, useRef } from 'react';
+import type { CheckDetail } from '#shared/check/contract.ts';
+import { CheckFindings } from '#src/features/check/check-findings.tsx';
+import { headlineWords } from '#src/features/check/check-words.ts';
+import { DeviationCard } from '#src/features/check/deviation-card.tsx';
+import { DeviationTable } from '#src/features/check/deviation-table.tsx';
+import { VerdictChips } from '#src/features/check/verdict-chips.tsx';
+import { countsOf } from '#src/features/check/verdict-filter.ts';
+import { useAddressState } from '#src/lib/address-state.ts';
+import { client } from '#src/lib/api.ts';
+import { refusalOf } from '#src/lib/api-error.ts';
+import { count } from '#src/lib/format.ts';
+import { Button } from '#src/ui/button.tsx';
+import { PressChip, Segmented } from '#src/ui/chip.tsx';
+import { glyphKindOf } from '#src/ui/glyph-kind.ts';
+import { Headline } from '#src/ui/headline.tsx';
+import { useKey } from '#src/ui/keys.tsx';
+import { Notice } from '#src/ui/notice.tsx';
+import { rodScaleMm } from '#src/ui/rod.tsx';
+import { useIsBelow } from '#src/ui/screen-width.ts';
+import type { ViewCommands } from '#src/ui/view-commands.ts';
+import { WideRod, type WideRodTick } from '#src/ui/wide-rod.tsx';
+import { CheckFilters } from './check-filters.tsx';
+import { CheckStrip } from './check-strip.tsx';
+import { CheckViewer } from './check-viewer.tsx';
+import { saveBlob } from './save-blob.ts';
+import { StaleNotice } from './stale-notice.tsx';
+import { useCheckView } from './use-check-view.ts';
+
+/** Side by side from a small laptop on; on an upright tablet the table above, picture and card below; on a phone one at a time. */
+const sides =
+	'grid gap-4 tablet:grid-cols-2 tablet:grid-rows-[28rem_24rem] cabin:h-[max(40rem,calc(100dvh-20rem))] cabin:grid-cols-[minmax(0,1fr)_26rem] cabin:grid-rows-[minmax(22rem,62fr)_minmax(0,38fr)] desk:grid-cols-[minmax(0,1fr)_32.5rem]';
+const tableSide = 'h-[max(22rem,calc(100dvh-17rem))] min-h-0 min-w-0 tablet:col-span-2 tablet:h-auto cabin:col-span-1 cabin:row-span-2';
+const viewerSide = 'h-[max(22rem,calc(100dvh-17rem))] min-h-0 min-w-0 tablet:h-auto';
+const cardSide =
+	'min-h-0 min-w-0 overflow-auto max-tablet:fixed max-tablet:inset-x-2 max-tablet:bottom-[5.25rem] max-tablet:z-10 max-tablet:max-h-[46dvh] max-tablet:rounded-corner max-tablet:shadow-lift';
+
+type PhoneView = 'table' | 'plan' | 'model';
+
+/** A check that has its figures: strip, headline, wide rod, chips, then table and picture side by side with the chosen deviation. */
+export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: string }) {
+	const view = useCheckView(check);
+	const isPhone = useIsBelow('tablet');
+	const [viewWord, setViewWord] = useAddressState('view');
+	const phoneView: PhoneView = viewWord === 'plan' || viewWord === 'model' ? viewWord : 'table';
+	const commands = useRef<ViewCommands | null>(null);
+	const frameChosen = useRef<(checkpointId: string) => void>(() => {});
+
+	const scaleMm = useMemo(
+		() =>
+			rodScaleMm(
+				check.deviations.map((row) => row.limitsMm),
+				check.deviations.map((row) => row.deviationMm),
+			),
+		[check.deviations],
+	);
+	const ticks = useMemo(
+		() =>
+			view.passing.flatMap((row): WideRodTick[] =>
+				row.deviationMm === null || row.limitsMm === null
+					? []
+					: [
+							{
+								id: row.checkpointId,
+								glyph: glyphKindOf(row),
+								deviationMm: row.deviationMm,
+								limitsMm: row.limitsMm,
+								isPlan: row.characteristic === 'plan',
+							},
+						],
+			),
+		[view.passing],
+	);
+	const summary = useMemo(() => {
+		const counts = countsOf(view.passing);
+		return `Every deviation against its own limits: ${count(counts.within)} within, ${count(counts.proud + counts.shy + counts.plan)} outside, ${count(counts.close)} too close to call`;
+	}, [view.passing]);
+
+	useKey('f', 'Frame what is chosen', () => view.chosenId !== null && frameChosen.current(view.chosenId));
+	useKey('escape', 'Choose nothing', view.clear);
+
+	const csv = useMutation({
+		mutationFn: () => client.check.csv({ siteId, checkId: check.checkId }),
+		onSuccess: (blob) => saveBlob(blob, `check-${check.number}.csv`),
+	});
+	const setupNames = useMemo(() => new Map(check.fits.map((fit) => [fit.setupId, fit.setupName])), [check.fits]);
+	const setupNameOf = useCallback((setupId: string) => setupNames.get(setupId) ?? null, [setupNames]);
+	const open = useCallback(
+		(checkpointId: string) => {
+			view.choose(checkpointId);
+			frameChosen.current(checkpointId);
+		},
+		[view.choose],
+	);
+
+	const isEmpty = check.deviations.every((row) => row.verdict === 'not-measured' || row.verdict === 'no-tolerance');
+	const isTableShown = !isPhone || phoneView === 'table';
+	const viewer = (
+		<CheckViewer
+			check={check}
+			siteId={siteId}
+			view={view}
+			mode={isPhone ? (phoneView === 'table' ? 'away' : phoneView) : viewWord === 'plan' ? 'plan' : 'model'}
+			{...(!isPhone && { onMode: (mode: 'plan' | 'model') => setViewWord(mode === 'model' ? null : mode) })}
+			commands={commands}
+			frameChosen={frameChosen}
+		/>
+	);
+	const card = view.chosen && (
+		<DeviationCard
+			deviation={view.chosen}
+			element={view.chosenElement}
+			setupName={view.chosen.setupId === null ? null : setupNameOf(view.chosen.setupId)}
+			acts={
+				isPhone && (
+					<span className="flex gap-2">
+						{phoneView === 'table' && <PressChip onPress={() => setViewWord('plan')}>Show on plan</PressChip>}
+						<PressChip onPress={view.clear}>Close</PressChip>
+					</span>
+				)
+			}
+		/>
+	);
+	return (
+		<>
+			<CheckStrip check={check} />
+			<Headline
+				acts={
+					<Button onClick={() => csv.mutate()} isBusy={csv.isPending}>
+						Download CSV
+					</Button>
+				}
+			>
+				{headlineWords(check)}
+			</Headline>
+			{csv.error && (
+				<Notice kind="wrong" title="The CSV was not downloaded.">
+					{refusalOf(csv.error).message}
+				</Notice>
+			)}
+			<StaleNotice check={check} siteId={siteId} />
+			<WideRod ticks={ticks} summary={summary} chosenId={view.chosenId} onChoose={view.choose} />
+			<CheckFindings findings={check.findings} unmatchedPoints={check.unmatchedPoints} setupNameOf={setupNameOf} />
+			<div className="my-2 flex flex-wrap items-center gap-2 max-tablet:flex-nowrap max-tablet:overflow-x-auto max-tablet:py-1">
+				<VerdictChips deviations={view.passing} shown={view.verdicts} onChange={view.setVerdicts} />
+				<CheckFilters check={check} siteId={siteId} view={view} />
+			</div>
+			{isPhone && (
+				<div className="mb-2">
+					<Segmented
+						legend="Show as"
+						value={phoneView}
+						onChange={(next) => setViewWord(next === 'table' ? null : next)}
+						options={[
+							{ value: 'table', label: 'Table' },
+							{ value: 'plan', label: 'On plan' },
+							{ value: 'model', label: 'On model' },
+						]}
+					/>
+				</div>
+			)}
+			<div className={sides}>
+				<div className={isTableShown ? tableSide : 'hidden'}>
+					{isEmpty && view.shown.length === 0 ? (
+						<Notice kind="empty" title="Nothing was measured.">
+							No point of the survey met a checkpoint of this revision. Look at the findings above: names, reach or the fit may be the
+							reason.
+						</Notice>
+					) : view.shown.length === 0 ? (
+						<NothingShown view={view} />
+					) : (
+						<DeviationTable
+							groups={view.shown}
+							chosenId={view.chosenId}
+							onChoose={view.choose}
+							onOpen={open}
+							scaleMm={scaleMm}
+							isNarrow={isPhone}
+						/>
+					)}
+				</div>
+				<div className={isPhone && phoneView === 'table' ? 'hidden' : viewerSide}>{viewer}</div>
+				{card ? (
+					<div className={cardSide}>{card}</div>
+				) : (
+					!isPhone && <p className="m-0 px-1 text-second">Choose a row, a tick or a glyph: here stands what is known of it.</p>
+				)}
+			</div>
+		</>
+	);
+}
+
+/** The filters leave nothing: which, and the press that undoes it. */
+function NothingShown({ view }: { view: ReturnType<typeof useCheckView> }) {
+	const hasOtherFilter = view.pourId !== null || view.storey !== null || view.find !== '';
+	return (
+		<Notice
+			kind="empty"
+			title={view.passing.length === 0 ? 'Nothing here goes by that name.' : 'Nothing of what the chips show is here.'}
+			act={
+				<Button
+					onClick={() => {
+						view.setPourId(null);
+						view.setStorey(null);
+						view.setFind(null);
+					}}
+					whyNot={hasOtherFilter ? null : 'Press a chip above to show more.'}
+				>
+					Show the whole check
+				</Button>
+			}
+		>
+			{view.passing.length > 0 && `${count(view.passing.length)} deviations pass the other filters. Press a chip to show them.`}
+		</Notice>
+	);
+}

@@ -1,0 +1,105 @@
+import { useCallback, useDeferredValue, useMemo } from 'react';
+import type { CheckDetail } from '#shared/check/contract.ts';
+import { elementPhrase } from '#src/features/check/check-words.ts';
+import { type DeviationMark, drawingOrder, marksOf } from '#src/features/check/deviation-mark.ts';
+import { type CheckFilter, elementGroups, elementPasses, shownGroups } from '#src/features/check/element-groups.ts';
+import { filterOf, offVerdicts, type VerdictFilter, verdictFilters } from '#src/features/check/verdict-filter.ts';
+import { useAddressSet, useAddressState } from '#src/lib/address-state.ts';
+
+/** What the page shows of its check, all of it from the address, so that a link shows a colleague the same. */
+export function useCheckView(check: CheckDetail) {
+	const [chosenId, setChosenId] = useAddressState('at');
+	const [pourId, setPourId] = useAddressState('pour');
+	const [storey, setStorey] = useAddressState('storey');
+	const [findText, setFind] = useAddressState('find');
+	const fallback = useMemo(
+		() => (check.deviations.some((row) => row.verdict !== 'within') ? offVerdicts : verdictFilters),
+		[check.deviations],
+	);
+	const [verdicts, setVerdicts] = useAddressSet<VerdictFilter>('show', verdictFilters, fallback);
+	const find = findText ?? '';
+	// The field answers at once; the table of thousands follows when there is time.
+	const lateFind = useDeferredValue(find);
+	const verdictKey = verdicts.join();
+
+	const groups = useMemo(() => elementGroups(check, (_, rows) => elementPhrase(rows)), [check]);
+	const filter = useMemo(
+		(): CheckFilter => ({
+			verdicts: verdictKey.split(',').filter((word): word is VerdictFilter => verdictFilters.some((known) => known === word)),
+			pourId,
+			storey,
+			find: lateFind,
+		}),
+		[verdictKey, pourId, storey, lateFind],
+	);
+	// Whether the chosen row is among the shown decides nothing for the others: the table is laid out anew only where it is not.
+	const groupsOfFilter = useMemo(() => shownGroups(groups, filter, null), [groups, filter]);
+	const isChosenShown = useMemo(
+		() => chosenId === null || groupsOfFilter.some((group) => group.rows.some((row) => row.checkpointId === chosenId)),
+		[groupsOfFilter, chosenId],
+	);
+	const shown = useMemo(
+		() => (isChosenShown ? groupsOfFilter : shownGroups(groups, filter, chosenId)),
+		[isChosenShown, groupsOfFilter, groups, filter, chosenId],
+	);
+	const elementById = useMemo(() => new Map(check.elements.map((element) => [element.elementId, element])), [check.elements]);
+	/** Those that pour, storey and find let through: what the chips count and the wide rod draws. */
+	const passing = useMemo(
+		() =>
+			check.deviations.filter((row) => {
+				const element = elementById.get(row.elementId);
+				return element === undefined || elementPasses(element, filter);
+			}),
+		[check.deviations, elementById, filter],
+	);
+	const marks = useMemo(() => marksOf(check.deviations), [check.deviations]);
+	const chosen = useMemo(() => check.deviations.find((row) => row.checkpointId === chosenId) ?? null, [check.deviations, chosenId]);
+	const passingIds = useMemo(() => new Set(passing.map((row) => row.checkpointId)), [passing]);
+	const filterById = useMemo(() => new Map(check.deviations.map((row) => [row.checkpointId, filterOf(row)])), [check.deviations]);
+
+	/** What is drawn: the shown verdicts, and what is within as small rings, because "checked and well" is worth seeing; with "only these" not. */
+	const drawnMarks = useCallback(
+		(isOnlyThese: boolean): DeviationMark[] =>
+			marks.filter((mark) => {
+				if (mark.checkpointId === chosenId) return true;
+				const verdict = filterById.get(mark.checkpointId);
+				if (!passingIds.has(mark.checkpointId) || verdict === undefined) return false;
+				return filter.verdicts.includes(verdict) || (verdict === 'within' && !isOnlyThese);
+			}),
+		[marks, chosenId, filterById, passingIds, filter],
+	);
+
+	const clear = useCallback(() => setChosenId(null), [setChosenId]);
+	return {
+		chosenId,
+		chosen,
+		chosenElement: chosen === null ? null : (elementById.get(chosen.elementId) ?? null),
+		choose: setChosenId,
+		clear,
+		verdicts,
+		setVerdicts,
+		pourId,
+		setPourId,
+		storey,
+		setStorey,
+		find,
+		setFind,
+		groups,
+		shown,
+		passing,
+		elementById,
+		drawnMarks,
+	};
+}
+
+export type CheckView = ReturnType<typeof useCheckView>;
+
+/** The worst mark of an element: what a press on the element itself chooses. */
+export function worstMarkOf(marks: readonly DeviationMark[], elementId: string): DeviationMark | null {
+	let worst: DeviationMark | null = null;
+	for (const mark of marks) {
+		if (mark.elementId === elementId && (worst === null || drawingOrder.indexOf(mark.kind) > drawingOrder.indexOf(worst.kind)))
+			worst = mark;
+	}
+	return worst;
+}
