@@ -5,7 +5,7 @@ import type { Place } from '#src/features/site/site-line.tsx';
 export interface PageHandle {
 	/** The knot it hangs from; null on the site's first page. */
 	place: Place | null;
-	/** The way back on a phone, below `/sites/:siteId/`; without it the site's first page. */
+	/** The way back on a phone, below `/sites/:siteId/`, with the address's own parts by name; without it the site's first page. */
 	back?: { path: string; word: string };
 }
 

@@ -49,6 +49,19 @@ export const routes: RouteObject[] = [
 								errorElement: <RouteFault />,
 								handle: { place: null } satisfies PageHandle,
 							},
+							sitePage('model', 'model', () => import('#src/pages/model/model-page.tsx')),
+							sitePage('model/:revisionId', 'model', () => import('#src/pages/model/revision-page.tsx'), { path: 'model', word: 'Model' }),
+							sitePage('surveys/:surveyId', 'surveys', () => import('#src/pages/survey/survey-page.tsx'), {
+								path: 'surveys',
+								word: 'Surveys',
+							}),
+							sitePage('surveys/:surveyId/setups/:setupId', 'surveys', () => import('#src/pages/fit/fit-page.tsx'), {
+								path: 'surveys/:surveyId',
+								word: 'Survey',
+							}),
+							sitePage('checks/:checkId', 'check', () => import('#src/pages/check/check-page.tsx'), { path: 'check', word: 'Checks' }),
+							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), { path: 'check', word: 'Checks' }),
+							sitePage('pours', 'pours', () => import('#src/pages/pours/pours-page.tsx')),
 							{ path: '*', lazy: page(() => import('#src/pages/not-found/not-found-page.tsx')) },
 						],
 					},
@@ -58,10 +71,6 @@ export const routes: RouteObject[] = [
 		],
 	},
 ];
-
-/** Sites' pages as they come; `sitePage` keeps them alike. */
-export const sitePages: RouteObject[] = [];
-void sitePage;
 
 /** The router over the browser's address. */
 export function createRouter() {

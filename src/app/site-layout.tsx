@@ -1,4 +1,4 @@
-import { Link, useParams } from 'react-router-dom';
+import { generatePath, Link, useParams } from 'react-router-dom';
 import { roleWords } from '#src/features/site/role-words.ts';
 import { SiteLine } from '#src/features/site/site-line.tsx';
 import { useSite } from '#src/lib/session.ts';
@@ -15,6 +15,7 @@ export function SiteLayout() {
 
 function SiteFrame() {
 	const site = useSite();
+	const parts = useParams();
 	const { place, back } = usePageHandle();
 	const home = `/sites/${site.siteId}`;
 	return (
@@ -23,7 +24,13 @@ function SiteFrame() {
 				<>
 					<Head
 						memberRole={roleWords(site.roles)}
-						back={place === null ? null : back ? { to: `${home}/${back.path}`, word: back.word } : { to: home, word: site.name }}
+						back={
+							place === null
+								? null
+								: back
+									? { to: `${home}/${generatePath(back.path, parts)}`, word: back.word }
+									: { to: home, word: site.name }
+						}
 					>
 						<Link to={home} className="text-second no-underline hover:underline hover:underline-offset-4">
 							{site.name}
