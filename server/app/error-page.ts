@@ -2,20 +2,20 @@ import type { ErrorRequestHandler, RequestHandler, Response } from 'express';
 
 /** For what nobody answers. */
 export const notFoundPage: RequestHandler = (request, response) => {
-	sendSentence(response, 404, request.path, 'There is nothing at this address.');
+	sendSentence(response, 404, request.originalUrl, 'There is nothing at this address.');
 };
 
 /** For a fault of ours: written to the log, never shown. A malformed address is the sender's. */
 export const errorPage: ErrorRequestHandler = (error: unknown, request, response, next) => {
 	if (response.headersSent) return next(error);
-	if (error instanceof URIError) return sendSentence(response, 400, request.path, 'This address cannot be read.');
-	console.error(`${request.method} ${request.path} failed:`, error);
-	sendSentence(response, 500, request.path, 'Something went wrong on the server. What was stored before is safe; try again.');
+	if (error instanceof URIError) return sendSentence(response, 400, request.originalUrl, 'This address cannot be read.');
+	console.error(`${request.method} ${request.baseUrl}${request.path} failed:`, error);
+	sendSentence(response, 500, request.originalUrl, 'Something went wrong on the server. What was stored before is safe; try again.');
 };
 
-function sendSentence(response: Response, status: number, path: string, sentence: string): void {
+function sendSentence(response: Response, status: number, address: string, sentence: string): void {
 	response.status(status).set('cache-control', 'no-store');
-	if (/^\/(rpc|api)\//.test(path)) response.json({ message: sentence });
+	if (/^\/(rpc|api)\//.test(address)) response.json({ message: sentence });
 	else response.type('html').send(page(status, sentence));
 }
 

@@ -1,4 +1,6 @@
+import { computeCheckRunner } from '../features/check/compute-check-job.ts';
+import { readIfcRunner } from '../features/model/read-ifc-job.ts';
 import type { JobRunner } from '../platform/platform.ts';
 
 /** All job runners. */
-export const jobRunners: readonly JobRunner[] = [];
+export const jobRunners: readonly JobRunner[] = [readIfcRunner, computeCheckRunner];

@@ -1,4 +1,6 @@
 import { accountRoutes } from '../features/account/routes.ts';
+import { checkRoutes } from '../features/check/routes.ts';
+import { fitRoutes } from '../features/fit/routes.ts';
 import { jobRoutes } from '../features/job/routes.ts';
 import { modelRoutes } from '../features/model/routes.ts';
 import { pourRoutes } from '../features/pour/routes.ts';
@@ -12,6 +14,8 @@ export const router = {
 	site: { ...siteRoutes, found: foundSiteRoute },
 	job: jobRoutes,
 	model: modelRoutes,
+	fit: fitRoutes,
 	tolerance: toleranceRoutes,
+	check: checkRoutes,
 	pour: pourRoutes,
 };
