@@ -6,11 +6,10 @@ import { build, install, root } from './prepare.mjs';
 
 install();
 build();
-// The program runs in the checkout, files are named from where the person stands: npm goes to the checkout first and says where that was.
-const calledFrom = process.cwd() === root ? (process.env.INIT_CWD ?? root) : process.cwd();
+// npm goes to the checkout first and says where the person stands; files are named from there.
+const cwd = process.cwd() === root ? (process.env.INIT_CWD ?? root) : process.cwd();
 const command = spawn(process.execPath, ['--enable-source-maps', join(root, 'dist/server/cli.js'), ...process.argv.slice(2)], {
-	cwd: root,
-	env: { ...process.env, BATTERBOARD_CALLED_FROM: calledFrom },
+	cwd,
 	stdio: 'inherit',
 });
 for (const signal of ['SIGTERM', 'SIGINT']) process.on(signal, () => command.kill(signal));
