@@ -1,4 +1,4 @@
-import type { Deviation, Verdict } from '#shared/check/check-schema.ts';
+import type { Deviation } from '#shared/check/check-schema.ts';
 
 /** The forms a verdict is drawn in. `plan` is an arrow turned as on the plan; `close` a half-filled diamond; `none` a dash. */
 export const glyphKinds = ['within', 'proud', 'shy', 'plan', 'close', 'none'] as const;
@@ -23,13 +23,3 @@ export function glyphKindOf({ verdict, characteristic, deviationMm, limitsMm }: 
 export function planTurnRad(offsetMm: Deviation['offsetMm']): number {
 	return offsetMm === null ? 0 : Math.atan2(offsetMm[1], offsetMm[0]);
 }
-
-/** The verdict in as few words as a table has room for, without figures. */
-export const verdictWords: Record<Verdict, string> = {
-	within: 'within',
-	outside: 'outside',
-	'too-close-to-call': 'too close to call',
-	undecided: 'undecided',
-	'not-measured': 'not measured',
-	'no-tolerance': 'no tolerance',
-};

@@ -1,12 +1,12 @@
 import { useRef } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
+import { deviationSentence } from '#shared/check/sentence.ts';
 import type { PourSummary } from '#shared/pour/contract.ts';
-import { deviationSentence } from '#src/lib/deviation-sentence.ts';
 import { useElementWidth } from '#src/lib/element-width.ts';
 import { counted, distanceInTime, moment } from '#src/lib/format.ts';
 import { glyphKindOf, planTurnRad } from '#src/ui/glyph-kind.ts';
 import { Rod, rodScaleMm } from '#src/ui/rod.tsx';
-import { type PourStanding, pourStanding, stationWords } from './pour-standing.ts';
+import { nextWords, type PourStanding, pourStanding } from './pour-standing.ts';
 import { PourString, PourStringHead } from './pour-string.tsx';
 
 interface PourRowsProps {
@@ -66,7 +66,7 @@ export function PourRows({ pours, check, isCheckTaut, timeZone, now }: PourRowsP
 											? `${counted(pour.elementCount, 'element')}, ${pour.companyName}`
 											: `${standing.words}; ${pour.companyName}`}
 									</span>
-									{!isWide && standing !== null && <span className="block text-small">Next: {stationWords[standing.at % 4]}</span>}
+									{!isWide && standing !== null && <span className="block text-small">Next: {nextWords[standing.at % 4]}</span>}
 								</div>
 							</div>
 							<div className={isWide ? 'contents' : 'mt-1 flex items-start gap-3'}>

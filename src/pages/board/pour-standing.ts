@@ -5,6 +5,9 @@ import { counted } from '#src/lib/format.ts';
 /** The stations of a pour's string: four before the concrete, four after it. */
 export const stationWords = ['surveyed', 'checked', 'flags', 'released'] as const;
 
+/** What is to come at each station. */
+export const nextWords = ['to be surveyed', 'to be checked', 'flags to be settled', 'to be released'] as const;
+
 export type StationState = 'solid' | 'half' | 'open';
 
 /** Where a pour stands, as far as the newest check tells. */

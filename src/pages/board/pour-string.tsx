@@ -1,5 +1,5 @@
 import { Knot, Plumb } from '#src/ui/line.tsx';
-import { type PourStanding, stationWords } from './pour-standing.ts';
+import { nextWords, type PourStanding, stationWords } from './pour-standing.ts';
 
 const stateWords = { solid: 'in order', half: 'in hand', open: 'nothing yet' } as const;
 const stringY = 20;
@@ -21,6 +21,8 @@ export function PourString({ standing, widthPx }: PourStringProps) {
 	const xs = stationXs(widthPx);
 	const stationX = (index: number) => xs[index < 4 ? index : index + 1] ?? 0;
 	const concreteX = xs[4] ?? 0;
+	// On a phone the stations stand close: the concrete must not touch them.
+	const concretePx = Math.min(34, (xs[1] ?? 0) - (xs[0] ?? 0));
 	const from = Math.max(0, (xs[0] ?? 0) - 14);
 	const toX = standing === null ? 0 : stationX(standing.at);
 	const path =
@@ -42,7 +44,14 @@ export function PourString({ standing, widthPx }: PourStringProps) {
 					<path d={path} className="string-core" strokeDasharray={dash} />
 				</>
 			)}
-			<rect x={concreteX - 17} y={stringY - 9} width={34} height={18} className="fill-ground stroke-ink" strokeWidth={1.5} />
+			<rect
+				x={concreteX - concretePx / 2}
+				y={stringY - 9}
+				width={concretePx}
+				height={18}
+				className="fill-ground stroke-ink"
+				strokeWidth={1.5}
+			/>
 			{standing?.stations.map((state, index) => (
 				<Knot key={stationX(index)} state={state} x={stationX(index)} y={stringY} radius={6} />
 			))}
@@ -53,7 +62,7 @@ export function PourString({ standing, widthPx }: PourStringProps) {
 
 function stringWords({ stations, at }: PourStanding): string {
 	const said = (from: number) => stationWords.map((word, index) => `${word} ${stateWords[stations[from + index] ?? 'open']}`).join(', ');
-	return `Next: ${stationWords[at % 4]}${at < 4 ? ' before' : ' after'} the concrete. Before: ${said(0)}. After: ${said(4)}.`;
+	return `Next: ${nextWords[at % 4]}${at < 4 ? ' before' : ' after'} the concrete. Before: ${said(0)}. After: ${said(4)}.`;
 }
 
 /** The stations' words above the rows. */
