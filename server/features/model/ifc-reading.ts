@@ -99,12 +99,16 @@ export function readElements(
 			skipped.push({ entityNumber, globalId, class: className, why });
 		};
 		const left = leaveOut.get(entityNumber);
-		if (left !== undefined) return skip(left);
+		if (left !== undefined) {
+			skip(left);
+			return;
+		}
 		const placementNumber = refOf(entity.args[5]);
 		const placement = head.placementOf(placementNumber);
 		if (placement.fault !== null && refOf(entity.args[6]) !== null) {
 			withoutBody.push(globalId || `#${entityNumber}`);
-			return skip(FAULTS[placement.fault]);
+			skip(FAULTS[placement.fault]);
+			return;
 		}
 		const gridMatrix = placement.gridPlacement === null ? null : head.gridMatrix(placement.gridPlacement);
 
@@ -118,20 +122,23 @@ export function readElements(
 		if (!mesh) {
 			if (refOf(entity.args[6]) === null && head.structure.hasParts(entityNumber)) return;
 			withoutBody.push(globalId || `#${entityNumber}`);
-			return skip('it has no geometry that can be shown');
+			skip('it has no geometry that can be shown');
+			return;
 		}
 		if (!mesh.isSound) {
 			withoutBody.push(globalId || `#${entityNumber}`);
-			return skip('its geometry has coordinates that are no numbers or lie farther than 100 000 km');
+			skip('its geometry has coordinates that are no numbers or lie farther than 100 000 km');
+			return;
 		}
 		draft.boxM = boxOf(mesh);
 		picture.add(className, entityNumber, mesh);
 		const apart = placementNumber === null ? 0 : linearContradiction(placementNumber, placement);
 		if (apart > 0.001) {
 			contradicting.push(globalId || `#${entityNumber}`);
-			return skip(
+			skip(
 				`its place along the alignment and the position written beside it differ by ${apart.toFixed(3)} m: which one holds must be asked`,
 			);
+			return;
 		}
 		const placed = placeCheckpoints({ class: className, name, xyzM: mesh.xyzM, triangles: mesh.triangles });
 		draft.placed = isMany ? thinned(placed) : placed;
