@@ -80,7 +80,13 @@ describe('moments', () => {
 		expect(calendarDay('2024-02-09', now)).toBe('9 Feb 2024');
 	});
 	it('says how far off', () => {
-		const after = (hours: number) => distanceInTime(new Date(now.getTime() + hours * 3_600_000), now);
-		expect([after(0), after(0.5), after(21), after(72), after(-2)]).toEqual(['now', 'in 30 min', 'in 21 h', 'in 3 days', '2 h ago']);
+		const inHours = (hours: number) => distanceInTime(new Date(now.getTime() + hours * 3_600_000), now);
+		expect([inHours(0), inHours(0.5), inHours(21), inHours(72), inHours(-2)]).toEqual([
+			'now',
+			'in 30 min',
+			'in 21 h',
+			'in 3 days',
+			'2 h ago',
+		]);
 	});
 });
