@@ -10,7 +10,7 @@ import { type FitObservations, observationCount, observationsOf } from './fit-ob
 import { poseMatrix } from './fit-pose.ts';
 import type { FitInput, FitOutcome, FitPair, FitPairResult, FitResult } from './fit-schema.ts';
 import { fitUnknowns } from './least-pairs.ts';
-import { leaveOneOut, misfitOf } from './leave-one-out.ts';
+import { leaveOneOut, misfitOf, type PartialResidual } from './leave-one-out.ts';
 import { fullCofactor, NORMAL_CRITICAL, PAIR_SIGNIFICANCE, type PairReliability, pairReliability } from './pair-reliability.ts';
 import { solveFit } from './solve-fit.ts';
 
@@ -63,11 +63,13 @@ function describe(input: FitInput, inFit: readonly FitPair[], observations: FitO
 	};
 	const cofactor = fullCofactor(adjustment, observations);
 	const reliability = inFit.map((_, i) => pairReliability(observations, adjustment, cofactor, i));
+	const places = new Map(inFit.map((pair, i) => [pair, i]));
+	const withoutOne = leaveOneOut(observations, adjustment);
 	base.pairs = input.pairs.map((pair) => {
-		const i = inFit.indexOf(pair);
+		const i = places.get(pair) ?? -1;
 		return i < 0
 			? heldBackResult(input, pair, base)
-			: pairResult(pair, i, observations, adjustment, reliability[i]!, varianceFactor, redundancy);
+			: pairResult(pair, i, observations, adjustment, reliability[i]!, withoutOne[i]!, varianceFactor, redundancy);
 	});
 	base.carried = (input.carry ?? []).map((point) => {
 		const matrix = scaledDifference(observations, adjustment, point.survey);
@@ -110,6 +112,7 @@ function pairResult(
 	observations: FitObservations,
 	{ pose }: Adjustment,
 	reliability: PairReliability,
+	withoutIt: PartialResidual | null,
 	varianceFactor: number | null,
 	redundancy: number,
 ): FitPairResult {
@@ -124,7 +127,7 @@ function pairResult(
 		normalised,
 		critical: sigmaGiven ? NORMAL_CRITICAL : redundancy > 0 ? popeTau(PAIR_SIGNIFICANCE, redundancy) : null,
 		smallestBlunder: sigmaGiven ? largest(reliability.smallestBlunder) : null,
-		leaveOneOut: leaveOneOut(observations, i),
+		leaveOneOut: withoutIt,
 		heldBack: false,
 	};
 }

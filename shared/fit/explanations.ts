@@ -82,12 +82,22 @@ function swaps(base: FitTrial): Explanation[] {
 	if (observations.count > SWAP_PAIRS || observations.kind === 'height') return found;
 	for (let a = 0; a < observations.count; a++) {
 		for (let b = a + 1; b < observations.count; b++) {
+			if (!couldBeExchanged(base, a, b)) continue;
 			const trial = tryFit(exchangeControl(observations, a, b));
 			if (!trial?.passes || trial.objective > base.objective / (observations.sigmaGiven ? 1 : SWAP_GAIN)) continue;
 			found.push({ effects: [], swapped: [a, b], accused: [], trial, score: misfitScore(trial, base) + CHARGE });
 		}
 	}
 	return found;
+}
+
+/** Labels exchanged over a distance leave residuals of that size: with far smaller ones the exchange need not be fitted. */
+function couldBeExchanged({ observations, adjustment }: FitTrial, a: number, b: number): boolean {
+	let apart = 0;
+	for (let k = 0; k < 3; k++) apart += (observations.control[3 * a + k]! - observations.control[3 * b + k]!) ** 2;
+	let square = 0;
+	for (const value of adjustment.equations.residual) square += value * value;
+	return square > 0.02 * apart;
 }
 
 /** Pairs left out, so that the largest group of the others agrees. */

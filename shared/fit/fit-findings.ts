@@ -57,10 +57,22 @@ function scoreOfWorstAxis(base: FitTrial): number {
 /** The residuals contradict each other: the best story, or the best ones side by side. */
 function contradictionFindings(base: FitTrial, names: readonly string[], input: FitInput): Finding[] {
 	const stories = explanations(base, input.station);
-	const best = stories[0];
-	if (!best) return [contradictionFinding(base, names)];
-	const asGood = stories.filter((story) => story.score - best.score < AS_GOOD);
-	const rivals = asGood.filter((story) => story !== best && !accusesTheSameAndMore(story, best));
+	const lowest = stories[0];
+	if (!lowest) return [contradictionFinding(base, names)];
+	const asGood = stories.filter((story) => story.score - lowest.score < AS_GOOD);
+	// Exchanged labels tell more than two pairs that are off, where both speak of the same two.
+	const best =
+		asGood.find(
+			({ swapped }) =>
+				swapped &&
+				sameNumbers(
+					swapped,
+					lowest.accused.map(({ pair }) => pair),
+				),
+		) ?? lowest;
+	const rivals = asGood.filter(
+		(story) => story !== best && !accusesTheSameAndMore(story, best) && !(best.effects.length > 0 && story.accused.length > 1),
+	);
 	const minority = best.accused.length * 2 >= base.observations.count;
 	if (best.effects.length > 0 && best.effects.some(({ notable }) => notable)) {
 		const sameLength = rivals.filter((story) => story.effects.length > 0);
@@ -76,6 +88,10 @@ function contradictionFindings(base: FitTrial, names: readonly string[], input: 
 	if (best.swapped) return [swapFinding(base, names, best.swapped)];
 	const after = systematicEffects(best.trial, input.station).filter(({ notable }) => notable);
 	return [...accusationFindings(base, names, best, [], false), ...after.slice(0, 1).map((effect) => effectFinding([effect]))];
+}
+
+function sameNumbers(a: readonly number[], b: readonly number[]): boolean {
+	return a.length === b.length && a.every((value) => b.includes(value));
 }
 
 /** The rival accuses the same pairs and more, or the same effects and more: no other story. */

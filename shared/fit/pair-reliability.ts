@@ -35,6 +35,8 @@ export interface PairReliability {
 	standardised: [number | null, number | null, number | null];
 	smallestBlunder: [number | null, number | null, number | null];
 	response: Float64Array;
+	/** A·Q·Aᵀ·Σ⁻¹, nine numbers, row by row. */
+	taken: Float64Array;
 }
 
 /** Q on all seven small changes, 7 × 7; rows of changes that the fit has not are 0. */
@@ -92,12 +94,16 @@ export function pairReliability(
 		standardised: [null, null, null],
 		smallestBlunder: [null, null, null],
 		response,
+		taken: new Float64Array(9),
 	};
 	for (let k = 0; k < 3; k++) {
 		if ((observations.known[i]! & (k < 2 ? KNOWN_PLAN : KNOWN_HEIGHT)) === 0) continue;
-		let taken = 0;
-		for (let l = 0; l < 3; l++) taken += fitted[3 * k + l]! * inverse[3 * l + k]!;
-		result.redundancy += 1 - taken;
+		for (let m = 0; m < 3; m++) {
+			let sum = 0;
+			for (let l = 0; l < 3; l++) sum += fitted[3 * k + l]! * inverse[3 * l + m]!;
+			result.taken[3 * k + m] = sum;
+		}
+		result.redundancy += 1 - result.taken[4 * k]!;
 		const variance = ofResidual[4 * k]!;
 		if (variance > LEAST_REDUNDANCY * covariance[4 * k]!) {
 			result.residualVariance[k] = variance;
