@@ -15,8 +15,13 @@ export interface CheckInputElement extends Pick<Element, 'class' | 'name' | 'tag
 	readonly axisYawRad?: number | null;
 }
 
-export interface CheckInputCheckpoint
-	extends Pick<Checkpoint, 'id' | 'mark' | 'characteristic' | 'place' | 'direction' | 'label' | 'surface' | 'isSoffit'> {
+export interface CheckInputCheckpoint extends Pick<Checkpoint, 'id' | 'mark' | 'characteristic' | 'label' | 'isSoffit'> {
+	/** Design frame. */
+	readonly place: Vector3;
+	/** Outward unit normal of a face. */
+	readonly direction: Vector3 | null;
+	/** Level only: the design surface z = a·x + b·y + c. */
+	readonly surface: Vector3 | null;
 	readonly elementId: string;
 }
 

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { probabilityInBox, probabilityInDisc } from '#shared/check/plan-conformity.ts';
 import { normalBetween, upperErrorFunction } from '#shared/geometry/error-function.ts';
 import { isPlanCovariance, type PlanCovariance, principalAxes, sigmaAlong } from '#shared/geometry/plan-covariance.ts';
-import discCases from './disc-probability-cases.json' with { type: 'json' };
+import { discCases } from './disc-probability-cases.ts';
 
 describe('the normal distribution', () => {
 	// 40-digit values of erfc.
@@ -69,10 +69,10 @@ function discByGrid([me, mn]: readonly [number, number], [[a, b], [, c]]: PlanCo
 }
 
 describe('probability in a disc', () => {
-	it.each(discCases.cases.map((c, index) => ({ ...c, index })))(
+	it.each(discCases.map((c, index) => ({ ...c, index })))(
 		'seeded case $index, r = $radius',
 		({ offset, covariance: given, radius, conformity }) => {
-			const got = probabilityInDisc(offset as [number, number], given as unknown as PlanCovariance, radius);
+			const got = probabilityInDisc(offset, given, radius);
 			expect(Math.abs(got - conformity)).toBeLessThan(1e-10);
 		},
 	);

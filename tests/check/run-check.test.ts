@@ -160,7 +160,7 @@ describe('uncertainty', () => {
 			sigma[1]! * gaussian(u),
 			sigma[2]! * gaussian(u),
 		];
-		const runs = 1500;
+		const runs = 800;
 		const sums = [0, 0, 0, 0];
 		let last = first({ checkpoints: [checkpoint, level], points: [aPoint(place, { name: 'P' })], setups: [aSetup({ commonMm: 0 })] });
 		for (let run = 0; run < runs; run++) {
@@ -184,11 +184,11 @@ describe('uncertainty', () => {
 		}
 		const [[ee, en], [, nn]] = last.deviation.covarianceMm2!;
 		const uh = last.deviations[1]!.expandedUncertaintyMm! / 2;
-		// The standard deviation of a variance from 1500 runs is 3.7 % of it; twelve in a hundred are three of them.
-		expect(Math.abs(sums[0]! / runs / ee - 1)).toBeLessThan(0.12);
-		expect(Math.abs(sums[2]! / runs / nn - 1)).toBeLessThan(0.12);
-		expect(Math.abs(sums[3]! / runs / (uh * uh) - 1)).toBeLessThan(0.12);
-		expect(Math.abs(sums[1]! / runs - en) / Math.sqrt(ee * nn)).toBeLessThan(0.12);
+		// The standard deviation of a variance from 800 runs is 5 % of it; fifteen in a hundred are three of them.
+		expect(Math.abs(sums[0]! / runs / ee - 1)).toBeLessThan(0.15);
+		expect(Math.abs(sums[2]! / runs / nn - 1)).toBeLessThan(0.15);
+		expect(Math.abs(sums[3]! / runs / (uh * uh) - 1)).toBeLessThan(0.15);
+		expect(Math.abs(sums[1]! / runs - en) / Math.sqrt(ee * nn)).toBeLessThan(0.15);
 	}, 60_000);
 	it('shrinks with repeats only in the part that is the point’s own', () => {
 		const points = [0.004, 0.002, 0.003].map((off) => aPoint(at(0.2 + off, 0, 1.5)));
@@ -309,11 +309,12 @@ describe('progress', () => {
 		const points = Array.from({ length: 20_000 }, (_, k) =>
 			aPoint(at(60 * u(), 40 * u(), 12 * u()), { name: k < 2500 ? `m${2 * k}` : `${k}` }),
 		);
-		const start = performance.now();
+		// Processor time: the clock on the wall says more of the neighbours than of the check.
+		const start = process.cpuUsage().user;
 		const { deviations, unmatchedPoints } = runCheck(aCheck({ elements, checkpoints, points }));
-		const elapsedMs = performance.now() - start;
+		const elapsedMs = (process.cpuUsage().user - start) / 1000;
 		expect(deviations.filter(({ deviationMm }) => deviationMm !== null).length).toBeGreaterThan(100);
 		expect(unmatchedPoints.length).toBeGreaterThan(1000);
-		expect(elapsedMs).toBeLessThan(1500);
+		expect(elapsedMs).toBeLessThan(2000);
 	});
 });

@@ -3,10 +3,10 @@ import { describe, expect, it } from 'vitest';
 import { runJudge } from '#server/cli/judge.ts';
 import type { Judgement } from '#shared/check/judge-schema.ts';
 import { judge, planConformityLeast } from '#shared/check/verdict.ts';
-import verdictCases from './verdict-cases.json' with { type: 'json' };
+import { verdictCases } from './verdict-cases.ts';
 
 describe('judge against figures computed elsewhere', () => {
-	it.each(verdictCases.cases)('$name: $why', ({ input, expect: want, tolerance }) => {
+	it.each(verdictCases)('$name: $why', ({ input, expect: want, tolerance }) => {
 		const { exitCode, output } = runJudge(JSON.stringify(input));
 		expect(exitCode).toBe(0);
 		const got = output as { verdict: string; conformity: number };
