@@ -52,10 +52,12 @@ function Around({ isWhole, children }: { isWhole: boolean; children: ReactNode }
 	if (!isWhole) return children;
 	return (
 		<div className="px-4 py-4 tablet:px-6">
-			<Link to="/sites" className="mb-6 flex items-center gap-2.5 text-lead font-heavy text-ink no-underline">
-				<Mark />
-				Batterboard
-			</Link>
+			<header className="mb-6">
+				<Link to="/sites" className="inline-flex items-center gap-2.5 text-lead font-heavy text-ink no-underline">
+					<Mark />
+					Batterboard
+				</Link>
+			</header>
 			<main>{children}</main>
 		</div>
 	);
@@ -93,5 +95,5 @@ export function faultOf(error: unknown): Fault {
 	}
 	if (refusal.code === 'NO_LINE')
 		return { kind: 'no-line', headline: 'No line to the server', title: 'The server was not reached.', text: refusal.message };
-	return { kind: 'wrong', headline: 'This page could not be shown', title: 'Something went wrong.', text: refusal.message };
+	return { kind: 'wrong', headline: 'This page could not be shown', title: 'What it needs did not come.', text: refusal.message };
 }

@@ -10,8 +10,7 @@ export interface Refusal {
 	where: string | null;
 }
 
-const faultMessage =
-	'Something went wrong on our side. Nothing was changed. Try again; if it stays, tell who runs this server, with the time.';
+const faultMessage = 'The fault is on our side. Nothing was changed. Try again; if it stays, tell whoever runs this server, with the time.';
 const noLineMessage = 'The server was not reached. Nothing was changed; what you typed is kept. Try again when there is a line.';
 
 /** The contract's code of an error, or null where it is none of the contract's. */

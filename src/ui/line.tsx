@@ -1,5 +1,6 @@
 import { useRef } from 'react';
 import { Link } from 'react-router-dom';
+import { useColourSet } from '#src/lib/colour-set.ts';
 import { useElementWidth } from '#src/lib/element-width.ts';
 import { knotXs, knotY, stringPath } from './line-geometry.ts';
 
@@ -30,7 +31,10 @@ const stateWords = { solid: 'in order', half: 'in hand', open: 'nothing yet' } a
 export function Line({ knots, placeKey, isTaut }: LineProps) {
 	const row = useRef<HTMLElement>(null);
 	const widthPx = useElementWidth(row, 1280);
+	const { set } = useColourSet();
 	const isPhone = widthPx < 700;
+	// The sun set's larger figures need the second line sooner.
+	const isStacked = widthPx < (set === 'sun' ? 1400 : 1024);
 	const edgePx = isPhone ? 16 : 24;
 	const placeIndex = knots.findIndex((knot) => knot.key === placeKey);
 	const xs = isPhone ? knots.map((_, index) => ((index + 0.5) * widthPx) / knots.length) : knotXs(knots.length, widthPx, edgePx);
@@ -39,7 +43,8 @@ export function Line({ knots, placeKey, isTaut }: LineProps) {
 		<nav
 			ref={row}
 			aria-label={`The line${isTaut ? '' : ', slack: something rests on what is no longer the newest'}`}
-			className="relative h-9 tablet:h-[84px] cabin:h-[66px]"
+			className="relative"
+			style={{ height: isPhone ? 36 : isStacked ? 84 : 66 }}
 		>
 			<svg width={widthPx} height={84} viewBox={`0 0 ${widthPx} 84`} aria-hidden="true" className="absolute inset-0 overflow-visible">
 				<path d={stringPath(xs, widthPx, place, isTaut)} className="string-edge" strokeDasharray={isTaut ? undefined : '9 6'} />
@@ -52,7 +57,7 @@ export function Line({ knots, placeKey, isTaut }: LineProps) {
 			<ul className="absolute inset-0 m-0 flex list-none p-0 px-6 max-tablet:sr-only">
 				{knots.map((knot, index) => (
 					<li key={knot.key} className="min-w-0 flex-1">
-						<KnotWord knot={knot} isPlace={index === place} />
+						<KnotWord knot={knot} isPlace={index === place} isStacked={isStacked} />
 					</li>
 				))}
 			</ul>
@@ -60,13 +65,13 @@ export function Line({ knots, placeKey, isTaut }: LineProps) {
 	);
 }
 
-function KnotWord({ knot, isPlace }: { knot: LineKnot; isPlace: boolean }) {
+function KnotWord({ knot, isPlace, isStacked }: { knot: LineKnot; isPlace: boolean; isStacked: boolean }) {
 	// The press area reaches from the knot to below its word.
 	const form = 'block h-full pt-[27px] pl-4.5 pr-1 text-ink no-underline';
 	const words = (
 		<>
 			<span className={isPlace ? 'font-heavy' : 'font-medium'}>{knot.word}</span>
-			{knot.figure && <span className="text-small whitespace-nowrap text-second max-cabin:block cabin:ml-1.5">{knot.figure}</span>}
+			{knot.figure && <span className={`text-small whitespace-nowrap text-second ${isStacked ? 'block' : 'ml-1.5'}`}>{knot.figure}</span>}
 			<span className="sr-only">, {stateWords[knot.state]}</span>
 		</>
 	);

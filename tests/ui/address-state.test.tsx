@@ -8,18 +8,21 @@ afterEach(cleanup);
 const verdicts = ['within', 'outside', 'close'] as const;
 const usual = ['outside', 'close'] as const;
 
+/** What the page below last saw. */
+const seen: {
+	at?: ReturnType<typeof useAddressState>;
+	tab?: ReturnType<typeof useAddressState>;
+	show?: ReturnType<typeof useAddressSet<(typeof verdicts)[number]>>;
+} = {};
+
+function Page() {
+	seen.at = useAddressState('at');
+	seen.tab = useAddressState('tab', 'push');
+	seen.show = useAddressSet('show', verdicts, usual);
+	return null;
+}
+
 function shown(address: string) {
-	const seen: {
-		at?: ReturnType<typeof useAddressState>;
-		tab?: ReturnType<typeof useAddressState>;
-		show?: ReturnType<typeof useAddressSet<(typeof verdicts)[number]>>;
-	} = {};
-	function Page() {
-		seen.at = useAddressState('at');
-		seen.tab = useAddressState('tab', 'push');
-		seen.show = useAddressSet('show', verdicts, usual);
-		return null;
-	}
 	const router = createMemoryRouter([{ path: '/', element: <Page /> }], { initialEntries: [address] });
 	render(<RouterProvider router={router} />);
 	return { seen, search: () => router.state.location.search, back: () => act(() => router.navigate(-1)) };

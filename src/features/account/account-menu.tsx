@@ -86,7 +86,7 @@ export function SunPress() {
 			aria-pressed={isSun}
 			title={isSun ? 'Back to the device’s colours' : 'Ink on white, for a screen in the sun'}
 			onClick={() => chooseColourSet(isSun ? 'device' : 'sun')}
-			className="inline-flex min-h-9 items-center gap-2 rounded-round border border-rule px-3 hover:border-ink aria-pressed:border-ink aria-pressed:shadow-[inset_0_0_0_1px_var(--color-ink)] pointer-coarse:min-h-12"
+			className="inline-flex min-h-9 items-center justify-center gap-2 rounded-round border border-rule px-3 hover:border-ink aria-pressed:border-ink aria-pressed:shadow-[inset_0_0_0_1px_var(--color-ink)] max-tablet:w-12 max-tablet:px-0 pointer-coarse:min-h-12"
 		>
 			<svg width="18" height="18" viewBox="-9 -9 18 18" aria-hidden="true">
 				<circle r="3.4" className="fill-none stroke-current" strokeWidth="1.600" />

@@ -2,6 +2,7 @@ import { useRef } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
 import { deviationSentence } from '#shared/check/sentence.ts';
 import type { PourSummary } from '#shared/pour/contract.ts';
+import { useColourSet } from '#src/lib/colour-set.ts';
 import { useElementWidth } from '#src/lib/element-width.ts';
 import { counted, distanceInTime, moment } from '#src/lib/format.ts';
 import { glyphKindOf, planTurnRad } from '#src/ui/glyph-kind.ts';
@@ -18,16 +19,18 @@ interface PourRowsProps {
 	now: Date;
 }
 
-const timePx = 160;
-const namePx = 330;
 const rodPx = 90;
 
 /** The pours by the hour of their concrete, each on its own string, with its worst rod. */
 export function PourRows({ pours, check, isCheckTaut, timeZone, now }: PourRowsProps) {
 	const box = useRef<HTMLDivElement>(null);
 	const widthPx = useElementWidth(box, 1232);
+	// The sun set's letters are an eighth larger.
+	const letters = useColourSet().set === 'sun' ? 1.125 : 1;
+	const timePx = 160 * letters;
+	const namePx = 330 * letters;
 	const isWide = widthPx >= 1080;
-	const stringPx = isWide ? widthPx - timePx - namePx - rodPx - 8 : Math.min(648, widthPx - rodPx - 12);
+	const stringPx = isWide ? widthPx - timePx - namePx - rodPx - 8 : Math.min(648, widthPx - rodPx - 16);
 	const standings = pours.map((pour) => (check === undefined ? null : pourStanding(pour.pourId, check, isCheckTaut)));
 	const worst = standings.flatMap((standing) => standing?.worst ?? []);
 	const scaleMm = rodScaleMm(
@@ -51,13 +54,16 @@ export function PourRows({ pours, check, isCheckTaut, timeZone, now }: PourRowsP
 					return (
 						<li key={pour.pourId} className={`border-b border-hair py-2.5 ${isWide ? 'flex items-start' : ''}`}>
 							<div className={isWide ? 'contents' : 'flex flex-wrap gap-x-4'}>
-								<div style={isWide ? { width: timePx } : undefined} className="shrink-0 pr-3">
+								<div
+									style={isWide ? { width: timePx } : undefined}
+									className={isWide ? 'shrink-0 pr-3' : 'flex w-full flex-wrap items-baseline gap-x-3 tablet:block tablet:w-44'}
+								>
 									<span className="block font-strong">{pour.plannedAt ? moment(pour.plannedAt, timeZone, now) : 'No hour yet'}</span>
 									<span className="block text-small text-second">
 										{pour.plannedAt ? distanceInTime(pour.plannedAt, now) : 'concrete not planned'}
 									</span>
 								</div>
-								<div style={isWide ? { width: namePx } : undefined} className="min-w-0 pr-3">
+								<div style={isWide ? { width: namePx } : undefined} className={isWide ? 'min-w-0 pr-3' : 'min-w-0 flex-1'}>
 									<span className="block font-strong">
 										Pour {pour.number}, {pour.name}
 									</span>
@@ -69,7 +75,7 @@ export function PourRows({ pours, check, isCheckTaut, timeZone, now }: PourRowsP
 									{!isWide && standing !== null && <span className="block text-small">Next: {nextWords[standing.at % 4]}</span>}
 								</div>
 							</div>
-							<div className={isWide ? 'contents' : 'mt-1 flex items-start gap-3'}>
+							<div className={isWide ? 'contents' : 'mt-1 flex items-start justify-between'}>
 								<PourString standing={standing} widthPx={stringPx} />
 								<WorstRod standing={standing} scaleMm={scaleMm} />
 							</div>

@@ -26,7 +26,9 @@ export function PourString({ standing, widthPx }: PourStringProps) {
 	const from = Math.max(0, (xs[0] ?? 0) - 14);
 	const toX = standing === null ? 0 : stationX(standing.at);
 	const path =
-		standing?.isTaut === false ? `M${from} ${stringY}Q${(from + toX) / 2} ${stringY + 14} ${toX} ${stringY}` : `M${from} ${stringY}H${toX}`;
+		standing?.isTaut === false
+			? `M${from} ${stringY}Q${(from + toX) / 2} ${stringY + Math.min(14, (toX - from) / 6)} ${toX} ${stringY}`
+			: `M${from} ${stringY}H${toX}`;
 	const dash = standing?.isTaut === false ? '9 6' : undefined;
 	return (
 		<svg
