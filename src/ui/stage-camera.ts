@@ -1,8 +1,8 @@
 import { Box3, type OrthographicCamera, Vector3 } from 'three';
 import type { ViewBox } from './view-commands.ts';
 
-/** The first direction of view: from the south-east and above, all three axes alike, as a builder's sketch is drawn. */
-export const firstDirection = new Vector3(-1, 1, -0.82).normalize();
+/** The first direction of view: from the south-west and above, all three axes alike, as a builder's sketch is drawn; the bubbles stand in front. */
+export const firstDirection = new Vector3(1, 1, -0.82).normalize();
 
 /** Where a camera looks and how near. */
 export interface View {
@@ -16,8 +16,11 @@ export function box3Of(box: ViewBox): Box3 {
 	return new Box3(new Vector3(...box.min), new Vector3(...box.max));
 }
 
+/** Kept free at the top for what the page lays over the picture, CSS pixels. */
+const headRoomPx = 58;
+
 /** The view along `direction` that fills the picture with the box. Box in the scene's metres; the picture in CSS pixels. */
-export function viewOf(box: Box3, direction: Vector3, size: { width: number; height: number }, margin = 1.16): View {
+export function viewOf(box: Box3, direction: Vector3, size: { width: number; height: number }, margin = 1.1): View {
 	const right = new Vector3().crossVectors(direction, new Vector3(0, 0, 1));
 	if (right.lengthSq() < 1e-9) right.set(1, 0, 0);
 	right.normalize();
@@ -34,8 +37,9 @@ export function viewOf(box: Box3, direction: Vector3, size: { width: number; hei
 		across = Math.max(across, Math.abs(place.dot(right)));
 		along = Math.max(along, Math.abs(place.dot(up)));
 	}
-	const zoom = Math.min(size.width / (2 * margin * Math.max(across, 0.05)), size.height / (2 * margin * Math.max(along, 0.05)));
-	return { target: centre, direction: direction.clone(), zoom };
+	const heightPx = Math.max(size.height - headRoomPx, 80);
+	const zoom = Math.min(size.width / (2 * margin * Math.max(across, 0.05)), heightPx / (2 * margin * Math.max(along, 0.05)));
+	return { target: centre.addScaledVector(up, headRoomPx / 2 / zoom), direction: direction.clone(), zoom };
 }
 
 /** Puts the camera where a view asks, with near and far about the whole scene, so that depth keeps its precision. */

@@ -33,6 +33,9 @@ interface StageProps {
 }
 
 const moveMs = 170;
+/** Room for a level's words, pixels a letter and for the tick. */
+const letterPx = 8.4;
+const tickRoomPx = 26;
 const turnStepRad = Math.PI / 24;
 
 /**
@@ -83,8 +86,8 @@ export function Stage({ label, bounds, children, anchors, commands, onPress, onL
 							</>
 						) : (
 							<>
-								<path d="M-12 0H0" className="stroke-second" />
-								<text x={-16} y={5} textAnchor="end" className="fill-second stroke-sheet text-small [paint-order:stroke]" strokeWidth={4}>
+								<path d="M-16 0H-4" className="stroke-second" />
+								<text x={-20} y={5} textAnchor="end" className="fill-second stroke-sheet text-small [paint-order:stroke]" strokeWidth={4}>
 									{anchor.text}
 								</text>
 							</>
@@ -249,10 +252,12 @@ function AnchorMover({ anchors, overlay, north }: AnchorMoverProps) {
 			return [((place.x + 1) / 2) * size.width, ((1 - place.y) / 2) * size.height];
 		});
 		const drawn = clearAnchors(anchors, placesPx);
-		anchors.forEach((_, i) => {
+		anchors.forEach((anchor, i) => {
 			const drawing = overlay.current?.children[i];
 			if (drawing === undefined) return;
-			const [x, y] = placesPx[i]!;
+			const [placeX, y] = placesPx[i]!;
+			// A level's words stand left of their place and are kept in the picture.
+			const x = anchor.kind === 'level' ? Math.max(placeX, anchor.text.length * letterPx + tickRoomPx) : placeX;
 			drawing.setAttribute('transform', `translate(${x.toFixed(1)} ${y.toFixed(1)})`);
 			drawing.setAttribute('visibility', drawn[i] ? 'visible' : 'hidden');
 		});

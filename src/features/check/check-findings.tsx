@@ -18,9 +18,15 @@ export const CheckFindings = memo(function CheckFindings({ findings, unmatchedPo
 	const unmatchedWords = `${counted(unmatchedPoints.length, 'point')} of the survey met no checkpoint.`;
 	const first = findings[0]?.message ?? unmatchedWords;
 	return (
-		<details className="sheet mb-3 border-l-[7px] border-l-ink px-4 [&[open]>summary]:border-b [&[open]>summary]:border-b-hair">
-			<summary className="min-h-11 content-center py-1.5 pointer-coarse:min-h-12">
-				<b>{counted(total, 'finding')}.</b> {first}
+		<details className="sheet group min-w-0 border-l-[7px] border-l-ink px-4 [&[open]>summary]:border-b [&[open]>summary]:border-b-hair">
+			<summary className="flex min-h-9.5 list-none items-center gap-3 py-1 pointer-coarse:min-h-12 [&::-webkit-details-marker]:hidden">
+				<span className="line-clamp-2 min-w-0 flex-1 leading-tight group-open:invisible">
+					<b>{counted(total, 'finding')}.</b> {first}
+				</span>
+				<span className="shrink-0 text-action underline underline-offset-3">
+					<span className="group-open:hidden">Read</span>
+					<span className="hidden group-open:inline">Fold</span>
+				</span>
 			</summary>
 			<ul className="m-0 max-h-[40dvh] list-none overflow-auto p-0 py-2">
 				{findings.slice(0, mostListed).map((finding) => (

@@ -1,7 +1,8 @@
 import { type ReactNode, useRef } from 'react';
 import type { Deviation } from '#shared/check/check-schema.ts';
 import type { CheckElement } from '#shared/check/contract.ts';
-import { deviationSentence } from '#src/lib/deviation-sentence.ts';
+import { deviationSentence, deviationWords } from '#shared/check/sentence.ts';
+import type { Stage } from '#shared/tolerance/sheet-schema.ts';
 import { useElementWidth } from '#src/lib/element-width.ts';
 import { metres } from '#src/lib/format.ts';
 import { rodScaleMm } from '#src/ui/rod.tsx';
@@ -12,6 +13,8 @@ interface DeviationCardProps {
 	element: CheckElement | null;
 	/** Name of the set-up it was measured from; null where it was not. */
 	setupName: string | null;
+	/** Before the pour a plan offset is also said the way it has yet to go. */
+	stage: Stage;
 	/** Beside the title: "Show on plan", "Close". */
 	acts?: ReactNode;
 }
@@ -34,19 +37,26 @@ export function uncertaintyLine({ standardUncertaintyPartsMm: parts, expandedUnc
 }
 
 /** The sentence, with the verdict at its end in the verdict's weight and colour. */
-function Sentence({ deviation }: { deviation: Deviation }) {
-	const sentence = deviationSentence(deviation);
-	const cut = sentence.slice(0, -1).lastIndexOf('. ') + 2;
+function Sentence({ deviation, stage }: { deviation: Deviation; stage: Stage }) {
+	const sentence = deviationSentence(deviation, { stage });
+	if (deviation.deviationMm === null) return <p className="m-0">{sentence}</p>;
+	// Label, what it is, what is allowed and known, the verdict: the second and the last carry the weight.
+	const words = deviationWords(deviation);
+	const from = deviation.label.length + 2;
+	const to = sentence.startsWith(words, from) ? from + words.length : from;
+	const last = sentence.slice(0, -1).lastIndexOf('. ') + 2;
 	return (
 		<p className="m-0">
-			{sentence.slice(0, cut)}
-			<b className={verdictClass(deviation)}>{sentence.slice(cut)}</b>
+			{sentence.slice(0, from)}
+			<b>{sentence.slice(from, to)}</b>
+			{sentence.slice(to, last)}
+			<b className={verdictClass(deviation)}>{sentence.slice(last)}</b>
 		</p>
 	);
 }
 
 /** What is known of one deviation: the rod large, the sentence, where its uncertainty comes from, by which point, and its place. */
-export function DeviationCard({ deviation, element, setupName, acts }: DeviationCardProps) {
+export function DeviationCard({ deviation, element, setupName, stage, acts }: DeviationCardProps) {
 	const box = useRef<HTMLDivElement>(null);
 	const widthPx = useElementWidth(box, 486);
 	const known = uncertaintyLine(deviation);
@@ -66,7 +76,7 @@ export function DeviationCard({ deviation, element, setupName, acts }: Deviation
 				/>
 			</div>
 			<div aria-live="polite">
-				<Sentence deviation={deviation} />
+				<Sentence deviation={deviation} stage={stage} />
 			</div>
 			<dl className="m-0 mt-2 grid grid-cols-[auto_1fr] gap-x-3 gap-y-0.5 text-small text-second">
 				{known !== null && (

@@ -23,23 +23,27 @@ interface DeviationLayerProps {
 	colours: SceneColours;
 }
 
-/** Toward the eye, pixels of the present scale: enough to clear the face a glyph stands on, too little to shine through a wall. */
-const towardsPx = 9;
+/** How far a glyph is lifted off its face for the eye, pixels of the present scale and metres at most. */
+const liftPx = 9;
+const mostLiftM = 0.4;
 
 function glyphGeometry(marks: readonly DeviationMark[], originM: readonly [number, number, number]): BufferGeometry {
 	const places = new Float32Array(3 * marks.length);
 	const shifts = new Float32Array(3 * marks.length);
+	const normals = new Float32Array(3 * marks.length);
 	const kinds = new Float32Array(marks.length);
 	marks.forEach((mark, i) => {
 		kinds[i] = glyphNumber[mark.kind];
 		for (let axis = 0; axis < 3; axis++) {
 			places[3 * i + axis] = mark.place[axis]! - originM[axis]!;
 			shifts[3 * i + axis] = mark.shiftM?.[axis] ?? 0;
+			normals[3 * i + axis] = mark.normal?.[axis] ?? 0;
 		}
 	});
 	return new BufferGeometry()
 		.setAttribute('position', new Float32BufferAttribute(places, 3))
 		.setAttribute('aShift', new Float32BufferAttribute(shifts, 3))
+		.setAttribute('aNormal', new Float32BufferAttribute(normals, 3))
 		.setAttribute('aKind', new Float32BufferAttribute(kinds, 1));
 }
 
@@ -51,6 +55,10 @@ function lineGeometry(marks: readonly DeviationMark[], originM: readonly [number
 	const places = lined.flatMap((mark) => [0, 1, 2].map((axis) => mark.place[axis]! - originM[axis]!));
 	geometry.setAttribute('aPlace', new InstancedBufferAttribute(new Float32Array(places), 3));
 	geometry.setAttribute('aShift', new InstancedBufferAttribute(new Float32Array(lined.flatMap((mark) => [...mark.shiftM!])), 3));
+	geometry.setAttribute(
+		'aNormal',
+		new InstancedBufferAttribute(new Float32Array(lined.flatMap((mark) => [...(mark.normal ?? [0, 0, 0])])), 3),
+	);
 	geometry.setAttribute('aKind', new InstancedBufferAttribute(new Float32Array(lined.map((mark) => glyphNumber[mark.kind])), 1));
 	geometry.instanceCount = lined.length;
 	return geometry;
@@ -90,10 +98,10 @@ export function DeviationLayer({ marks, originM, times, colours }: DeviationLaye
 		if (glyphs !== null && lines !== null) invalidate();
 	}, [glyphs, lines, invalidate]);
 	useFrame(({ gl, size, camera }) => {
-		const towardsM = towardsPx / camera.zoom;
+		const liftM = Math.min(liftPx / camera.zoom, mostLiftM);
 		const all: ShaderMaterial[] = [materials.seen, materials.behind, materials.lines];
 		for (const { uniforms } of all) {
-			uniforms.uTowardsM!.value = towardsM;
+			uniforms.uLiftM!.value = liftM;
 			if (uniforms.uPixelRatio) uniforms.uPixelRatio.value = gl.getPixelRatio();
 			if (uniforms.uPicturePx) (uniforms.uPicturePx.value as Vector2).set(size.width, size.height);
 		}

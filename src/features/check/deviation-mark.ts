@@ -7,6 +7,8 @@ export interface DeviationMark {
 	readonly elementId: string;
 	readonly kind: GlyphKind;
 	readonly place: readonly [number, number, number];
+	/** Outward unit normal of a face; null for a level or a place in plan. */
+	readonly normal: readonly [number, number, number] | null;
 	/** As-built less design: what the line shows, many times over; null where nothing was measured. */
 	readonly shiftM: readonly [number, number, number] | null;
 }
@@ -31,6 +33,7 @@ export function marksOf(deviations: readonly Deviation[]): DeviationMark[] {
 				elementId: deviation.elementId,
 				kind: glyphKindOf(deviation),
 				place: deviation.place,
+				normal: deviation.direction,
 				shiftM: shiftOf(deviation),
 			}),
 		)

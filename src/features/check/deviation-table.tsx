@@ -1,6 +1,7 @@
 import { memo, useCallback, useMemo } from 'react';
 import type { Deviation } from '#shared/check/check-schema.ts';
-import { deviationSentence, verdictSaid } from '#src/lib/deviation-sentence.ts';
+import { deviationSentence, verdictWords } from '#shared/check/sentence.ts';
+
 import { plainMm, signedMm, uncertaintyMm } from '#src/lib/format.ts';
 import { glyphKindOf, planTurnRad } from '#src/ui/glyph-kind.ts';
 import { Rod } from '#src/ui/rod.tsx';
@@ -62,7 +63,16 @@ export function DeviationRod({
 
 function wideColumns(scaleMm: number): Column<Deviation>[] {
 	return [
-		{ key: 'where', head: 'Where', isRowHead: true, cell: (row) => <span className="block truncate">{row.label}</span> },
+		{
+			key: 'where',
+			head: 'Where',
+			isRowHead: true,
+			cell: (row) => (
+				<span className="line-clamp-2 w-0 min-w-full leading-tight whitespace-normal" title={row.label}>
+					{row.label}
+				</span>
+			),
+		},
 		{
 			key: 'rod',
 			head: `Against its limits, ±${scaleMm} mm`,
@@ -87,7 +97,7 @@ function wideColumns(scaleMm: number): Column<Deviation>[] {
 			widthPx: 38,
 			cell: (row) => <span className="text-second">{row.deviationMm === null ? '' : uncertaintyMm(row.expandedUncertaintyMm)}</span>,
 		},
-		{ key: 'verdict', head: 'Verdict', widthPx: 142, cell: (row) => <span className={verdictClass(row)}>{verdictSaid(row)}</span> },
+		{ key: 'verdict', head: 'Verdict', widthPx: 142, cell: (row) => <span className={verdictClass(row)}>{verdictWords(row)}</span> },
 	];
 }
 
@@ -99,7 +109,7 @@ function narrowColumns(scaleMm: number): Column<Deviation>[] {
 			isRowHead: true,
 			cell: (row) => (
 				<span className="block">
-					<span className="block truncate leading-tight">{row.label}</span>
+					<span className="block w-0 min-w-full truncate leading-tight">{row.label}</span>
 					<span className="-ml-1 block">
 						<DeviationRod deviation={row} scaleMm={scaleMm} widthPx={176} heightPx={26} />
 					</span>
@@ -116,7 +126,7 @@ function narrowColumns(scaleMm: number): Column<Deviation>[] {
 					<span className="font-strong">{deviationFigure(row)}</span>
 					{row.deviationMm !== null && <span className="text-second"> ±{uncertaintyMm(row.expandedUncertaintyMm)}</span>}
 					<br />
-					<span className={`text-small ${verdictClass(row)}`}>{verdictSaid(row)}</span>
+					<span className={`text-small ${verdictClass(row)}`}>{verdictWords(row)}</span>
 				</span>
 			),
 		},

@@ -8,11 +8,18 @@ export const glyphNumber: Record<GlyphKind, number> = { within: 0, proud: 1, shy
 /** Side of the square a glyph is drawn in, CSS pixels. */
 const boxPx = 26;
 
+/**
+ * How much nearer to the eye a mark is taken to be, so that the face it stands on does not cut it in half: by what its outward normal looks at
+ * the eye. On a face that looks away it is taken further off, so that nothing shows through a thin wall.
+ */
+export const liftOff = 'uLiftM * (dot(aNormal, aNormal) > 0.5 ? (modelViewMatrix * vec4(aNormal, 0.0)).z : 0.4)';
+
 const vertexShader = /* glsl */ `
 	attribute float aKind;
 	attribute vec3 aShift;
 	uniform float uPixelRatio;
-	uniform float uTowardsM;
+	uniform float uLiftM;
+	attribute vec3 aNormal;
 	varying float vKind;
 	varying vec2 vTurn;
 	void main() {
@@ -24,8 +31,7 @@ const vertexShader = /* glsl */ `
 		float sign_ = aKind == 2.0 ? -1.0 : 1.0;
 		vec2 endOn = abs(aShift.z) > 0.9 * length(aShift) ? vec2(0.0, sign_) : vec2(sign_, 0.0);
 		vTurn = seenLength > 0.05 * length(aShift) && seenLength > 0.0 ? along / seenLength : endOn;
-		// A little towards the eye, so that the face it stands on does not cut it in half.
-		seen.z += uTowardsM;
+		seen.z += ${liftOff};
 		gl_Position = projectionMatrix * seen;
 		gl_PointSize = ${boxPx.toFixed(1)} * uPixelRatio;
 	}
@@ -112,7 +118,7 @@ export function glyphMaterial(pass: 'seen' | 'behind'): ShaderMaterial {
 		depthWrite: false,
 		uniforms: {
 			uPixelRatio: { value: 1 },
-			uTowardsM: { value: 0.05 },
+			uLiftM: { value: 0.05 },
 			uAlpha: { value: pass === 'seen' ? 1 : 0.3 },
 			uEdgePx: { value: 1 },
 			uRingPx: { value: 2 },

@@ -1,4 +1,5 @@
 import { ShaderMaterial, Vector2, Vector3 } from 'three';
+import { liftOff } from './glyph-material.ts';
 
 /** Width of a deviation's line, CSS pixels. */
 const widthPx = 2.4;
@@ -13,7 +14,7 @@ export function lineMaterial(): ShaderMaterial {
 		uniforms: {
 			uTimes: { value: 1 },
 			uPicturePx: { value: new Vector2(1, 1) },
-			uTowardsM: { value: 0.05 },
+			uLiftM: { value: 0.05 },
 			uProud: { value: new Vector3() },
 			uShy: { value: new Vector3() },
 			uClose: { value: new Vector3() },
@@ -23,7 +24,8 @@ export function lineMaterial(): ShaderMaterial {
 			attribute vec3 aShift;
 			attribute float aKind;
 			uniform float uTimes;
-			uniform float uTowardsM;
+			attribute vec3 aNormal;
+			uniform float uLiftM;
 			uniform vec2 uPicturePx;
 			uniform vec3 uProud;
 			uniform vec3 uShy;
@@ -33,8 +35,9 @@ export function lineMaterial(): ShaderMaterial {
 				vColour = aKind == 2.0 ? uShy : aKind == 4.0 ? uClose : uProud;
 				vec4 from = modelViewMatrix * vec4(aPlace, 1.0);
 				vec4 to = modelViewMatrix * vec4(aPlace + aShift * uTimes, 1.0);
-				from.z += uTowardsM;
-				to.z += uTowardsM;
+				float lift = ${liftOff};
+			from.z += lift;
+				to.z += lift;
 				from = projectionMatrix * from;
 				to = projectionMatrix * to;
 				vec2 along = (to.xy / to.w - from.xy / from.w) * uPicturePx;

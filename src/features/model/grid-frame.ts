@@ -87,14 +87,14 @@ export function frameAnchors(
 			text: axis.tag,
 		}),
 	);
-	const sizeM = Math.max(box.max[0] - box.min[0], box.max[1] - box.min[1]);
 	const levels = storeys
 		.filter((storey) => storey.elevationM !== null && storey.elevationM >= box.min[2] - 0.5 && storey.elevationM <= box.max[2] + 0.5)
 		.map(
 			(storey): StageAnchor => ({
 				key: `level ${storey.name}`,
 				kind: 'level',
-				place: [box.min[0] - sizeM * 0.02 - originM[0], box.min[1] - sizeM * 0.02 - originM[1], storey.elevationM! - originM[2]],
+				// The north-west corner: the left end of the first view.
+				place: [box.min[0] - originM[0], box.max[1] - originM[1], storey.elevationM! - originM[2]],
 				text: `${levelText(storey.elevationM!)} ${storey.name}`,
 			}),
 		);

@@ -54,7 +54,7 @@ export const ModelPlan = memo(function ModelPlan({ elements, hidden, chosen, axe
 					</text>
 				</g>
 			))}
-			{chosenElement && <path d={footprint(chosenElement, scale)} className="fill-none stroke-ink" strokeWidth={1.6} />}
+			{chosenElement && <path d={footprint(chosenElement, scale)} fill="none" className="stroke-ink" strokeWidth={1.6} />}
 		</>
 	);
 });

@@ -1,12 +1,11 @@
-import { useQuery } from '@tanstack/react-query';
 import { memo, useMemo } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
-import { api } from '#src/lib/api.ts';
+import type { PourSummary } from '#shared/pour/contract.ts';
 import type { CheckView } from './use-check-view.ts';
 
 interface CheckFiltersProps {
 	check: CheckDetail;
-	siteId: string;
+	pours: readonly PourSummary[];
 	view: Pick<CheckView, 'pourId' | 'setPourId' | 'storey' | 'setStorey' | 'find' | 'setFind'>;
 }
 
@@ -14,19 +13,14 @@ const form =
 	'min-h-10 rounded-round border border-rule bg-sheet px-3.5 text-ink hover:border-ink pointer-coarse:min-h-12 data-[set=true]:border-ink data-[set=true]:shadow-[inset_0_0_0_1px_var(--color-ink)]';
 
 /** Narrows the whole page: by pour, by storey, by a mark. */
-export const CheckFilters = memo(function CheckFilters({ check, siteId, view }: CheckFiltersProps) {
-	const pours = useQuery(api.pour.list.queryOptions({ input: { siteId } }));
+export const CheckFilters = memo(function CheckFilters({ check, pours, view }: CheckFiltersProps) {
 	const storeys = useMemo(
 		() => [...new Set(check.elements.map((element) => element.storey).filter((storey) => storey !== ''))],
 		[check.elements],
 	);
-	const poursHere = useMemo(() => {
-		const here = new Set(check.elements.flatMap((element) => element.pourIds));
-		return (pours.data ?? []).filter((pour) => here.has(pour.pourId));
-	}, [check.elements, pours.data]);
 	return (
 		<div className="ml-auto flex flex-wrap gap-2 max-tablet:flex-nowrap">
-			{poursHere.length > 0 && (
+			{pours.length > 0 && (
 				<select
 					aria-label="Pour"
 					value={view.pourId ?? ''}
@@ -35,7 +29,7 @@ export const CheckFilters = memo(function CheckFilters({ check, siteId, view }: 
 					className={form}
 				>
 					<option value="">All pours</option>
-					{poursHere.map((pour) => (
+					{pours.map((pour) => (
 						<option key={pour.pourId} value={pour.pourId}>
 							Pour {pour.number}
 						</option>
@@ -65,7 +59,7 @@ export const CheckFilters = memo(function CheckFilters({ check, siteId, view }: 
 				value={view.find}
 				data-set={view.find !== ''}
 				onChange={(event) => view.setFind(event.target.value || null)}
-				className={`${form} w-32 placeholder:text-second`}
+				className={`${form} w-36 placeholder:text-second`}
 			/>
 		</div>
 	);

@@ -26,6 +26,8 @@ interface CheckViewerProps {
 	commands: RefObject<ViewCommands | null>;
 	/** Put here: frames what is chosen, at the next drawing. */
 	frameChosen: RefObject<(checkpointId: string) => void>;
+	/** Put here: takes the chosen element out of the view. */
+	putAwayChosen: RefObject<() => void>;
 }
 
 const noElements: never[] = [];
@@ -34,7 +36,7 @@ const noElements: never[] = [];
 export const reachPx = { fine: 14, coarse: 26 };
 
 /** Model and plan of a check: the same marks, the same choice, the same acts. The plan stands in while the model is on its way, and where there is no 3D. */
-export function CheckViewer({ check, siteId, view, mode, onMode, commands, frameChosen }: CheckViewerProps) {
+export function CheckViewer({ check, siteId, view, mode, onMode, commands, frameChosen, putAwayChosen }: CheckViewerProps) {
 	const { revisionId } = check.revision;
 	const input = { siteId, revisionId };
 	// A revision never changes once it is read.
@@ -94,6 +96,9 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 			askFrame();
 		};
 	}, [frameChosen]);
+	useEffect(() => {
+		putAwayChosen.current = () => chosenEntity !== null && setPutAway((before) => new Set([...before, chosenEntity]));
+	}, [putAwayChosen, chosenEntity]);
 	useEffect(() => {
 		if (wanted.current === null || wanted.current !== chosen?.checkpointId) return;
 		wanted.current = null;
@@ -189,19 +194,6 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 					<ToggleChip isOn={isOnlyThese} onPress={() => setOnlyThese(!isOnlyThese)} title="Draw only the elements the table shows">
 						Only these
 					</ToggleChip>
-					{chosen !== null && (
-						<>
-							<PressChip onPress={frame} title="Fill the view with what is chosen (F)">
-								Frame
-							</PressChip>
-							<PressChip
-								onPress={() => chosenEntity !== null && setPutAway(new Set([...putAway, chosenEntity]))}
-								title="Take this element out of the view until Whole"
-							>
-								Put away
-							</PressChip>
-						</>
-					)}
 					<PressChip
 						onPress={() => {
 							setOnlyThese(false);

@@ -1,8 +1,8 @@
 import { useMutation } from '@tanstack/react-query';
 import { useCallback, useMemo, useRef } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
+import { checkHeadline, headlineCounts } from '#shared/check/headline.ts';
 import { CheckFindings } from '#src/features/check/check-findings.tsx';
-import { headlineWords } from '#src/features/check/check-words.ts';
 import { DeviationCard } from '#src/features/check/deviation-card.tsx';
 import { DeviationTable } from '#src/features/check/deviation-table.tsx';
 import { VerdictChips } from '#src/features/check/verdict-chips.tsx';
@@ -27,10 +27,11 @@ import { CheckViewer } from './check-viewer.tsx';
 import { saveBlob } from './save-blob.ts';
 import { StaleNotice } from './stale-notice.tsx';
 import { useCheckView } from './use-check-view.ts';
+import { usePoursOf } from './use-pours-of.ts';
 
 /** Side by side from a small laptop on; on an upright tablet the table above, picture and card below; on a phone one at a time. */
 const sides =
-	'grid gap-4 tablet:grid-cols-2 tablet:grid-rows-[28rem_24rem] cabin:h-[max(40rem,calc(100dvh-20rem))] cabin:grid-cols-[minmax(0,1fr)_26rem] cabin:grid-rows-[minmax(22rem,62fr)_minmax(0,38fr)] desk:grid-cols-[minmax(0,1fr)_32.5rem]';
+	'grid gap-4 tablet:grid-cols-2 tablet:grid-rows-[28rem_24rem] cabin:h-[max(38rem,calc(100dvh-20.5rem))] cabin:grid-cols-[minmax(0,1fr)_416px] cabin:grid-rows-[minmax(0,57fr)_minmax(0,43fr)] desk:grid-cols-[minmax(0,1fr)_520px]';
 const tableSide = 'h-[max(22rem,calc(100dvh-17rem))] min-h-0 min-w-0 tablet:col-span-2 tablet:h-auto cabin:col-span-1 cabin:row-span-2';
 const viewerSide = 'h-[max(22rem,calc(100dvh-17rem))] min-h-0 min-w-0 tablet:h-auto';
 const cardSide =
@@ -46,6 +47,8 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 	const phoneView: PhoneView = viewWord === 'plan' || viewWord === 'model' ? viewWord : 'table';
 	const commands = useRef<ViewCommands | null>(null);
 	const frameChosen = useRef<(checkpointId: string) => void>(() => {});
+
+	const putAway = useRef<() => void>(() => {});
 
 	const scaleMm = useMemo(
 		() =>
@@ -72,6 +75,14 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			),
 		[view.passing],
 	);
+	const pours = usePoursOf(check, siteId);
+	const headline = useMemo(() => {
+		const pour = pours.find(({ pourId }) => pourId === view.pourId);
+		const ofPour = check.deviations.filter((row) => view.elementById.get(row.elementId)?.pourIds.includes(view.pourId ?? ''));
+		return pour === undefined
+			? checkHeadline(headlineCounts(check.deviations))
+			: checkHeadline(headlineCounts(ofPour), `Pour ${pour.number}`);
+	}, [check.deviations, pours, view.pourId, view.elementById]);
 	const summary = useMemo(() => {
 		const counts = countsOf(view.passing);
 		return `Every deviation against its own limits: ${count(counts.within)} within, ${count(counts.proud + counts.shy + counts.plan)} outside, ${count(counts.close)} too close to call`;
@@ -95,6 +106,8 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 	);
 
 	const isEmpty = check.deviations.every((row) => row.verdict === 'not-measured' || row.verdict === 'no-tolerance');
+	const hasFindings = check.findings.length > 0 || check.unmatchedPoints.length > 0;
+	const filters = <CheckFilters check={check} pours={pours} view={view} />;
 	const isTableShown = !isPhone || phoneView === 'table';
 	const viewer = (
 		<CheckViewer
@@ -105,20 +118,31 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			{...(!isPhone && { onMode: (mode: 'plan' | 'model') => setViewWord(mode === 'model' ? null : mode) })}
 			commands={commands}
 			frameChosen={frameChosen}
+			putAwayChosen={putAway}
 		/>
 	);
 	const card = view.chosen && (
 		<DeviationCard
 			deviation={view.chosen}
 			element={view.chosenElement}
+			stage={check.stage}
 			setupName={view.chosen.setupId === null ? null : setupNameOf(view.chosen.setupId)}
 			acts={
-				isPhone && (
-					<span className="flex gap-2">
-						{phoneView === 'table' && <PressChip onPress={() => setViewWord('plan')}>Show on plan</PressChip>}
-						<PressChip onPress={view.clear}>Close</PressChip>
-					</span>
-				)
+				<span className="flex shrink-0 flex-wrap justify-end gap-1.5">
+					{isPhone && phoneView === 'table' ? (
+						<PressChip onPress={() => setViewWord('plan')}>Show on plan</PressChip>
+					) : (
+						<>
+							<PressChip onPress={() => frameChosen.current(view.chosenId ?? '')} title="Fill the view with what is chosen (F)">
+								Frame
+							</PressChip>
+							<PressChip onPress={() => putAway.current()} title="Take this element out of the view, until Whole">
+								Put away
+							</PressChip>
+						</>
+					)}
+					{isPhone && <PressChip onPress={view.clear}>Close</PressChip>}
+				</span>
 			}
 		/>
 	);
@@ -132,7 +156,7 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 					</Button>
 				}
 			>
-				{headlineWords(check)}
+				{headline}
 			</Headline>
 			{csv.error && (
 				<Notice kind="wrong" title="The CSV was not downloaded.">
@@ -141,10 +165,17 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			)}
 			<StaleNotice check={check} siteId={siteId} />
 			<WideRod ticks={ticks} summary={summary} chosenId={view.chosenId} onChoose={view.choose} />
-			<CheckFindings findings={check.findings} unmatchedPoints={check.unmatchedPoints} setupNameOf={setupNameOf} />
-			<div className="my-2 flex flex-wrap items-center gap-2 max-tablet:flex-nowrap max-tablet:overflow-x-auto max-tablet:py-1">
+			{hasFindings && (
+				<div className="mt-2 flex items-start gap-2 max-cabin:flex-wrap">
+					<div className="min-w-0 flex-1 basis-80">
+						<CheckFindings findings={check.findings} unmatchedPoints={check.unmatchedPoints} setupNameOf={setupNameOf} />
+					</div>
+					{!isPhone && filters}
+				</div>
+			)}
+			<div className="my-2 flex flex-wrap items-center gap-2 max-tablet:-mx-4 max-tablet:flex-nowrap max-tablet:overflow-x-auto max-tablet:px-4 max-tablet:py-1 max-tablet:[&>*]:shrink-0">
 				<VerdictChips deviations={view.passing} shown={view.verdicts} onChange={view.setVerdicts} />
-				<CheckFilters check={check} siteId={siteId} view={view} />
+				{(isPhone || !hasFindings) && filters}
 			</div>
 			{isPhone && (
 				<div className="mb-2">

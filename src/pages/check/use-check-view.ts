@@ -1,6 +1,6 @@
 import { useCallback, useDeferredValue, useMemo } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
-import { elementPhrase } from '#src/features/check/check-words.ts';
+import { elementSummary } from '#shared/check/element-summary.ts';
 import { type DeviationMark, drawingOrder, marksOf } from '#src/features/check/deviation-mark.ts';
 import { type CheckFilter, elementGroups, elementPasses, shownGroups } from '#src/features/check/element-groups.ts';
 import { filterOf, offVerdicts, type VerdictFilter, verdictFilters } from '#src/features/check/verdict-filter.ts';
@@ -22,7 +22,7 @@ export function useCheckView(check: CheckDetail) {
 	const lateFind = useDeferredValue(find);
 	const verdictKey = verdicts.join();
 
-	const groups = useMemo(() => elementGroups(check, (_, rows) => elementPhrase(rows)), [check]);
+	const groups = useMemo(() => elementGroups(check, (_, rows) => elementSummary(rows) ?? ''), [check]);
 	const filter = useMemo(
 		(): CheckFilter => ({
 			verdicts: verdictKey.split(',').filter((word): word is VerdictFilter => verdictFilters.some((known) => known === word)),
