@@ -149,6 +149,14 @@ const classInWords = (className: string): string => {
 	return words === '' ? 'Element' : words[0]!.toUpperCase() + words.slice(1);
 };
 
+/** "Ramp" and "Roof" where the class says so, else the kind. */
+const wordFor = (input: MarkInput): string =>
+	input.kind === 'none'
+		? classInWords(input.class)
+		: /^Ifc(Ramp|Roof)/.test(input.class)
+			? /^Ifc(Ramp|Roof)/.exec(input.class)![1]!
+			: KIND_WORD[input.kind];
+
 /**
  * Marks (at most 10 letters, digits, `-`, unique among the elements) and titles, in the order given. With a grid: a column at C/3 on the
  * ground floor is "C3-G", other kinds carry their letter in front ("WB2-4-G" a wall on axis B from 2 to 4); bolts and plates at the same
@@ -161,7 +169,7 @@ export function markElements(inputs: readonly MarkInput[], grid: readonly GridAx
 		const storey = storeyCode(input.storey);
 		const tail = storey === '' ? '' : `-${storey}`;
 		const inTitle = input.storey === '' ? '' : `, ${storeyInTitle(input.storey)}`;
-		const word = input.kind === 'none' ? classInWords(input.class) : KIND_WORD[input.kind];
+		const word = wordFor(input);
 		if (input.kind !== 'none' && input.middleM) {
 			const run = input.kind === 'wall' || input.kind === 'beam' ? runOf(grid, input) : null;
 			if (run) {
@@ -210,7 +218,7 @@ export function markElements(inputs: readonly MarkInput[], grid: readonly GridAx
 				counts.set(base, number);
 			}
 			taken.add(mark);
-			const word = KIND_WORD[inputs[at]!.kind];
+			const word = wordFor(inputs[at]!);
 			const isPartOfPlace = (inputs[at]!.kind === 'bolt' || inputs[at]!.kind === 'plate') && want.place !== '';
 			const title = isSingle
 				? want.title

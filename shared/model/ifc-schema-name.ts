@@ -33,12 +33,36 @@ export function readSchemaName(file: Part21File): { ok: true; schema: SchemaName
 	};
 }
 
-/** The file's bytes with FILE_SCHEMA rewritten to a name of the engine's; all other bytes stay where they are. */
-export function withSchemaName(bytes: Uint8Array, span: readonly [number, number], engineName: string): Uint8Array {
-	const statement = new TextEncoder().encode(`FILE_SCHEMA(('${engineName}'))`);
-	const out = new Uint8Array(bytes.length - (span[1] - span[0]) + statement.length);
-	out.set(bytes.subarray(0, span[0]), 0);
-	out.set(statement, span[0]);
-	out.set(bytes.subarray(span[1]), span[0] + statement.length);
-	return out;
+/**
+ * The bytes for the geometry engine: FILE_SCHEMA rewritten to a name it opens where the file writes another, and texts that are too long for
+ * it emptied. The same bytes where neither is needed. Nothing else moves.
+ */
+export function bytesForEngine(bytes: Uint8Array, file: Part21File, schema: SchemaName): Uint8Array {
+	const patches: { start: number; end: number; text: Uint8Array }[] = file.longTexts.map(([start, end]) => ({
+		start,
+		end,
+		text: new Uint8Array(0),
+	}));
+	if (schema.isAlias && file.schemaSpan !== null)
+		patches.push({
+			start: file.schemaSpan[0],
+			end: file.schemaSpan[1],
+			text: new TextEncoder().encode(`FILE_SCHEMA(('${schema.engineName}'))`),
+		});
+	if (patches.length === 0) return bytes;
+	patches.sort((a, b) => a.start - b.start);
+	const out = new Uint8Array(bytes.length + patches.reduce((sum, { start, end, text }) => sum + text.length - (end - start), 0));
+	let from = 0;
+	let at = 0;
+	for (const { start, end, text } of patches) {
+		// A long text inside the header statement that is rewritten as a whole.
+		if (start < from) continue;
+		out.set(bytes.subarray(from, start), at);
+		at += start - from;
+		out.set(text, at);
+		at += text.length;
+		from = end;
+	}
+	out.set(bytes.subarray(from), at);
+	return out.subarray(0, at + bytes.length - from);
 }

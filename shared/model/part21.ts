@@ -15,6 +15,8 @@ export type Part21File = {
 	schemas: readonly string[];
 	/** Where the list of names in FILE_SCHEMA begins and ends, so that it can be rewritten. */
 	schemaSpan: readonly [start: number, end: number] | null;
+	/** Texts longer than the geometry engine can hold: where their inside begins and ends. */
+	longTexts: readonly (readonly [start: number, end: number])[];
 	entityCount: number;
 	/** Numbers given twice: the last one counts. */
 	repeatedNumbers: readonly number[];
@@ -31,6 +33,9 @@ export type Part21File = {
 	/** How many there are of each type. */
 	typeCounts: () => Map<string, number>;
 };
+
+/** The engine counts a text's bytes in sixteen bits; longer ones lose the arguments after them. */
+const LONG_TEXT = 60_000;
 
 const SLASH = 47;
 const STAR = 42;
@@ -70,6 +75,7 @@ type Statement = { start: number; end: number };
 function forEachStatement(
 	bytes: Uint8Array,
 	from: number,
+	onLongText: (start: number, end: number) => void,
 	visit: (start: number, end: number) => boolean,
 ): Statement & { open: 'string' | 'comment' | 'statement' | null } {
 	const size = bytes.length;
@@ -79,8 +85,10 @@ function forEachStatement(
 		const byte = bytes[at]!;
 		if (byte === QUOTE) {
 			if (start < 0) start = at;
-			const close = bytes.indexOf(QUOTE, at + 1);
+			let close = bytes.indexOf(QUOTE, at + 1);
+			while (close >= 0 && bytes[close + 1] === QUOTE) close = bytes.indexOf(QUOTE, close + 2);
 			if (close < 0) return { start, end: at, open: 'string' };
+			if (close - at > LONG_TEXT) onLongText(at + 1, close);
 			at = close + 1;
 		} else if (byte === SLASH && bytes[at + 1] === STAR) {
 			const opened = at;
@@ -218,7 +226,11 @@ export function openPart21(bytes: Uint8Array): { ok: true; file: Part21File } | 
 
 	const from = startsWith(bytes, '\u00ef\u00bb\u00bf') ? 3 : 0;
 	let isFirst = true;
-	const stop = forEachStatement(bytes, from, (start, end) => {
+	const longTexts: [number, number][] = [];
+	const onLongText = (start: number, end: number): void => {
+		longTexts.push([start, end]);
+	};
+	const stop = forEachStatement(bytes, from, onLongText, (start, end) => {
 		if (bytes[start] === HASH) {
 			if (!hasData) oddStatements++;
 			else readEntity(start, end);
@@ -299,6 +311,7 @@ export function openPart21(bytes: Uint8Array): { ok: true; file: Part21File } | 
 		file: {
 			schemas,
 			schemaSpan,
+			longTexts,
 			entityCount: count,
 			repeatedNumbers,
 			oddStatements,

@@ -1,11 +1,11 @@
-import { add } from './affine.ts';
+import { add, dot } from './affine.ts';
 import { type CheckpointDraft, faceDraft, levelDraft, planDraft, type ShapeAnswer } from './checkpoint-draft.ts';
-import { largestPair, type PrismAxis, prismAxes, sectionOf } from './element-shape.ts';
-import { edgeFaces, LEVEL_NZ, levelFace, longestEdge, planExtents, spreadOverFace, treadLevels } from './level-checkpoints.ts';
-import { type PlanarFace, planarFaces } from './planar-face.ts';
+import { compassOf, largestPair, type PrismAxis, prismAxes, sectionOf } from './element-shape.ts';
+import { edgeFaces, LEVEL_NZ, levelFace, longestEdge, planExtents, STANDING_NZ, spreadOverFace, treadLevels } from './level-checkpoints.ts';
+import { extentAlong, type PlanarFace, planarFaces } from './planar-face.ts';
 import { beamCheckpoints, inclinedCheckpoints, wallCheckpoints } from './side-checkpoints.ts';
 import { type SolidMesh, weldMesh } from './solid-mesh.ts';
-import { boltCheckpoints, columnCheckpoints } from './upright-checkpoints.ts';
+import { boltCheckpoints, columnCheckpoints, columnFaces } from './upright-checkpoints.ts';
 
 /** What an element is taken for when its checkpoints are placed: from class, name and shape together. */
 export type ElementKind = 'column' | 'pile' | 'bolt' | 'wall' | 'beam' | 'member' | 'slab' | 'footing' | 'plate' | 'stair' | 'none';
@@ -72,10 +72,15 @@ function plateCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axes: r
 			face.areaM2 > main.areaM2 * 0.99 &&
 			face.normal[0] * main.normal[0] + face.normal[1] * main.normal[1] + face.normal[2] * main.normal[2] < -0.999,
 	);
-	const pair = largestPair(faces);
 	const axis = axes[0];
 	const section = axis ? sectionOf(mesh, faces, axis) : null;
-	const sizesM = { length: axis ? Math.max(axis.lengthM, section!.widthM) : null, height: null, thickness: pair ? pair.distanceM : null };
+	// Of a plate with anchors the thickness is to the plate's own back, not to the anchors' ends.
+	const backs = faces.filter(
+		(face) =>
+			face.isProven && face.areaM2 > main.areaM2 * 0.3 && dot(face.normal, main.normal) < -0.999 && main.offsetM + face.offsetM > 1e-4,
+	);
+	const thickness = backs.length > 0 ? Math.min(...backs.map((face) => main.offsetM + face.offsetM)) : null;
+	const sizesM = { length: axis ? Math.max(axis.lengthM, section!.widthM) : null, height: null, thickness };
 	if (Math.abs(main.normal[2]) > LEVEL_NZ) {
 		// Of two equal faces the upper one is the one that can be seen; a plate cast into a soffit has its anchors above, so its lower face is the larger.
 		const face = twin && main.normal[2] < 0 ? twin : main;
@@ -98,25 +103,26 @@ function plateCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axes: r
 	}
 	const drafts: CheckpointDraft[] = [
 		planDraft(main.centroid, 'Its middle', 'H'),
-		faceDraft(main, main.centroid, 'Outer face, middle', 'F'),
+		faceDraft(main, main.centroid, twin ? `${compassOf(main.normal).word} face, middle` : 'Outer face, middle', 'F'),
 	];
+	// Of two equal faces the shape does not tell which one is seen: both are offered.
 	if (twin) {
 		drafts[0] = planDraft(
 			[(main.centroid[0] + twin.centroid[0]) / 2, (main.centroid[1] + twin.centroid[1]) / 2, (main.centroid[2] + twin.centroid[2]) / 2],
 			'Its middle',
 			'H',
 		);
-		drafts.push(faceDraft(twin, twin.centroid, 'Other face, middle', 'G'));
+		drafts.push(faceDraft(twin, twin.centroid, `${compassOf(twin.normal).word} face, middle`, 'G'));
 	}
 	return { kind: 'plate', drafts, sizesM, why: null };
 }
 
-function stairCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[]): PlacedElement {
+function stairCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], isRamp: boolean): PlacedElement {
 	const drafts = treadLevels(mesh, faces);
 	for (const face of faces.slice(0, 40)) {
 		if (!face.isOuter || !face.isProven || face.isCurved || face.areaM2 < 0.5) continue;
 		if (Math.abs(face.normal[2]) > LEVEL_NZ) continue;
-		if (face.normal[2] < -0.1 || (face.normal[2] > 0.1 && drafts.length === 0)) drafts.push(...spreadOverFace(mesh, face));
+		if (face.normal[2] < -0.1 || (face.normal[2] > 0.1 && isRamp)) drafts.push(...spreadOverFace(mesh, face));
 	}
 	const box = { length: null, height: mesh.max[2] - mesh.min[2], thickness: null };
 	return inPieces(drafts, box, 'stair', 'it has no flat treads or sides that its shape proves');
@@ -139,7 +145,7 @@ function byShape(
 	const isSlender = longest !== null && longEnough(longest, mesh, faces);
 	if (is('MechanicalFastener', 'Fastener') || (is('DiscreteAccessory', 'BuildingElementProxy') && saysBolt && isSlender))
 		return { kind: 'bolt', ...boltCheckpoints(mesh, faces, longest) };
-	if (is('Stair', 'Ramp')) return stairCheckpoints(mesh, faces);
+	if (is('Stair', 'Ramp')) return stairCheckpoints(mesh, faces, is('Ramp'));
 	if (is('Wall')) return { kind: 'wall', ...wallCheckpoints(mesh, faces) };
 	if (is('Column', 'Pile', 'DeepFoundation', 'CaissonFoundation')) {
 		const axis = upward(axes, isUpright);
@@ -176,17 +182,24 @@ function isThin(mesh: SolidMesh, faces: readonly PlanarFace[], axes: readonly Pr
 	return !section.isRound && section.depthM < 1.05 * thicknessM && section.widthM > 8 * section.depthM;
 }
 
-/** A column without a proven axis (brackets, haunches): what its outer faces show alone. */
+/** A column without two equal ends (cut aslant, brackets, haunches): its flat sides, its top where that is level, and plan at the base where one level face stands for the section. */
 function columnByFaces(mesh: SolidMesh, faces: readonly PlanarFace[], kind: 'column' | 'pile'): PlacedElement {
 	const top = levelFace(faces, true);
-	const drafts: CheckpointDraft[] = top ? [levelDraft(mesh, top, top.centroid[0], top.centroid[1], 'Top', 'T')] : [];
-	const sides = wallCheckpoints(mesh, faces).drafts.filter((draft) => draft.characteristic === 'face');
-	return inPieces(
-		[...drafts, ...sides],
-		{ length: null, height: mesh.max[2] - mesh.min[2], thickness: null },
-		kind,
-		'no two equal ends prove its axis, and it has no flat outer sides',
-	);
+	const base = levelFace(faces, false);
+	const pair = largestPair(faces, (face) => Math.abs(face.normal[2]) < STANDING_NZ);
+	const sides = columnFaces(mesh, faces, [0, 0, 1]);
+	const drafts: CheckpointDraft[] = [];
+	const isWholeSection = base !== null && base.areaM2 > 0.9 * (mesh.max[0] - mesh.min[0]) * (mesh.max[1] - mesh.min[1]);
+	if (isWholeSection) drafts.push(planDraft(base.centroid, 'At its base', 'A'));
+	if (top) drafts.push(levelDraft(mesh, top, top.centroid[0], top.centroid[1], 'Top', 'T'));
+	const across = pair ? extentAlong(mesh, [-pair.first.normal[1], pair.first.normal[0], 0]) : null;
+	const [one, other] = [pair?.distanceM ?? null, across ? across.max - across.min : null];
+	const sizesM = {
+		length: one !== null && other !== null ? Math.max(one, other) : null,
+		height: mesh.max[2] - mesh.min[2],
+		thickness: one !== null && other !== null ? Math.min(one, other) : null,
+	};
+	return inPieces([...drafts, ...sides], sizesM, kind, 'no two equal ends prove its axis, and it has no flat outer sides');
 }
 
 /**

@@ -176,6 +176,16 @@ function markCurved(mesh: SolidMesh, faces: PlanarFace[]): void {
 	});
 }
 
+/** Largest first. Equal ones by the way they look (east, north, up first) and by where they are, so that rounding in another revision does not change the order. */
+function inFixedOrder(a: Group, b: Group): number {
+	if (Math.abs(a.total - b.total) > 1e-5 * Math.max(a.total, b.total)) return b.total - a.total;
+	for (let k = 0; k < 3; k++) {
+		const difference = Math.round(b.normal[k]! * 1000) - Math.round(a.normal[k]! * 1000);
+		if (difference !== 0) return difference;
+	}
+	return Math.round((b.offset - a.offset) * 1e4);
+}
+
 /**
  * The flat faces of a mesh, largest first: triangles within 0.2° and 0.5 mm of the largest one's plane. Outer: no vertex of the element lies
  * more than 2 mm in front (0.2 mm where the body is open, and then the face is turned so that all lies behind it).
@@ -184,7 +194,7 @@ function markCurved(mesh: SolidMesh, faces: PlanarFace[]): void {
 export function planarFaces(mesh: SolidMesh): PlanarFace[] | null {
 	const groups = groupTriangles(mesh);
 	if (!groups) return null;
-	groups.sort((a, b) => b.total - a.total);
+	groups.sort(inFixedOrder);
 	const faces = groups.map((group): PlanarFace => {
 		const size = Math.hypot(...group.area);
 		let normal: Vector3 = [group.area[0] / size, group.area[1] / size, group.area[2] / size];

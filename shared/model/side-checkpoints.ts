@@ -44,7 +44,9 @@ function sideGrid(mesh: SolidMesh, face: PlanarFace, name: string | null): Check
 
 /** Levels along a long, nearly level face: each about 3 m, at half its width. */
 function levelsAlong(mesh: SolidMesh, face: PlanarFace, along: Vector3): CheckpointDraft[] {
-	const plan = planOfFace(mesh, face, along);
+	// Always from west to east, or south to north, whichever of a wall's sides came first.
+	const isWestward = along[0] < -1e-3 || (Math.abs(along[0]) <= 1e-3 && along[1] < 0);
+	const plan = planOfFace(mesh, face, isWestward ? scale(along, -1) : along);
 	const width = plan.vMax - plan.vMin;
 	const word = face.normal[2] > 0 ? 'Top' : 'Soffit';
 	const middle = (plan.vMin + plan.vMax) / 2;

@@ -1,3 +1,4 @@
+import type { Vector3 } from '../geometry/frame.ts';
 import { dot } from './affine.ts';
 import { type CheckpointDraft, faceDraft, levelDraft, metresInWords, planDraft, type ShapeAnswer } from './checkpoint-draft.ts';
 import { compassOf, type PrismAxis, sectionOf } from './element-shape.ts';
@@ -24,8 +25,15 @@ export function columnCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[],
 	const top = axis.caps[1];
 	if (top.normal[2] > LEVEL_NZ) drafts.push(levelDraft(mesh, top, top.centroid[0], top.centroid[1], 'Top, middle', 'T'));
 	const section = sectionOf(mesh, faces, axis);
+	drafts.push(...columnFaces(mesh, faces, axis.direction));
+	return { drafts, sizesM: { length: section.widthM, height: axis.lengthM, thickness: section.depthM }, why: null };
+}
+
+/** Faces on the flat outer sides along an upright direction, in rows up each. */
+export function columnFaces(mesh: SolidMesh, faces: readonly PlanarFace[], direction: Vector3): CheckpointDraft[] {
+	const drafts: CheckpointDraft[] = [];
 	for (const face of faces.slice(0, 60)) {
-		if (!face.isOuter || !face.isProven || face.isCurved || Math.abs(dot(face.normal, axis.direction)) > 0.0175) continue;
+		if (!face.isOuter || !face.isProven || face.isCurved || Math.abs(dot(face.normal, direction)) > 0.0175) continue;
 		const plan = planOfFace(mesh, face);
 		const width = plan.uMax - plan.uMin;
 		if (width < NARROWEST_FACE_M) continue;
@@ -38,7 +46,7 @@ export function columnCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[],
 			drafts.push(faceDraft(face, place, `${compass.word} face, ${metresInWords(place[2] - mesh.min[2])} above its base`, compass.code));
 		}
 	}
-	return { drafts, sizesM: { length: section.widthM, height: axis.lengthM, thickness: section.depthM }, why: null };
+	return drafts;
 }
 
 /** Anchor bolts, dowels, studs that stand: plan and level at the top of the axis; where the body is no plain prism (head, nut, hook), of its top face. */

@@ -1,5 +1,5 @@
 import { closeSync, openSync, readFileSync, statSync, writeSync } from 'node:fs';
-import { withSchemaName } from '#shared/model/ifc-schema-name.ts';
+import { bytesForEngine } from '#shared/model/ifc-schema-name.ts';
 import { nameElements } from '#shared/model/model-elements.ts';
 import { readModelHead } from '#shared/model/read-model-head.ts';
 import { pictureBuilder } from './glb-picture.ts';
@@ -43,13 +43,9 @@ async function read(request: ReadIfcRequest): Promise<void> {
 	const opened = readModelHead(bytes);
 	if (!opened.ok) return send({ kind: 'refused', ...opened.refusal });
 	const { head } = opened;
-	const isPlain = head.file.schemaSpan === null || !head.schema.isAlias;
 	lastTold = 0;
 	tell('Opening the model', 0, 1);
-	const geometry = await openGeometry(
-		isPlain ? bytes : withSchemaName(bytes, head.file.schemaSpan!, head.schema.engineName),
-		head.reading.metresPerUnit,
-	);
+	const geometry = await openGeometry(bytesForEngine(bytes, head.file, head.schema), head.reading.metresPerUnit);
 	if (!geometry)
 		return send({
 			kind: 'refused',
