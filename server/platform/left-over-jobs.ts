@@ -17,8 +17,7 @@ export async function settleLeftOverJobs(
 	executeSql: ExecuteSql,
 	runners: ReadonlyMap<string, JobRunner>,
 ): Promise<void> {
-	const { rows } = await executeSql("select id, name, data from pgboss.job where state = 'active'");
-	const active = rows.map(({ id, name, data }) => ({ id: String(id), name: String(name), data }));
+	const active = await queued(executeSql, "state = 'active'");
 	for (const { id, name } of active) await boss.fail(name, id, { message: 'The server ended in the middle of it.' });
 	const lost = await platform.db
 		.select({ id: jobs.id, kind: jobs.kind })
@@ -31,12 +30,20 @@ export async function settleLeftOverJobs(
 				),
 			),
 		);
+	if (lost.length === 0) return;
+	// A server that was stopped cleanly has failed its jobs itself.
+	const failed = await queued(executeSql, "state = 'failed'");
 	for (const { id, kind } of lost) {
 		const runner = runners.get(kind);
-		const job = active.find((candidate) => candidate.id === id);
+		const job = failed.find((candidate) => candidate.id === id);
 		if (runner !== undefined && job !== undefined) await giveUp(platform, runner, id, job.data, interruptedReason);
 		else await failRow(platform, id);
 	}
+}
+
+async function queued(executeSql: ExecuteSql, where: string): Promise<{ id: string; name: string; data: unknown }[]> {
+	const { rows } = await executeSql(`select id, name, data from pgboss.job where ${where}`);
+	return rows.map(({ id, name, data }) => ({ id: String(id), name: String(name), data }));
 }
 
 async function failRow(platform: Platform, jobId: string): Promise<void> {
