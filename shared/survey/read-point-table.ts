@@ -165,7 +165,7 @@ class RowReader {
 							evidence: { count: this.cleaned.length },
 						},
 					];
-		return { rows, faults: this.faults, faultCount: this.faultCount, rowCount: columns.count + columns.badRows.length, findings };
+		return { rows, faults: this.faults, faultCount: this.faultCount, rowCount: columns.count + columns.badRowCount, findings };
 	}
 
 	private fault(row: number, column: PointField | null, value: string | null, message: string): void {

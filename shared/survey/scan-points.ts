@@ -15,6 +15,8 @@ export interface PointColumns {
 	readonly badNumbers: { index: number; field: PointField; start: number; end: number; isNotFinite: boolean }[];
 	/** Rows that cannot be cut into cells. */
 	readonly badRows: { row: number; why: 'too-long' | 'quote' | 'control' | 'many-cells' }[];
+	/** All of them; `badRows` keeps at most 1000. */
+	readonly badRowCount: number;
 	/** Rows beyond the most that are read. */
 	readonly isCut: boolean;
 }
@@ -77,8 +79,11 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 	};
 	const badNumbers: PointColumns['badNumbers'] = [];
 	const badRows: PointColumns['badRows'] = [];
-	const noteRow = (why: PointColumns['badRows'][number]['why'], at: number): void => {
-		if (badRows.length < mostBad) badRows.push({ row: at, why });
+	let badRowCount = 0;
+	/** One reason a row is enough. */
+	const spoil = (why: PointColumns['badRows'][number]['why'], at: number, wasBad: boolean): true => {
+		if (!wasBad && ++badRowCount <= mostBad) badRows.push({ row: at, why });
+		return true;
 	};
 	let index = 0;
 	let rowNumber = 0;
@@ -122,8 +127,7 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 					at++;
 				}
 				if (at >= size || bytes[at] !== QUOTE) {
-					noteRow('quote', rowNumber);
-					isBad = true;
+					isBad = spoil('quote', rowNumber, isBad);
 					// A line end inside the open quote belongs to the next row again.
 					at = start + 1;
 				} else at++;
@@ -171,7 +175,7 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 					textColumn[2 * index + 1] = end;
 				} else if (numberColumn !== null && end > start) readSlowly(index, start, end, fieldAt[cell]!, numberColumn);
 			}
-			if (headerCells > 0 && cell >= headerCells && end > start) isBad = noteManyCells(rowNumber, isBad);
+			if (headerCells > 0 && cell >= headerCells && end > start) isBad = spoil('many-cells', rowNumber, isBad);
 			cell++;
 			if (isBlankDelimited) while (bytes[at] === BLANK && bytes[at + 1] === BLANK) at++;
 			if (at >= size || bytes[at] === LF || bytes[at] === CR) {
@@ -180,18 +184,16 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 			} else at++;
 		}
 		if (at - lineStart > pointTableLimits.lineLength) {
-			noteRow('too-long', rowNumber);
-			isBad = true;
+			isBad = spoil('too-long', rowNumber, isBad);
 		}
 		if (hasControl) {
-			noteRow('control', rowNumber);
-			isBad = true;
+			isBad = spoil('control', rowNumber, isBad);
 		}
 		if (isBad) forgetRow(index);
 		else row[index++] = rowNumber;
 		at = afterLineEnd(bytes, at);
 	}
-	return { count: index, row, numbers, texts, badNumbers, badRows, isCut };
+	return { count: index, row, numbers, texts, badNumbers, badRows, badRowCount, isCut };
 
 	function readSlowly(index: number, start: number, end: number, field: PointField, column: Float64Array): void {
 		const cellText = unquote(text.decode(start, end)).trim();
@@ -205,10 +207,6 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 		while (badNumbers.length > 0 && badNumbers.at(-1)!.index === index) badNumbers.pop();
 		for (const column of numbers.values()) column[index] = Number.NaN;
 		for (const column of texts.values()) column[2 * index] = column[2 * index + 1] = 0;
-	}
-	function noteManyCells(rowNumber: number, wasBad: boolean): true {
-		if (!wasBad) noteRow('many-cells', rowNumber);
-		return true;
 	}
 }
 
