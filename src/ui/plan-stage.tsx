@@ -28,14 +28,15 @@ interface PlanView {
 	readonly pxPerM: number;
 }
 
-const marginPx = 46;
+const marginPx = 22;
+/** Kept free at the top for what the page lays over the picture. */
+const headRoomPx = 44;
 
 function viewOf(box: ViewBox, size: { widthPx: number; heightPx: number }): PlanView {
 	const [sizeE, sizeN] = [Math.max(box.max[0] - box.min[0], 0.2), Math.max(box.max[1] - box.min[1], 0.2)];
-	return {
-		middle: [(box.min[0] + box.max[0]) / 2, (box.min[1] + box.max[1]) / 2],
-		pxPerM: Math.max(0.5, Math.min((size.widthPx - 2 * marginPx) / sizeE, (size.heightPx - 2 * marginPx) / sizeN)),
-	};
+	const room = [size.widthPx - 2 * marginPx, size.heightPx - 2 * marginPx - headRoomPx] as const;
+	const pxPerM = Math.max(0.5, Math.min(room[0] / sizeE, room[1] / sizeN));
+	return { middle: [(box.min[0] + box.max[0]) / 2, (box.min[1] + box.max[1]) / 2 + headRoomPx / 2 / pxPerM], pxPerM };
 }
 
 /** The plan: drag or two fingers shift, wheel and pinch go nearer, arrows and + − do the same from the keyboard. Plain SVG, so it needs no graphics. */
@@ -50,9 +51,9 @@ export function PlanStage({ label, box, children, commands, onPress, note }: Pla
 	useImperativeHandle(commands, () => ({ frame: (asked) => setMoved(viewOf(asked, size)), whole: () => setMoved(null) }), [size]);
 
 	const scale = useMemo<PlanScale>(() => {
-		const [east, north] = whole.middle;
+		const [east, north] = [(box.min[0] + box.max[0]) / 2, (box.min[1] + box.max[1]) / 2];
 		return { pxPerM: view.pxPerM, x: (e) => (e - east) * view.pxPerM, y: (n) => (north - n) * view.pxPerM };
-	}, [whole.middle, view.pxPerM]);
+	}, [box, view.pxPerM]);
 	const shiftX = size.widthPx / 2 - scale.x(view.middle[0]);
 	const shiftY = size.heightPx / 2 - scale.y(view.middle[1]);
 	const drawing = useMemo(() => children(scale), [children, scale]);

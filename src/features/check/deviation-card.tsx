@@ -15,6 +15,8 @@ interface DeviationCardProps {
 	setupName: string | null;
 	/** Before the pour a plan offset is also said the way it has yet to go. */
 	stage: Stage;
+	/** The facts behind a press: on a phone the table stays in sight. */
+	isFolded?: boolean;
 	/** Beside the title: "Show on plan", "Close". */
 	acts?: ReactNode;
 }
@@ -56,56 +58,66 @@ function Sentence({ deviation, stage }: { deviation: Deviation; stage: Stage }) 
 }
 
 /** What is known of one deviation: the rod large, the sentence, where its uncertainty comes from, by which point, and its place. */
-export function DeviationCard({ deviation, element, setupName, stage, acts }: DeviationCardProps) {
+export function DeviationCard({ deviation, element, setupName, stage, isFolded = false, acts }: DeviationCardProps) {
 	const box = useRef<HTMLDivElement>(null);
 	const widthPx = useElementWidth(box, 486);
 	const known = uncertaintyLine(deviation);
 	const [east, north, height] = deviation.place;
+	const facts = (
+		<dl className="m-0 mt-2 grid grid-cols-[auto_1fr] gap-x-3 gap-y-0.5 text-small text-second">
+			{known !== null && (
+				<>
+					<dt>Known to</dt>
+					<dd className="m-0">{known}</dd>
+				</>
+			)}
+			{deviation.conformity !== null && (
+				<>
+					<dt>Conforms</dt>
+					<dd className="m-0">with a probability of {conformityText(deviation.conformity)}</dd>
+				</>
+			)}
+			{deviation.pointName !== null && (
+				<>
+					<dt>Measured</dt>
+					<dd className="m-0">
+						by point <span className="font-mono text-ink">{deviation.pointName}</span>
+						{setupName !== null && ` from set-up ${setupName}`}
+						{deviation.pointCount > 1 && `, mean of ${deviation.pointCount}`}
+					</dd>
+				</>
+			)}
+			<dt>Place</dt>
+			<dd className="m-0 font-mono">
+				E&nbsp;{metres(east)} N&nbsp;{metres(north)} H&nbsp;{metres(height)}
+			</dd>
+		</dl>
+	);
 	return (
-		<section className="sheet px-4 py-3.5" aria-label="The chosen checkpoint">
+		<section className="sheet px-4 py-3.5 max-tablet:py-2.5" aria-label="The chosen checkpoint">
 			<div className="flex items-start gap-3">
-				<h2 className="m-0 flex-1 text-h2 leading-snug font-strong">{element?.title ?? 'Element of an earlier revision'}</h2>
+				<h2 className="m-0 min-w-0 flex-1 text-h2 leading-snug font-strong">{element?.title ?? 'Element of an earlier revision'}</h2>
 				{acts}
 			</div>
-			<div ref={box} className="my-1.5">
+			<div ref={box} className="my-1.5 max-tablet:my-0.5">
 				<DeviationRod
 					deviation={deviation}
 					scaleMm={rodScaleMm([deviation.limitsMm], [deviation.deviationMm])}
 					widthPx={widthPx}
-					heightPx={46}
+					heightPx={isFolded ? 32 : 46}
 				/>
 			</div>
 			<div aria-live="polite">
 				<Sentence deviation={deviation} stage={stage} />
 			</div>
-			<dl className="m-0 mt-2 grid grid-cols-[auto_1fr] gap-x-3 gap-y-0.5 text-small text-second">
-				{known !== null && (
-					<>
-						<dt>Known to</dt>
-						<dd className="m-0">{known}</dd>
-					</>
-				)}
-				{deviation.conformity !== null && (
-					<>
-						<dt>Conforms</dt>
-						<dd className="m-0">with a probability of {conformityText(deviation.conformity)}</dd>
-					</>
-				)}
-				{deviation.pointName !== null && (
-					<>
-						<dt>Measured</dt>
-						<dd className="m-0">
-							by point <span className="font-mono text-ink">{deviation.pointName}</span>
-							{setupName !== null && ` from set-up ${setupName}`}
-							{deviation.pointCount > 1 && `, mean of ${deviation.pointCount}`}
-						</dd>
-					</>
-				)}
-				<dt>Place</dt>
-				<dd className="m-0 font-mono">
-					E {metres(east)} N {metres(north)} H {metres(height)}
-				</dd>
-			</dl>
+			{isFolded ? (
+				<details>
+					<summary className="min-h-12 content-center text-action underline underline-offset-3">How well it is known, and where</summary>
+					{facts}
+				</details>
+			) : (
+				facts
+			)}
 		</section>
 	);
 }

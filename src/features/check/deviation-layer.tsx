@@ -17,6 +17,8 @@ import { lineMaterial } from './line-material.ts';
 interface DeviationLayerProps {
 	/** Those that are shown, in drawing order. */
 	marks: readonly DeviationMark[];
+	/** Drawn over everything. */
+	chosenId: string | null;
 	originM: readonly [number, number, number];
 	/** Lines are drawn so many times as long as the deviation. */
 	times: number;
@@ -65,14 +67,26 @@ function lineGeometry(marks: readonly DeviationMark[], originM: readonly [number
 }
 
 /** One glyph a checkpoint, its form drawn in the shader, and a line that shows which way and how far. What a wall hides is drawn faintly. */
-export function DeviationLayer({ marks, originM, times, colours }: DeviationLayerProps) {
+export function DeviationLayer({ marks, chosenId, originM, times, colours }: DeviationLayerProps) {
 	const invalidate = useThree((state) => state.invalidate);
-	const materials = useMemo(() => ({ seen: glyphMaterial('seen'), behind: glyphMaterial('behind'), lines: lineMaterial() }), []);
+	const materials = useMemo(
+		() => ({ seen: glyphMaterial('seen'), behind: glyphMaterial('behind'), over: glyphMaterial('over'), lines: lineMaterial() }),
+		[],
+	);
 	const glyphs = useMemo(() => glyphGeometry(marks, originM), [marks, originM]);
 	const behind = useMemo(() => glyphGeometry(marks.filter(hasLine), originM), [marks, originM]);
+	const over = useMemo(
+		() =>
+			glyphGeometry(
+				marks.filter((mark) => mark.checkpointId === chosenId),
+				originM,
+			),
+		[marks, chosenId, originM],
+	);
 	const lines = useMemo(() => lineGeometry(marks, originM), [marks, originM]);
 	useEffect(() => () => glyphs.dispose(), [glyphs]);
 	useEffect(() => () => behind.dispose(), [behind]);
+	useEffect(() => () => over.dispose(), [over]);
 	useEffect(() => () => lines.dispose(), [lines]);
 	useEffect(
 		() => () => {
@@ -83,6 +97,7 @@ export function DeviationLayer({ marks, originM, times, colours }: DeviationLaye
 	useLayoutEffect(() => {
 		colourGlyphs(materials.seen, colours);
 		colourGlyphs(materials.behind, colours);
+		colourGlyphs(materials.over, colours);
 		const { uniforms } = materials.lines;
 		(uniforms.uProud!.value as Vector3).fromArray(colours.set === 'sun' ? colours.ink : colours.proud);
 		(uniforms.uShy!.value as Vector3).fromArray(colours.set === 'sun' ? colours.ink : colours.shy);
@@ -95,11 +110,11 @@ export function DeviationLayer({ marks, originM, times, colours }: DeviationLaye
 	}, [materials, times, invalidate]);
 	// New geometry is no change React Three Fiber sees on a primitive it already draws.
 	useLayoutEffect(() => {
-		if (glyphs !== null && lines !== null) invalidate();
-	}, [glyphs, lines, invalidate]);
+		if (glyphs !== null && lines !== null && over !== null) invalidate();
+	}, [glyphs, lines, over, invalidate]);
 	useFrame(({ gl, size, camera }) => {
 		const liftM = Math.min(liftPx / camera.zoom, mostLiftM);
-		const all: ShaderMaterial[] = [materials.seen, materials.behind, materials.lines];
+		const all: ShaderMaterial[] = [materials.seen, materials.behind, materials.over, materials.lines];
 		for (const { uniforms } of all) {
 			uniforms.uLiftM!.value = liftM;
 			if (uniforms.uPixelRatio) uniforms.uPixelRatio.value = gl.getPixelRatio();
@@ -111,6 +126,7 @@ export function DeviationLayer({ marks, originM, times, colours }: DeviationLaye
 			<points geometry={behind} material={materials.behind} renderOrder={2} frustumCulled={false} raycast={() => null} />
 			<mesh geometry={lines} material={materials.lines} renderOrder={3} frustumCulled={false} raycast={() => null} />
 			<points geometry={glyphs} material={materials.seen} renderOrder={4} frustumCulled={false} raycast={() => null} />
+			<points geometry={over} material={materials.over} renderOrder={5} frustumCulled={false} raycast={() => null} />
 		</>
 	);
 }

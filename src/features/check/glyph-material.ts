@@ -109,8 +109,8 @@ const fragmentShader = /* glsl */ `
 	}
 `;
 
-/** One material for all glyphs: the form is drawn in the fragment shader. `behind`: the faint pass for what a wall hides. */
-export function glyphMaterial(pass: 'seen' | 'behind'): ShaderMaterial {
+/** One material for all glyphs: the form is drawn in the fragment shader. `behind`: the faint pass for what a wall hides; `over`: the chosen one, never hidden. */
+export function glyphMaterial(pass: 'seen' | 'behind' | 'over'): ShaderMaterial {
 	const colour = () => ({ value: new Vector3() });
 	return new ShaderMaterial({
 		transparent: true,
@@ -119,7 +119,7 @@ export function glyphMaterial(pass: 'seen' | 'behind'): ShaderMaterial {
 		uniforms: {
 			uPixelRatio: { value: 1 },
 			uLiftM: { value: 0.05 },
-			uAlpha: { value: pass === 'seen' ? 1 : 0.3 },
+			uAlpha: { value: pass === 'behind' ? 0.3 : 1 },
 			uEdgePx: { value: 1 },
 			uRingPx: { value: 2 },
 			uSheet: colour(),

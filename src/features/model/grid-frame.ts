@@ -1,6 +1,6 @@
 import type { RevisionDetail } from '#shared/model/contract.ts';
 import type { StageAnchor } from '#src/ui/stage-anchor.ts';
-import type { ViewBox } from '#src/ui/view-commands.ts';
+import { boxAround, type ViewBox } from '#src/ui/view-commands.ts';
 
 type GridAxis = RevisionDetail['reading']['grid'][number];
 type Storey = RevisionDetail['reading']['storeys'][number];
@@ -69,6 +69,12 @@ function cutToBox(from: Plan, to: Plan, box: ViewBox, marginM: number): { from: 
 	if (start >= end) return null;
 	const at = (share: number): Plan => [from[0] + direction[0] * share, from[1] + direction[1] * share];
 	return { from: at(start), to: at(end) };
+}
+
+/** The work with its bubbles: what "whole" shows. Design frame, metres. */
+export function withBubbles(box: ViewBox, axes: readonly DrawnAxis[]): ViewBox {
+	const bubbles = axes.map(({ bubble }) => ({ min: [...bubble, box.min[2]] as const, max: [...bubble, box.min[2]] as const }));
+	return boxAround([box, ...bubbles]) ?? box;
 }
 
 /** Bubbles and levels to hang over the 3D picture. Places come out in the scene's frame, that is less `originM`. */

@@ -4,7 +4,7 @@ import { Raycaster, Vector2, Vector3 } from 'three';
 import type { RevisionDetail } from '#shared/model/contract.ts';
 import { DeviationLayer } from '#src/features/check/deviation-layer.tsx';
 import { type DeviationMark, nearestMark } from '#src/features/check/deviation-mark.ts';
-import { type DrawnAxis, frameAnchors } from '#src/features/model/grid-frame.ts';
+import { type DrawnAxis, frameAnchors, withBubbles } from '#src/features/model/grid-frame.ts';
 import { GridLayer } from '#src/features/model/grid-layer.tsx';
 import { ModelLayer } from '#src/features/model/model-layer.tsx';
 import { type ModelPicture, readPicture } from '#src/features/model/read-picture.ts';
@@ -115,7 +115,7 @@ function PictureScene({
 		const place: [number, number, number] = [east - originM[0], north - originM[1], height - originM[2]];
 		return [...frame, { key: 'chosen', kind: 'ring', place, text: '' }];
 	}, [frame, chosen, originM]);
-	const bounds = useMemo(() => sceneBounds(picture.box, axes, originM), [picture, axes, originM]);
+	const bounds = useMemo(() => localBox(withBubbles(box, axes), originM), [box, axes, originM]);
 
 	const press = useCallback(
 		({ x, y, width, height, isCoarse, camera }: StagePress) => {
@@ -146,7 +146,7 @@ function PictureScene({
 		<Stage label={label} bounds={bounds} anchors={anchors} commands={sceneCommands} onPress={press} onLost={onLost} note={note}>
 			<GridLayer axes={axes} floorM={box.min[2]} originM={originM} colours={colours} />
 			<ModelLayer picture={picture} colours={colours} hidden={hidden} chosen={chosenEntity} />
-			<DeviationLayer marks={marks} originM={originM} times={times} colours={colours} />
+			<DeviationLayer marks={marks} chosenId={chosenId} originM={originM} times={times} colours={colours} />
 		</Stage>
 	);
 }
@@ -158,19 +158,6 @@ function localBox(box: ViewBox, originM: ModelPicture['originM']): ViewBox {
 		place[2] - originM[2],
 	];
 	return { min: less(box.min), max: less(box.max) };
-}
-
-/** The model with its bubbles: what "whole" shows. */
-function sceneBounds(box: ViewBox, axes: readonly DrawnAxis[], originM: ModelPicture['originM']): ViewBox {
-	const min: [number, number, number] = [...box.min];
-	const max: [number, number, number] = [...box.max];
-	for (const { bubble } of axes) {
-		for (const part of [0, 1] as const) {
-			min[part] = Math.min(min[part], bubble[part] - originM[part]);
-			max[part] = Math.max(max[part], bubble[part] - originM[part]);
-		}
-	}
-	return { min, max };
 }
 
 /** The nearest element under a ray that is drawn. */

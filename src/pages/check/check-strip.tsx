@@ -2,6 +2,7 @@ import { Link } from 'react-router-dom';
 import type { CheckHead } from '#shared/check/contract.ts';
 import { calendarDay, counted } from '#src/lib/format.ts';
 import { useAddressId } from '#src/lib/session.ts';
+import { useIsBelow } from '#src/ui/screen-width.ts';
 import { Strip } from '#src/ui/strip.tsx';
 
 const stateWords: Record<CheckHead['state'], string | null> = {
@@ -29,6 +30,28 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 	const isFitOld = fits.some((fit) => !fit.isNewest);
 	const quiet = 'text-second no-underline hover:underline hover:underline-offset-3';
 	const state = stateWords[check.state];
+	const isPhone = useIsBelow('tablet');
+	const uncheckedFits = fits.filter((fit) => fit.checkedBy === null).length;
+	const stateItem = state !== null && <b key="state">{state}</b>;
+	if (isPhone) {
+		return (
+			<Strip
+				items={[
+					stateItem,
+					<Link key="revision" to={`/sites/${siteId}/model`} className={quiet}>
+						rev {revision.number}
+						{revision.isNewest ? ', newest' : <b>, not the newest</b>}
+					</Link>,
+					`survey ${survey.number}`,
+					isFitOld ? <b key="fits">a newer fit is adopted</b> : uncheckedFits > 0 && `${counted(uncheckedFits, 'fit')} unchecked`,
+					<span key="sheet">
+						sheet {sheet.name}
+						{!sheet.isNewest && <b>, superseded</b>}
+					</span>,
+				]}
+			/>
+		);
+	}
 	return (
 		<Strip
 			items={[
@@ -49,7 +72,7 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 					sheet {sheet.name}, {sheet.decision}
 					{!sheet.isNewest && <b>, superseded</b>}
 				</span>,
-				state !== null && <b key="state">{state}</b>,
+				stateItem,
 			]}
 		/>
 	);

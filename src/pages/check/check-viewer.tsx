@@ -3,7 +3,7 @@ import { lazy, type RefObject, Suspense, useCallback, useEffect, useMemo, useRed
 import type { CheckDetail } from '#shared/check/contract.ts';
 import { exaggerationOf, nearestMark } from '#src/features/check/deviation-mark.ts';
 import { DeviationPlan } from '#src/features/check/deviation-plan.tsx';
-import { drawnAxes } from '#src/features/model/grid-frame.ts';
+import { drawnAxes, withBubbles } from '#src/features/model/grid-frame.ts';
 import { ModelPlan } from '#src/features/model/model-plan.tsx';
 import { api } from '#src/lib/api.ts';
 import { PressChip, Segmented } from '#src/ui/chip.tsx';
@@ -75,6 +75,7 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 		return boxAround(boxes) ?? grown(boxAround(places) ?? { min: [0, 0, 0], max: [10, 10, 3] }, 0.5);
 	}, [elements, check.deviations]);
 	const axes = useMemo(() => drawnAxes(revision.data?.reading.grid ?? [], box), [revision.data, box]);
+	const planBox = useMemo(() => withBubbles(box, axes), [box, axes]);
 	const times = useMemo(() => exaggerationOf(allMarks, Math.max(box.max[0] - box.min[0], box.max[1] - box.min[1])), [allMarks, box]);
 	const chosenEntity = view.chosenElement?.entityNumber ?? null;
 
@@ -172,7 +173,7 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 				</div>
 			)}
 			{!is3d && mode !== 'away' && (
-				<PlanStage label={label} box={box} commands={commands} onPress={pressPlan} note={note}>
+				<PlanStage label={label} box={planBox} commands={commands} onPress={pressPlan} note={note}>
 					{drawPlan}
 				</PlanStage>
 			)}

@@ -126,11 +126,14 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			deviation={view.chosen}
 			element={view.chosenElement}
 			stage={check.stage}
+			isFolded={isPhone}
 			setupName={view.chosen.setupId === null ? null : setupNameOf(view.chosen.setupId)}
 			acts={
 				<span className="flex shrink-0 flex-wrap justify-end gap-1.5">
 					{isPhone && phoneView === 'table' ? (
-						<PressChip onPress={() => setViewWord('plan')}>Show on plan</PressChip>
+						<PressChip onPress={() => setViewWord('plan')} title="Show it on the plan">
+							On plan
+						</PressChip>
 					) : (
 						<>
 							<PressChip onPress={() => frameChosen.current(view.chosenId ?? '')} title="Fill the view with what is chosen (F)">
