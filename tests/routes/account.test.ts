@@ -152,7 +152,7 @@ describe('the limit on tries', () => {
 	});
 });
 
-describe('where a request comes from', () => {
+describe('the origin of a request', () => {
 	const call = (headers: Record<string, string>) =>
 		fetch(`${server.address}/rpc/account/me`, { method: 'POST', headers: { 'content-type': 'application/json', ...headers }, body: '{}' });
 
