@@ -51,6 +51,8 @@ export const routes: RouteObject[] = [
 							},
 							sitePage('model', 'model', () => import('#src/pages/model/model-page.tsx')),
 							sitePage('model/:revisionId', 'model', () => import('#src/pages/model/revision-page.tsx'), { path: 'model', word: 'Model' }),
+							sitePage('control', 'control', () => import('#src/pages/control/control-page.tsx')),
+							sitePage('surveys', 'surveys', () => import('#src/pages/surveys/surveys-page.tsx')),
 							sitePage('surveys/:surveyId', 'surveys', () => import('#src/pages/survey/survey-page.tsx'), {
 								path: 'surveys',
 								word: 'Surveys',

@@ -10,16 +10,27 @@ export function withKept(range: Range, kept: number): number[] {
 	return [...inSight, kept].sort((a, b) => a - b);
 }
 
-/** Drawn lines with spacers for every gap, so that the whole keeps its height. `indices` ascending. */
-export function windowParts(indices: readonly number[], lineCount: number, lineHeightPx: number): WindowPart[] {
+/** Where each line begins, and after the last one where all end: `offsets.length` is one more than there are lines. */
+export function lineOffsets(heightsPx: readonly number[]): number[] {
+	const offsets = [0];
+	for (const heightPx of heightsPx) offsets.push((offsets.at(-1) ?? 0) + heightPx);
+	return offsets;
+}
+
+/** Drawn lines with spacers for every gap, so that the whole keeps its height. `indices` ascending; offsets as `lineOffsets` gives them. */
+export function windowParts(indices: readonly number[], offsets: readonly number[]): WindowPart[] {
+	const lineCount = offsets.length - 1;
 	const parts: WindowPart[] = [];
+	const gap = (from: number, to: number) => {
+		if (to > from) parts.push({ kind: 'space', before: to, heightPx: (offsets[to] ?? 0) - (offsets[from] ?? 0) });
+	};
 	let next = 0;
 	for (const index of indices) {
 		if (index >= lineCount) break;
-		if (index > next) parts.push({ kind: 'space', before: index, heightPx: (index - next) * lineHeightPx });
+		gap(next, index);
 		parts.push({ kind: 'line', index });
 		next = index + 1;
 	}
-	if (next < lineCount) parts.push({ kind: 'space', before: lineCount, heightPx: (lineCount - next) * lineHeightPx });
+	gap(next, lineCount);
 	return parts;
 }

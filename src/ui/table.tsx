@@ -2,7 +2,7 @@ import { type Range, useVirtualizer } from '@tanstack/react-virtual';
 import { type KeyboardEvent, type MouseEvent, type ReactNode, useCallback, useEffect, useMemo, useRef } from 'react';
 import { useIsCoarse } from '#src/lib/coarse-pointer.ts';
 import { linesOf, type RowGroup, rowLineFrom, type Sorting, type SortValue, sortedGroups } from './table-rows.ts';
-import { windowParts, withKept } from './table-window.ts';
+import { lineOffsets, windowParts, withKept } from './table-window.ts';
 
 export interface Column<Row> {
 	key: string;
@@ -60,6 +60,7 @@ export function Table<Row>(props: TableProps<Row>) {
 	const { caption, columns, rows, keyOf, chosenKey = null, onChoose, onOpen, sorting = null, onSort, scrollClass = '', empty } = props;
 	const isCoarse = useIsCoarse();
 	const rowHeightPx = props.rowHeightPx ?? (isCoarse ? 48 : 44);
+	const groupHeightPx = Math.min(rowHeightPx, isCoarse ? 48 : 46);
 	const box = useRef<HTMLDivElement>(null);
 	const takesFocus = useRef(false);
 
@@ -75,11 +76,17 @@ export function Table<Row>(props: TableProps<Row>) {
 	// One row is in the tab order: the chosen one, else the first.
 	const tabLine = chosenLine >= 0 ? chosenLine : firstRowLine;
 
+	const heightsPx = useMemo(
+		() => lines.map((line) => (line.kind === 'group' ? groupHeightPx : rowHeightPx)),
+		[lines, groupHeightPx, rowHeightPx],
+	);
+	const offsets = useMemo(() => lineOffsets(heightsPx), [heightsPx]);
+
 	const isWindowed = lines.length > windowFromLines && scrollClass !== '';
 	const virtualizer = useVirtualizer({
 		count: lines.length,
 		getScrollElement: () => box.current,
-		estimateSize: () => rowHeightPx,
+		estimateSize: (index) => heightsPx[index] ?? rowHeightPx,
 		overscan: 12,
 		// The sticky head covers as much at the top as it shifts the rows down: only the foot needs room.
 		scrollPaddingEnd: headHeightPx,
@@ -90,10 +97,14 @@ export function Table<Row>(props: TableProps<Row>) {
 	const parts = isWindowed
 		? windowParts(
 				virtualizer.getVirtualItems().map((item) => item.index),
-				lines.length,
-				rowHeightPx,
+				offsets,
 			)
 		: lines.map((_, index) => ({ kind: 'line' as const, index }));
+
+	// The virtualizer keeps the sizes it was first told: other lines or another pointer are other sizes.
+	useEffect(() => {
+		if (heightsPx.length > 0) virtualizer.measure();
+	}, [heightsPx, virtualizer]);
 
 	// A choice made elsewhere (in the model, by a link) is brought into sight; one made here by key also gets the focus.
 	const shownChoice = useRef<number>(-1);
@@ -180,7 +191,7 @@ export function Table<Row>(props: TableProps<Row>) {
 						if (!line) return null;
 						if (line.kind === 'group') {
 							return (
-								<tr key={line.key} style={{ height: rowHeightPx }} aria-rowindex={isWindowed ? part.index + 2 : undefined}>
+								<tr key={line.key} style={{ height: groupHeightPx }} aria-rowindex={isWindowed ? part.index + 2 : undefined}>
 									<th
 										colSpan={columns.length}
 										scope="rowgroup"

@@ -53,7 +53,7 @@ export function WideRod({ ticks, summary, chosenId = null, onChoose }: WideRodPr
 			x: middleX + Math.max(-endPx, Math.min(endPx, shareOfLimits(tick) * halfBandPx)),
 		}));
 	}, [ticks, widthPx, middleX, halfBandPx]);
-	const paths = useMemo(() => pathsOf(placed), [placed]);
+	const layers = useMemo(() => tickLayers(placed.filter((tick) => tick.glyph === 'within').map((tick) => tick.x)), [placed]);
 	const chosen = placed.find((tick) => tick.id === chosenId);
 
 	const choose = (event: MouseEvent<HTMLDivElement>) => {
@@ -71,12 +71,12 @@ export function WideRod({ ticks, summary, chosenId = null, onChoose }: WideRodPr
 				<path d={`M${edgePx} ${middleY}H${widthPx - edgePx}`} className="stroke-rule" />
 				<path d={`M${middleX - halfBandPx} 6v46M${middleX + halfBandPx} 6v46`} className="stroke-ink" strokeWidth={2} />
 				<path d={`M${middleX} 22v14`} className="stroke-second" />
-				<path d={paths.within} className="stroke-within" strokeOpacity={0.45} />
-				<path d={paths.close} className="glyph-close" />
-				<path d={paths.closeHalf} className="glyph-close-half" />
-				<path d={paths.plan} className="glyph-plan" />
-				<path d={paths.proud} className="glyph-proud" />
-				<path d={paths.shy} className="glyph-shy" />
+				{layers.map((layer) => (
+					<path key={layer.key} d={layer.path} className="stroke-within" strokeOpacity={layer.opacity} />
+				))}
+				{offKinds.map((kind) => (
+					<OffGlyphs key={kind} kind={kind} xs={placed.filter((tick) => tick.glyph === kind).map((tick) => tick.x)} />
+				))}
 				{chosen && (
 					<g>
 						<circle cx={chosen.x} cy={middleY} r={13} className="fill-none stroke-ink" strokeWidth={6} />
@@ -95,21 +95,41 @@ export function WideRod({ ticks, summary, chosenId = null, onChoose }: WideRodPr
 	);
 }
 
-type Placed = WideRodTick & { x: number };
+/** Drawn in this order, so that what is worst lies on top. */
+const offKinds = ['close', 'plan', 'proud', 'shy'] as const;
+const manyGlyphs = 40;
 
-function pathsOf(placed: readonly Placed[]) {
-	const drawn = (kind: GlyphKind, path: (x: number) => string) =>
-		placed
-			.filter((tick) => tick.glyph === kind)
-			.map((tick) => path(tick.x))
-			.join('');
-	return {
-		within: drawn('within', (x) => `M${Math.round(x * 10) / 10} 21v16`),
-		close: drawn('close', (x) => diamondPath(6, x, middleY)),
-		closeHalf: drawn('close', (x) => halfDiamondPath(6, x, middleY)),
-		// All distances in plan count outwards: one form for all of them here, turned arrows in the table and on the plan.
-		plan: drawn('plan', (x) => glyphPath('plan', 7, x, middleY)),
-		proud: drawn('proud', (x) => glyphPath('proud', 7, x, middleY)),
-		shy: drawn('shy', (x) => glyphPath('shy', 7, x, middleY)),
-	};
+/** The glyphs of one kind: each with its own edge while they can be told apart, as one mass with one edge where they are many. */
+function OffGlyphs({ kind, xs }: { kind: (typeof offKinds)[number]; xs: readonly number[] }) {
+	const size = kind === 'close' ? 6 : 7;
+	if (xs.length <= manyGlyphs) {
+		return xs.map((x, place) => <GlyphMark key={`${place} ${x}`} kind={kind} x={x} y={middleY} size={size} />);
+	}
+	const drawn = (path: (x: number) => string) => xs.map(path).join('');
+	return kind === 'close' ? (
+		<g style={{ paintOrder: 'stroke' }}>
+			<path d={drawn((x) => diamondPath(size, x, middleY))} className="glyph-close" />
+			<path d={drawn((x) => halfDiamondPath(size, x, middleY))} className="glyph-close-half" />
+		</g>
+	) : (
+		<path d={drawn((x) => glyphPath(kind, size, x, middleY))} className={`glyph-${kind}`} style={{ paintOrder: 'stroke' }} />
+	);
+}
+
+const mostLayers = 6;
+
+/**
+ * Ticks as a few paths one over the other: where several fall on the same pixel the column grows darker, up to the fullest one,
+ * so that thousands still show where most lie. Pixels; pure.
+ */
+export function tickLayers(xs: readonly number[]): { key: string; path: string; opacity: number }[] {
+	const counts = new Map<number, number>();
+	for (const x of xs) counts.set(Math.round(x), (counts.get(Math.round(x)) ?? 0) + 1);
+	const fullest = Math.max(0, ...counts.values());
+	const layerCount = Math.min(fullest, mostLayers);
+	return Array.from({ length: layerCount }, (_, layer) => ({
+		key: `layer ${layer}`,
+		path: [...counts].flatMap(([x, count]) => (count * layerCount > layer * fullest ? [`M${x}.5 21v16`] : [])).join(''),
+		opacity: layerCount <= 3 ? 0.45 : 0.25,
+	}));
 }
