@@ -5,10 +5,9 @@ export const notFoundPage: RequestHandler = (request, response) => {
 	sendSentence(response, 404, request.originalUrl, 'There is nothing at this address.');
 };
 
-/** For a fault of ours: written to the log, never shown. A malformed address is the sender's. */
+/** For a fault of ours: written to the log, never shown. */
 export const errorPage: ErrorRequestHandler = (error: unknown, request, response, next) => {
 	if (response.headersSent) return next(error);
-	if (error instanceof URIError) return sendSentence(response, 400, request.originalUrl, 'This address cannot be read.');
 	console.error(`${request.method} ${request.baseUrl}${request.path} failed:`, error);
 	sendSentence(response, 500, request.originalUrl, 'Something went wrong on the server. What was stored before is safe; try again.');
 };
