@@ -2,10 +2,9 @@
 // The command line: installs and builds where needed (all of that on standard error), then runs the command where the person stands.
 import { spawn } from 'node:child_process';
 import { join } from 'node:path';
-import { build, install, root } from './prepare.mjs';
+import { prepare, root } from './prepare.mjs';
 
-install();
-build();
+prepare();
 // npm goes to the checkout first and says where the person stands; files are named from there.
 const cwd = process.cwd() === root ? (process.env.INIT_CWD ?? root) : process.cwd();
 const command = spawn(process.execPath, ['--enable-source-maps', join(root, 'dist/server/cli.js'), ...process.argv.slice(2)], {

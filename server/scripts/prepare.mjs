@@ -30,19 +30,26 @@ export function install() {
 	writeFileSync(installStamp, wanted);
 }
 
-/** Builds client and server, where a source changed since. */
+/** Builds client and server, where a source changed since. False where that fails; the lines above say why. */
 export function build() {
 	const hash = createHash('sha256');
 	for (const file of sources.flatMap(filesUnder)) hash.update(`${file}\0`).update(readFileSync(join(root, file)));
 	const wanted = hash.digest('hex');
-	if (stampOf(buildStamp) === wanted) return;
+	if (stampOf(buildStamp) === wanted) return true;
 	console.error('Building …');
 	rmSync(buildStamp, { force: true });
 	for (const mode of [[], ['--mode', 'server']]) {
-		if (!runNode([join(root, 'node_modules/vite/bin/vite.js'), 'build', ...mode])) stop('The build failed. See the lines above.');
+		if (!runNode([join(root, 'node_modules/vite/bin/vite.js'), 'build', ...mode])) return false;
 	}
 	mkdirSync(dirname(buildStamp), { recursive: true });
 	writeFileSync(buildStamp, wanted);
+	return true;
+}
+
+/** Installed and built, or ended with a sentence. */
+export function prepare() {
+	install();
+	if (!build()) stop('The build failed. See the lines above.');
 }
 
 /** Runs a program of ours with Node, its output on standard error. True where it ended well. */

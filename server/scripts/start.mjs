@@ -1,10 +1,9 @@
 // `npm start`: installs and builds where needed, then runs the server until it is stopped. A stop is passed on, so that the server closes its database.
 import { spawn } from 'node:child_process';
 import { join } from 'node:path';
-import { build, install, root } from './prepare.mjs';
+import { prepare, root } from './prepare.mjs';
 
-install();
-build();
+prepare();
 const server = spawn(process.execPath, ['--enable-source-maps', join(root, 'dist/server/main.js'), ...process.argv.slice(2)], {
 	cwd: root,
 	stdio: 'inherit',
