@@ -20,7 +20,7 @@ export interface Program {
 
 /** Programs of ours, built as the server is. */
 export interface Programs {
-	run: (name: string, environment?: Record<string, string>, input?: string) => Program;
+	run: (name: string, environment?: Record<string, string>, input?: string, args?: string[]) => Program;
 	/** Kills what still runs. */
 	endAll: () => Promise<void>;
 	remove: () => void;
@@ -45,8 +45,8 @@ export async function buildPrograms(files: string[]): Promise<Programs> {
 	});
 	let running: Program[] = [];
 	return {
-		run: (name, environment = {}, input) => {
-			const program = runProgram(join(outDir, `${name}.js`), environment, input);
+		run: (name, environment = {}, input = '', args = []) => {
+			const program = runProgram([join(outDir, `${name}.js`), ...args], environment, input);
 			running.push(program);
 			return program;
 		},
@@ -60,8 +60,8 @@ export async function buildPrograms(files: string[]): Promise<Programs> {
 }
 
 /** A process of its own, in the checkout. */
-function runProgram(file: string, environment: Record<string, string>, input: string | undefined): Program {
-	const child = spawn(process.execPath, [file], {
+function runProgram(fileAndArguments: string[], environment: Record<string, string>, input: string): Program {
+	const child = spawn(process.execPath, fileAndArguments, {
 		cwd: root,
 		env: { ...process.env, NODE_ENV: '', VITEST: '', ...environment },
 		stdio: ['pipe', 'pipe', 'pipe'],
