@@ -26,8 +26,13 @@ interface DeviationLayerProps {
 }
 
 /** How far a glyph is lifted off its face for the eye, pixels of the present scale and metres at most. */
-const liftPx = 9;
-const mostLiftM = 0.4;
+const liftPx = 4;
+const mostLiftM = 0.1;
+
+/** Rings of what is within: smaller where there are thousands, so that they stay the quiet ground of the picture. */
+function ringRadiusPx(markCount: number): number {
+	return Math.max(1.7, Math.min(3.3, 3.3 - (1.6 * (markCount - 300)) / 1500));
+}
 
 function glyphGeometry(marks: readonly DeviationMark[], originM: readonly [number, number, number]): BufferGeometry {
 	const places = new Float32Array(3 * marks.length);
@@ -117,6 +122,9 @@ export function DeviationLayer({ marks, chosenId, originM, times, colours }: Dev
 		const all: ShaderMaterial[] = [materials.seen, materials.behind, materials.over, materials.lines];
 		for (const { uniforms } of all) {
 			uniforms.uLiftM!.value = liftM;
+			if (uniforms.uMetresPerPx) uniforms.uMetresPerPx.value = 1 / camera.zoom;
+			if (uniforms.uDepthPerM) uniforms.uDepthPerM.value = camera.projectionMatrix.elements[10]! / 2;
+			if (uniforms.uRadiusPx) uniforms.uRadiusPx.value = ringRadiusPx(marks.length);
 			if (uniforms.uPixelRatio) uniforms.uPixelRatio.value = gl.getPixelRatio();
 			if (uniforms.uPicturePx) (uniforms.uPicturePx.value as Vector2).set(size.width, size.height);
 		}

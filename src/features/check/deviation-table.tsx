@@ -68,7 +68,7 @@ function wideColumns(scaleMm: number): Column<Deviation>[] {
 			head: 'Where',
 			isRowHead: true,
 			cell: (row) => (
-				<span className="line-clamp-2 w-0 min-w-full leading-tight whitespace-normal" title={row.label}>
+				<span className="line-clamp-2 w-0 min-w-full leading-[1.1] whitespace-normal" title={row.label}>
 					{row.label}
 				</span>
 			),

@@ -9,10 +9,10 @@ export const glyphNumber: Record<GlyphKind, number> = { within: 0, proud: 1, shy
 const boxPx = 26;
 
 /**
- * How much nearer to the eye a mark is taken to be, so that the face it stands on does not cut it in half: by what its outward normal looks at
- * the eye. On a face that looks away it is taken further off, so that nothing shows through a thin wall.
+ * How much nearer to the eye a mark is taken to be: by what its outward normal looks at the eye, so that a face that looks away keeps its
+ * marks to itself. Levels and places in plan lie on a plane that looks up.
  */
-export const liftOff = 'uLiftM * (dot(aNormal, aNormal) > 0.5 ? (modelViewMatrix * vec4(aNormal, 0.0)).z : 0.4)';
+export const liftOff = 'uLiftM * (dot(aNormal, aNormal) > 0.5 ? (modelViewMatrix * vec4(aNormal, 0.0)).z : 1.0)';
 
 const vertexShader = /* glsl */ `
 	attribute float aKind;
@@ -22,8 +22,12 @@ const vertexShader = /* glsl */ `
 	attribute vec3 aNormal;
 	varying float vKind;
 	varying vec2 vTurn;
+	varying vec2 vSlope;
 	void main() {
 		vKind = aKind;
+		// The glyph is flat on the screen, but hides and is hidden as if it lay on its face: how its depth changes across it.
+		vec3 normal = (modelViewMatrix * vec4(dot(aNormal, aNormal) > 0.5 ? aNormal : vec3(0.0, 0.0, 1.0), 0.0)).xyz;
+		vSlope = -normal.xy / (abs(normal.z) < 0.12 ? (normal.z < 0.0 ? -0.12 : 0.12) : normal.z);
 		vec4 seen = modelViewMatrix * vec4(position, 1.0);
 		// The way it deviates, as it is seen: the wedge and the arrow turn along it. Seen end on, a height keeps pointing up or down, all else right or left.
 		vec2 along = (modelViewMatrix * vec4(aShift, 0.0)).xy;
@@ -51,8 +55,12 @@ const fragmentShader = /* glsl */ `
 	uniform vec3 uRing;
 	uniform vec3 uDiamond;
 	uniform vec3 uDash;
+	uniform float uMetresPerPx;
+	uniform float uDepthPerM;
+	uniform float uRadiusPx;
 	varying float vKind;
 	varying vec2 vTurn;
+	varying vec2 vSlope;
 
 	float triangle(vec2 p, vec2 a, vec2 b, vec2 c) {
 		vec2 ab = b - a, bc = c - b, ca = a - c;
@@ -81,9 +89,9 @@ const fragmentShader = /* glsl */ `
 		float body;
 		float width = uEdgePx;
 		if (vKind < 0.5) {
-			body = length(q) - 3.3;
+			body = length(q) - uRadiusPx;
 			line = uRing;
-			width = uRingPx;
+			width = uRingPx * min(1.0, 0.4 + 0.18 * uRadiusPx);
 		} else if (vKind < 2.5) {
 			body = triangle(p, vec2(-5.6, 7.0), vec2(7.0, 0.0), vec2(-5.6, -7.0));
 			fill = vKind < 1.5 ? uProud : uShy;
@@ -105,6 +113,7 @@ const fragmentShader = /* glsl */ `
 		float inner = cover(body + width * 0.5);
 		float alpha = outer * uAlpha;
 		if (alpha < 0.02) discard;
+		gl_FragDepth = gl_FragCoord.z + dot(vSlope, q) * uMetresPerPx * uDepthPerM;
 		gl_FragColor = vec4(mix(line, fill, inner), alpha);
 	}
 `;
@@ -119,6 +128,9 @@ export function glyphMaterial(pass: 'seen' | 'behind' | 'over'): ShaderMaterial 
 		uniforms: {
 			uPixelRatio: { value: 1 },
 			uLiftM: { value: 0.05 },
+			uMetresPerPx: { value: 0.05 },
+			uDepthPerM: { value: 0 },
+			uRadiusPx: { value: 3.3 },
 			uAlpha: { value: pass === 'behind' ? 0.3 : 1 },
 			uEdgePx: { value: 1 },
 			uRingPx: { value: 2 },
