@@ -1,24 +1,13 @@
 import { type Range, useVirtualizer } from '@tanstack/react-virtual';
 import { type KeyboardEvent, type MouseEvent, type ReactNode, useCallback, useEffect, useMemo, useRef } from 'react';
 import { useIsCoarse } from '#src/lib/coarse-pointer.ts';
-import { linesOf, type RowGroup, rowLineFrom, type Sorting, type SortValue, sortedGroups } from './table-rows.ts';
+import { onlyFromClass, type TableColumn } from './table-column.ts';
+import { TableRow } from './table-row.tsx';
+import { linesOf, type RowGroup, rowLineFrom, type Sorting, sortedGroups } from './table-rows.ts';
 import { lineOffsets, windowParts, withKept } from './table-window.ts';
 
-export interface Column<Row> {
-	key: string;
-	/** With the unit: "Deviation, mm". */
-	head: ReactNode;
-	cell: (row: Row) => ReactNode;
-	/** `end`: figures. */
-	align?: 'start' | 'end';
-	/** The head becomes a press that orders the rows. */
-	orderBy?: (row: Row) => SortValue;
-	/** This cell names the row; one column has it. */
-	isRowHead?: boolean;
-	/** Left out on narrower screens. */
-	onlyFrom?: 'tablet' | 'cabin' | 'desk';
-	widthPx?: number;
-}
+/** A column as data. */
+export type Column<Row> = TableColumn<Row>;
 
 /** Rows under a head of their own. */
 export interface TableGroup<Row> extends RowGroup<Row> {
@@ -50,7 +39,6 @@ interface TableProps<Row> {
 
 const windowFromLines = 80;
 const headHeightPx = 40;
-const onlyFromClass = { tablet: 'max-tablet:hidden', cabin: 'max-cabin:hidden', desk: 'max-desk:hidden' } as const;
 
 /**
  * A real table. Rows have one fixed height, so thousands are drawn by window, between spacer rows; the head stays; arrows, Home, End and
@@ -62,7 +50,8 @@ export function Table<Row>(props: TableProps<Row>) {
 	const rowHeightPx = props.rowHeightPx ?? (isCoarse ? 48 : 44);
 	const groupHeightPx = Math.min(rowHeightPx, isCoarse ? 48 : 46);
 	const box = useRef<HTMLDivElement>(null);
-	const takesFocus = useRef(false);
+	/** The line that keys have reached: presses come faster than the address follows, and none may be lost. */
+	const reached = useRef<number | null>(null);
 
 	const lines = useMemo(() => {
 		const given: readonly TableGroup<Row>[] = props.groups ?? [{ key: '', head: null, rows: rows ?? [] }];
@@ -113,10 +102,10 @@ export function Table<Row>(props: TableProps<Row>) {
 		const isFirst = shownChoice.current === -1;
 		shownChoice.current = chosenLine;
 		if (isWindowed) virtualizer.scrollToIndex(chosenLine, { align: isFirst ? 'center' : 'auto' });
-		const row = box.current?.querySelector<HTMLElement>(`tr[data-line="${chosenLine}"]`);
-		if (takesFocus.current) row?.focus({ preventScroll: isWindowed });
-		else if (!isWindowed && scrollClass !== '') row?.scrollIntoView?.({ block: 'nearest' });
-		takesFocus.current = false;
+		if (reached.current !== null) {
+			focusLine(box.current, chosenLine);
+			if (reached.current === chosenLine) reached.current = null;
+		} else if (!isWindowed && scrollClass !== '') lineElement(box.current, chosenLine)?.scrollIntoView?.({ block: 'nearest' });
 	}, [chosenLine, isWindowed, scrollClass, virtualizer]);
 
 	const chooseLine = (index: number) => {
@@ -133,10 +122,10 @@ export function Table<Row>(props: TableProps<Row>) {
 			return;
 		}
 		const pageRows = Math.max(1, Math.floor((box.current?.clientHeight ?? 400) / rowHeightPx) - 2);
-		const next = rowLineFrom(lines, at, event.key, pageRows);
+		const next = rowLineFrom(lines, reached.current ?? at, event.key, pageRows);
 		if (next === null) return;
 		event.preventDefault();
-		takesFocus.current = true;
+		reached.current = next === chosenLine ? null : next;
 		chooseLine(next);
 	};
 	const onClick = (event: MouseEvent<HTMLTableSectionElement>) => {
@@ -202,37 +191,23 @@ export function Table<Row>(props: TableProps<Row>) {
 								</tr>
 							);
 						}
-						const isChosen = part.index === chosenLine;
 						return (
-							<tr
+							<TableRow
 								key={line.key}
-								data-line={part.index}
+								row={line.row}
+								columns={columns}
+								line={part.index}
+								heightPx={rowHeightPx}
+								isChosen={part.index === chosenLine}
 								tabIndex={onChoose ? (part.index === tabLine ? 0 : -1) : undefined}
-								aria-current={isChosen || undefined}
-								aria-rowindex={isWindowed ? part.index + 2 : undefined}
-								style={{ height: rowHeightPx }}
-								className={`${isChosen ? 'row-chosen' : ''} ${onChoose ? 'cursor-pointer hover:bg-ground focus-visible:outline-offset-[-3px]' : ''}`}
-							>
-								{columns.map((column) => (
-									<Cell key={column.key} column={column} row={line.row} isInGroup={props.groups !== undefined} />
-								))}
-							</tr>
+								isWindowed={isWindowed}
+								isInGroup={props.groups !== undefined}
+							/>
 						);
 					})}
 				</tbody>
 			</table>
 		</div>
-	);
-}
-
-function Cell<Row>({ column, row, isInGroup }: { column: Column<Row>; row: Row; isInGroup: boolean }) {
-	const classes = `border-b border-b-hair px-2 py-0 whitespace-nowrap ${column.align === 'end' ? 'text-right' : 'text-left'} ${column.onlyFrom ? onlyFromClass[column.onlyFrom] : ''}`;
-	return column.isRowHead ? (
-		<th scope="row" className={`${classes} ${isInGroup ? 'pl-5' : 'pl-4'} font-normal`}>
-			{column.cell(row)}
-		</th>
-	) : (
-		<td className={classes}>{column.cell(row)}</td>
 	);
 }
 
@@ -243,6 +218,18 @@ function SortMark({ state }: { state: 'up' | 'down' | 'none' }) {
 			{state !== 'up' && <path d="M1.500 7L5 11L8.500 7" className="fill-none stroke-current" strokeWidth="1.600" />}
 		</svg>
 	);
+}
+
+function lineElement(box: HTMLElement | null, line: number): HTMLElement | null {
+	return box?.querySelector<HTMLElement>(`tr[data-line="${line}"]`) ?? null;
+}
+
+/** Gives a row the focus, as soon as the window has drawn it. */
+function focusLine(box: HTMLElement | null, line: number, tries = 4): void {
+	const row = lineElement(box, line);
+	if (row) row.focus({ preventScroll: true });
+	if (row && !row.hasAttribute('data-windowed')) row.scrollIntoView?.({ block: 'nearest' });
+	if (!row && tries > 0) requestAnimationFrame(() => focusLine(box, line, tries - 1));
 }
 
 /** The line an event in the body came from. */

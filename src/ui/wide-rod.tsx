@@ -1,4 +1,4 @@
-import { type MouseEvent, useMemo, useRef } from 'react';
+import { Children, type MouseEvent, useMemo, useRef } from 'react';
 import { useElementWidth } from '#src/lib/element-width.ts';
 import { diamondPath, GlyphMark, glyphPath, halfDiamondPath } from './glyph.tsx';
 import type { GlyphKind } from './glyph-kind.ts';
@@ -103,7 +103,8 @@ const manyGlyphs = 40;
 function OffGlyphs({ kind, xs }: { kind: (typeof offKinds)[number]; xs: readonly number[] }) {
 	const size = kind === 'close' ? 6 : 7;
 	if (xs.length <= manyGlyphs) {
-		return xs.map((x, place) => <GlyphMark key={`${place} ${x}`} kind={kind} x={x} y={middleY} size={size} />);
+		// Keys of their places: two may stand on the same pixel.
+		return Children.toArray(xs.map((x) => [<GlyphMark key={x} kind={kind} x={x} y={middleY} size={size} />]));
 	}
 	const drawn = (path: (x: number) => string) => xs.map(path).join('');
 	return kind === 'close' ? (
