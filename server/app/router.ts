@@ -1,12 +1,16 @@
 import { accountRoutes } from '../features/account/routes.ts';
 import { checkRoutes } from '../features/check/routes.ts';
+import { controlRoutes } from '../features/control/routes.ts';
 import { fitRoutes } from '../features/fit/routes.ts';
 import { jobRoutes } from '../features/job/routes.ts';
 import { modelRoutes } from '../features/model/routes.ts';
 import { pourRoutes } from '../features/pour/routes.ts';
 import { siteRoutes } from '../features/site/routes.ts';
+import { surveyRoutes } from '../features/survey/routes.ts';
 import { toleranceRoutes } from '../features/tolerance/routes.ts';
 import { foundSiteRoute } from '../workflows/found-site.ts';
+import { storeControlRoute } from '../workflows/store-control.ts';
+import { storeSurveyRoute } from '../workflows/store-survey.ts';
 
 /** All routes of the contract. */
 export const router = {
@@ -14,6 +18,8 @@ export const router = {
 	site: { ...siteRoutes, found: foundSiteRoute },
 	job: jobRoutes,
 	model: modelRoutes,
+	control: { ...controlRoutes, store: storeControlRoute },
+	survey: { ...surveyRoutes, store: storeSurveyRoute },
 	fit: fitRoutes,
 	tolerance: toleranceRoutes,
 	check: checkRoutes,
