@@ -2,7 +2,7 @@ import type { Finding, FitResult } from '../fit/fit-schema.ts';
 import type { Vector3 } from '../geometry/frame.ts';
 import type { Checkpoint, Element } from '../model/model-schema.ts';
 import type { Stage, ToleranceSheet } from '../tolerance/sheet-schema.ts';
-import type { CheckSummary, Deviation } from './check-schema.ts';
+import type { CheckSummary, DerivedResult, Deviation } from './check-schema.ts';
 
 /** What a check is computed from. Metres; survey points in the survey frame of their set-up, checkpoints in the design frame. */
 
@@ -70,6 +70,8 @@ export interface UnmatchedPoint {
 export interface CheckOutput {
 	/** One for every checkpoint, in the order given. */
 	readonly deviations: Deviation[];
+	/** Results from several checkpoints, where the sheet has a rule for them. */
+	readonly derived: DerivedResult[];
 	readonly findings: Finding[];
 	readonly unmatchedPoints: UnmatchedPoint[];
 	readonly summary: CheckSummary;

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { characteristic } from '../tolerance/sheet-schema.ts';
+import { characteristic, derivedCharacteristics } from '../tolerance/sheet-schema.ts';
 
 /** What a check answers for one checkpoint. Places in metres, design frame; deviations, limits and uncertainties in millimetres; + is proud or high. */
 
@@ -54,3 +54,23 @@ export type Deviation = z.infer<typeof deviationSchema>;
 
 export const checkSummary = z.record(verdict, z.number().int());
 export type CheckSummary = z.infer<typeof checkSummary>;
+
+/** A result made from several checkpoints of one element or group. Millimetres. */
+export const derivedResultSchema = z.object({
+	/** The element; of a group its first. */
+	elementId: z.string(),
+	characteristic: z.enum(derivedCharacteristics),
+	/** In words: "leans along north over 2.4 m". */
+	label: z.string(),
+	/** plumb: the top over the bottom along an axis; section: + is thick; flatness: the greatest gap, or the band about the plane; bolt-distance: + is too far apart. */
+	deviationMm: z.number(),
+	/** U with the covariance between the places; null where a part is not known. */
+	uncertaintyMm: z.number().nullable(),
+	limitsMm: z.tuple([z.number().nullable(), z.number().nullable()]).nullable(),
+	ruleId: z.string(),
+	verdict,
+	conformity: z.number().nullable(),
+	/** Ids of the checkpoints it is made from. */
+	from: z.array(z.string()),
+});
+export type DerivedResult = z.infer<typeof derivedResultSchema>;

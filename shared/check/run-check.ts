@@ -5,6 +5,7 @@ import type { CheckInput, CheckInputCheckpoint, CheckInputElement, CheckOutput }
 import { type CheckSummary, type Deviation, verdicts } from './check-schema.ts';
 import type { CheckedCheckpoint } from './checked-checkpoint.ts';
 import { commonShiftFindings } from './common-shift.ts';
+import { deriveResults } from './derived/derive-results.ts';
 import { type CheckpointLimits, checkpointLimits, judgeDeviation, type LimitFault } from './judge-deviation.ts';
 import { type MeasuredDeviation, measureDeviation } from './measure-deviation.ts';
 import { meetCheckpoints } from './meet-checkpoints.ts';
@@ -61,6 +62,7 @@ export function runCheck(input: CheckInput, options: CheckProgress = {}): CheckO
 	);
 	return {
 		deviations,
+		derived: deriveResults(input, checked),
 		findings: [
 			...meetingFindings(input, meetings, reachM),
 			...commonShiftFindings(checked),
