@@ -61,6 +61,7 @@ export const routes: RouteObject[] = [
 								path: 'surveys/:surveyId',
 								word: 'Survey',
 							}),
+							sitePage('check', 'check', () => import('#src/pages/checks/checks-page.tsx')),
 							sitePage('checks/:checkId', 'check', () => import('#src/pages/check/check-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('pours', 'pours', () => import('#src/pages/pours/pours-page.tsx')),

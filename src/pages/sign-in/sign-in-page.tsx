@@ -4,6 +4,7 @@ import { SignInForm } from '#src/features/account/sign-in-form.tsx';
 import { api } from '#src/lib/api.ts';
 import { Headline } from '#src/ui/headline.tsx';
 import { Mark } from '#src/ui/mark.tsx';
+import { backOf } from './back-of.ts';
 
 /** Sign in, and go on to where one wanted to go. */
 export default function SignInPage() {
@@ -28,9 +29,4 @@ export default function SignInPage() {
 			<footer className="mt-4 text-small text-second">No account? Whoever leads your site invites you.</footer>
 		</div>
 	);
-}
-
-/** Only addresses of this program: "//elsewhere" and "https:…" lead out of it. */
-export function backOf(asked: string | null): string {
-	return asked?.startsWith('/') && !asked.startsWith('//') && !asked.startsWith('/\\') && !asked.startsWith('/sign-in') ? asked : '/sites';
 }
