@@ -1,6 +1,5 @@
 import { type HTMLInputAutoCompleteAttribute, type ReactNode, useId } from 'react';
 import { get, useFormContext } from 'react-hook-form';
-import { numberOf } from './number-of.ts';
 
 const inputClass =
 	'block min-h-11 w-full rounded-corner border-[1.5px] border-field bg-sheet px-3 py-1.5 text-body text-ink placeholder:text-second aria-invalid:border-2 aria-invalid:border-ink pointer-coarse:min-h-12';
@@ -137,6 +136,17 @@ export function NumberField({ name, label, hint, className, unit, isOptional = f
 			</span>
 		</FieldFrame>
 	);
+}
+
+/** What was typed as a number; NaN where it is none, so that the schema refuses it. */
+export function numberOf(typed: unknown, isOptional: boolean): number | null {
+	if (typeof typed === 'number' || typed === null) return typed;
+	const text = String(typed ?? '')
+		.trim()
+		.replace('\u2212', '-')
+		.replace(',', '.');
+	if (text === '') return isOptional ? null : Number.NaN;
+	return Number(text);
 }
 
 interface SelectFieldProps extends FieldProps {

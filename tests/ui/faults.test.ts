@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { faultOf } from '#src/app/fault-of.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
 import { backOf } from '#src/pages/sign-in/back-of.ts';
-import { numberOf } from '#src/ui/number-of.ts';
+import { numberOf } from '#src/ui/field.tsx';
 
 describe('a refusal in words', () => {
 	it('keeps the contract’s own message and the field it names', () => {
