@@ -5,6 +5,7 @@ import { checkpoints, elements, revisions } from '../../server/db/schema/model.t
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { aSite, type BuiltSite } from '../builders/a-site.ts';
 import { followJob } from '../builders/follow-job.ts';
+import { readModel } from '../builders/read-model.ts';
 import { uploadFile } from '../builders/upload-file.ts';
 import { openTestServer, type TestServer } from './harness.ts';
 
@@ -18,18 +19,8 @@ afterAll(() => server.close());
 
 const fixture = (name: string) => readFileSync(new URL(`../../fixtures/ifc/${name}`, import.meta.url));
 
-/** Uploads and reads a file as a new model, or as a revision of one, and follows the reading to its end. */
-async function read(fileName: string, content: string | Uint8Array, model: { modelId: string } | { newName: string }) {
-	const { engineer, siteId } = site;
-	const uploadId = await uploadFile(server, engineer, fileName, content);
-	const { revisionId, jobId } = await engineer.api.model.read({ siteId, uploadId, model });
-	const end = await followJob(engineer.api, siteId, jobId);
-	const revision = (await engineer.api.model.list({ siteId }))
-		.flatMap(({ revisions }) => revisions)
-		.find((one) => one.revisionId === revisionId);
-	if (revision === undefined) throw new Error('The revision is not in the list.');
-	return { end, revision, jobId };
-}
+const read = (fileName: string, content: string | Uint8Array, model: { modelId: string } | { newName: string }) =>
+	readModel(server, site.engineer, fileName, content, model);
 
 const storedOf = async (revisionId: string) => ({
 	elements: await server.platform.db.select({ id: elements.id }).from(elements).where(eq(elements.revisionId, revisionId)),
