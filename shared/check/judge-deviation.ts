@@ -76,8 +76,8 @@ function beyondLimitsMm(
 
 /** Verdict, conformity and excess of one checkpoint. */
 export function judgeDeviation(
-	measured: MeasuredDeviation | null,
-	{ limitsMm, boxYawRad }: CheckpointLimits,
+	measured: Pick<MeasuredDeviation, 'deviationMm' | 'offsetMm' | 'covarianceMm2' | 'expandedUncertaintyMm'> | null,
+	{ limitsMm, boxYawRad }: Pick<CheckpointLimits, 'limitsMm' | 'boxYawRad'>,
 	decision: DecisionRule,
 ): Pick<Deviation, 'verdict' | 'conformity' | 'beyondMm'> {
 	if (measured === null) return { verdict: 'not-measured', conformity: null, beyondMm: null };
