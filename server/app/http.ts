@@ -66,7 +66,8 @@ function calls({ platform, sessions, router }: Pick<HttpParts, 'platform' | 'ses
 	const tries = countTries(platform.now);
 	const handler = new RPCHandler<RequestContext>(router satisfies AnyRouter, {
 		plugins: [new BodyLimitPlugin({ maxBodySize: largestCallBytes }), new CompressionPlugin()],
-		interceptors: [
+		// Inside of the decoding: what cannot be read is the sender's fault and no line of the log.
+		clientInterceptors: [
 			onError((error) => {
 				if (!(error instanceof ORPCError)) console.error('A call failed:', error);
 			}),

@@ -1,3 +1,5 @@
+import type { Router } from '@orpc/server';
+import type { contract } from '#shared/contract.ts';
 import { accountRoutes } from '../features/account/routes.ts';
 import { checkRoutes } from '../features/check/routes.ts';
 import { controlRoutes } from '../features/control/routes.ts';
@@ -8,11 +10,12 @@ import { pourRoutes } from '../features/pour/routes.ts';
 import { siteRoutes } from '../features/site/routes.ts';
 import { surveyRoutes } from '../features/survey/routes.ts';
 import { toleranceRoutes } from '../features/tolerance/routes.ts';
+import type { RequestContext } from '../platform/guard.ts';
 import { foundSiteRoute } from '../workflows/found-site.ts';
 import { storeControlRoute } from '../workflows/store-control.ts';
 import { storeSurveyRoute } from '../workflows/store-survey.ts';
 
-/** All routes of the contract. */
+/** All routes of the contract: one that is missing does not compile. */
 export const router = {
 	account: accountRoutes,
 	site: { ...siteRoutes, found: foundSiteRoute },
@@ -24,4 +27,4 @@ export const router = {
 	tolerance: toleranceRoutes,
 	check: checkRoutes,
 	pour: pourRoutes,
-};
+} satisfies Router<typeof contract, RequestContext>;

@@ -14,6 +14,9 @@ import { httpApp, uploadsPath } from './http.ts';
 import { jobRunners } from './jobs.ts';
 import { router } from './router.ts';
 
+/** One request may take this long to arrive: a model over a site's mobile network. An upload that is cut goes on where it was. */
+const requestTimeoutMs = 30 * 60_000;
+
 /** A server that answers, and works on its jobs. */
 export interface RunningServer {
 	address: string;
@@ -49,7 +52,7 @@ export async function startOn(connection: Connection, configuration: Configurati
 	const uploads = openUploads({ platform, path: uploadsPath, largestBytes: configuration.largestUploadBytes });
 	await sessions.deleteExpired();
 	await uploads.sweep();
-	const server = createServer();
+	const server = createServer({ requestTimeout: requestTimeoutMs });
 	const client = await clientOf({ isDevelopment: configuration.isDevelopment, server });
 	server.on('request', httpApp({ platform, sessions, uploads, router, client: client.handler, settings: configuration }));
 	const address = await listen(server, configuration);

@@ -43,6 +43,7 @@ export function openUploads({ platform, path, largestBytes }: { platform: Platfo
 		namingFunction: () => randomBytes(16).toString('hex'),
 		onIncomingRequest: async (request, uploadId) => {
 			const signedIn = asker();
+			if (request.method === 'GET') refuse(405, 'An upload is sent here, not fetched.');
 			if (request.method !== 'POST') await ownUpload(platform, signedIn, uploadId);
 		},
 		onUploadCreate: async (_request, upload) => {

@@ -44,12 +44,6 @@ describe('every answer', () => {
 		}
 	});
 
-	it('asks for TLS from then on only where cookies are bound to it', async () => {
-		const secure = await openTestServer({ isCookieSecure: true });
-		expect((await secure.fetch('/health')).headers.get('strict-transport-security')).toMatch(/^max-age=15552000/);
-		await secure.close();
-	});
-
 	it('of a call is kept by nobody on the way', async () => {
 		expect((await call('site/list')).headers.get('cache-control')).toBe('no-store');
 	});

@@ -109,6 +109,7 @@ describe('an upload', () => {
 		expect((await send(location, bytes, 0, colleague.cookie)).status).toBe(404);
 		expect((await server.fetch(location, { method: 'DELETE', headers: tus, cookie: colleague.cookie })).status).toBe(404);
 		expect((await send(location, bytes, 0)).status).toBe(204);
+		expect((await server.fetch(location, { cookie: engineer.cookie })).status).toBe(405);
 		const { platform } = server;
 		const uploadId = idOf(location);
 		await expect(takeUpload(platform, colleague, uploadId)).rejects.toThrow('There is no such thing here');
