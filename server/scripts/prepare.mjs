@@ -9,7 +9,6 @@ import { fileURLToPath } from 'node:url';
 /** The checkout. */
 export const root = resolve(dirname(fileURLToPath(import.meta.url)), '../..');
 
-const installStamp = join(root, 'node_modules/.bb-lock');
 const buildStamp = join(root, 'dist/.bb-src');
 /** What goes into the built files. */
 const sources = ['shared', 'server', 'src', 'public', 'index.html', 'vite.config.ts', 'package-lock.json'];
@@ -22,12 +21,23 @@ if (major < 20 || (major === 20 && minor < 19)) {
 
 /** Installs what the lock file says, where it is not there yet. Exits with a sentence where that fails. */
 export function install() {
-	const wanted = sha256(readFileSync(join(root, 'package-lock.json')));
-	if (stampOf(installStamp) === wanted) return;
+	if (isInstalled()) return;
 	console.error('Installing packages …');
 	// Development packages too: they build the client. NODE_ENV=production would leave them out.
 	if (!runNpm(['ci', '--include=dev', '--no-audit', '--no-fund'])) stop('The packages could not be installed. See the lines above.');
-	writeFileSync(installStamp, wanted);
+}
+
+/** npm writes down at the end of an install what it has put there: the same versions as locked need no second install. */
+function isInstalled() {
+	const written = join(root, 'node_modules/.package-lock.json');
+	if (!existsSync(written)) return false;
+	const present = JSON.parse(readFileSync(written, 'utf8')).packages;
+	const locked = JSON.parse(readFileSync(join(root, 'package-lock.json'), 'utf8')).packages;
+	return Object.entries(locked).every(([path, { version, optional, link }]) => {
+		if (path === '' || link) return true;
+		// Other systems' builds of a package are locked too, and left out here.
+		return present[path] === undefined ? optional === true : present[path].version === version;
+	});
 }
 
 /** Builds client and server, where a source changed since. False where that fails; the lines above say why. */
@@ -39,7 +49,7 @@ export function build() {
 	console.error('Building …');
 	rmSync(buildStamp, { force: true });
 	for (const mode of [[], ['--mode', 'server']]) {
-		if (!runNode([join(root, 'node_modules/vite/bin/vite.js'), 'build', ...mode])) return false;
+		if (!runNode([join(root, 'node_modules/vite/bin/vite.js'), 'build', '--logLevel', 'warn', ...mode])) return false;
 	}
 	mkdirSync(dirname(buildStamp), { recursive: true });
 	writeFileSync(buildStamp, wanted);
@@ -77,10 +87,6 @@ function filesUnder(path) {
 
 function stampOf(file) {
 	return existsSync(file) ? readFileSync(file, 'utf8').trim() : null;
-}
-
-function sha256(bytes) {
-	return createHash('sha256').update(bytes).digest('hex');
 }
 
 function stop(sentence) {
