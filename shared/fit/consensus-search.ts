@@ -10,8 +10,9 @@ import { quickFit } from './solve-fit.ts';
 /** All minimal subsets are tried to here, a seeded sample beyond. */
 const EXHAUSTIVE_PAIRS = 40;
 const SAMPLES = 2000;
-/** So many of the largest groups are worked out in full. */
+/** So many of the largest groups are worked out in full: among many pairs the largest few are all but the same. */
 const WORKED_OUT = 24;
+const WORKED_OUT_OF_MANY = 6;
 
 /** Pairs that agree with one another, and the fit of them alone. `kept` are indices into the observations, rising. */
 export interface Consensus {
@@ -43,7 +44,9 @@ export function consensusGroups(observations: FitObservations): Consensus[] {
 		}
 		note(kept);
 	}
-	const largest = [...groups.values()].sort((a, b) => b.length - a.length).slice(0, WORKED_OUT);
+	const largest = [...groups.values()]
+		.sort((a, b) => b.length - a.length)
+		.slice(0, observations.count > EXHAUSTIVE_PAIRS ? WORKED_OUT_OF_MANY : WORKED_OUT);
 	const found = new Map<string, Consensus>();
 	for (const group of largest) {
 		const consensus = workOut(observations, group);
@@ -56,8 +59,28 @@ function degreesOf(known: number): number {
 	return (known & KNOWN_PLAN ? 2 : 0) + (known & KNOWN_HEIGHT ? 1 : 0);
 }
 
-/** Drops the worst pair until the rest agree, then takes back every pair that the rest do not contradict. Null where too few are left. */
+/** Drops the worst pair until the rest agree, then takes back all pairs that the rest do not contradict, until nothing changes. Null where too few are left. */
 function workOut(observations: FitObservations, group: readonly number[]): Consensus | null {
+	let consensus = dropWorst(observations, group);
+	const barred = new Set<number>();
+	for (let round = 0; consensus && round < 10; round++) {
+		const { kept, trial } = consensus;
+		const back = Array.from({ length: observations.count }, (_, i) => i).filter(
+			(i) => !kept.includes(i) && !barred.has(i) && agrees(observations, trial, i),
+		);
+		if (back.length === 0) break;
+		const wider = dropWorst(
+			observations,
+			[...kept, ...back].sort((x, y) => x - y),
+		);
+		for (const i of back) if (!wider?.kept.includes(i)) barred.add(i);
+		if (!wider || wider.kept.length <= kept.length) break;
+		consensus = wider;
+	}
+	return consensus;
+}
+
+function dropWorst(observations: FitObservations, group: readonly number[]): Consensus | null {
 	let kept = [...group];
 	let trial = tryFit(pickPairs(observations, kept));
 	while (trial && !trial.passes) {
@@ -65,28 +88,17 @@ function workOut(observations: FitObservations, group: readonly number[]): Conse
 		kept = kept.filter((i) => i !== worst);
 		trial = tryFit(pickPairs(observations, kept));
 	}
-	if (!trial) return null;
-	for (;;) {
-		let best: Consensus | null = null;
-		for (let i = 0; i < observations.count; i++) {
-			if (kept.includes(i)) continue;
-			const wider = [...kept, i].sort((a, b) => a - b);
-			const widened = tryFit(pickPairs(observations, wider));
-			if (!widened || !agrees(observations, trial, widened, i)) continue;
-			if (!best || widened.worst / widened.critical < best.trial.worst / best.trial.critical) best = { kept: wider, trial: widened };
-		}
-		if (!best) return { kept, trial };
-		({ kept, trial } = best);
-	}
+	return trial && { kept, trial };
 }
 
-/** With σ the widened fit's own test decides; with none a small set has τ near its bound whatever it holds, so the pair is held against the fit of the others. */
-function agrees(observations: FitObservations, trial: FitTrial, widened: FitTrial, i: number): boolean {
-	if (observations.sigmaGiven) return widened.passes;
-	if (trial.redundancy < 1) return false;
+/** A pair is held against the fit of the others: chi-square with σ, the ratio of variances with none. */
+function agrees(observations: FitObservations, trial: FitTrial, i: number): boolean {
 	const degrees = degreesOf(observations.known[i]!);
-	const ratio = prediction(observations, trial.adjustment, i) / degrees / Math.max(trial.objective / trial.redundancy, 1e-30);
-	return varianceRatioTail(ratio, degrees, trial.redundancy) > sidakLevel(observations.count);
+	const level = sidakLevel(observations.count);
+	const distance = prediction(observations, trial.adjustment, i);
+	if (observations.sigmaGiven) return distance <= chiSquareQuantile(1 - level, degrees);
+	if (trial.redundancy < 1) return false;
+	return varianceRatioTail(distance / degrees / Math.max(trial.objective / trial.redundancy, 1e-30), degrees, trial.redundancy) > level;
 }
 
 /** All subsets of `size` of `count`, or a seeded sample of distinct indices. */

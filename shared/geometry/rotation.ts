@@ -10,10 +10,10 @@ import type { Matrix3, Vector3 } from './frame.ts';
 export function turnAfter(rotation: Float64Array, turnX: number, turnY: number, turnZ: number): void {
 	const angle = Math.hypot(turnX, turnY, turnZ);
 	if (angle === 0) return;
-	const half = angle / 2;
 	const sine = Math.sin(angle) / angle;
-	// 1 − cos by the half angle: no cancellation for the last, tiny turns of an iteration.
-	const versine = (2 * Math.sin(half) * Math.sin(half)) / (angle * angle);
+	// (1 − cos)/angle² by the half angle: no cancellation for the last, tiny turns of an iteration, and no underflow.
+	const half = Math.sin(angle / 2) / angle;
+	const versine = 2 * half * half;
 	for (let column = 0; column < 3; column++) {
 		const x = rotation[column]!;
 		const y = rotation[3 + column]!;
