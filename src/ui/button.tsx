@@ -1,4 +1,4 @@
-import { type ButtonHTMLAttributes, type ReactNode, useId } from 'react';
+import { type ButtonHTMLAttributes, type ReactNode, useId, useState } from 'react';
 import { Link, type LinkProps } from 'react-router-dom';
 
 /** `act`: the one thing to do here. `quiet`: what else can be done. `plain`: in a line of text or a head. */
@@ -41,7 +41,10 @@ export function Button({
 	...rest
 }: ButtonProps) {
 	const reasonId = useId();
+	const [side, setSide] = useState<'left' | 'right'>('right');
 	const isOff = isBusy || Boolean(whyNot);
+	// The reason hangs towards the middle of the screen, so that it is never cut off.
+	const turn = (button: Element) => setSide(button.getBoundingClientRect().left < window.innerWidth / 2 ? 'left' : 'right');
 	return (
 		<span className={`group relative inline-flex ${className}`}>
 			<button
@@ -51,6 +54,14 @@ export function Button({
 				aria-disabled={isOff || undefined}
 				aria-busy={isBusy || undefined}
 				aria-describedby={whyNot ? reasonId : rest['aria-describedby']}
+				onPointerEnter={(event) => {
+					turn(event.currentTarget);
+					rest.onPointerEnter?.(event);
+				}}
+				onFocus={(event) => {
+					turn(event.currentTarget);
+					rest.onFocus?.(event);
+				}}
 				onClick={(event) => {
 					if (isOff) {
 						event.preventDefault();
@@ -66,7 +77,7 @@ export function Button({
 				<span
 					id={reasonId}
 					role="tooltip"
-					className="pointer-events-none invisible absolute top-full right-0 z-20 mt-1 w-max max-w-72 rounded-corner bg-ink px-3 py-2 text-left text-small text-ground opacity-0 shadow-lift group-focus-within:visible group-focus-within:opacity-100 group-hover:visible group-hover:opacity-100"
+					className={`pointer-events-none invisible absolute top-full z-20 mt-1 w-max max-w-72 rounded-corner bg-ink px-3 py-2 text-left text-small text-ground opacity-0 shadow-lift group-focus-within:visible group-focus-within:opacity-100 group-hover:visible group-hover:opacity-100 max-tablet:fixed max-tablet:inset-x-4 max-tablet:top-auto max-tablet:bottom-20 max-tablet:w-auto max-tablet:max-w-none ${side === 'left' ? 'left-0' : 'right-0'}`}
 				>
 					{whyNot}
 				</span>

@@ -16,7 +16,6 @@ const standing: readonly { key: string; does: string }[] = [
 	{ key: '↑ ↓', does: 'Move the choice along a table’s rows' },
 	{ key: 'Home End', does: 'First and last row' },
 	{ key: 'Enter', does: 'Open the chosen row' },
-	{ key: 'Esc', does: 'Close what is open' },
 	{ key: '?', does: 'This list' },
 ];
 
@@ -42,7 +41,7 @@ export function KeysProvider({ children }: { children: ReactNode }) {
 			const key = event.key.toLowerCase();
 			if (key === '?') {
 				event.preventDefault();
-				setShown([...[...entries.current].map((entry) => ({ key: entry.key.toUpperCase(), does: entry.does })), ...standing]);
+				setShown([...[...entries.current].map((entry) => ({ key: keyName(entry.key), does: entry.does })), ...standing]);
 				return;
 			}
 			const entry = [...entries.current].reverse().find((candidate) => candidate.key === key);
@@ -69,6 +68,12 @@ export function KeysProvider({ children }: { children: ReactNode }) {
 			</Dialog>
 		</KeysContext.Provider>
 	);
+}
+
+/** As it stands on the keyboard: "F", "Esc". */
+function keyName(key: string): string {
+	if (key === 'escape') return 'Esc';
+	return key.charAt(0).toUpperCase() + key.slice(1);
 }
 
 /** Gives a single key a meaning while the component is there, and a line in the list on "?". Does nothing outside a KeysProvider. */

@@ -89,7 +89,7 @@ function Homeless({ siteId, check }: { siteId: string; check: CheckDetail }) {
 						to={`/sites/${siteId}/checks/${check.checkId}`}
 						className="flex min-h-12 items-center gap-4 text-ink no-underline hover:bg-hair"
 					>
-						<span className="w-40 shrink-0 text-second">{row.words}</span>
+						<span className="w-28 shrink-0 text-second tablet:w-37">{row.words}</span>
 						<span>
 							{row.why} of check {check.number}
 						</span>

@@ -28,7 +28,7 @@ export function PourRows({ pours, check, isCheckTaut, timeZone, now }: PourRowsP
 	// The sun set's letters are an eighth larger.
 	const letters = useColourSet().set === 'sun' ? 1.125 : 1;
 	const timePx = 160 * letters;
-	const namePx = 330 * letters;
+	const namePx = 330;
 	const isWide = widthPx >= 1080;
 	const stringPx = isWide ? widthPx - timePx - namePx - rodPx - 8 : Math.min(648, widthPx - rodPx - 16);
 	const standings = pours.map((pour) => (check === undefined ? null : pourStanding(pour.pourId, check, isCheckTaut)));
@@ -67,12 +67,14 @@ export function PourRows({ pours, check, isCheckTaut, timeZone, now }: PourRowsP
 									<span className="block font-strong">
 										Pour {pour.number}, {pour.name}
 									</span>
-									<span className="block text-small text-second">
+									<span className="block min-h-[2lh] text-small text-second">
 										{standing === null
 											? `${counted(pour.elementCount, 'element')}, ${pour.companyName}`
 											: `${standing.words}; ${pour.companyName}`}
 									</span>
-									{!isWide && standing !== null && <span className="block text-small">Next: {nextWords[standing.at % 4]}</span>}
+									{!isWide && (
+										<span className="block text-small">{standing === null ? '\u00a0' : `Next: ${nextWords[standing.at % 4]}`}</span>
+									)}
 								</div>
 							</div>
 							<div className={isWide ? 'contents' : 'mt-1 flex items-start justify-between'}>
