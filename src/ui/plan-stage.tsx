@@ -14,6 +14,8 @@ interface PlanStageProps {
 	/** What is shown whole; design frame, metres. */
 	box: ViewBox;
 	children: (scale: PlanScale) => ReactNode;
+	/** Drawn over it, a layer of its own: what changes with every choice, so that thousands of glyphs are not painted again for one ring. */
+	over: (scale: PlanScale) => ReactNode;
 	/** Boxes in the design frame. */
 	commands: RefObject<ViewCommands | null>;
 	/** A press, in the plan's own pixels. */
@@ -40,7 +42,7 @@ function viewOf(box: ViewBox, size: { widthPx: number; heightPx: number }): Plan
 }
 
 /** The plan: drag or two fingers shift, wheel and pinch go nearer, arrows and + − do the same from the keyboard. Plain SVG, so it needs no graphics. */
-export function PlanStage({ label, box, children, commands, onPress, note }: PlanStageProps) {
+export function PlanStage({ label, box, children, over, commands, onPress, note }: PlanStageProps) {
 	const frame = useRef<HTMLDivElement>(null);
 	const size = useElementSize(frame, { widthPx: 518, heightPx: 396 });
 	/** Null: the whole, at whatever size the picture has. */
@@ -57,6 +59,8 @@ export function PlanStage({ label, box, children, commands, onPress, note }: Pla
 	const shiftX = size.widthPx / 2 - scale.x(view.middle[0]);
 	const shiftY = size.heightPx / 2 - scale.y(view.middle[1]);
 	const drawing = useMemo(() => children(scale), [children, scale]);
+	const drawingOver = useMemo(() => over(scale), [over, scale]);
+	const shiftTo = `translate(${shiftX.toFixed(1)} ${shiftY.toFixed(1)})`;
 
 	const shift = useCallback(
 		(xPx: number, yPx: number) =>
@@ -147,8 +151,11 @@ export function PlanStage({ label, box, children, commands, onPress, note }: Pla
 				event.stopPropagation();
 			}}
 		>
-			<svg width={size.widthPx} height={size.heightPx} className="block" aria-hidden="true">
-				<g transform={`translate(${shiftX.toFixed(1)} ${shiftY.toFixed(1)})`}>{drawing}</g>
+			<svg width={size.widthPx} height={size.heightPx} className="absolute inset-0 will-change-transform" aria-hidden="true">
+				<g transform={shiftTo}>{drawing}</g>
+			</svg>
+			<svg width={size.widthPx} height={size.heightPx} className="absolute inset-0 will-change-transform" aria-hidden="true">
+				<g transform={shiftTo}>{drawingOver}</g>
 				<g transform={`translate(34 ${size.heightPx - 34})`}>
 					<path d="M-6 14L0 -15L6 14L0 8Z" className="fill-ink" />
 					<text x={15} y={6} className="fill-ink text-small">

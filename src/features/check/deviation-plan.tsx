@@ -6,7 +6,6 @@ import { type DeviationMark, drawingOrder, hasLine } from './deviation-mark.ts';
 
 interface DeviationPlanProps {
 	marks: readonly DeviationMark[];
-	chosenId: string | null;
 	/** Lines are drawn so many times as long as the deviation. */
 	times: number;
 	scale: PlanScale;
@@ -60,7 +59,7 @@ function formOf(mark: DeviationMark, x: number, y: number): string {
 }
 
 /** The deviations from above: one path a form, so that 5 000 cost as few nodes as ten; lines as in the model. */
-export const DeviationPlan = memo(function DeviationPlan({ marks, chosenId, times, scale }: DeviationPlanProps) {
+export const DeviationPlan = memo(function DeviationPlan({ marks, times, scale }: DeviationPlanProps) {
 	const drawn = useMemo(() => {
 		const glyphs = new Map<GlyphKind, string[]>();
 		const lines = new Map<GlyphKind, string[]>();
@@ -85,7 +84,6 @@ export const DeviationPlan = memo(function DeviationPlan({ marks, chosenId, time
 			halves: halves.join(''),
 		};
 	}, [marks, times, scale]);
-	const chosen = marks.find((mark) => mark.checkpointId === chosenId);
 	return (
 		<>
 			{drawn.lines.map(({ kind, path }) => (
@@ -97,14 +95,18 @@ export const DeviationPlan = memo(function DeviationPlan({ marks, chosenId, time
 					{kind === 'close' && <path d={drawn.halves} className="glyph-close-half" />}
 				</g>
 			))}
-			{chosen && (
-				<g transform={`translate(${scale.x(chosen.place[0]).toFixed(1)} ${scale.y(chosen.place[1]).toFixed(1)})`}>
-					<circle r={14} className="string-edge" />
-					<circle r={14} className="string-core" />
-					<path d={formOf(chosen, 0, 0)} className={`glyph-${chosen.kind}`} />
-					{chosen.kind === 'close' && <path d={formAt(forms.half, 0, 0, [1, 0])} className="glyph-close-half" />}
-				</g>
-			)}
 		</>
 	);
 });
+
+/** The chosen one in its ring, over all others. */
+export function ChosenMark({ mark, scale }: { mark: DeviationMark; scale: PlanScale }) {
+	return (
+		<g transform={`translate(${scale.x(mark.place[0]).toFixed(1)} ${scale.y(mark.place[1]).toFixed(1)})`}>
+			<circle r={14} className="string-edge" />
+			<circle r={14} className="string-core" />
+			<path d={formOf(mark, 0, 0)} className={`glyph-${mark.kind}`} />
+			{mark.kind === 'close' && <path d={formAt(forms.half, 0, 0, [1, 0])} className="glyph-close-half" />}
+		</g>
+	);
+}

@@ -7,7 +7,6 @@ interface ModelPlanProps {
 	elements: readonly StoredElement[];
 	/** Entity numbers that are not drawn. */
 	hidden: ReadonlySet<number>;
-	chosen: number | null;
 	axes: readonly DrawnAxis[];
 	scale: PlanScale;
 }
@@ -23,7 +22,7 @@ function areaM2({ boxM }: StoredElement): number {
 }
 
 /** The model from above: each element's box, large ones under small ones, with the grid and its bubbles. */
-export const ModelPlan = memo(function ModelPlan({ elements, hidden, chosen, axes, scale }: ModelPlanProps) {
+export const ModelPlan = memo(function ModelPlan({ elements, hidden, axes, scale }: ModelPlanProps) {
 	// One path a tenfold of size: as many nodes for 3 000 elements as for 30.
 	const paths = useMemo(() => {
 		const bySize = new Map<number, string>();
@@ -35,7 +34,6 @@ export const ModelPlan = memo(function ModelPlan({ elements, hidden, chosen, axe
 		}
 		return [...bySize].sort((a, b) => b[0] - a[0]);
 	}, [elements, hidden, scale]);
-	const chosenElement = elements.find(({ entityNumber }) => entityNumber === chosen);
 	return (
 		<>
 			{paths.map(([size, path]) => (
@@ -54,7 +52,11 @@ export const ModelPlan = memo(function ModelPlan({ elements, hidden, chosen, axe
 					</text>
 				</g>
 			))}
-			{chosenElement && <path d={footprint(chosenElement, scale)} fill="none" className="stroke-ink" strokeWidth={1.6} />}
 		</>
 	);
 });
+
+/** The outline of one element in ink, over all others. */
+export function ChosenFootprint({ element, scale }: { element: StoredElement; scale: PlanScale }) {
+	return <path d={footprint(element, scale)} fill="none" className="stroke-ink" strokeWidth={1.6} />;
+}

@@ -50,6 +50,13 @@ function ComputingCheck({ check, siteId }: StateProps) {
 				note="You can leave this page; it goes on. Nothing is shown before every deviation stands."
 			/>
 			<div className="sheet mt-4 overflow-hidden">
+				<div className="flex h-10 items-center gap-6 border-b border-b-ink px-2 text-small font-medium text-second">
+					<span className="flex-1">Where</span>
+					<span className="max-tablet:hidden">Against its limits</span>
+					<span>mm</span>
+					<span>±</span>
+					<span className="w-36">Verdict</span>
+				</div>
 				<LoadingLines what="The deviations" rows={8} />
 			</div>
 		</>

@@ -2,9 +2,9 @@ import { useQuery } from '@tanstack/react-query';
 import { lazy, type RefObject, Suspense, useCallback, useEffect, useMemo, useReducer, useRef, useState } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
 import { exaggerationOf, nearestMark } from '#src/features/check/deviation-mark.ts';
-import { DeviationPlan } from '#src/features/check/deviation-plan.tsx';
+import { ChosenMark, DeviationPlan } from '#src/features/check/deviation-plan.tsx';
 import { drawnAxes, withBubbles } from '#src/features/model/grid-frame.ts';
-import { ModelPlan } from '#src/features/model/model-plan.tsx';
+import { ChosenFootprint, ModelPlan } from '#src/features/model/model-plan.tsx';
 import { api } from '#src/lib/api.ts';
 import { PressChip, Segmented } from '#src/ui/chip.tsx';
 import { hasWebGl2 } from '#src/ui/has-webgl.ts';
@@ -57,8 +57,8 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 
 	const [isOnlyThese, setOnlyThese] = useState(false);
 	const [putAway, setPutAway] = useState<ReadonlySet<number>>(new Set());
-	const marks = useMemo(() => view.drawnMarks(isOnlyThese), [view.drawnMarks, isOnlyThese]);
-	const allMarks = useMemo(() => view.drawnMarks(false), [view.drawnMarks]);
+	const marks = isOnlyThese ? view.drawnMarks.onlyThese : view.drawnMarks.all;
+	const allMarks = view.drawnMarks.all;
 	const shownEntities = useMemo(() => new Set(view.shown.map((group) => group.element.entityNumber)), [view.shown]);
 	const { storey } = view;
 	const hidden = useMemo(() => {
@@ -127,11 +127,22 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 	const drawPlan = useCallback(
 		(scale: PlanScale) => (
 			<>
-				<ModelPlan elements={elements} hidden={hidden} chosen={chosenEntity} axes={axes} scale={scale} />
-				<DeviationPlan marks={marks} chosenId={view.chosenId} times={times} scale={scale} />
+				<ModelPlan elements={elements} hidden={hidden} axes={axes} scale={scale} />
+				<DeviationPlan marks={marks} times={times} scale={scale} />
 			</>
 		),
-		[elements, hidden, chosenEntity, axes, marks, view.chosenId, times],
+		[elements, hidden, axes, marks, times],
+	);
+	const chosenModelElement = elements.find((element) => element.entityNumber === chosenEntity);
+	const chosenMark = marks.find((mark) => mark.checkpointId === view.chosenId);
+	const drawOverPlan = useCallback(
+		(scale: PlanScale) => (
+			<>
+				{chosenModelElement && <ChosenFootprint element={chosenModelElement} scale={scale} />}
+				{chosenMark && <ChosenMark mark={chosenMark} scale={scale} />}
+			</>
+		),
+		[chosenModelElement, chosenMark],
 	);
 	const lost = useCallback(
 		() => setFault('The device took the graphics away. The plan takes the model’s place; load the page again for the model.'),
@@ -173,7 +184,7 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 				</div>
 			)}
 			{!is3d && mode !== 'away' && (
-				<PlanStage label={label} box={planBox} commands={commands} onPress={pressPlan} note={note}>
+				<PlanStage label={label} box={planBox} over={drawOverPlan} commands={commands} onPress={pressPlan} note={note}>
 					{drawPlan}
 				</PlanStage>
 			)}
@@ -206,12 +217,12 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 						Whole
 					</PressChip>
 				</div>
+				{message !== null && (
+					<p role="status" className="pointer-events-none m-0 w-fit basis-full rounded-corner bg-sheet px-1.5 text-small text-second">
+						{message}
+					</p>
+				)}
 			</div>
-			{message !== null && (
-				<p role="status" className="pointer-events-none absolute inset-x-12 bottom-2 m-0 text-center text-small text-second">
-					{message}
-				</p>
-			)}
 		</div>
 	);
 }

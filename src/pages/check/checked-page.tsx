@@ -196,12 +196,7 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			)}
 			<div className={sides}>
 				<div className={isTableShown ? tableSide : 'hidden'}>
-					{isEmpty && view.shown.length === 0 ? (
-						<Notice kind="empty" title="Nothing was measured.">
-							No point of the survey met a checkpoint of this revision. Look at the findings above: names, reach or the fit may be the
-							reason.
-						</Notice>
-					) : view.shown.length === 0 ? (
+					{view.shown.length === 0 ? (
 						<NothingShown view={view} />
 					) : (
 						<DeviationTable
@@ -218,7 +213,13 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 				{card ? (
 					<div className={cardSide}>{card}</div>
 				) : (
-					!isPhone && <p className="m-0 px-1 text-second">Choose a row, a tick or a glyph: here stands what is known of it.</p>
+					!isPhone && (
+						<p className="m-0 px-1 text-second">
+							{isEmpty
+								? 'No point of the survey met a checkpoint of this revision. The findings above name the likely reason: names, reach or the fit.'
+								: 'Choose a row, a tick or a glyph: here stands what is known of it.'}
+						</p>
+					)
 				)}
 			</div>
 		</>

@@ -5,7 +5,6 @@ import { api } from '#src/lib/api.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
 import { useMay } from '#src/lib/session.ts';
 import { Button } from '#src/ui/button.tsx';
-import { Notice } from '#src/ui/notice.tsx';
 
 /** Why these figures no longer stand on the newest, and the press that makes new ones: "Rev 5 is newer; these figures stand on rev 4." */
 export function StaleNotice({ check, siteId }: { check: CheckDetail; siteId: string }) {
@@ -36,25 +35,24 @@ export function StaleNotice({ check, siteId }: { check: CheckDetail; siteId: str
 		run.mutate({ siteId, revisionId: newest.revisionId, surveyId: check.survey.surveyId, sheetId: issued.sheetId });
 	};
 	return (
-		<div className="mb-3">
-			<Notice
-				kind="stale"
-				title={reasons.join(' ')}
-				act={
-					mayCheck && (
-						<Button
-							weight="act"
-							onClick={again}
-							isBusy={run.isPending}
-							whyNot={newest === undefined || issued === undefined ? 'Looking for the newest revision and sheet …' : null}
-						>
-							Check again
-						</Button>
-					)
-				}
-			>
-				{run.error ? refusalOf(run.error).message : null}
-			</Notice>
-		</div>
+		<section
+			role="status"
+			className="sheet mb-2 flex flex-wrap items-center gap-x-5 gap-y-2 border-l-[7px] border-l-ink px-4 py-2 [border-left-style:dashed]"
+		>
+			<p className="m-0 min-w-0 flex-1 basis-72">
+				<b>{reasons.join(' ')}</b>
+				{run.error !== null && <span className="block">{refusalOf(run.error).message} Nothing was changed.</span>}
+			</p>
+			{mayCheck && (
+				<Button
+					weight="act"
+					onClick={again}
+					isBusy={run.isPending}
+					whyNot={newest === undefined || issued === undefined ? 'Looking for the newest revision and sheet …' : null}
+				>
+					Check again
+				</Button>
+			)}
+		</section>
 	);
 }

@@ -58,17 +58,20 @@ export function useCheckView(check: CheckDetail) {
 	const filterById = useMemo(() => new Map(check.deviations.map((row) => [row.checkpointId, filterOf(row)])), [check.deviations]);
 
 	/** What is drawn: the shown verdicts, and what is within as small rings, because "checked and well" is worth seeing; with "only these" not. */
-	const drawnMarks = useCallback(
-		(isOnlyThese: boolean): DeviationMark[] =>
+	const drawnOfFilter = useMemo(() => {
+		const drawn = (alsoWithin: boolean): DeviationMark[] =>
 			marks.filter((mark) => {
-				if (mark.checkpointId === chosenId) return true;
 				const verdict = filterById.get(mark.checkpointId);
-				if (!passingIds.has(mark.checkpointId) || verdict === undefined) return false;
-				return filter.verdicts.includes(verdict) || (verdict === 'within' && !isOnlyThese);
-			}),
-		[marks, chosenId, filterById, passingIds, filter],
+				if (verdict === undefined || !passingIds.has(mark.checkpointId)) return false;
+				return filter.verdicts.includes(verdict) || (alsoWithin && verdict === 'within');
+			});
+		return { all: drawn(true), onlyThese: drawn(false) };
+	}, [marks, filterById, passingIds, filter]);
+	// The chosen one is always drawn. Where it is among them anyway, a new choice builds nothing anew.
+	const drawnMarks = useMemo(
+		() => ({ all: withMark(drawnOfFilter.all, marks, chosenId), onlyThese: withMark(drawnOfFilter.onlyThese, marks, chosenId) }),
+		[drawnOfFilter, marks, chosenId],
 	);
-
 	const clear = useCallback(() => setChosenId(null), [setChosenId]);
 	return {
 		chosenId,
@@ -90,6 +93,13 @@ export function useCheckView(check: CheckDetail) {
 		elementById,
 		drawnMarks,
 	};
+}
+
+/** The same list where it holds the mark already. */
+function withMark(drawn: readonly DeviationMark[], marks: readonly DeviationMark[], checkpointId: string | null): readonly DeviationMark[] {
+	if (checkpointId === null || drawn.some((mark) => mark.checkpointId === checkpointId)) return drawn;
+	const chosen = marks.find((mark) => mark.checkpointId === checkpointId);
+	return chosen === undefined ? drawn : [...drawn, chosen];
 }
 
 export type CheckView = ReturnType<typeof useCheckView>;
