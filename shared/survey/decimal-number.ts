@@ -1,12 +1,12 @@
-/** Powers of ten that a double holds exactly. */
-const powersOfTen = Array.from({ length: 23 }, (_, k) => 10 ** k);
+/** Powers of ten up to the nine decimals that are read quickly. */
+const powersOfTen = Float64Array.from({ length: 10 }, (_, k) => 10 ** k);
 
 /**
- * mantissa·10^(−decimals), correctly rounded: both are exact as doubles up to 2⁵³ and 10²², and one division rounds once
- * (Clinger 1990, "How to read floating point numbers accurately", the fast path). Null where they are not exact.
+ * whole + fraction·10^(−decimals), correctly rounded: whole·10^decimals + fraction and the power are exact as doubles for at most fifteen digits
+ * together, and one division rounds once (Clinger 1990, "How to read floating point numbers accurately", the fast path).
  */
-export function scaledDecimal(mantissa: number, decimals: number): number | null {
-	return mantissa <= Number.MAX_SAFE_INTEGER && decimals <= 22 ? mantissa / powersOfTen[decimals]! : null;
+export function scaledDecimal(whole: number, fraction: number, decimals: number): number {
+	return decimals === 0 ? whole : (whole * powersOfTen[decimals]! + fraction) / powersOfTen[decimals]!;
 }
 
 /**

@@ -2,8 +2,8 @@ import type { Finding } from '../fit/fit-schema.ts';
 import { parseDecimal } from './decimal-number.ts';
 import { fieldOfHeader, foldHeader } from './point-headers.ts';
 import type { LengthUnit, PointField, PointTableReading } from './point-table-schema.ts';
-import { splitRecord } from './read-point-table.ts';
 import { endOfRecord } from './scan-points.ts';
+import { splitRecord } from './split-record.ts';
 import { detectEncoding, pointTableLimits, scannableText, whyNoTable } from './table-bytes.ts';
 
 export interface InspectedColumn {

@@ -3,6 +3,7 @@ import { toMetres } from './length-units.ts';
 import type { PointField, PointTableReading, RowFault } from './point-table-schema.ts';
 import { cleanText, whyNoName } from './point-text.ts';
 import { endOfRecord, type PointColumns, scanPoints, unquote } from './scan-points.ts';
+import { splitRecord } from './split-record.ts';
 import { pointTableLimits, scannableText, whyNoTable } from './table-bytes.ts';
 
 /** One row of a point file. Metres, in the file's axes: easting/x, northing/y, height/z. */
@@ -36,6 +37,7 @@ export interface PointTableDemands {
 }
 
 const mostFaults = 500;
+/** The three coordinates, in the order of `xyzM`. */
 const coordinateFields = ['easting', 'northing', 'height'] as const;
 const farM = 1e8;
 
@@ -93,28 +95,7 @@ function headerOf(text: ReturnType<typeof scannableText>, reading: PointTableRea
 	return [];
 }
 
-/** One record cut into cells, quotes taken off. */
-export function splitRecord(line: string, delimiter: string): string[] {
-	const cells: string[] = [];
-	let at = 0;
-	const isBlank = delimiter === ' ';
-	while (at <= line.length) {
-		if (isBlank) while (line[at] === ' ' || line[at] === '\t') at++;
-		const start = at;
-		let lead = at;
-		while (line[lead] === ' ') lead++;
-		if (line[lead] === '"') {
-			at = lead + 1;
-			while (at < line.length && (line[at] !== '"' || line[at + 1] === '"')) at += line[at] === '"' ? 2 : 1;
-		}
-		while (at < line.length && line[at] !== delimiter && !(isBlank && line[at] === '\t')) at++;
-		cells.push(unquote(line.slice(start, at).trim()).trim());
-		at++;
-		if (isBlank && line.slice(at).trim() === '') break;
-	}
-	return cells;
-}
-
+/** Makes rows and faults of the scanned columns of one file. */
 class RowReader {
 	private readonly faults: RowFault[] = [];
 	private faultCount = 0;

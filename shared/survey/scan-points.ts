@@ -37,21 +37,27 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 	const delimiter = reading.delimiter.charCodeAt(0);
 	const isBlankDelimited = delimiter === BLANK;
 	const mark = reading.decimalMark.charCodeAt(0);
+	// One look per byte of text: 1 ends a cell, 2 has no place in a text.
+	const stops = new Uint8Array(256);
+	for (let byte = 0; byte < 32; byte++) stops[byte] = byte === TAB ? 0 : 2;
+	stops[delimiter] = stops[LF] = stops[CR] = 1;
 	const fields = pointFields.filter((field) => reading.columns[field] !== undefined);
 	const width = Math.max(...fields.map((field) => reading.columns[field]!), 0) + 1;
 	const rowLimit = Math.min(pointTableLimits.rows, size) + 1;
-	let capacity = Math.min(rowLimit, 1024 + Math.ceil(size / 24));
+	let capacity = Math.min(rowLimit, 64 + Math.ceil((1.1 * size) / rowLength(bytes)));
 	let row = new Int32Array(capacity);
 	const numbers = new Map<PointField, Float64Array>();
 	const texts = new Map<PointField, Int32Array>();
 	for (const field of fields) {
 		if (textFields.has(field)) texts.set(field, new Int32Array(2 * capacity));
-		else numbers.set(field, new Float64Array(capacity).fill(Number.NaN));
+		else numbers.set(field, new Float64Array(capacity));
 	}
 	const numberAt: (Float64Array | null)[] = new Array(width).fill(null);
 	const textAt: (Int32Array | null)[] = new Array(width).fill(null);
 	const fieldAt: (PointField | null)[] = new Array(width).fill(null);
+	let numberColumns: Float64Array[] = [];
 	const bind = (): void => {
+		numberColumns = [...numbers.values()];
 		for (const field of fields) {
 			const column = reading.columns[field]!;
 			fieldAt[column] = field;
@@ -66,7 +72,7 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 		more.set(row);
 		row = more;
 		for (const [field, column] of numbers) {
-			const larger = new Float64Array(capacity).fill(Number.NaN);
+			const larger = new Float64Array(capacity);
 			larger.set(column);
 			numbers.set(field, larger);
 		}
@@ -108,6 +114,7 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 			break;
 		}
 		if (index >= capacity) grow();
+		for (let k = 0; k < numberColumns.length; k++) numberColumns[k]![index] = Number.NaN;
 		let cell = 0;
 		let isBad = false;
 		let isEnd = false;
@@ -134,25 +141,35 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 				end = at;
 				while (at < size && bytes[at] !== delimiter && bytes[at] !== LF && bytes[at] !== CR) at++;
 			} else if (numberColumn !== null) {
-				let mantissa = 0;
+				// Whole and fraction in 32-bit integers of at most nine digits each: twice as fast as one long product of doubles.
+				let whole = 0;
+				let fraction = 0;
 				let decimals = 0;
-				let digits = 0;
-				let isFraction = false;
 				const sign = bytes[at] === 45 ? -1 : 1;
 				if (bytes[at] === 45 || bytes[at] === 43) at++;
+				const first = at;
 				let byte = at < size ? bytes[at]! : LF;
-				for (;;) {
-					const digit = byte - 48;
-					if (digit >= 0 && digit <= 9) {
-						mantissa = mantissa * 10 + digit;
-						digits++;
-						if (isFraction) decimals++;
-					} else if (byte === mark && !isFraction && byte !== delimiter) isFraction = true;
-					else break;
+				let digit = byte - 48;
+				while (digit >= 0 && digit <= 9 && at - first < 9) {
+					whole = (whole * 10 + digit) | 0;
 					byte = ++at < size ? bytes[at]! : LF;
+					digit = byte - 48;
+				}
+				let digits = at - first;
+				if (byte === mark && byte !== delimiter) {
+					byte = ++at < size ? bytes[at]! : LF;
+					const firstDecimal = at;
+					digit = byte - 48;
+					while (digit >= 0 && digit <= 9 && at - firstDecimal < 9) {
+						fraction = (fraction * 10 + digit) | 0;
+						byte = ++at < size ? bytes[at]! : LF;
+						digit = byte - 48;
+					}
+					decimals = at - firstDecimal;
+					digits += decimals;
 				}
 				if (digits > 0 && digits < 16 && (byte === delimiter || byte === LF || byte === CR)) {
-					numberColumn[index] = sign * scaledDecimal(mantissa, decimals)!;
+					numberColumn[index] = sign * scaledDecimal(whole, fraction, decimals);
 					end = at;
 					start = end;
 				} else {
@@ -161,8 +178,8 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 				}
 			} else {
 				let byte = at < size ? bytes[at]! : LF;
-				while (byte !== delimiter && byte !== LF && byte !== CR) {
-					if (byte < 32 && byte !== TAB) hasControl = true;
+				while (stops[byte] !== 1) {
+					if (stops[byte] === 2) hasControl = true;
 					byte = ++at < size ? bytes[at]! : LF;
 				}
 				end = at;
@@ -205,7 +222,6 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 	/** The slot is used again by the next row. */
 	function forgetRow(index: number): void {
 		while (badNumbers.length > 0 && badNumbers.at(-1)!.index === index) badNumbers.pop();
-		for (const column of numbers.values()) column[index] = Number.NaN;
 		for (const column of texts.values()) column[2 * index] = column[2 * index + 1] = 0;
 	}
 }
@@ -213,6 +229,14 @@ export function scanPoints(text: ScannableText, reading: PointTableReading, head
 /** The text of a cell without its quotes. */
 export function unquote(cell: string): string {
 	return cell.length >= 2 && cell.startsWith('"') && cell.endsWith('"') ? cell.slice(1, -1).replaceAll('""', '"') : cell;
+}
+
+/** How many bytes a row takes, by the first of them: so much memory is asked for, and more if it was too little. */
+function rowLength(bytes: Uint8Array): number {
+	const looked = Math.min(bytes.length, 20_000);
+	let lines = 1;
+	for (let i = 0; i < looked; i++) if (bytes[i] === LF) lines++;
+	return Math.max(2, looked / lines);
 }
 
 function afterLineEnd(bytes: Uint8Array, at: number): number {

@@ -74,12 +74,14 @@ export function scannableText(bytes: Uint8Array, encoding: TextEncodingName): Sc
 	const body = hasMark ? bytes.subarray(3) : bytes;
 	const decoder = new TextDecoder('utf-8');
 	// One character a byte, so that a slice by bytes is right wherever all are ASCII; cutting it makes no copy byte by byte.
-	const narrow = new TextDecoder('latin1').decode(body);
+	// Made when the first text is asked for: who wants the numbers alone does not pay for it.
+	let narrow: string | null = null;
 	const decode = (start: number, end: number): string => {
 		for (let i = start; i < end; i++) {
 			if (body[i]! >= 0x80)
 				return encoding === 'utf-8' ? decoder.decode(body.subarray(start, end)) : decodeWindows1252(body.subarray(start, end));
 		}
+		narrow ??= new TextDecoder('latin1').decode(body);
 		return narrow.slice(start, end);
 	};
 	return { bytes: body, decode };
