@@ -65,14 +65,19 @@ export function isOnFace(plan: FacePlan, u: number, v: number): boolean {
 	return false;
 }
 
-/** Whether the place and four more at `margin` about it, along the face and across, all lie on the face: so none falls in an opening or over an edge. */
+/** Whether the place and eight more on a circle of `marginM` about it all lie on the face: so none falls in an opening, over an edge or on a corner. */
 export function isClear(plan: FacePlan, u: number, v: number, marginM: number): boolean {
+	if (!isOnFace(plan, u, v)) return false;
+	const diagonal = marginM * Math.SQRT1_2;
 	return (
-		isOnFace(plan, u, v) &&
 		isOnFace(plan, u - marginM, v) &&
 		isOnFace(plan, u + marginM, v) &&
 		isOnFace(plan, u, v - marginM) &&
-		isOnFace(plan, u, v + marginM)
+		isOnFace(plan, u, v + marginM) &&
+		isOnFace(plan, u - diagonal, v - diagonal) &&
+		isOnFace(plan, u + diagonal, v - diagonal) &&
+		isOnFace(plan, u - diagonal, v + diagonal) &&
+		isOnFace(plan, u + diagonal, v + diagonal)
 	);
 }
 

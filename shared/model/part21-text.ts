@@ -73,7 +73,8 @@ export function decodePart21String(raw: string): string {
 			at += 2;
 		} else if (raw[at + 1] === 'S' && raw[at + 2] === '\\' && at + 3 < raw.length) {
 			parts.push(decodePageByte(page, (raw.charCodeAt(at + 3) & 127) + 128));
-			at += 4;
+			// An apostrophe is doubled here too (§ is \S\'').
+			at += raw[at + 3] === "'" && raw[at + 4] === "'" ? 5 : 4;
 		} else if (raw[at + 1] === 'P' && raw[at + 3] === '\\' && PAGES[raw[at + 2] ?? ''] !== undefined) {
 			page = PAGES[raw[at + 2]!]!;
 			at += 4;

@@ -51,7 +51,10 @@ function slabCheckpoints(
 			kind,
 			'no place on its sides is clear of edges',
 		);
-	if (!top && !soffit && pair) return { kind, ...wallCheckpoints(mesh, faces) };
+	// Wing walls and the like are written as slabs: their main faces stand, and are far larger than top and soffit.
+	const isStanding =
+		pair !== null && Math.abs(pair.first.normal[2]) < 0.26 && (!top || (kind === 'slab' && pair.second.areaM2 > 2 * top.areaM2));
+	if (isStanding) return { kind: kind === 'slab' ? 'wall' : kind, ...wallCheckpoints(mesh, faces) };
 	const drafts: CheckpointDraft[] = [];
 	if (kind === 'footing') {
 		const axis = upward(axes, (candidate) => candidate.direction[2] > 0.9999);
