@@ -1,7 +1,7 @@
 import { existsSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { fileURLToPath, pathToFileURL } from 'node:url';
-import { type TransferListItem, Worker } from 'node:worker_threads';
+import { type TransferListItem, Worker, type WorkerOptions } from 'node:worker_threads';
 
 /** A worker's file beside the module that names it: `{ file: './compute-check.worker.ts', from: import.meta.url }`. */
 export interface WorkerFile {
@@ -28,9 +28,7 @@ export function runInThread<Input, Output>(worker: WorkerFile, input: Input, opt
 	const { signal, onProgress, transfer = [], memoryMb = 1024 } = options;
 	return new Promise<Output>((resolve, reject) => {
 		if (signal?.aborted) return reject(reasonOf(signal));
-		const { url, options: started } = startOf(worker);
-		const thread = new Worker(url, {
-			...started,
+		const thread = threadOf(worker, {
 			workerData: input,
 			transferList: [...transfer],
 			resourceLimits: { maxOldGenerationSizeMb: memoryMb },
@@ -54,17 +52,19 @@ export function runInThread<Input, Output>(worker: WorkerFile, input: Input, opt
 	});
 }
 
-/** In the source tree the TypeScript file beside the caller; built, the program of that name, beside the bundle or one folder up. */
-function startOf({ file, from }: WorkerFile): { url: URL; options: { execArgv?: string[] } } {
+/** Built, the program of that name, beside the bundle or one folder up; in the source tree the TypeScript file beside the caller. */
+function threadOf({ file, from }: WorkerFile, options: WorkerOptions): Worker {
 	const source = new URL(file, from);
 	if (existsSync(fileURLToPath(source))) {
-		const tsx = pathToFileURL(createRequire(from).resolve('tsx')).href;
-		return { url: source, options: { execArgv: ['--import', tsx] } };
+		// On Node 20 a thread takes no loader over from `--import`: it registers one itself, then begins.
+		const loader = pathToFileURL(createRequire(from).resolve('tsx/esm/api').replace(/\.cjs$/, '.mjs')).href;
+		const begin = `import(${JSON.stringify(loader)}).then(({ register }) => { register(); return import(${JSON.stringify(source.href)}); });`;
+		return new Worker(begin, { ...options, eval: true });
 	}
 	const name = file.replace(/\.ts$/, '.js');
 	for (const place of [name, `../${name}`]) {
 		const built = new URL(place, from);
-		if (existsSync(fileURLToPath(built))) return { url: built, options: {} };
+		if (existsSync(fileURLToPath(built))) return new Worker(built, options);
 	}
 	throw new Error(`There is no ${name} beside ${from}.`);
 }

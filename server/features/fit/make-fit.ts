@@ -26,7 +26,7 @@ export async function makeFit(
 	{ setupId, controlSetId, kind, knownScale, shelves }: MakeFit,
 ): Promise<{ ok: true; fit: FitDetail } | { ok: false; refusal: FitRefusal }> {
 	const { siteId } = member;
-	const { pairs, surveyFileSha256, controlFileSha256 } = await setupPairs(platform.db, { siteId, setupId, controlSetId });
+	const { pairs, setupName, surveyFileSha256, controlFileSha256 } = await setupPairs(platform.db, { siteId, setupId, controlSetId });
 	expectShelves(pairs, shelves);
 	const asked = shelvedInput(pairs.pairs, kind, knownScale, shelves);
 	const partial = partialInFree(asked);
@@ -35,7 +35,8 @@ export async function makeFit(
 	if (!read.ok) return read;
 	const outcome = computeFit(read.input);
 	if (!outcome.ok) return outcome;
-	const inputsSha256 = await sha256OfJson({ setupId, controlSetId, surveyFileSha256, controlFileSha256, shelves, fitInput: asked });
+	// By content, not by our ids: whoever has the same files comes to the same hash.
+	const inputsSha256 = await sha256OfJson({ surveyFileSha256, setupName, controlFileSha256, shelves, fitInput: asked });
 	const fitId = platform.newId();
 	await platform.transaction(async (tx) => {
 		await lockSite(tx, siteId);

@@ -16,6 +16,7 @@ export interface SetupAndControl {
 /** A set-up's pairs against a control set, with the hashes of the files that both came from. */
 export interface SetupPairs {
 	pairs: PairsOfSetup;
+	setupName: string;
 	surveyFileSha256: string;
 	controlFileSha256: string;
 }
@@ -70,6 +71,7 @@ export async function setupPairs(db: Handle, { siteId, setupId, controlSetId }: 
 	);
 	return {
 		pairs: { setupId, controlSetId, ...paired },
+		setupName: setup.name,
 		surveyFileSha256: survey.fileSha256,
 		controlFileSha256: control.fileSha256,
 	};
