@@ -1,5 +1,5 @@
-import { CholeskyDecomposition, Matrix } from 'ml-matrix';
 import { chiSquareQuantile } from '#shared/geometry/chi-square.ts';
+import { invertPositiveDefinite } from '#shared/geometry/cholesky.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
 import { toMatrix3 } from '#shared/geometry/rotation.ts';
 import { movePose } from './fit-pose.ts';
@@ -69,15 +69,17 @@ export function adjustSetups(
 		control: control.map((value, k) => value - centre[k]!),
 		sigma,
 	}));
-	let cofactor: Matrix | null = null;
+	if (size === 0) return notTied('There is nothing to adjust.');
+	let cofactor: Float64Array = new Float64Array(0);
 	let objective = 0;
 	for (let round = 0; round < 50; round++) {
 		const { normal, gradient, sum } = formSystem(size, place, standings, knownAt);
 		objective = sum;
-		const decomposition = new CholeskyDecomposition(normal);
-		if (!decomposition.isPositiveDefinite()) return notTied('The set-ups are not tied to one another and to the control well enough.');
-		cofactor = decomposition.solve(Matrix.eye(size));
-		const step = cofactor.mmul(gradient).to1DArray();
+		cofactor = normal;
+		if (!invertPositiveDefinite(cofactor, size)) return notTied('The set-ups are not tied to one another and to the control well enough.');
+		const step = Array.from({ length: size }, (_, row) =>
+			gradient.reduce((total, value, column) => total + normal[row * size + column]! * value, 0),
+		);
 		place.forEach((at, i) => {
 			for (let k = 0; k < 3; k++) at[k]! += step[3 * i + k]!;
 		});
@@ -90,7 +92,6 @@ export function adjustSetups(
 		}
 		if (Math.max(...step.map(Math.abs)) < 1e-11) break;
 	}
-	if (!cofactor) return notTied('There is nothing to adjust.');
 	objective = formSystem(size, place, standings, knownAt).sum;
 	const redundancy = 3 * (standings.reduce((sum, { sightings }) => sum + sightings.length, 0) + known.length) - size;
 	return { ok: true, adjusted: describe({ standings, place, marks, knownAt, centre, cofactor, objective, redundancy, confidence }) };
@@ -102,16 +103,16 @@ function formSystem(
 	place: readonly number[][],
 	standings: readonly Standing[],
 	known: readonly { mark: number; control: number[]; sigma: Vector3 }[],
-): { normal: Matrix; gradient: Matrix; sum: number } {
-	const normal = Matrix.zeros(size, size);
-	const gradient = Matrix.zeros(size, 1);
+): { normal: Float64Array; gradient: Float64Array; sum: number } {
+	const normal = new Float64Array(size * size);
+	const gradient = new Float64Array(size);
 	let sum = 0;
 	const add = (terms: readonly [number, number][], misclosure: number, sigma: number): void => {
 		const weight = 1 / (sigma * sigma);
 		sum += weight * misclosure * misclosure;
 		for (const [row, a] of terms) {
-			gradient.set(row, 0, gradient.get(row, 0) + weight * a * misclosure);
-			for (const [column, b] of terms) normal.set(row, column, normal.get(row, column) + weight * a * b);
+			gradient[row]! += weight * a * misclosure;
+			for (const [column, b] of terms) normal[row * size + column]! += weight * (a * b);
 		}
 	};
 	for (const { mark, control, sigma } of known)
@@ -143,13 +144,14 @@ interface Solved {
 	marks: readonly string[];
 	knownAt: readonly { mark: number; control: number[]; sigma: Vector3 }[];
 	centre: Vector3;
-	cofactor: Matrix;
+	cofactor: Float64Array;
 	objective: number;
 	redundancy: number;
 	confidence: number;
 }
 
 function describe({ standings, place, marks, knownAt, centre, cofactor, objective, redundancy, confidence }: Solved): AdjustedSetups {
+	const size = Math.sqrt(cofactor.length);
 	const varianceFactor = redundancy > 0 ? objective / redundancy : null;
 	const lower = redundancy > 0 ? chiSquareQuantile((1 - confidence) / 2, redundancy) : 0;
 	const upper = redundancy > 0 ? chiSquareQuantile((1 + confidence) / 2, redundancy) : 0;
@@ -188,7 +190,7 @@ function describe({ standings, place, marks, knownAt, centre, cofactor, objectiv
 			shift,
 			sigmaGiven: true,
 			scalesHeights: fit === 'free',
-			parameterCovariance: unknowns.map((_, i) => unknowns.map((__, j) => cofactor.get(at + i, at + j))),
+			parameterCovariance: unknowns.map((_, i) => unknowns.map((__, j) => cofactor[(at + i) * size + at + j]!)),
 			rms: Math.sqrt(square / Math.max(pairs.length, 1)),
 			redundancy,
 			varianceFactor,
@@ -202,7 +204,7 @@ function describe({ standings, place, marks, knownAt, centre, cofactor, objectiv
 	const adjustedMarks = marks.map((mark, i) => ({
 		mark,
 		place: [0, 1, 2].map((k) => place[i]![k]! + centre[k]!) as unknown as Vector3,
-		sigma: [0, 1, 2].map((k) => Math.sqrt(cofactor.get(3 * i + k, 3 * i + k))) as unknown as Vector3,
+		sigma: [0, 1, 2].map((k) => Math.sqrt(cofactor[(3 * i + k) * (size + 1)]!)) as unknown as Vector3,
 	}));
 	return { fits, marks: adjustedMarks, redundancy, varianceFactor, chiSquare };
 }
