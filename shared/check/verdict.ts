@@ -75,10 +75,12 @@ export function planDistance([east, north]: readonly [number, number]): number {
 }
 
 function judgeDisc({ offsetMm, covarianceMm2, radiusMm, decision }: DiscJudgement): JudgedVerdict {
-	const distanceMm = planDistance(offsetMm);
+	const lengthMm = planDistance(offsetMm);
+	// A mark on the circle in decimals is on it, whatever squares and root were rounded by.
+	const distanceMm = Math.abs(lengthMm - radiusMm) <= 2 * Number.EPSILON * radiusMm ? radiusMm : lengthMm;
 	const conformity = covarianceMm2 === null ? null : probabilityInDisc(offsetMm, covarianceMm2, radiusMm);
 	if (decision === 'simple') {
-		return { verdict: distanceMm <= radiusMm * (1 + 2 * Number.EPSILON) ? 'within' : 'outside', conformity };
+		return { verdict: distanceMm <= radiusMm ? 'within' : 'outside', conformity };
 	}
 	if (covarianceMm2 === null || conformity === null) return { verdict: 'undecided', conformity: null };
 	const verdict = guardedVerdict(distanceMm, sigmaAlong(covarianceMm2, offsetMm), [null, radiusMm]);
