@@ -1,6 +1,7 @@
 import { once } from 'node:events';
 import { readConfiguration } from './app/configuration.ts';
 import { startServer } from './app/start.ts';
+import { seedDemo } from './scripts/seed.ts';
 
 // Before the database is opened: a stop in the middle of the start must not leave the folder half made.
 // Not once: a terminal and npm both pass a Ctrl-C on, and the second must not cut the closing short.
@@ -8,7 +9,12 @@ const stop = new AbortController();
 for (const signal of ['SIGTERM', 'SIGINT'] as const) process.on(signal, () => stop.abort());
 
 try {
-	const running = await startServer(readConfiguration(process.env, process.argv.slice(2)));
+	const configuration = readConfiguration(process.env, process.argv.slice(2));
+	const running = await startServer(configuration);
+	if (configuration.isDemoWished && !stop.signal.aborted) {
+		const demo = await seedDemo(running.platform);
+		if (demo !== null) console.log(demo);
+	}
 	console.log(`Batterboard is at ${running.address}`);
 	if (!stop.signal.aborted) await once(stop.signal, 'abort');
 	await running.close();
