@@ -59,6 +59,7 @@ export function evaluateLimit(limit: Limit, sizesM: ElementSizesM): EvaluatedLim
 		const sizeMm = sizeInMm(sizesM, limit.of);
 		return sizeMm === null ? { missingSize: limit.of } : { limitMm: interpolate(limit.between, sizeMm) };
 	}
+	if (!('greaterOf' in limit || 'lesserOf' in limit)) return evaluateTerm(limit, sizesM);
 	const isGreater = 'greaterOf' in limit;
 	const [first, second] = (isGreater ? limit.greaterOf : limit.lesserOf).map((term) => evaluateTerm(term, sizesM)) as [
 		EvaluatedLimit,

@@ -55,6 +55,7 @@ function sizeOfLimit(limit: Exclude<Limit, null | number>): string {
 		const steps = limit.between.map(([sizeMm, limitMm]) => `${limitText(limitMm)} mm at ${limitText(sizeMm)} mm`);
 		return `${steps.slice(0, -1).join(', ')} to ${steps.at(-1)} ${sizeWords[limit.of]}, straight between`;
 	}
+	if (!('greaterOf' in limit || 'lesserOf' in limit)) return termWords(limit);
 	const [word, terms] = 'greaterOf' in limit ? (['greater', limit.greaterOf] as const) : (['lesser', limit.lesserOf] as const);
 	return `the ${word} of ${terms.map(termWords).join(' and ')}${limit.atMost === undefined ? '' : `, at most ${limitText(limit.atMost)} mm`}`;
 }

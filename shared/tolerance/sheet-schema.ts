@@ -21,7 +21,7 @@ const term = z.union([
 export type LimitTerm = z.infer<typeof term>;
 const twoTerms = z.tuple([term, term]);
 const positiveLimit = z.union([
-	z.number(),
+	...term.options,
 	z.strictObject({
 		between: z.array(z.tuple([z.number(), z.number()])).min(2),
 		of: sizeOf,

@@ -51,6 +51,28 @@ describe('limits of published rules', () => {
 	])('%j for a height of %d m', (limit, height, want) => {
 		expect(mm(limit, { height })).toBeCloseTo(want as number, 12);
 	});
+	// Limits of EN 13670:2009, ACI 117 and AISC 303-16 for heights in millimetres, worked out by hand from their formulas.
+	it.each<[Limit, number, number]>([
+		[{ greaterOf: [15, { heightOver: 400 }] }, 3000, 15],
+		[{ greaterOf: [15, { heightOver: 400 }] }, 6000, 15],
+		[{ greaterOf: [15, { heightOver: 400 }] }, 8000, 20],
+		[{ greaterOf: [25, { heightOver: 600 }] }, 12000, 25],
+		[{ greaterOf: [25, { heightOver: 600 }] }, 30000, 50],
+		[{ greaterOf: [15, { heightOver: 300 }], atMost: 30 }, 4800, 16],
+		[{ greaterOf: [15, { heightOver: 300 }], atMost: 30 }, 20000, 30],
+		[{ lesserOf: [25.4, { heightOver: 333.3333333333333 }] }, 3000, 9],
+		[{ lesserOf: [25.4, { heightOver: 333.3333333333333 }] }, 12000, 25.4],
+		[{ lesserOf: [152.39999999999998, { heightOver: 1000 }] }, 60000, 60],
+		[{ lesserOf: [152.39999999999998, { heightOver: 1000 }] }, 300000, 152.4],
+		[{ heightOver: 500 }, 3658, 7.316],
+		[12, 5000, 12],
+		[{ lesserOf: [10, { heightOver: 500 }], atMost: 8 }, 20000, 8],
+		[{ greaterOf: [10, { heightOver: 500 }], atMost: 30 }, 20000, 30],
+		[{ greaterOf: [10, { heightOver: 500 }], atMost: 30 }, 5000, 10],
+		[{ greaterOf: [10, { heightOver: 500 }], atMost: 30 }, 9000, 18],
+	])('%j at %d mm: %d mm', (limit, heightMm, want) => {
+		expect(mm(limit, { height: heightMm / 1000 })).toBeCloseTo(want, 9);
+	});
 	it('says which size is missing instead of guessing', () => {
 		expect(mm(section)).toBe('thickness');
 		expect(mm({ minus: { greaterOf: [15, { lengthOver: 400 }] } }, { height: 3 })).toBe('length');

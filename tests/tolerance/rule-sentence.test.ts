@@ -7,6 +7,10 @@ const rule = (over: Partial<ToleranceRule>): ToleranceRule => ({ id: 'r', match:
 
 it.each<[Partial<ToleranceRule>, string]>([
 	[
+		{ match: { class: 'IfcColumn', characteristic: 'plumb' }, lowerMm: { minus: { heightOver: 500 } }, upperMm: { heightOver: 500 } },
+		'Columns, plumb: at most height/500 either way',
+	],
+	[
 		{ match: { class: 'IfcMechanicalFastener', characteristic: 'plan' }, lowerMm: null, upperMm: 6 },
 		'Anchor bolts in plan: at most 6 mm from their mark',
 	],
