@@ -53,7 +53,8 @@ export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose }: Fit
 						<g key={`${axis.tag}${first[0]}${first[1]}`}>
 							<path
 								d={`M${axis.points.map(([e, n]) => `${px(toX(e))} ${px(toY(n))}`).join('L')}`}
-								className="fill-none stroke-rule"
+								fill="none"
+								className="stroke-rule"
 								strokeDasharray="8 3 2 3"
 							/>
 							<circle cx={px(toX(first[0]))} cy={px(toY(first[1]))} r={10} className="fill-sheet stroke-field" />
@@ -69,7 +70,8 @@ export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose }: Fit
 						y={px(toY(outline.maxN))}
 						width={px(toX(outline.maxE) - toX(outline.minE))}
 						height={px(toY(outline.minN) - toY(outline.maxN))}
-						className="fill-none stroke-field"
+						fill="none"
+						className="stroke-field"
 						strokeWidth={1.4}
 					/>
 				)}
@@ -88,8 +90,8 @@ export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose }: Fit
 					<g key={mark.name} onPointerDown={() => onChoose(mark.name)} className="cursor-pointer">
 						{mark.name === chosenName && (
 							<>
-								<circle cx={mark.x} cy={mark.y} r={19} className="fill-none stroke-ink" strokeWidth={7} />
-								<circle cx={mark.x} cy={mark.y} r={19} className="fill-none stroke-string" strokeWidth={4} />
+								<circle cx={mark.x} cy={mark.y} r={19} fill="none" className="stroke-ink" strokeWidth={7} />
+								<circle cx={mark.x} cy={mark.y} r={19} fill="none" className="stroke-string" strokeWidth={4} />
 							</>
 						)}
 						<circle cx={mark.x} cy={mark.y} r={24} className="fill-transparent" />
@@ -121,7 +123,8 @@ export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose }: Fit
 				<g transform={`translate(24 ${heightPx - 22})`}>
 					<path
 						d={`M0 -5v10M0 0H${px(bar / metresPerPx)}M${px(bar / metresPerPx)} -5v10`}
-						className="fill-none stroke-ink"
+						fill="none"
+						className="stroke-ink"
 						strokeWidth={1.4}
 					/>
 					<text x={px(bar / metresPerPx) + 10} y={5} className="fill-ink text-[14px]">

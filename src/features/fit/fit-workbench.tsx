@@ -71,7 +71,9 @@ export function FitWorkbench({ siteId, setup, pairs, start, adopted, grid, outli
 		if (shelf === 'set-aside') setAsked({ name, shelf });
 		else shelves.move([name], shelf, null);
 	};
-	const whyNot = !mayAdopt ? 'A site engineer adopts fits.' : fit ? null : 'There is no fit to adopt.';
+	const isAsAdopted =
+		start !== null && start.fitId === adopted?.fitId && !shelves.hasChanged && kind === start.kind && knownScale === start.knownScale;
+	const whyNot = whyNotAdopt(mayAdopt, fit !== null, isAsAdopted);
 
 	return (
 		<>
@@ -159,6 +161,12 @@ export function FitWorkbench({ siteId, setup, pairs, start, adopted, grid, outli
 			)}
 		</>
 	);
+}
+
+function whyNotAdopt(mayAdopt: boolean, hasFit: boolean, isAsAdopted: boolean): string | null {
+	if (!mayAdopt) return 'A site engineer adopts fits.';
+	if (!hasFit) return 'There is no fit to adopt.';
+	return isAsAdopted ? 'This is the adopted fit. Move a pair or choose another fit first.' : null;
 }
 
 interface KindAndScaleProps {
