@@ -27,7 +27,7 @@ const storedOf = async (revisionId: string) => ({
 	checkpoints: await server.platform.db.select({ id: checkpoints.id }).from(checkpoints).where(eq(checkpoints.revisionId, revisionId)),
 });
 
-describe('reading a model', () => {
+describe('reading a model', { timeout: 180_000 }, () => {
 	it.each([
 		['IFC2X3', 'made-frame-foot-ifc2x3.ifc'],
 		['IFC4', 'made-frame-metre-ifc4.ifc'],

@@ -4,6 +4,7 @@ import type { modelContract } from '#shared/model/contract.ts';
 import { modelJobs } from '#shared/model/jobs.ts';
 import type { Transaction } from '../../db/database.ts';
 import { models, revisions } from '../../db/schema/model.ts';
+import { buildings } from '../../db/schema/site.ts';
 import { isUniqueViolation } from '../../db/unique-violation.ts';
 import { audit } from '../../platform/audit.ts';
 import { hashOf } from '../../platform/disk-files.ts';
@@ -89,8 +90,10 @@ function nameTaken(): Refused {
 	return new Refused('name-taken', 'A model of this name is there already. Choose it, or write another name.', 'model.newName');
 }
 
+/** Where a site has one building, its models are of that. */
 async function addModel(tx: Transaction, siteId: string, modelId: string, name: string): Promise<string> {
-	await tx.insert(models).values({ id: modelId, siteId, name });
+	const [building, ...others] = await tx.select({ id: buildings.id }).from(buildings).where(eq(buildings.siteId, siteId));
+	await tx.insert(models).values({ id: modelId, siteId, name, buildingId: others.length === 0 ? (building?.id ?? null) : null });
 	return modelId;
 }
 
