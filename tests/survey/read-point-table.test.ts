@@ -306,14 +306,10 @@ describe('any file', () => {
 
 it('200 000 rows are read, to the known sum of all their numbers', () => {
 	const bytes = bytesOf(makePointList(6000, 200_000));
-	// Processor time: the clock on the wall says more of the neighbours than of the reader.
-	const start = process.cpuUsage().user;
 	const { rows, faults } = read(bytes);
-	const elapsedMs = (process.cpuUsage().user - start) / 1000;
 	expect(faults).toEqual([]);
 	expect(rows).toHaveLength(200_000);
 	let sum = 0;
 	for (const { xyzM } of rows) sum += xyzM[0]! + xyzM[1]! + xyzM[2]!;
 	expect(sum).toBeCloseTo(1164830031278.22, 1);
-	expect(elapsedMs).toBeLessThan(2000);
 });
