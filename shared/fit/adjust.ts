@@ -7,6 +7,8 @@ import { formNormalEquations, type NormalEquations, newNormalEquations } from '.
 /** Plain steps before Newton's take over: sound surveys need three to six. */
 const PLAIN_STEPS = 12;
 const STEPS = 120;
+/** For starts that are one of many. */
+export const SEARCH_STEPS = 40;
 /** A step under this share (of the span in metres, of a radian, of the scale) ends the iteration. */
 const STEP_END = 1e-13;
 
@@ -28,8 +30,9 @@ export interface Adjustment {
  * with the second derivatives by differences of the exact gradient take over.
  * @param start is left as it is
  * @param skip a pair to leave out; −1 for none
+ * @param most steps at the most; a search gives up sooner than the fit itself
  */
-export function adjust(observations: FitObservations, start: FitPose, skip = -1): Adjustment {
+export function adjust(observations: FitObservations, start: FitPose, skip = -1, most = STEPS): Adjustment {
 	const unknowns = fitUnknowns(observations.kind);
 	const size = unknowns.length;
 	const span = spanOf(observations.control);
@@ -42,7 +45,7 @@ export function adjust(observations: FitObservations, start: FitPose, skip = -1)
 	let iterations = 0;
 	if (!formNormalEquations(observations, pose, equations, skip)) return { pose, equations, cofactor, iterations, state: 'sigma' };
 	let lastStep = Infinity;
-	for (; iterations < STEPS; iterations++) {
+	for (; iterations < most; iterations++) {
 		if (!cofactorOf(equations, unknowns, cofactor)) return { pose, equations, cofactor, iterations, state: 'singular' };
 		change.fill(0);
 		const newton = iterations >= PLAIN_STEPS && newtonStep(observations, pose, equations, unknowns, span, change, skip);

@@ -84,7 +84,9 @@ function dropWorst(observations: FitObservations, group: readonly number[]): Con
 	let kept = [...group];
 	let trial = tryFit(pickPairs(observations, kept));
 	while (trial && !trial.passes) {
-		const worst = kept[trial.worstPair]!;
+		const worst = kept[trial.worstPair];
+		// No residual to blame: numbers beyond what can be tested.
+		if (worst === undefined) return null;
 		kept = kept.filter((i) => i !== worst);
 		trial = tryFit(pickPairs(observations, kept));
 	}

@@ -1,4 +1,4 @@
-import { type Adjustment, adjust } from './adjust.ts';
+import { type Adjustment, adjust, SEARCH_STEPS } from './adjust.ts';
 import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN, pickPairs } from './fit-observations.ts';
 import { clonePose, type FitPose, movePose, poseMatrix } from './fit-pose.ts';
 import { fullCofactor, pairReliability } from './pair-reliability.ts';
@@ -28,7 +28,7 @@ export function leaveOneOut(observations: FitObservations, adjustment: Adjustmen
 		const start = poseWithout(observations, adjustment, cofactor, i);
 		if (!start) return null;
 		if (start.secondOrder < SECOND_ORDER) return misfitOf(observations, start.pose, i);
-		const refit = adjust(observations, start.pose, i);
+		const refit = adjust(observations, start.pose, i, SEARCH_STEPS);
 		return refit.state === 'converged' ? misfitOf(observations, refit.pose, i) : null;
 	});
 }

@@ -1,5 +1,5 @@
 import { turnAfter, yawRotation } from '#shared/geometry/rotation.ts';
-import { type Adjustment, adjust } from './adjust.ts';
+import { type Adjustment, adjust, SEARCH_STEPS } from './adjust.ts';
 import { closedForm } from './closed-form.ts';
 import { type FitObservations, observationCount } from './fit-observations.ts';
 import type { FitPose } from './fit-pose.ts';
@@ -32,7 +32,7 @@ export function solveFit(observations: FitObservations): Solution {
 	) {
 		let rival = Infinity;
 		for (const pose of otherStarts(observations, start.pose)) {
-			const found = adjust(observations, pose);
+			const found = adjust(observations, pose, -1, SEARCH_STEPS);
 			if (found.state !== 'converged') continue;
 			const lower = best.state !== 'converged' || found.equations.objective < best.equations.objective;
 			const [winner, loser] = lower ? [found, best] : [best, found];
@@ -57,6 +57,12 @@ export function solveFit(observations: FitObservations): Solution {
 			refusal: { code: 'on-a-line', message: 'The targets lie too nearly on a line for their standard deviations to fix the turn.' },
 		};
 	}
+	if (best.state === 'stalled') {
+		return {
+			ok: false,
+			refusal: { code: 'no-solution', message: 'The pairs contradict each other so much that no best position could be found.' },
+		};
+	}
 	return { ok: true, adjustment: best };
 }
 
@@ -69,7 +75,7 @@ export function quickFit(observations: FitObservations): Adjustment | null {
 	const { planWeight, heightWeight } = startWeights(observations);
 	const start = closedForm(observations, planWeight, heightWeight);
 	if (!start.unique) return null;
-	const adjustment = adjust(observations, start.pose);
+	const adjustment = adjust(observations, start.pose, -1, SEARCH_STEPS);
 	return adjustment.state === 'converged' ? adjustment : null;
 }
 

@@ -92,12 +92,17 @@ export function bestRotation(crossCovariance: ArrayLike<number>, rotation: Float
 	for (let row = 0; row < 3; row++) along += left[3 * row]! * columns[3 * row + 1]!;
 	for (let row = 0; row < 3; row++) left[3 * row + 1] = columns[3 * row + 1]! - along * left[3 * row]!;
 	let length = Math.hypot(left[1]!, left[4]!, left[7]!);
-	if (!(length > 0)) {
+	if (!(length > 1e-290)) {
 		// A single direction: any second one will do; the caller sees singular[1] = 0.
 		const axis = Math.abs(left[0]!) < 0.7 ? 0 : 1;
 		for (let row = 0; row < 3; row++) left[3 * row + 1] = (row === axis ? 1 : 0) - left[3 * axis]! * left[3 * row]!;
 		length = Math.hypot(left[1]!, left[4]!, left[7]!);
 	}
+	for (let row = 0; row < 3; row++) left[3 * row + 1] = left[3 * row + 1]! / length;
+	// Once more at unit length: of a column that was all but nil the first time left little.
+	along = left[0]! * left[1]! + left[3]! * left[4]! + left[6]! * left[7]!;
+	for (let row = 0; row < 3; row++) left[3 * row + 1] = left[3 * row + 1]! - along * left[3 * row]!;
+	length = Math.hypot(left[1]!, left[4]!, left[7]!);
 	for (let row = 0; row < 3; row++) left[3 * row + 1] = left[3 * row + 1]! / length;
 	completeTriad(left);
 	completeTriad(right);
