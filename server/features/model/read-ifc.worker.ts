@@ -2,8 +2,6 @@ import { closeSync, openSync, readFileSync, statSync, writeSync } from 'node:fs'
 import { bytesForEngine } from '#shared/model/ifc-schema-name.ts';
 import { nameElements } from '#shared/model/model-elements.ts';
 import { readModelHead } from '#shared/model/read-model-head.ts';
-import { pictureBuilder } from './glb-picture.ts';
-import { openGeometry } from './ifc-geometry.ts';
 import type { ReadIfcReply, ReadIfcRequest } from './ifc-messages.ts';
 import { BrokenEngine, readElements } from './ifc-reading.ts';
 
@@ -45,6 +43,8 @@ async function read(request: ReadIfcRequest): Promise<void> {
 	const { head } = opened;
 	lastTold = 0;
 	tell('Opening the model', 0, 1);
+	// Only now: a file that is refused above costs no engine.
+	const [{ openGeometry }, { pictureBuilder }] = await Promise.all([import('./ifc-geometry.ts'), import('./glb-picture.ts')]);
 	const geometry = await openGeometry(bytesForEngine(bytes, head.file, head.schema), head.reading.metresPerUnit);
 	if (!geometry)
 		return send({
