@@ -179,7 +179,7 @@ describe('where a pour stands', () => {
 	it('counts a check of what was cast on the span after the concrete', () => {
 		const after = pourStanding('p7', aCheck([aDeviation({})], { stage: 'as-cast' }), true);
 		expect(after.stations).toEqual(['open', 'open', 'open', 'open', 'solid', 'solid', 'open', 'open']);
-		expect(after.at).toBe(6);
+		expect(after).toMatchObject({ at: 6, words: 'As cast: all 1 point within' });
 	});
 
 	it('shows as worst what is furthest against its own limits, not what is largest', () => {

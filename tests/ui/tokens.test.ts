@@ -33,7 +33,7 @@ const drawn = {
 		proud: '#9E3C09',
 		shy: '#6B4FA0',
 		close: '#BD820F',
-		none: '#828F98',
+		unseen: '#828F98',
 	},
 	dark: {
 		ground: '#12181F',
@@ -47,12 +47,12 @@ const drawn = {
 		proud: '#E5633D',
 		shy: '#C3AFEE',
 		close: '#F3D770',
-		none: '#6E7B84',
+		unseen: '#6E7B84',
 	},
 	sun: { ground: '#FFFFFF', sheet: '#FFFFFF', ink: '#000000', second: '#000000', rule: '#000000', action: '#000000', string: '#F2BE1A' },
 } as const;
 
-const verdictTokens = ['within', 'proud', 'shy', 'close', 'none'];
+const verdictTokens = ['within', 'proud', 'shy', 'close', 'unseen'];
 const pairs = verdictTokens.flatMap((a, index) => verdictTokens.slice(index + 1).map((b) => [a, b] as const));
 
 describe('the colour arithmetic', () => {
@@ -92,7 +92,7 @@ describe.each(Object.entries(sets))('the %s set', (name, colours) => {
 
 	it('has glyphs and the edges of inputs at 3:1 or more', () => {
 		for (const under of ['ground', 'sheet']) {
-			for (const glyph of ['within', 'proud', 'shy', 'close', 'none', 'glyph-ring', 'glyph-diamond', 'glyph-dash', 'field']) {
+			for (const glyph of ['within', 'proud', 'shy', 'close', 'unseen', 'glyph-ring', 'glyph-diamond', 'glyph-dash', 'field']) {
 				expect(contrast(colours[glyph]!, colours[under]!), `${glyph} on ${under}`).toBeGreaterThanOrEqual(3);
 			}
 		}

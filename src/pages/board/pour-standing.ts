@@ -51,7 +51,11 @@ export function pourStanding(pourId: string, check: CheckDetail | null, isCheckT
 		stations,
 		at: first < 0 ? 7 : first,
 		isTaut: isCheckTaut,
-		words: isCheckTaut ? standingWords(deviations) : `Check ${check.number} no longer stands on the newest: check again`,
+		words: isCheckTaut
+			? isBefore
+				? standingWords(deviations)
+				: `As cast: ${lowerFirst(standingWords(deviations))}`
+			: `Check ${check.number} no longer stands on the newest: check again`,
 		worst: worstOf(measured),
 	};
 }
@@ -70,6 +74,10 @@ function standingWords(deviations: readonly Deviation[]): string {
 		lawless && `${lawless} without a rule`,
 	].filter((word) => typeof word === 'string');
 	return words.length === 0 ? `All ${counted(deviations.length, 'point')} within` : words.join(', ');
+}
+
+function lowerFirst(text: string): string {
+	return text.charAt(0).toLowerCase() + text.slice(1);
 }
 
 /** The largest share of its own limits. */

@@ -25,10 +25,12 @@ export function PourString({ standing, widthPx }: PourStringProps) {
 	const concretePx = Math.min(34, (xs[1] ?? 0) - (xs[0] ?? 0));
 	const from = Math.max(0, (xs[0] ?? 0) - 14);
 	const toX = standing === null ? 0 : stationX(standing.at);
+	// The string is drawn where the check tells of it: one made after the concrete says nothing of what was before.
+	const stringX = standing !== null && standing.at >= 4 ? concreteX + concretePx / 2 : from;
 	const path =
 		standing?.isTaut === false
-			? `M${from} ${stringY}Q${(from + toX) / 2} ${stringY + Math.min(14, (toX - from) / 6)} ${toX} ${stringY}`
-			: `M${from} ${stringY}H${toX}`;
+			? `M${stringX} ${stringY}Q${(stringX + toX) / 2} ${stringY + Math.min(14, (toX - stringX) / 6)} ${toX} ${stringY}`
+			: `M${stringX} ${stringY}H${toX}`;
 	const dash = standing?.isTaut === false ? '9 6' : undefined;
 	return (
 		<svg
