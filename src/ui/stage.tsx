@@ -186,6 +186,7 @@ function StageView({ bounds, label, commands, onPress }: Pick<StageProps, 'bound
 		() => ({
 			frame: (box) => go.to(viewOf(box3Of(box), go.direction(), get().size, 1.4), false),
 			whole: () => go.to(viewOf(scene, firstDirection, get().size), false),
+			toEye: () => go.direction().negate().toArray(),
 		}),
 		[go, scene, get],
 	);

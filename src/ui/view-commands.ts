@@ -10,6 +10,8 @@ export interface ViewCommands {
 	frame(box: ViewBox): void;
 	/** Shows everything, from the first direction. */
 	whole(): void;
+	/** Unit vector from the scene to the eye, where there is one eye: the plan has none. */
+	toEye?(): readonly [number, number, number];
 }
 
 /** The box about several; null without any. */

@@ -10,7 +10,7 @@ import {
 	type Vector3,
 } from 'three';
 import type { SceneColours } from '#src/ui/scene-colours.ts';
-import { type DeviationMark, hasLine } from './deviation-mark.ts';
+import { type DeviationMark, hasLine, ringRadiusPx } from './deviation-mark.ts';
 import { colourGlyphs, glyphMaterial, glyphNumber } from './glyph-material.ts';
 import { lineMaterial } from './line-material.ts';
 
@@ -28,11 +28,6 @@ interface DeviationLayerProps {
 /** How far a glyph is lifted off its face for the eye, pixels of the present scale and metres at most. */
 const liftPx = 4;
 const mostLiftM = 0.1;
-
-/** Rings of what is within: smaller where there are thousands, so that they stay the quiet ground of the picture. */
-function ringRadiusPx(markCount: number): number {
-	return Math.max(1.7, Math.min(3.3, 3.3 - (1.6 * (markCount - 300)) / 1500));
-}
 
 function glyphGeometry(marks: readonly DeviationMark[], originM: readonly [number, number, number]): BufferGeometry {
 	const places = new Float32Array(3 * marks.length);

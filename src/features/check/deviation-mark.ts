@@ -40,6 +40,11 @@ export function marksOf(deviations: readonly Deviation[]): DeviationMark[] {
 		.sort((a, b) => drawingOrder.indexOf(a.kind) - drawingOrder.indexOf(b.kind));
 }
 
+/** Rings of what is within: smaller where there are thousands, so that they stay the quiet ground of the picture. CSS pixels. */
+export function ringRadiusPx(markCount: number): number {
+	return Math.max(1.7, Math.min(3.3, 3.3 - (1.6 * (markCount - 300)) / 1500));
+}
+
 /** Whether a mark has a line: what is off or too close, not what is within. */
 export function hasLine(mark: DeviationMark): boolean {
 	return mark.shiftM !== null && mark.kind !== 'within' && mark.kind !== 'none';

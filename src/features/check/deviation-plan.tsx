@@ -2,7 +2,7 @@ import { memo, useMemo } from 'react';
 import { diamondPath, glyphPath, halfDiamondPath } from '#src/ui/glyph.tsx';
 import type { GlyphKind } from '#src/ui/glyph-kind.ts';
 import type { PlanScale } from '#src/ui/plan-stage.tsx';
-import { type DeviationMark, drawingOrder, hasLine } from './deviation-mark.ts';
+import { type DeviationMark, drawingOrder, hasLine, ringRadiusPx } from './deviation-mark.ts';
 
 interface DeviationPlanProps {
 	marks: readonly DeviationMark[];
@@ -12,7 +12,6 @@ interface DeviationPlanProps {
 }
 
 const sizePx = 7;
-const ringPx = 3.3;
 
 const colourOfLine: Partial<Record<GlyphKind, string>> = {
 	proud: 'whisker-proud',
@@ -50,7 +49,7 @@ function formAt(corners: readonly [number, number][], x: number, y: number, [cos
 	return `${corners.map(([a, b], i) => `${i === 0 ? 'M' : 'L'}${(x + a * cosine - b * sine).toFixed(1)} ${(y + a * sine + b * cosine).toFixed(1)}`).join('')}Z`;
 }
 
-function formOf(mark: DeviationMark, x: number, y: number): string {
+function formOf(mark: DeviationMark, x: number, y: number, ringPx: number): string {
 	const [left, top] = [x.toFixed(1), y.toFixed(1)];
 	if (mark.kind === 'within')
 		return `M${(x - ringPx).toFixed(1)} ${top}a${ringPx} ${ringPx} 0 1 0 ${2 * ringPx} 0a${ringPx} ${ringPx} 0 1 0 ${-2 * ringPx} 0`;
@@ -64,6 +63,7 @@ export const DeviationPlan = memo(function DeviationPlan({ marks, times, scale }
 		const glyphs = new Map<GlyphKind, string[]>();
 		const lines = new Map<GlyphKind, string[]>();
 		const halves: string[] = [];
+		const ringPx = ringRadiusPx(marks.length);
 		const put = (to: Map<GlyphKind, string[]>, kind: GlyphKind, path: string) => {
 			const paths = to.get(kind);
 			if (paths === undefined) to.set(kind, [path]);
@@ -71,7 +71,7 @@ export const DeviationPlan = memo(function DeviationPlan({ marks, times, scale }
 		};
 		for (const mark of marks) {
 			const [x, y] = [scale.x(mark.place[0]), scale.y(mark.place[1])];
-			put(glyphs, mark.kind, formOf(mark, x, y));
+			put(glyphs, mark.kind, formOf(mark, x, y, ringPx));
 			if (mark.kind === 'close') halves.push(formAt(forms.half, x, y, [1, 0]));
 			const [east, north] = mark.shiftM ?? [0, 0];
 			if (!hasLine(mark) || (east === 0 && north === 0)) continue;
@@ -91,7 +91,7 @@ export const DeviationPlan = memo(function DeviationPlan({ marks, times, scale }
 			))}
 			{drawn.glyphs.map(({ kind, path }) => (
 				<g key={kind}>
-					<path d={path} className={`glyph-${kind}`} />
+					<path d={path} className={`glyph-${kind}`} {...(kind === 'within' && marks.length > 600 && { style: { strokeWidth: 1.3 } })} />
 					{kind === 'close' && <path d={drawn.halves} className="glyph-close-half" />}
 				</g>
 			))}
@@ -105,7 +105,7 @@ export function ChosenMark({ mark, scale }: { mark: DeviationMark; scale: PlanSc
 		<g transform={`translate(${scale.x(mark.place[0]).toFixed(1)} ${scale.y(mark.place[1]).toFixed(1)})`}>
 			<circle r={14} className="string-edge" />
 			<circle r={14} className="string-core" />
-			<path d={formOf(mark, 0, 0)} className={`glyph-${mark.kind}`} />
+			<path d={formOf(mark, 0, 0, ringRadiusPx(0))} className={`glyph-${mark.kind}`} />
 			{mark.kind === 'close' && <path d={formAt(forms.half, 0, 0, [1, 0])} className="glyph-close-half" />}
 		</g>
 	);

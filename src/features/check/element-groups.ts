@@ -67,6 +67,19 @@ function plainMark(text: string): string {
 	return text.toLowerCase().replace(/[\s,/\-–_.]+/g, '');
 }
 
+/**
+ * Deviations whose limits a table's rods are scaled by: those that are off, or else all, without the widest fifth of limits, so that one kind of
+ * element with wide limits (a pile) does not shrink all other rods to a line. Its own sit at the end of theirs.
+ */
+export function scaledBy(deviations: readonly Deviation[]): Deviation[] {
+	const off = deviations.filter(({ verdict }) => verdict === 'outside' || verdict === 'too-close-to-call' || verdict === 'undecided');
+	const asked = (off.length > 0 ? off : deviations).filter(({ limitsMm }) => limitsMm !== null);
+	const widthOf = ({ limitsMm }: Deviation): number => Math.max(...(limitsMm ?? []).map((limit) => Math.abs(limit ?? 0)));
+	const widths = asked.map(widthOf).sort((a, b) => a - b);
+	const widest = widths[Math.floor((widths.length - 1) * 0.8)] ?? Number.POSITIVE_INFINITY;
+	return asked.filter((deviation) => widthOf(deviation) <= widest);
+}
+
 /** The elements a filter lets through, whatever their verdicts. */
 export function elementPasses(element: CheckElement, { pourId, storey, find }: CheckFilter): boolean {
 	if (pourId !== null && !element.pourIds.includes(pourId)) return false;

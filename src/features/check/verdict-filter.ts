@@ -7,6 +7,17 @@ export type VerdictFilter = (typeof verdictFilters)[number];
 
 /** All but what is within: where one looks first. */
 export const offVerdicts: readonly VerdictFilter[] = verdictFilters.filter((filter) => filter !== 'within');
+/** The same without what was not seen: where that is most of it, it would bury what is off. Its count stays on its chip and in the headline. */
+const offMeasured: readonly VerdictFilter[] = offVerdicts.filter((filter) => filter !== 'unmeasured');
+
+/** What is shown of a check before anybody chose: what is off; all, where nothing is. */
+export function firstShown(deviations: readonly Deviation[]): readonly VerdictFilter[] {
+	const counts = countsOf(deviations);
+	const off = deviations.length - counts.within;
+	if (off === 0) return verdictFilters;
+	const isBuried = counts.unmeasured > 30 && counts.unmeasured > (off - counts.unmeasured) * 2 && off > counts.unmeasured;
+	return isBuried ? offMeasured : offVerdicts;
+}
 
 export const glyphOfFilter: Record<VerdictFilter, GlyphKind> = {
 	proud: 'proud',

@@ -18,18 +18,19 @@ export function ModelLayer({ picture, colours, hidden, chosen }: ModelLayerProps
 	const invalidate = useThree((state) => state.invalidate);
 	const drawing = useMemo(() => {
 		const state = stateTexture(picture.entityNumbers.length);
-		return { state, faces: faceMaterial(state), edges: edgeMaterial(state) };
+		return { state, faces: faceMaterial(state), edges: edgeMaterial(state, 'all'), chosenEdges: edgeMaterial(state, 'chosen') };
 	}, [picture]);
 	useEffect(
 		() => () => {
 			drawing.state.dispose();
 			drawing.faces.dispose();
 			drawing.edges.dispose();
+			drawing.chosenEdges.dispose();
 		},
 		[drawing],
 	);
 	useLayoutEffect(() => {
-		colourModel(drawing.faces, drawing.edges, colours);
+		colourModel(drawing.faces, drawing.edges, drawing.chosenEdges, colours);
 		invalidate();
 	}, [drawing, colours, invalidate]);
 	useLayoutEffect(() => {
@@ -44,6 +45,7 @@ export function ModelLayer({ picture, colours, hidden, chosen }: ModelLayerProps
 		<group key={part.name}>
 			<mesh geometry={part.faces} material={drawing.faces} raycast={() => null} />
 			<lineSegments geometry={part.edges} material={drawing.edges} raycast={() => null} renderOrder={1} />
+			{chosen !== null && <lineSegments geometry={part.edges} material={drawing.chosenEdges} raycast={() => null} renderOrder={2} />}
 		</group>
 	));
 }

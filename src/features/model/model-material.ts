@@ -58,33 +58,30 @@ export function faceMaterial(state: DataTexture): ShaderMaterial {
 	});
 }
 
-/** Edges: thin, in the model's own tone; those of the chosen element in ink. */
-export function edgeMaterial(state: DataTexture): ShaderMaterial {
+/** Edges: thin, in the model's own tone. `chosen`: only those of the chosen element, in ink, through whatever stands before it. */
+export function edgeMaterial(state: DataTexture, which: 'all' | 'chosen'): ShaderMaterial {
 	return new ShaderMaterial({
-		uniforms: { uState: { value: state }, uEdge: { value: new Vector3() }, uInk: { value: new Vector3() } },
+		uniforms: { uState: { value: state }, uEdge: { value: new Vector3() } },
+		depthTest: which === 'all',
 		vertexShader: /* glsl */ `
 			${readState}
-			varying float vState;
 			void main() {
-				vState = stateOf();
-				gl_Position = vState < 0.5 ? vec4(2.0, 2.0, 2.0, 1.0) : projectionMatrix * modelViewMatrix * vec4(position, 1.0);
+				gl_Position = stateOf() < ${which === 'all' ? '0.5' : '1.5'} ? vec4(2.0, 2.0, 2.0, 1.0) : projectionMatrix * modelViewMatrix * vec4(position, 1.0);
 			}
 		`,
 		fragmentShader: /* glsl */ `
 			uniform vec3 uEdge;
-			uniform vec3 uInk;
-			varying float vState;
 			void main() {
-				gl_FragColor = vec4(vState > 1.5 ? uInk : uEdge, 1.0);
+				gl_FragColor = vec4(uEdge, 1.0);
 			}
 		`,
 	});
 }
 
-/** Puts a colour set's tones into both. */
-export function colourModel(faces: ShaderMaterial, edges: ShaderMaterial, colours: SceneColours): void {
+/** Puts a colour set's tones into all three. */
+export function colourModel(faces: ShaderMaterial, edges: ShaderMaterial, chosenEdges: ShaderMaterial, colours: SceneColours): void {
 	(faces.uniforms.uBright!.value as Vector3).fromArray(colours.modelBright);
 	(faces.uniforms.uDark!.value as Vector3).fromArray(colours.modelDark);
 	(edges.uniforms.uEdge!.value as Vector3).fromArray(colours.modelEdge);
-	(edges.uniforms.uInk!.value as Vector3).fromArray(colours.ink);
+	(chosenEdges.uniforms.uEdge!.value as Vector3).fromArray(colours.ink);
 }

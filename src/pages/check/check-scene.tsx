@@ -1,6 +1,6 @@
 import { useQuery } from '@tanstack/react-query';
 import { type RefObject, useCallback, useEffect, useImperativeHandle, useMemo, useRef, useState } from 'react';
-import { Raycaster, Vector2, Vector3 } from 'three';
+import { Ray, Raycaster, Vector2, Vector3 } from 'three';
 import type { RevisionDetail } from '#shared/model/contract.ts';
 import { DeviationLayer } from '#src/features/check/deviation-layer.tsx';
 import { type DeviationMark, nearestMark } from '#src/features/check/deviation-mark.ts';
@@ -32,6 +32,8 @@ interface CheckSceneProps {
 	commands: RefObject<ViewCommands | null>;
 	onChoose: (checkpointId: string) => void;
 	onPickElement: (entityNumber: number) => void;
+	/** When something is framed: the elements that stand between it and the eye. */
+	onInTheWay: (entityNumbers: readonly number[]) => void;
 	onReady: () => void;
 	onFailed: (why: string) => void;
 	onLost: () => void;
@@ -94,21 +96,26 @@ function PictureScene({
 	commands,
 	onChoose,
 	onPickElement,
+	onInTheWay,
 	onLost,
 }: CheckSceneProps & { picture: ModelPicture }) {
 	const colours = useSceneColours();
 	const { originM } = picture;
 	const sceneCommands = useRef<ViewCommands | null>(null);
+	const frame = useMemo(() => frameAnchors(axes, storeys, box, originM), [axes, storeys, box, originM]);
+	const chosen = marks.find((mark) => mark.checkpointId === chosenId);
 	useImperativeHandle(
 		commands,
 		() => ({
-			frame: (asked) => sceneCommands.current?.frame(localBox(asked, originM)),
+			frame: (asked) => {
+				sceneCommands.current?.frame(localBox(asked, originM));
+				const toEye = sceneCommands.current?.toEye?.();
+				if (chosen !== undefined && toEye) onInTheWay(inTheWay(picture, chosen, chosenEntity, toEye));
+			},
 			whole: () => sceneCommands.current?.whole(),
 		}),
-		[originM],
+		[originM, picture, chosen, chosenEntity, onInTheWay],
 	);
-	const frame = useMemo(() => frameAnchors(axes, storeys, box, originM), [axes, storeys, box, originM]);
-	const chosen = marks.find((mark) => mark.checkpointId === chosenId);
 	const anchors = useMemo((): StageAnchor[] => {
 		if (chosen === undefined) return frame;
 		const [east, north, height] = chosen.place;
@@ -158,6 +165,15 @@ function localBox(box: ViewBox, originM: ModelPicture['originM']): ViewBox {
 		place[2] - originM[2],
 	];
 	return { min: less(box.min), max: less(box.max) };
+}
+
+/** The elements a look at a mark goes through, without its own. `toEye`: unit vector. */
+function inTheWay(picture: ModelPicture, { place }: DeviationMark, own: number | null, toEye: readonly [number, number, number]): number[] {
+	const local = new Vector3(...place).sub(new Vector3(...picture.originM));
+	const direction = new Vector3(...toEye);
+	const ray = new Ray(local.addScaledVector(direction, faceSlackM), direction);
+	const found = picture.parts.flatMap((part) => part.under(ray).map(({ element }) => picture.entityNumbers[element]!));
+	return [...new Set(found)].filter((entityNumber) => entityNumber !== own);
 }
 
 /** The nearest element under a ray that is drawn. */

@@ -13,6 +13,11 @@ const stateWords: Record<CheckHead['state'], string | null> = {
 	failed: 'no result',
 };
 
+/** "sheet C2", and not "sheet Sheet C2" where its name says so itself. */
+function sheetWords(name: string): string {
+	return /^sheet\b/i.test(name) ? name.charAt(0).toLowerCase() + name.slice(1) : `sheet ${name}`;
+}
+
 /** Who stands behind the fits, each name once: "fits by Jo Marsh, checked by T. Okoro". */
 function fitWords(fits: CheckHead['fits']): string {
 	const word = fits.length === 1 ? 'fit' : `${fits.length} fits`;
@@ -45,7 +50,7 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 					`survey ${survey.number}`,
 					isFitOld ? <b key="fits">a newer fit is adopted</b> : uncheckedFits > 0 && `${counted(uncheckedFits, 'fit')} unchecked`,
 					<span key="sheet">
-						sheet {sheet.name}
+						{sheetWords(sheet.name)}
 						{!sheet.isNewest && <b>, superseded</b>}
 					</span>,
 				]}
@@ -69,7 +74,7 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 					</span>
 				),
 				<span key="sheet">
-					sheet {sheet.name}, {sheet.decision}
+					{sheetWords(sheet.name)}, {sheet.decision}
 					{!sheet.isNewest && <b>, superseded</b>}
 				</span>,
 				stateItem,

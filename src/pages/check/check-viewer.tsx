@@ -57,17 +57,19 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 
 	const [isOnlyThese, setOnlyThese] = useState(false);
 	const [putAway, setPutAway] = useState<ReadonlySet<number>>(new Set());
+	/** What stood before the chosen one when it was framed; back with the next choice. */
+	const [inTheWay, setInTheWay] = useState<{ chosenId: string | null; entities: readonly number[] }>({ chosenId: null, entities: [] });
 	const marks = isOnlyThese ? view.drawnMarks.onlyThese : view.drawnMarks.all;
 	const allMarks = view.drawnMarks.all;
 	const shownEntities = useMemo(() => new Set(view.shown.map((group) => group.element.entityNumber)), [view.shown]);
 	const { storey } = view;
 	const hidden = useMemo(() => {
-		const away = new Set(putAway);
+		const away = new Set([...putAway, ...(inTheWay.chosenId === view.chosenId ? inTheWay.entities : [])]);
 		for (const { entityNumber, storey: itsStorey } of elements) {
 			if ((isOnlyThese && !shownEntities.has(entityNumber)) || (storey !== null && itsStorey !== storey)) away.add(entityNumber);
 		}
 		return away;
-	}, [elements, isOnlyThese, shownEntities, putAway, storey]);
+	}, [elements, isOnlyThese, shownEntities, putAway, inTheWay, view.chosenId, storey]);
 
 	const box = useMemo((): ViewBox => {
 		const boxes = elements.flatMap((element) => (element.boxM === null ? [] : [element.boxM]));
@@ -144,6 +146,7 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 		),
 		[chosenModelElement, chosenMark],
 	);
+	const clearTheWay = useCallback((entities: readonly number[]) => setInTheWay({ chosenId: view.chosenId, entities }), [view.chosenId]);
 	const lost = useCallback(
 		() => setFault('The device took the graphics away. The plan takes the model’s place; load the page again for the model.'),
 		[],
@@ -176,6 +179,7 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 							commands={is3d ? commands : noCommands}
 							onChoose={choose}
 							onPickElement={pickElement}
+							onInTheWay={clearTheWay}
 							onReady={ready}
 							onFailed={failed}
 							onLost={lost}
@@ -210,6 +214,7 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 						onPress={() => {
 							setOnlyThese(false);
 							setPutAway(new Set());
+							setInTheWay({ chosenId: null, entities: [] });
 							commands.current?.whole();
 						}}
 						title="Everything back, seen whole"

@@ -5,6 +5,7 @@ import { checkHeadline, headlineCounts } from '#shared/check/headline.ts';
 import { CheckFindings } from '#src/features/check/check-findings.tsx';
 import { DeviationCard } from '#src/features/check/deviation-card.tsx';
 import { DeviationTable } from '#src/features/check/deviation-table.tsx';
+import { scaledBy } from '#src/features/check/element-groups.ts';
 import { VerdictChips } from '#src/features/check/verdict-chips.tsx';
 import { countsOf } from '#src/features/check/verdict-filter.ts';
 import { useAddressState } from '#src/lib/address-state.ts';
@@ -50,14 +51,13 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 
 	const putAway = useRef<() => void>(() => {});
 
-	const scaleMm = useMemo(
-		() =>
-			rodScaleMm(
-				check.deviations.map((row) => row.limitsMm),
-				check.deviations.map((row) => row.deviationMm),
-			),
-		[check.deviations],
-	);
+	const scaleMm = useMemo(() => {
+		const rows = scaledBy(check.deviations);
+		return rodScaleMm(
+			rows.map((row) => row.limitsMm),
+			rows.map((row) => row.deviationMm),
+		);
+	}, [check.deviations]);
 	const ticks = useMemo(
 		() =>
 			view.passing.flatMap((row): WideRodTick[] =>

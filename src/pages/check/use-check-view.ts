@@ -3,7 +3,7 @@ import type { CheckDetail } from '#shared/check/contract.ts';
 import { elementSummary } from '#shared/check/element-summary.ts';
 import { type DeviationMark, drawingOrder, marksOf } from '#src/features/check/deviation-mark.ts';
 import { type CheckFilter, elementGroups, elementPasses, shownGroups } from '#src/features/check/element-groups.ts';
-import { filterOf, offVerdicts, type VerdictFilter, verdictFilters } from '#src/features/check/verdict-filter.ts';
+import { filterOf, firstShown, type VerdictFilter, verdictFilters } from '#src/features/check/verdict-filter.ts';
 import { useAddressSet, useAddressState } from '#src/lib/address-state.ts';
 
 /** What the page shows of its check, all of it from the address, so that a link shows a colleague the same. */
@@ -12,10 +12,7 @@ export function useCheckView(check: CheckDetail) {
 	const [pourId, setPourId] = useAddressState('pour');
 	const [storey, setStorey] = useAddressState('storey');
 	const [findText, setFind] = useAddressState('find');
-	const fallback = useMemo(
-		() => (check.deviations.some((row) => row.verdict !== 'within') ? offVerdicts : verdictFilters),
-		[check.deviations],
-	);
+	const fallback = useMemo(() => firstShown(check.deviations), [check.deviations]);
 	const [verdicts, setVerdicts] = useAddressSet<VerdictFilter>('show', verdictFilters, fallback);
 	const find = findText ?? '';
 	// The field answers at once; the table of thousands follows when there is time.
