@@ -21,6 +21,7 @@ import { readModel } from '../features/model/read-model.ts';
 import { addPour } from '../features/pour/add-pour.ts';
 import { storeSurvey } from '../features/survey/store-survey.ts';
 import { issueSheet, sheetToIssue } from '../features/tolerance/issue-sheet.ts';
+import { audit } from '../platform/audit.ts';
 import { hashPassword } from '../platform/password.ts';
 import type { Member, Platform } from '../platform/platform.ts';
 import { uploadPath } from '../platform/uploads.ts';
@@ -78,7 +79,7 @@ export async function seedDemo(platform: Platform): Promise<string | null> {
 			survey: {
 				name: 'as cast, whole house',
 				stage: 'as-cast',
-				surveyedOn: '2026-11-27',
+				surveyedOn: '2026-11-26',
 				observer: 'Jo Marsh',
 				instrument: 'total station, 1″ (invented)',
 				serial: 'demo 0417',
@@ -134,6 +135,11 @@ async function addPeople(platform: Platform): Promise<{ siteId: string; members:
 			await tx.insert(users).values({ id: userId, email, name, passwordHash, createdAt: now() });
 			await tx.insert(memberships).values({ id: newId(), siteId, userId, role, companyId, fromAt: now() });
 			members.set(role, { userId, name, email, siteId, roles: [role], companyIds: companyId === null ? [] : [companyId] });
+		}
+		const founder = memberOf(members, 'project-engineer');
+		await audit(tx, founder, { kind: 'site-founded', subjectId: siteId, data: { name: siteName, isInvented: true } });
+		for (const { userId, roles } of members.values()) {
+			await audit(tx, founder, { kind: 'member-added', subjectId: userId, data: { roles } });
 		}
 	});
 	return { siteId, members, companyIds };
