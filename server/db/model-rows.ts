@@ -22,14 +22,14 @@ export function elementOf(row: typeof elements.$inferSelect): Element & Pick<Sto
 /** A checkpoint as the shared arithmetic knows it, with its element's id. Metres, design frame. */
 export function checkpointOf(
 	row: typeof checkpoints.$inferSelect,
-	element: Pick<Element, 'entityNumber' | 'globalId' | 'mark'>,
+	element: Pick<Element, 'entityNumber' | 'globalId'>,
 ): Checkpoint & { elementId: string } {
 	return {
 		id: row.id,
 		elementId: row.elementId,
 		entityNumber: element.entityNumber,
 		globalId: element.globalId,
-		mark: element.mark,
+		mark: row.mark,
 		characteristic: row.characteristic,
 		place: [row.xM, row.yM, row.zM],
 		direction: row.normal === null ? null : vectorOf(row.normal),

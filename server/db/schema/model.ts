@@ -121,6 +121,8 @@ export const checkpoints = pgTable(
 		elementId: uuid('element_id').notNull(),
 		/** The order in which the reading placed them. */
 		position: integer('position').notNull(),
+		/** Its own name for the field, beside its element's. */
+		mark: text('mark').notNull().default(''),
 		characteristic: characteristicEnum('characteristic').notNull(),
 		label: text('label').notNull(),
 		xM: metres('x_m').notNull(),

@@ -86,7 +86,7 @@ export async function elementsOf(db: Handle, siteId: string, revisionId: string)
 export async function checkpointsOf(db: Handle, siteId: string, revisionId: string): Promise<z.infer<typeof storedCheckpoint>[]> {
 	await expectRevision(db, siteId, revisionId);
 	const rows = await db
-		.select({ checkpoint: checkpoints, entityNumber: elements.entityNumber, globalId: elements.globalId, mark: elements.mark })
+		.select({ checkpoint: checkpoints, entityNumber: elements.entityNumber, globalId: elements.globalId })
 		.from(checkpoints)
 		.innerJoin(elements, eq(elements.id, checkpoints.elementId))
 		.where(eq(checkpoints.revisionId, revisionId))

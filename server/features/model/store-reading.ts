@@ -56,6 +56,7 @@ export async function storeReading(
 			id: checkpoint.id,
 			elementId: required(idOf, checkpoint.entityNumber),
 			position,
+			mark: checkpoint.mark,
 			characteristic: checkpoint.characteristic,
 			label: checkpoint.label,
 			xM: checkpoint.place[0],

@@ -1,0 +1,1 @@
+ALTER TABLE "checkpoints" ADD COLUMN "mark" text DEFAULT '' NOT NULL;
