@@ -64,7 +64,7 @@ function describe(input: FitInput, inFit: readonly FitPair[], observations: FitO
 	const cofactor = fullCofactor(adjustment, observations);
 	const reliability = inFit.map((_, i) => pairReliability(observations, adjustment, cofactor, i));
 	const places = new Map(inFit.map((pair, i) => [pair, i]));
-	const withoutOne = leaveOneOut(observations, adjustment);
+	const withoutOne = leaveOneOut(observations, adjustment, reliability);
 	base.pairs = input.pairs.map((pair) => {
 		const i = places.get(pair) ?? -1;
 		return i < 0

@@ -57,7 +57,7 @@ export function solveFit(observations: FitObservations): Solution {
 			refusal: { code: 'on-a-line', message: 'The targets lie too nearly on a line for their standard deviations to fix the turn.' },
 		};
 	}
-	if (best.state === 'stalled') {
+	if (best.state === 'stalled' && observations.sigmaGiven) {
 		return {
 			ok: false,
 			refusal: { code: 'no-solution', message: 'The pairs contradict each other so much that no best position could be found.' },
