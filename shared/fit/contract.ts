@@ -7,12 +7,40 @@ export const shelfNames = ['in-the-fit', 'held-back', 'set-aside'] as const;
 export const shelf = z.enum(shelfNames);
 export type Shelf = z.infer<typeof shelf>;
 
+/** all: whole · plan: its level is left out of the fit · level: its plan is. */
+export const pairUses = ['all', 'plan', 'level'] as const;
+export const pairUse = z.enum(pairUses);
+export type PairUse = z.infer<typeof pairUse>;
+
 export const shelving = z.object({
 	name: z.string().max(60),
 	shelf,
+	/** Why it does not lie in the fit, whole and as it was labelled. */
 	reason: plainText(300).nullable(),
+	/** Absent: all. */
+	use: pairUse.optional(),
+	/** Two targets whose labels were exchanged name each other. */
+	exchangedWith: z.string().max(60).nullable().optional(),
 });
 export type Shelving = z.infer<typeof shelving>;
+
+/** A target that was found to be a mark though it is named otherwise, or not at all. */
+export const relabelling = z.object({
+	target: z.string().min(1).max(60),
+	mark: z.string().min(1).max(60),
+	reason: plainText(300),
+});
+export type Relabelling = z.infer<typeof relabelling>;
+
+const vector = z.tuple([z.number(), z.number(), z.number()]);
+
+/** Who answers for the survey, as printed; every part may be blank. */
+export const surveyorInCharge = z.object({
+	name: z.string().trim().max(80),
+	licence: z.string().trim().max(60),
+	jurisdiction: z.string().trim().max(80),
+});
+export type SurveyorInCharge = z.infer<typeof surveyorInCharge>;
 
 /** Target and control point that are the same mark, ready for the engine. */
 export const pairsOfSetup = z.object({
@@ -28,6 +56,17 @@ export const pairsOfSetup = z.object({
 	sigmaNote: z.string().nullable(),
 	/** What was taken for the same mark though written differently, and repeats that were averaged: sentences. */
 	notes: z.array(z.string()).optional(),
+	/** What has no partner and could be matched by mutual distances: control known whole that was not sighted, targets (or, where none is coded, all points) that mean no mark. */
+	loose: z
+		.object({
+			/** Survey frame. */
+			targets: z.array(z.object({ name: z.string(), point: vector })),
+			/** Design frame. */
+			control: z.array(z.object({ name: z.string(), point: vector })),
+		})
+		.optional(),
+	/** Targets taken for marks they are not named like. */
+	relabellings: z.array(relabelling).optional(),
 });
 export type PairsOfSetup = z.infer<typeof pairsOfSetup>;
 
@@ -47,7 +86,16 @@ export const fitSummary = z.object({
 	adoptedBy: z.string().nullable(),
 	adoptedAt: z.date().nullable(),
 	adoptedReason: z.string().nullable(),
+	/** The second person. */
 	checkedBy: z.string().nullable(),
+	checkedAt: z.date().nullable(),
+	/** What the second person said of it. */
+	checkedNote: z.string().nullable(),
+	/** False where the site has switched the second person off. */
+	isSecondAsked: z.boolean(),
+	surveyorInCharge: surveyorInCharge.nullable(),
+	/** What is other than in the fit of this set-up before it, in sentences; none for the first. */
+	changes: z.array(z.string()),
 	/** SHA-256 of the canonical text of all that went in. */
 	inputsSha256: z.string(),
 	/** False where the control set has a newer one since. */
@@ -69,7 +117,10 @@ const setupInput = siteInput.extend({
 });
 
 export const fitContract = {
-	pairs: base.meta({ permission: 'fit.see' }).input(setupInput).output(pairsOfSetup),
+	pairs: base
+		.meta({ permission: 'fit.see' })
+		.input(setupInput.extend({ relabellings: z.array(relabelling).max(500).optional() }))
+		.output(pairsOfSetup),
 	/** Newest first; all of the site, or one set-up's. */
 	list: base
 		.meta({ permission: 'fit.see' })
@@ -94,6 +145,7 @@ export const fitContract = {
 				kind: fitKind,
 				knownScale: z.number().min(0.5).max(2).nullable(),
 				shelves: z.array(shelving).max(500),
+				relabellings: z.array(relabelling).max(500).optional(),
 			}),
 		)
 		.output(fitDetail),
@@ -106,6 +158,11 @@ export const fitContract = {
 				message: 'The control changed since this fit was made. Fit again.',
 			},
 		})
-		.input(siteInput.extend({ fitId: z.uuid(), reason: plainText(500) }))
+		.input(siteInput.extend({ fitId: z.uuid(), reason: plainText(500), surveyorInCharge: surveyorInCharge.optional() }))
+		.output(fitSummary),
+	/** A second person has checked the adopted fit; whoever adopted it cannot. */
+	confirm: base
+		.meta({ permission: 'fit.adopt' })
+		.input(siteInput.extend({ fitId: z.uuid(), note: plainText(500), surveyorInCharge: surveyorInCharge.optional() }))
 		.output(fitSummary),
 };

@@ -1,6 +1,5 @@
 import { normalQuantile, twoSidedNormal } from '#shared/geometry/normal-distribution.ts';
 import type { Adjustment } from './adjust.ts';
-import { designRows } from './design-rows.ts';
 import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
 import { fitUnknowns } from './least-pairs.ts';
 
@@ -51,6 +50,14 @@ export function fullCofactor(adjustment: Adjustment, observations: FitObservatio
 	return full;
 }
 
+// Scratch: a pair's figures are wanted by the ten thousand.
+const design = new Float64Array(21);
+const inverse = new Float64Array(9);
+const covariance = new Float64Array(9);
+const carried = new Float64Array(21);
+const fitted = new Float64Array(9);
+const ofResidual = new Float64Array(9);
+
 /**
  * Figures of pair `i` (Baarda 1968; Mikhail & Gracie 1981; Pope 1976), A at the adjusted coordinates.
  * @param cofactor of fullCofactor
@@ -61,32 +68,30 @@ export function pairReliability(
 	cofactor: Float64Array,
 	i: number,
 ): PairReliability {
-	const design = designRows(equations.adjusted[3 * i]!, equations.adjusted[3 * i + 1]!, equations.adjusted[3 * i + 2]!);
-	const inverse = symmetricAt(equations.inverse, i);
-	const covariance = symmetricAt(equations.covariance, i);
+	const { adjusted } = equations;
+	fillDesign(adjusted[3 * i]!, adjusted[3 * i + 1]!, adjusted[3 * i + 2]!);
+	fillSymmetric(inverse, equations.inverse, i);
+	fillSymmetric(covariance, equations.covariance, i);
 	// Q·Aᵀ, 7 × 3.
-	const carried = new Float64Array(21);
 	for (let p = 0; p < 7; p++) {
 		for (let k = 0; k < 3; k++) {
-			let sum = 0;
-			for (let q = 0; q < 7; q++) sum += cofactor[7 * p + q]! * design[7 * k + q]!;
+			let sum = cofactor[7 * p + k]!;
+			for (let q = 3; q < 7; q++) sum += cofactor[7 * p + q]! * design[7 * k + q]!;
 			carried[3 * p + k] = sum;
 		}
 	}
-	const fitted = new Float64Array(9);
 	for (let k = 0; k < 3; k++) {
 		for (let l = 0; l < 3; l++) {
-			let sum = 0;
-			for (let p = 0; p < 7; p++) sum += design[7 * k + p]! * carried[3 * p + l]!;
+			let sum = carried[3 * k + l]!;
+			for (let p = 3; p < 7; p++) sum += design[7 * k + p]! * carried[3 * p + l]!;
 			fitted[3 * k + l] = sum;
+			ofResidual[3 * k + l] = covariance[3 * k + l]! - sum;
 		}
 	}
-	const ofResidual = covariance.map((value, at) => value - fitted[at]!);
 	const response = new Float64Array(21);
 	for (let p = 0; p < 7; p++) {
-		for (let k = 0; k < 3; k++) {
-			response[3 * p + k] = carried[3 * p]! * inverse[k]! + carried[3 * p + 1]! * inverse[3 + k]! + carried[3 * p + 2]! * inverse[6 + k]!;
-		}
+		const [x, y, z] = [carried[3 * p]!, carried[3 * p + 1]!, carried[3 * p + 2]!];
+		for (let k = 0; k < 3; k++) response[3 * p + k] = x * inverse[k]! + y * inverse[3 + k]! + z * inverse[6 + k]!;
 	}
 	const result: PairReliability = {
 		redundancy: 0,
@@ -116,18 +121,26 @@ export function pairReliability(
 	return result;
 }
 
+/** Rows of design-rows.ts into scratch. The first three columns are the unit matrix and never read. */
+function fillDesign(qe: number, qn: number, qh: number): void {
+	design[4] = qh;
+	design[5] = -qn;
+	design[6] = qe;
+	design[10] = -qh;
+	design[12] = qe;
+	design[13] = qn;
+	design[17] = qn;
+	design[18] = -qe;
+	design[20] = qh;
+}
+
 /** xx, xy, xz, yy, yz, zz of pair i as nine numbers, row by row. */
-function symmetricAt(six: Float64Array, i: number): Float64Array {
+function fillSymmetric(out: Float64Array, six: Float64Array, i: number): void {
 	const at = 6 * i;
-	return Float64Array.of(
-		six[at]!,
-		six[at + 1]!,
-		six[at + 2]!,
-		six[at + 1]!,
-		six[at + 3]!,
-		six[at + 4]!,
-		six[at + 2]!,
-		six[at + 4]!,
-		six[at + 5]!,
-	);
+	out[0] = six[at]!;
+	out[1] = out[3] = six[at + 1]!;
+	out[2] = out[6] = six[at + 2]!;
+	out[4] = six[at + 3]!;
+	out[5] = out[7] = six[at + 4]!;
+	out[8] = six[at + 5]!;
 }
