@@ -114,12 +114,12 @@ describe('a check', { timeout: 180_000 }, () => {
 		await expect(ask({ surveyId, sheetId: foreign })).rejects.toMatchObject({ code: 'NOT_FOUND' });
 		const { checkId } = await ask({ surveyId, sheetId: next });
 		for (const call of [
-			other.surveyor.api.check.get({ siteId: other.siteId, checkId }),
-			other.surveyor.api.check.csv({ siteId: other.siteId, checkId }),
-			other.surveyor.api.check.run({ siteId: other.siteId, revisionId, surveyId, sheetId: foreign }),
-			other.surveyor.api.tolerance.get({ siteId: other.siteId, sheetId: next }),
+			() => other.surveyor.api.check.get({ siteId: other.siteId, checkId }),
+			() => other.surveyor.api.check.csv({ siteId: other.siteId, checkId }),
+			() => other.surveyor.api.check.run({ siteId: other.siteId, revisionId, surveyId, sheetId: foreign }),
+			() => other.surveyor.api.tolerance.get({ siteId: other.siteId, sheetId: next }),
 		]) {
-			await expect(call).rejects.toMatchObject({ code: 'NOT_FOUND' });
+			await expect(call()).rejects.toMatchObject({ code: 'NOT_FOUND' });
 		}
 		expect(await other.surveyor.api.check.list({ siteId: other.siteId })).toEqual([]);
 

@@ -218,13 +218,13 @@ describe('fits', () => {
 		const other = await tied(text, text);
 		const { api, siteId } = other.surveyor;
 		for (const call of [
-			api.fit.get({ siteId, fitId }),
-			api.fit.adopt({ siteId, fitId, reason: 'Not mine.' }),
-			api.fit.pairs({ ...other.input, setupId: mine.input.setupId }),
-			api.fit.pairs({ ...other.input, controlSetId: mine.input.controlSetId }),
-			api.fit.make({ ...other.input, setupId: mine.input.setupId, ...plainFit }),
+			() => api.fit.get({ siteId, fitId }),
+			() => api.fit.adopt({ siteId, fitId, reason: 'Not mine.' }),
+			() => api.fit.pairs({ ...other.input, setupId: mine.input.setupId }),
+			() => api.fit.pairs({ ...other.input, controlSetId: mine.input.controlSetId }),
+			() => api.fit.make({ ...other.input, setupId: mine.input.setupId, ...plainFit }),
 		]) {
-			await expect(call).rejects.toMatchObject({ code: 'NOT_FOUND' });
+			await expect(call()).rejects.toMatchObject({ code: 'NOT_FOUND' });
 		}
 		expect(await api.fit.list({ siteId, setupId: mine.input.setupId })).toEqual([]);
 	});

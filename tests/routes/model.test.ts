@@ -155,15 +155,15 @@ describe('reading a model', { timeout: 180_000 }, () => {
 		const { api, siteId } = elsewhere.engineer;
 		const asked = { siteId, revisionId: revision.revisionId };
 		for (const call of [
-			api.model.revision(asked),
-			api.model.elements(asked),
-			api.model.checkpoints(asked),
-			api.model.picture(asked),
-			api.job.get({ siteId, jobId }),
-			api.job.cancel({ siteId, jobId }),
-			api.model.revision({ siteId: site.siteId, revisionId: revision.revisionId }),
+			() => api.model.revision(asked),
+			() => api.model.elements(asked),
+			() => api.model.checkpoints(asked),
+			() => api.model.picture(asked),
+			() => api.job.get({ siteId, jobId }),
+			() => api.job.cancel({ siteId, jobId }),
+			() => api.model.revision({ siteId: site.siteId, revisionId: revision.revisionId }),
 		]) {
-			await expect(call).rejects.toMatchObject({ code: 'NOT_FOUND' });
+			await expect(call()).rejects.toMatchObject({ code: 'NOT_FOUND' });
 		}
 		expect(await api.model.list({ siteId })).toEqual([]);
 	});
