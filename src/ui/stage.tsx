@@ -36,6 +36,8 @@ const moveMs = 170;
 /** Room for a level's words, pixels a letter and for the tick. */
 const letterPx = 8.4;
 const tickRoomPx = 26;
+/** In a narrower picture the levels' words would lie on the model. */
+const leastWidthForLevelsPx = 440;
 const turnStepRad = Math.PI / 24;
 
 /**
@@ -260,7 +262,8 @@ function AnchorMover({ anchors, overlay, north }: AnchorMoverProps) {
 			// A level's words stand left of their place and are kept in the picture.
 			const x = anchor.kind === 'level' ? Math.max(placeX, anchor.text.length * letterPx + tickRoomPx) : placeX;
 			drawing.setAttribute('transform', `translate(${x.toFixed(1)} ${y.toFixed(1)})`);
-			drawing.setAttribute('visibility', drawn[i] ? 'visible' : 'hidden');
+			const hasRoom = anchor.kind !== 'level' || size.width >= leastWidthForLevelsPx;
+			drawing.setAttribute('visibility', drawn[i] && hasRoom ? 'visible' : 'hidden');
 		});
 		const across = new Vector3(0, 1, 0).transformDirection(camera.matrixWorldInverse);
 		north.current?.setAttribute('transform', `rotate(${((Math.atan2(across.x, across.y) * 180) / Math.PI).toFixed(1)})`);

@@ -3,6 +3,7 @@ import type { CheckHead } from '#shared/check/contract.ts';
 import { calendarDay, count, isoMoment } from '#src/lib/format.ts';
 import { Glyph } from '#src/ui/glyph.tsx';
 import type { GlyphKind } from '#src/ui/glyph-kind.ts';
+import { sheetWords } from './sheet-words.ts';
 
 interface CheckListProps {
 	siteId: string;
@@ -50,7 +51,7 @@ export function CheckList({ siteId, checks, timeZone }: CheckListProps) {
 							<span className="block">
 								{check.revision.modelName} rev {check.revision.number}
 								{!check.revision.isNewest && <b className="text-ink">, not the newest</b>} · survey {check.survey.number},{' '}
-								{calendarDay(check.survey.surveyedOn, check.madeAt)} · sheet {check.sheet.name}
+								{calendarDay(check.survey.surveyedOn, check.madeAt)} · {sheetWords(check.sheet.name)}
 							</span>
 							<span className="block">
 								by {check.madeBy}, {isoMoment(check.madeAt, timeZone)}

@@ -112,7 +112,9 @@ export function DeviationCard({ deviation, element, setupName, stage, isFolded =
 			</div>
 			{isFolded ? (
 				<details>
-					<summary className="min-h-12 content-center text-action underline underline-offset-3">How well it is known, and where</summary>
+					<summary className="min-h-12 list-none content-center text-action underline underline-offset-3 [&::-webkit-details-marker]:hidden">
+						How well it is known, and where
+					</summary>
 					{facts}
 				</details>
 			) : (

@@ -2,6 +2,7 @@ import { memo, useCallback, useMemo } from 'react';
 import type { Deviation } from '#shared/check/check-schema.ts';
 import { deviationSentence, verdictWords } from '#shared/check/sentence.ts';
 
+import { useColourSet } from '#src/lib/colour-set.ts';
 import { plainMm, signedMm, uncertaintyMm } from '#src/lib/format.ts';
 import { glyphKindOf, planTurnRad } from '#src/ui/glyph-kind.ts';
 import { Rod } from '#src/ui/rod.tsx';
@@ -61,7 +62,7 @@ export function DeviationRod({
 	);
 }
 
-function wideColumns(scaleMm: number): Column<Deviation>[] {
+function wideColumns(scaleMm: number, rodPx: number): Column<Deviation>[] {
 	return [
 		{
 			key: 'where',
@@ -75,9 +76,9 @@ function wideColumns(scaleMm: number): Column<Deviation>[] {
 		},
 		{
 			key: 'rod',
-			head: `Against its limits, ±${scaleMm} mm`,
-			widthPx: 192,
-			cell: (row) => <DeviationRod deviation={row} scaleMm={scaleMm} widthPx={176} heightPx={30} />,
+			head: rodPx < 176 ? `Limits, ±${scaleMm} mm` : `Against its limits, ±${scaleMm} mm`,
+			widthPx: rodPx + 16,
+			cell: (row) => <DeviationRod deviation={row} scaleMm={scaleMm} widthPx={rodPx} heightPx={30} />,
 		},
 		{
 			key: 'mm',
@@ -109,7 +110,7 @@ function narrowColumns(scaleMm: number): Column<Deviation>[] {
 			isRowHead: true,
 			cell: (row) => (
 				<span className="block">
-					<span className="block w-0 min-w-full truncate leading-tight">{row.label}</span>
+					<span className="line-clamp-2 w-0 min-w-full text-small leading-[1.15] whitespace-normal">{row.label}</span>
 					<span className="-ml-1 block">
 						<DeviationRod deviation={row} scaleMm={scaleMm} widthPx={176} heightPx={26} />
 					</span>
@@ -137,7 +138,9 @@ const keyOf = (row: Deviation): string => row.checkpointId;
 
 /** The check's table: elements, the worst first, each with what is shown of it. */
 export const DeviationTable = memo(function DeviationTable({ groups, chosenId, onChoose, onOpen, scaleMm, isNarrow }: DeviationTableProps) {
-	const columns = useMemo(() => (isNarrow ? narrowColumns(scaleMm) : wideColumns(scaleMm)), [isNarrow, scaleMm]);
+	// Large and heavy type needs the room for where a place is.
+	const rodPx = useColourSet().set === 'sun' ? 138 : 176;
+	const columns = useMemo(() => (isNarrow ? narrowColumns(scaleMm) : wideColumns(scaleMm, rodPx)), [isNarrow, scaleMm, rodPx]);
 	const tableGroups = useMemo(
 		(): TableGroup<Deviation>[] =>
 			groups.map((group) => ({

@@ -1,5 +1,6 @@
 import { Link } from 'react-router-dom';
 import type { CheckHead } from '#shared/check/contract.ts';
+import { sheetWords } from '#src/features/check/sheet-words.ts';
 import { calendarDay, counted } from '#src/lib/format.ts';
 import { useAddressId } from '#src/lib/session.ts';
 import { useIsBelow } from '#src/ui/screen-width.ts';
@@ -12,11 +13,6 @@ const stateWords: Record<CheckHead['state'], string | null> = {
 	withdrawn: 'withdrawn',
 	failed: 'no result',
 };
-
-/** "sheet C2", and not "sheet Sheet C2" where its name says so itself. */
-function sheetWords(name: string): string {
-	return /^sheet\b/i.test(name) ? name.charAt(0).toLowerCase() + name.slice(1) : `sheet ${name}`;
-}
 
 /** Who stands behind the fits, each name once: "fits by Jo Marsh, checked by T. Okoro". */
 function fitWords(fits: CheckHead['fits']): string {

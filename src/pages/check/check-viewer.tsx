@@ -148,86 +148,92 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 	);
 	const clearTheWay = useCallback((entities: readonly number[]) => setInTheWay({ chosenId: view.chosenId, entities }), [view.chosenId]);
 	const lost = useCallback(
-		() => setFault('The device took the graphics away. The plan takes the model’s place; load the page again for the model.'),
+		() => setFault('The device took the graphics away, so the plan takes the model’s place. Load the page again for the model.'),
 		[],
 	);
 	const failed = useCallback((why: string) => setFault(why), []);
 	const ready = useCallback(() => setReady(true), []);
 
-	const message = !hasGraphics
-		? 'This browser draws no 3D here, so the plan takes the model’s place.'
-		: (fault ?? (mode === 'model' && !isReady ? 'The model is on its way; the plan meanwhile.' : null));
+	const whyPlan = hasGraphics ? fault : 'This browser draws no 3D here, so the plan takes the model’s place.';
+	const isOnItsWay = whyPlan === null && mode === 'model' && !isReady;
 	const label = `${marks.length} checkpoints${is3d ? ' on the model' : ' on the plan'}; the table says the same in words.`;
 	return (
-		<div className="sheet relative h-full min-h-80 overflow-hidden">
-			{may3d && wasAsked && (
-				<div className={is3d ? '' : 'invisible'}>
-					<Suspense fallback={null}>
-						<CheckScene
-							siteId={siteId}
-							revisionId={revisionId}
-							label={label}
-							box={box}
-							axes={axes}
-							storeys={revision.data?.reading.storeys ?? noElements}
-							marks={marks}
-							chosenId={view.chosenId}
-							chosenEntity={chosenEntity}
-							hidden={hidden}
-							times={times}
-							note={note}
-							commands={is3d ? commands : noCommands}
-							onChoose={choose}
-							onPickElement={pickElement}
-							onInTheWay={clearTheWay}
-							onReady={ready}
-							onFailed={failed}
-							onLost={lost}
+		<div className="sheet flex h-full min-h-80 flex-col overflow-hidden">
+			<div className="relative min-h-0 flex-1">
+				{may3d && wasAsked && (
+					<div className={is3d ? '' : 'invisible'}>
+						<Suspense fallback={null}>
+							<CheckScene
+								siteId={siteId}
+								revisionId={revisionId}
+								label={label}
+								box={box}
+								axes={axes}
+								storeys={revision.data?.reading.storeys ?? noElements}
+								marks={marks}
+								chosenId={view.chosenId}
+								chosenEntity={chosenEntity}
+								hidden={hidden}
+								times={times}
+								note={note}
+								commands={is3d ? commands : noCommands}
+								onChoose={choose}
+								onPickElement={pickElement}
+								onInTheWay={clearTheWay}
+								onReady={ready}
+								onFailed={failed}
+								onLost={lost}
+							/>
+						</Suspense>
+					</div>
+				)}
+				{!is3d && mode !== 'away' && (
+					<PlanStage label={label} box={planBox} over={drawOverPlan} commands={commands} onPress={pressPlan} note={note}>
+						{drawPlan}
+					</PlanStage>
+				)}
+				<div className="pointer-events-none absolute inset-x-2.5 top-2.5 flex flex-wrap justify-between gap-1.5 [&>*]:pointer-events-auto">
+					{onMode && may3d ? (
+						<Segmented
+							legend="View"
+							value={mode === 'plan' ? 'plan' : 'model'}
+							onChange={onMode}
+							options={[
+								{ value: 'model', label: 'Model' },
+								{ value: 'plan', label: 'Plan' },
+							]}
 						/>
-					</Suspense>
+					) : (
+						<span />
+					)}
+					<div className="flex flex-wrap justify-end gap-1.5">
+						<ToggleChip isOn={isOnlyThese} onPress={() => setOnlyThese(!isOnlyThese)} title="Draw only the elements the table shows">
+							Only these
+						</ToggleChip>
+						<PressChip
+							onPress={() => {
+								setOnlyThese(false);
+								setPutAway(new Set());
+								setInTheWay({ chosenId: null, entities: [] });
+								commands.current?.whole();
+							}}
+							title="Everything back, seen whole"
+						>
+							Whole
+						</PressChip>
+					</div>
+					{isOnItsWay && (
+						<p role="status" className="pointer-events-none m-0 w-fit rounded-corner bg-sheet px-1.5 text-small text-second">
+							The model is on its way; the plan meanwhile.
+						</p>
+					)}
 				</div>
-			)}
-			{!is3d && mode !== 'away' && (
-				<PlanStage label={label} box={planBox} over={drawOverPlan} commands={commands} onPress={pressPlan} note={note}>
-					{drawPlan}
-				</PlanStage>
-			)}
-			<div className="pointer-events-none absolute inset-x-2.5 top-2.5 flex flex-wrap justify-between gap-1.5 [&>*]:pointer-events-auto">
-				{onMode && may3d ? (
-					<Segmented
-						legend="View"
-						value={mode === 'plan' ? 'plan' : 'model'}
-						onChange={onMode}
-						options={[
-							{ value: 'model', label: 'Model' },
-							{ value: 'plan', label: 'Plan' },
-						]}
-					/>
-				) : (
-					<span />
-				)}
-				<div className="flex flex-wrap justify-end gap-1.5">
-					<ToggleChip isOn={isOnlyThese} onPress={() => setOnlyThese(!isOnlyThese)} title="Draw only the elements the table shows">
-						Only these
-					</ToggleChip>
-					<PressChip
-						onPress={() => {
-							setOnlyThese(false);
-							setPutAway(new Set());
-							setInTheWay({ chosenId: null, entities: [] });
-							commands.current?.whole();
-						}}
-						title="Everything back, seen whole"
-					>
-						Whole
-					</PressChip>
-				</div>
-				{message !== null && (
-					<p role="status" className="pointer-events-none m-0 w-fit basis-full rounded-corner bg-sheet px-1.5 text-small text-second">
-						{message}
-					</p>
-				)}
 			</div>
+			{whyPlan !== null && (
+				<p role="status" className="m-0 border-t border-t-hair px-3 py-1.5 text-small text-second">
+					{whyPlan}
+				</p>
+			)}
 		</div>
 	);
 }

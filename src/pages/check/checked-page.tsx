@@ -33,8 +33,8 @@ import { usePoursOf } from './use-pours-of.ts';
 /** Side by side from a small laptop on; on an upright tablet the table above, picture and card below; on a phone one at a time. */
 const sides =
 	'grid gap-4 tablet:grid-cols-2 tablet:grid-rows-[28rem_24rem] cabin:h-[max(38rem,calc(100dvh-20.5rem))] cabin:grid-cols-[minmax(0,1fr)_416px] cabin:grid-rows-[minmax(0,57fr)_minmax(0,43fr)] desk:grid-cols-[minmax(0,1fr)_520px]';
-const tableSide = 'h-[max(22rem,calc(100dvh-17rem))] min-h-0 min-w-0 tablet:col-span-2 tablet:h-auto cabin:col-span-1 cabin:row-span-2';
-const viewerSide = 'h-[max(22rem,calc(100dvh-17rem))] min-h-0 min-w-0 tablet:h-auto';
+const tableSide = 'h-[max(20rem,calc(100dvh-10.5rem))] min-h-0 min-w-0 tablet:col-span-2 tablet:h-auto cabin:col-span-1 cabin:row-span-2';
+const viewerSide = 'h-[max(20rem,calc(100dvh-10.5rem))] min-h-0 min-w-0 tablet:h-auto';
 const cardSide =
 	'min-h-0 min-w-0 overflow-auto max-tablet:fixed max-tablet:inset-x-2 max-tablet:bottom-[5.25rem] max-tablet:z-10 max-tablet:max-h-[46dvh] max-tablet:rounded-corner max-tablet:shadow-lift';
 
@@ -49,6 +49,12 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 	const commands = useRef<ViewCommands | null>(null);
 	const frameChosen = useRef<(checkpointId: string) => void>(() => {});
 
+	const segment = useRef<HTMLDivElement>(null);
+	/** On a phone one of the three fills the screen: it is brought there. */
+	const showOnPhone = (next: PhoneView): void => {
+		setViewWord(next === 'table' ? null : next);
+		requestAnimationFrame(() => segment.current?.scrollIntoView?.({ block: 'start' }));
+	};
 	const putAway = useRef<() => void>(() => {});
 
 	const scaleMm = useMemo(() => {
@@ -131,7 +137,7 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			acts={
 				<span className="flex shrink-0 flex-wrap justify-end gap-1.5">
 					{isPhone && phoneView === 'table' ? (
-						<PressChip onPress={() => setViewWord('plan')} title="Show it on the plan">
+						<PressChip onPress={() => showOnPhone('plan')} title="Show it on the plan">
 							On plan
 						</PressChip>
 					) : (
@@ -181,11 +187,11 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 				{(isPhone || !hasFindings) && filters}
 			</div>
 			{isPhone && (
-				<div className="mb-2">
+				<div ref={segment} className="mb-2 scroll-mt-2">
 					<Segmented
 						legend="Show as"
 						value={phoneView}
-						onChange={(next) => setViewWord(next === 'table' ? null : next)}
+						onChange={showOnPhone}
 						options={[
 							{ value: 'table', label: 'Table' },
 							{ value: 'plan', label: 'On plan' },
