@@ -16,11 +16,11 @@ export type ElementDraft = {
 	placed: PlacedElement | null;
 };
 
-/** Names the elements and their checkpoints: marks unique in the file (a checkpoint's is its element's, a point, a letter and a number), ids as in checkpoint-id.ts. */
+/** Names the elements and their checkpoints: marks unique in the file (a checkpoint's is its element's, a point, a letter and a number), ids as in checkpoint-id.ts. The checkpoints come one by one and once: there may be half a million. */
 export function nameElements(
 	drafts: readonly ElementDraft[],
 	grid: readonly GridAxis[],
-): { elements: Element[]; checkpoints: Checkpoint[] } {
+): { elements: Element[]; checkpoints: Iterable<Checkpoint> } {
 	const marks = markElements(
 		drafts.map((draft) => {
 			const upright = draft.placed?.kind === 'column' || draft.placed?.kind === 'pile' || draft.placed?.kind === 'bolt';
@@ -39,25 +39,31 @@ export function nameElements(
 		}),
 		grid,
 	);
-	const makeId = checkpointIdMaker();
-	const uses = new Map<string, number>();
-	const elements: Element[] = [];
-	const checkpoints: Checkpoint[] = [];
-	drafts.forEach((draft, at) => {
+	const elements = drafts.map((draft, at): Element => {
 		const { mark, title } = marks[at]!;
-		elements.push({
-			entityNumber: draft.entityNumber,
-			globalId: draft.globalId,
-			class: draft.class,
-			name: draft.name,
-			tag: draft.tag,
-			storey: draft.storey,
+		const { entityNumber, globalId, class: className, name, tag, storey, boxM, placed } = draft;
+		return {
+			entityNumber,
+			globalId,
+			class: className,
+			name,
+			tag,
+			storey,
 			mark,
 			title,
-			sizesM: draft.placed?.sizesM ?? { length: null, height: null, thickness: null },
-			boxM: draft.boxM && { min: [...draft.boxM.min], max: [...draft.boxM.max] },
-		});
-		if (!draft.placed || !draft.boxM) return;
+			sizesM: placed?.sizesM ?? { length: null, height: null, thickness: null },
+			boxM: boxM && { min: [...boxM.min], max: [...boxM.max] },
+		};
+	});
+	return { elements, checkpoints: nameCheckpoints(drafts, marks) };
+}
+
+function* nameCheckpoints(drafts: readonly ElementDraft[], marks: readonly { mark: string }[]): Generator<Checkpoint> {
+	const makeId = checkpointIdMaker();
+	const uses = new Map<string, number>();
+	for (const [at, draft] of drafts.entries()) {
+		const { mark } = marks[at]!;
+		if (!draft.placed || !draft.boxM) continue;
 		// A GlobalId that repeats stands for several elements: the second one's checkpoints are told from the first one's by their order.
 		const use = uses.get(draft.globalId) ?? 0;
 		uses.set(draft.globalId, use + 1);
@@ -68,7 +74,7 @@ export function nameElements(
 		for (const checkpoint of draft.placed.drafts) {
 			const number = (counts.get(checkpoint.code) ?? 0) + 1;
 			counts.set(checkpoint.code, number);
-			checkpoints.push({
+			yield {
 				id: makeId(key, draft.boxM.min, checkpoint.characteristic, checkpoint.place, checkpoint.direction),
 				entityNumber: draft.entityNumber,
 				globalId: draft.globalId,
@@ -79,8 +85,7 @@ export function nameElements(
 				label: checkpoint.label,
 				surface: checkpoint.surface,
 				isSoffit: checkpoint.isSoffit,
-			});
+			};
 		}
-	});
-	return { elements, checkpoints };
+	}
 }

@@ -52,6 +52,8 @@ function decodePageByte(page: string, code: number): string {
 	return new TextDecoder(page).decode(Uint8Array.of(code));
 }
 
+const isPlain = (code: number): boolean => code !== 92 && code !== 39 && code !== 10 && code !== 13;
+
 /** The text between the outer apostrophes of a Part 21 string, decoded. Line breaks inside are dropped, as the standard says. Linear in its length. */
 export function decodePart21String(raw: string): string {
 	if (!raw.includes('\\') && !raw.includes("''") && !raw.includes('\n') && !raw.includes('\r')) return raw;
@@ -66,8 +68,9 @@ export function decodePart21String(raw: string): string {
 		} else if (character === '\n' || character === '\r') {
 			at++;
 		} else if (character !== '\\') {
-			parts.push(character);
-			at++;
+			const from = at++;
+			while (at < raw.length && isPlain(raw.charCodeAt(at))) at++;
+			parts.push(raw.slice(from, at));
 		} else if (raw[at + 1] === '\\') {
 			parts.push('\\');
 			at += 2;

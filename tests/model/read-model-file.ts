@@ -15,9 +15,11 @@ export async function readHere(bytes: Uint8Array): Promise<ModelReading> {
 	const geometry = await openGeometry(bytesForEngine(bytes, head.file, head.schema), head.reading.metresPerUnit);
 	if (!geometry) throw new Error('The geometry engine does not open the file.');
 	const elements = readElements(head, geometry, pictureBuilder(), new Map(), () => {});
+	const named = nameElements(elements.drafts, head.reading.grid);
 	return {
 		...head.reading,
-		...nameElements(elements.drafts, head.reading.grid),
+		elements: named.elements,
+		checkpoints: [...named.checkpoints],
 		skipped: elements.skipped,
 		findings: [...head.findings, ...elements.findings],
 	};

@@ -73,7 +73,8 @@ type Attempt = ReadIfcOutcome | { ok: false; code: 'again'; entityNumber: number
 
 function startChild(timeMs: number, memoryMb: number): ChildProcess {
 	const { file, execArgv } = programAndLoader();
-	const heapMb = Math.max(256, Math.floor(memoryMb));
+	// Left to itself the collector lets garbage grow up to the limit; file, engine and picture lie outside its heap.
+	const heapMb = Math.max(256, Math.floor(memoryMb * 0.6));
 	// A hang inside WebAssembly hears no message: if this process dies, the limit on processor time still ends the child.
 	const seconds = Math.ceil(timeMs / 1000) + 10;
 	return spawn(

@@ -1,6 +1,7 @@
 import { closeSync, openSync, readFileSync, statSync, writeSync } from 'node:fs';
 import { bytesForEngine } from '#shared/model/ifc-schema-name.ts';
 import { nameElements } from '#shared/model/model-elements.ts';
+import type { Checkpoint } from '#shared/model/model-schema.ts';
 import { readModelHead } from '#shared/model/read-model-head.ts';
 import type { ReadIfcReply, ReadIfcRequest } from './ifc-messages.ts';
 import { BrokenEngine, readElements } from './ifc-reading.ts';
@@ -75,14 +76,20 @@ async function read(request: ReadIfcRequest): Promise<void> {
 		},
 	);
 	closeSync(at);
-	const named = nameElements(elements.drafts, head.reading.grid);
 	lastTold = 0;
 	tell('Drawing the picture', 0, 1);
+	// First the picture, whose memory is then free, then the names.
 	const hasPicture = await picture.write(request.glbPath);
+	const named = nameElements(elements.drafts, head.reading.grid);
 	for (let from = 0; from < named.elements.length; from += PIECE)
 		await send({ kind: 'elements', elements: named.elements.slice(from, from + PIECE) });
-	for (let from = 0; from < named.checkpoints.length; from += PIECE)
-		await send({ kind: 'checkpoints', checkpoints: named.checkpoints.slice(from, from + PIECE) });
+	let piece: Checkpoint[] = [];
+	for (const checkpoint of named.checkpoints) {
+		if (piece.push(checkpoint) < PIECE) continue;
+		await send({ kind: 'checkpoints', checkpoints: piece });
+		piece = [];
+	}
+	if (piece.length > 0) await send({ kind: 'checkpoints', checkpoints: piece });
 	await send({
 		kind: 'result',
 		reading: { ...head.reading, skipped: elements.skipped, findings: [...head.findings, ...elements.findings] },
