@@ -1,7 +1,6 @@
 import { once } from 'node:events';
-import { readConfiguration } from './app/configuration.ts';
+import { isLoopback, readConfiguration } from './app/configuration.ts';
 import { startServer } from './app/start.ts';
-import { seedDemo } from './scripts/seed.ts';
 
 // Before the database is opened: a stop in the middle of the start must not leave the folder half made.
 // Not once: a terminal and npm both pass a Ctrl-C on, and the second must not cut the closing short.
@@ -10,12 +9,17 @@ for (const signal of ['SIGTERM', 'SIGINT'] as const) process.on(signal, () => st
 
 try {
 	const configuration = readConfiguration(process.env, process.argv.slice(2));
-	const running = await startServer(configuration);
-	if (configuration.isDemoWished && !stop.signal.aborted) {
-		const demo = await seedDemo(running.platform);
-		if (demo !== null) console.log(demo);
-	}
+	const running = await startServer(configuration, stop.signal);
 	console.log(`Batterboard is at ${running.address}`);
+	if (running.demo !== null) console.log(running.demo);
+	if (running.demo !== null && !isLoopback(configuration.host)) {
+		console.error(
+			'Others can reach this address, and the demo’s passwords are public: set DEMO=off and another DATA_DIR before real work.',
+		);
+	}
+	if (configuration.isCookieSecure && running.address.startsWith('http:')) {
+		console.error('Sign-in cookies travel by TLS only: put a proxy with TLS before this, or set COOKIE_SECURE=off.');
+	}
 	if (!stop.signal.aborted) await once(stop.signal, 'abort');
 	await running.close();
 	process.exit(0);

@@ -19,7 +19,11 @@ export interface Configuration {
 	isDevelopment: boolean;
 }
 
-const loopback = ['127.0.0.1', '::1', 'localhost'];
+/** Reached from this machine alone. */
+export function isLoopback(host: string): boolean {
+	return ['127.0.0.1', '::1', 'localhost'].includes(host);
+}
+
 const onOff = z.enum(['on', 'off']);
 const whole = (least: number, most: number) => z.string().regex(/^\d+$/).transform(Number).pipe(z.number().min(least).max(most));
 
@@ -55,7 +59,7 @@ export function readConfiguration(environment: Record<string, string | undefined
 		host,
 		dataDir: resolve(read('DATA_DIR')),
 		databaseUrl: read('DATABASE_URL') ?? null,
-		isCookieSecure: cookieSecure === undefined ? !loopback.includes(host) : cookieSecure === 'on',
+		isCookieSecure: cookieSecure === undefined ? !isLoopback(host) : cookieSecure === 'on',
 		proxyHops: read('TRUST_PROXY_HOPS'),
 		largestUploadBytes: read('MAX_UPLOAD_MB') * 1_000_000,
 		isDemoWished: read('DEMO') === 'on',

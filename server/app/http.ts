@@ -22,18 +22,21 @@ export interface HttpParts {
 	uploads: UploadServer;
 	router: typeof router;
 	client: RequestHandler;
+	/** False until the jobs are taken up and the demo site is made. */
+	isReady: () => boolean;
 	settings: { isCookieSecure: boolean; isDevelopment: boolean; proxyHops: number };
 }
 
 /** The web server's parts in their order: headers, origin, uploads, calls, client. */
-export function httpApp({ platform, sessions, uploads, router, client, settings }: HttpParts): Express {
+export function httpApp({ platform, sessions, uploads, router, client, isReady, settings }: HttpParts): Express {
 	const app = express();
 	app.disable('x-powered-by');
 	app.set('trust proxy', settings.proxyHops);
 	app.use(securityHeaders({ isSecure: settings.isCookieSecure, isDevelopment: settings.isDevelopment }));
 	app.get('/health', async (_request, response) => {
 		await platform.db.execute(sql`select 1`);
-		response.set('cache-control', 'no-store').json({ state: 'up' });
+		response.status(isReady() ? 200 : 503).set('cache-control', 'no-store');
+		response.json({ state: isReady() ? 'up' : 'starting' });
 	});
 	app.use(refuseForeignOrigin);
 	// Before anything that reads bodies: an upload's body is the file.

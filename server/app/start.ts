@@ -10,6 +10,7 @@ import { openSessions } from '../platform/session.ts';
 import { openUploads } from '../platform/upload-server.ts';
 import { clientOf } from './client.ts';
 import type { Configuration } from './configuration.ts';
+import { demoOn } from './demo.ts';
 import { httpApp, uploadsPath } from './http.ts';
 import { jobRunners } from './jobs.ts';
 import { router } from './router.ts';
@@ -21,23 +22,27 @@ const requestTimeoutMs = 30 * 60_000;
 export interface RunningServer {
 	address: string;
 	platform: Platform;
+	/** What to say of the demo site; null without one. */
+	demo: string | null;
 	/** Lets go of everything: connections, jobs (they go back into the queue), database, lock. */
 	close: () => Promise<void>;
 }
 
-/** Opens the database, listens, then takes up the jobs. Throws a plain sentence where one of them cannot be had; nothing stays open then. */
-export async function startServer(configuration: Configuration): Promise<RunningServer> {
-	const connection = await connectDatabase(configuration);
-	try {
-		return await startOn(connection, configuration, jobRunners);
-	} catch (error) {
-		await connection.close();
-		throw error;
-	}
+/**
+ * Opens the database, listens, takes up the jobs, and makes the demo site where it is wished and no stop was asked for. Throws a plain
+ * sentence where one of them cannot be had; nothing stays open then.
+ */
+export async function startServer(configuration: Configuration, stop: AbortSignal): Promise<RunningServer> {
+	return startOn(await connectDatabase(configuration), configuration, jobRunners, stop);
 }
 
-/** The same on an open database, as in tests. `close` closes it. */
-export async function startOn(connection: Connection, configuration: Configuration, runners: readonly JobRunner[]): Promise<RunningServer> {
+/** The same on an open database, as in tests. The database is closed with the rest. */
+export async function startOn(
+	connection: Connection,
+	configuration: Configuration,
+	runners: readonly JobRunner[],
+	stop?: AbortSignal,
+): Promise<RunningServer> {
 	const queue = openQueue(connection, runners);
 	const platform: Platform = {
 		db: connection.db,
@@ -49,15 +54,27 @@ export async function startOn(connection: Connection, configuration: Configurati
 		newId: randomUUID,
 	};
 	const sessions = openSessions({ db: platform.db, isSecure: configuration.isCookieSecure, now: platform.now });
-	const uploads = openUploads({ platform, path: uploadsPath, largestBytes: configuration.largestUploadBytes });
-	await sessions.deleteExpired();
-	await uploads.sweep();
 	const server = createServer({ requestTimeout: requestTimeoutMs });
-	const client = await clientOf({ isDevelopment: configuration.isDevelopment, server });
-	server.on('request', httpApp({ platform, sessions, uploads, router, client: client.handler, settings: configuration }));
-	const address = await listen(server, configuration);
-	await queue.start(platform);
-	return { address, platform, close: () => closeAll(server, client.close, queue, connection) };
+	let closeClient = async () => {};
+	let isReady = false;
+	const close = () => closeAll(server, closeClient, queue, connection);
+	try {
+		const uploads = openUploads({ platform, path: uploadsPath, largestBytes: configuration.largestUploadBytes });
+		await sessions.deleteExpired();
+		await uploads.sweep();
+		const client = await clientOf({ isDevelopment: configuration.isDevelopment, server });
+		closeClient = client.close;
+		const parts = { platform, sessions, uploads, router, client: client.handler, settings: configuration, isReady: () => isReady };
+		server.on('request', httpApp(parts));
+		const address = await listen(server, configuration);
+		await queue.start(platform);
+		const demo = configuration.isDemoWished && !stop?.aborted ? await demoOn(platform) : null;
+		isReady = true;
+		return { address, platform, demo, close };
+	} catch (error) {
+		await close();
+		throw error;
+	}
 }
 
 async function closeAll(server: Server, closeClient: () => Promise<void>, queue: Queue, connection: Connection): Promise<void> {

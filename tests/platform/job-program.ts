@@ -27,7 +27,7 @@ const runner = runnerOf(
 	async (_input, _platform, reason) => console.log(`given up: ${reason}`),
 );
 
-const configuration = readConfiguration({ ...process.env, PORT: '0' }, []);
+const configuration = readConfiguration({ ...process.env, PORT: '0', DEMO: 'off' }, []);
 const { platform, close } = await startOn(await openEmbedded(configuration.dataDir), configuration, [runner]);
 let isStopping = false;
 process.on('SIGTERM', async () => {
