@@ -106,6 +106,7 @@ export type FitSummary = z.infer<typeof fitSummary>;
 export const fitDetail = fitSummary.extend({
 	knownScale: z.number().nullable(),
 	shelves: z.array(shelving),
+	relabellings: z.array(relabelling),
 	result: fitResult,
 	pairs: pairsOfSetup,
 });

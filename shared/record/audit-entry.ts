@@ -13,6 +13,7 @@ export const auditKinds = [
 	'survey-failed',
 	'fit-made',
 	'fit-adopted',
+	'fit-checked',
 	'sheet-issued',
 	'check-run',
 	'check-computed',

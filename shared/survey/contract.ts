@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
 import { stage } from '../tolerance/sheet-schema.ts';
+import { setupObservation, surveyObservation } from './observation-record.ts';
 import { pointTableReading, rowFault } from './point-table-schema.ts';
 
 export const setupInput = z.object({
@@ -20,6 +21,8 @@ export const setupInput = z.object({
 	/** What the set-up's points share and no residual shows; 2 where nothing is entered. */
 	commonMm: z.number().min(0).max(1000),
 	instrumentHeightM: z.number().min(-10).max(10).nullable(),
+	/** Absent: nothing was said of it. */
+	observation: setupObservation.optional(),
 });
 export type SetupInput = z.infer<typeof setupInput>;
 
@@ -30,6 +33,8 @@ export const surveyForm = z.object({
 	observer: plainText(80),
 	instrument: plainText(80),
 	serial: plainText(60),
+	/** How it was measured; absent: nothing was said of it. */
+	observation: surveyObservation.optional(),
 });
 export type SurveyForm = z.infer<typeof surveyForm>;
 

@@ -1,6 +1,6 @@
 import { sql } from 'drizzle-orm';
 import { check, doublePrecision, foreignKey, integer, jsonb, pgEnum, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
-import type { PairsOfSetup, Shelving } from '../../../shared/fit/contract.ts';
+import type { PairsOfSetup, Relabelling, Shelving, SurveyorInCharge } from '../../../shared/fit/contract.ts';
 import { type FitResult, fitKinds } from '../../../shared/fit/fit-schema.ts';
 import { users } from './account.ts';
 import { at, id, sha256, siteId } from './columns.ts';
@@ -22,6 +22,8 @@ export const fits = pgTable(
 		kind: fitKindEnum('kind').notNull(),
 		knownScale: doublePrecision('known_scale'),
 		shelves: jsonb('shelves').$type<Shelving[]>().notNull(),
+		/** Targets taken for marks they are not named like, each with its reason. */
+		relabellings: jsonb('relabellings').$type<Relabelling[]>().notNull().default([]),
 		/** The pairs as they were, so that the fit can be computed again from itself. */
 		pairs: jsonb('pairs').$type<PairsOfSetup>().notNull(),
 		result: jsonb('result').$type<FitResult>().notNull(),
@@ -37,6 +39,8 @@ export const fits = pgTable(
 		/** The second person. */
 		checkedBy: uuid('checked_by').references(() => users.id),
 		checkedAt: at('checked_at'),
+		checkedNote: text('checked_note'),
+		surveyorInCharge: jsonb('surveyor_in_charge').$type<SurveyorInCharge>(),
 	},
 	(t) => [
 		foreignKey({

@@ -15,6 +15,7 @@ import {
 	unique,
 	uuid,
 } from 'drizzle-orm/pg-core';
+import type { SetupObservation, SurveyObservation } from '../../../shared/survey/observation-record.ts';
 import type { PointTableReading } from '../../../shared/survey/point-table-schema.ts';
 import { stages } from '../../../shared/tolerance/sheet-schema.ts';
 import { users } from './account.ts';
@@ -43,6 +44,8 @@ export const surveys = pgTable(
 		fileSha256: sha256('file_sha256')
 			.notNull()
 			.references(() => files.sha256),
+		/** How it was measured, as far as it was said. */
+		observation: jsonb('observation').$type<SurveyObservation>(),
 		reading: jsonb('reading').$type<PointTableReading>().notNull(),
 		state: surveyStateEnum('state').notNull(),
 		reason: text('reason'),
@@ -69,6 +72,7 @@ export const setups = pgTable(
 		pointSigmaHeightM: metres('point_sigma_height_m'),
 		commonMm: millimetres('common_mm').notNull(),
 		instrumentHeightM: metres('instrument_height_m'),
+		observation: jsonb('observation').$type<SetupObservation>(),
 	},
 	(t) => [
 		foreignKey({

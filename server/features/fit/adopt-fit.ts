@@ -1,5 +1,5 @@
 import { and, eq, max } from 'drizzle-orm';
-import type { FitSummary } from '#shared/fit/contract.ts';
+import type { FitSummary, SurveyorInCharge } from '#shared/fit/contract.ts';
 import { lockSite } from '../../db/lock-site.ts';
 import { controlSets } from '../../db/schema/control.ts';
 import { fits } from '../../db/schema/fit.ts';
@@ -10,6 +10,7 @@ import type { Member, Platform } from '../../platform/platform.ts';
 import { Conflict, foundOne, Refused } from '../../platform/refuse.ts';
 import { whyNotAdoptable } from './policy.ts';
 import { fitOf } from './queries.ts';
+import { saidSurveyor } from './said-surveyor.ts';
 
 /**
  * Adopts a made fit: checks carry the set-up's points over by it. The set-up's fit adopted before is superseded. Once only: CONFLICT
@@ -18,7 +19,7 @@ import { fitOf } from './queries.ts';
 export async function adoptFit(
 	platform: Platform,
 	member: Member,
-	{ fitId, reason }: { fitId: string; reason: string },
+	{ fitId, reason, surveyorInCharge }: { fitId: string; reason: string; surveyorInCharge?: SurveyorInCharge | undefined },
 ): Promise<FitSummary | 'stale'> {
 	const { siteId } = member;
 	try {
@@ -46,7 +47,13 @@ export async function adoptFit(
 				.returning({ number: fits.number });
 			const adopted = await tx
 				.update(fits)
-				.set({ state: 'adopted', adoptedBy: member.userId, adoptedAt: platform.now(), adoptedReason: reason })
+				.set({
+					state: 'adopted',
+					adoptedBy: member.userId,
+					adoptedAt: platform.now(),
+					adoptedReason: reason,
+					...saidSurveyor(surveyorInCharge),
+				})
 				.where(and(eq(fits.siteId, siteId), eq(fits.id, fitId), eq(fits.state, 'made')))
 				.returning({ id: fits.id });
 			if (adopted.length === 0) throw new Conflict(`Fit ${fit.number} was adopted already. Look again, then decide.`);

@@ -23,10 +23,15 @@ type MakeFit = InferContractRouterInputs<typeof fitContract>['make'];
 export async function makeFit(
 	platform: Platform,
 	member: Member,
-	{ setupId, controlSetId, kind, knownScale, shelves }: MakeFit,
+	{ setupId, controlSetId, kind, knownScale, shelves, relabellings = [] }: MakeFit,
 ): Promise<{ ok: true; fit: FitDetail } | { ok: false; refusal: FitRefusal }> {
 	const { siteId } = member;
-	const { pairs, setupName, surveyFileSha256, controlFileSha256 } = await setupPairs(platform.db, { siteId, setupId, controlSetId });
+	const { pairs, setupName, surveyFileSha256, controlFileSha256 } = await setupPairs(platform.db, {
+		siteId,
+		setupId,
+		controlSetId,
+		relabellings,
+	});
 	expectShelves(pairs, shelves);
 	const asked = shelvedInput(pairs.pairs, kind, knownScale, shelves);
 	const partial = partialInFree(asked);
@@ -36,7 +41,14 @@ export async function makeFit(
 	const outcome = computeFit(read.input);
 	if (!outcome.ok) return outcome;
 	// By content, not by our ids: whoever has the same files comes to the same hash.
-	const inputsSha256 = await sha256OfJson({ surveyFileSha256, setupName, controlFileSha256, shelves, fitInput: asked });
+	const inputsSha256 = await sha256OfJson({
+		surveyFileSha256,
+		setupName,
+		controlFileSha256,
+		shelves,
+		...(relabellings.length > 0 ? { relabellings } : {}),
+		fitInput: asked,
+	});
 	const fitId = platform.newId();
 	await platform.transaction(async (tx) => {
 		await lockSite(tx, siteId);
@@ -54,7 +66,8 @@ export async function makeFit(
 			kind,
 			knownScale,
 			shelves: [...shelves],
-			pairs,
+			relabellings: [...relabellings],
+			pairs: withoutLoose(pairs),
 			result: outcome.result,
 			inputsSha256,
 			state: 'made',
@@ -66,15 +79,28 @@ export async function makeFit(
 	return { ok: true, fit: await fitOf(platform.db, siteId, fitId) };
 }
 
-/** Every shelf names a pair, once, and what is set aside says why. */
+/** What has no partner was offered for a match; the fit does not rest on it. */
+function withoutLoose({ loose: _, ...kept }: PairsOfSetup): PairsOfSetup {
+	return kept;
+}
+
+/** Every shelf names a pair, once; what does not lie in the fit, whole and as labelled, says why; exchanged labels name each other. */
 function expectShelves({ pairs }: PairsOfSetup, shelves: readonly Shelving[]): void {
 	const known = new Set(pairs.map(({ name }) => name));
+	const partners = new Map(shelves.map(({ name, exchangedWith }) => [name, exchangedWith ?? null]));
 	const seen = new Set<string>();
-	for (const [index, { name, shelf, reason }] of shelves.entries()) {
+	for (const [index, { name, shelf, reason, use = 'all', exchangedWith = null }] of shelves.entries()) {
 		const where = `shelves.${index}`;
 		if (!known.has(name)) throw new Refused('no-such-pair', `"${name}" is no pair of this set-up.`, where);
 		if (seen.has(name)) throw new Refused('shelved-twice', `"${name}" lies on two shelves.`, where);
 		if (shelf === 'set-aside' && reason === null) throw new Refused('no-reason', `Say why "${name}" is set aside.`, where);
+		if (use !== 'all' && reason === null) throw new Refused('no-reason', `Say why "${name}" is used in ${use} only.`, where);
+		if (exchangedWith !== null) {
+			if (reason === null) throw new Refused('no-reason', `Say why "${name}" is exchanged with "${exchangedWith}".`, where);
+			if (exchangedWith === name || partners.get(exchangedWith) !== name) {
+				throw new Refused('not-mutual', `"${name}" is exchanged with "${exchangedWith}", which does not say so.`, where);
+			}
+		}
 		seen.add(name);
 	}
 }

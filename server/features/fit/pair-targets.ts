@@ -1,4 +1,4 @@
-import type { PairsOfSetup } from '#shared/fit/contract.ts';
+import type { PairsOfSetup, Relabelling } from '#shared/fit/contract.ts';
 import type { FitPair } from '#shared/fit/fit-schema.ts';
 import { isTargetCode, matchMarks } from '#shared/survey/match-marks.ts';
 
@@ -24,7 +24,12 @@ type Axes<Value> = [Value, Value, Value];
  * The pairs of a set-up: targets and control points that are the same mark (`matchMarks`), in the order of the control list.
  * Repeats of a target are averaged, σ of the mean = √(Σσ²)/n. σ are used for all pairs or none; `sigmaNote` says why not.
  */
-export function pairTargets(points: readonly SetupPoint[], marks: readonly ControlMark[]): Omit<PairsOfSetup, 'setupId' | 'controlSetId'> {
+export function pairTargets(
+	measured: readonly SetupPoint[],
+	marks: readonly ControlMark[],
+	relabellings: readonly Relabelling[] = [],
+): Omit<PairsOfSetup, 'setupId' | 'controlSetId'> {
+	const points = relabelled(measured, relabellings);
 	const matches = matchMarks(
 		points.map(({ name }) => name),
 		marks.map(({ name }) => name),
@@ -46,7 +51,40 @@ export function pairTargets(points: readonly SetupPoint[], marks: readonly Contr
 		targetsWithoutControl: [...new Set(unmatched.map(({ name }) => name))],
 		sigmaNote,
 		notes: [...looseNotes(matches), ...paired.flatMap(({ note }) => note ?? [])],
+		loose: {
+			targets: looseTargets(points.filter(({ name }) => !matches.has(name))),
+			control: marks.flatMap(({ name, designM: [east, north, height] }) =>
+				sighted.has(name) || east === null || north === null || height === null
+					? []
+					: [{ name, point: [east, north, height] as Axes<number> }],
+			),
+		},
+		...(relabellings.length > 0 ? { relabellings: [...relabellings] } : {}),
 	};
+}
+
+/** Points under the names of the marks that they were found to be; one that bears such a mark's name already gives it up. */
+function relabelled(points: readonly SetupPoint[], relabellings: readonly Relabelling[]): readonly SetupPoint[] {
+	if (relabellings.length === 0) return points;
+	const markOf = new Map(relabellings.map(({ target, mark }) => [target, mark]));
+	const taken = new Set(markOf.values());
+	return points.map((point) => {
+		const mark = markOf.get(point.name);
+		if (mark !== undefined) return { ...point, name: mark };
+		return taken.has(point.name) ? { ...point, name: `${point.name} (as labelled)` } : point;
+	});
+}
+
+/** More uncoded points than this are detail, and no match is looked for among them. */
+const mostUncoded = 300;
+
+/** Those coded as targets; where none is, all, unless they are too many to be targets. Repeats once, by their first. */
+function looseTargets(unmatched: readonly SetupPoint[]): { name: string; point: Axes<number> }[] {
+	const coded = unmatched.filter(({ code }) => isTargetCode(code));
+	const candidates = coded.length > 0 ? coded : unmatched.length <= mostUncoded ? unmatched : [];
+	const firsts = new Map<string, SetupPoint>();
+	for (const point of candidates) if (!firsts.has(point.name)) firsts.set(point.name, point);
+	return [...firsts.values()].map(({ name, surveyM }) => ({ name, point: [...surveyM] as Axes<number> }));
 }
 
 interface Paired {

@@ -20,3 +20,14 @@ export function whyNotAdoptable(kind: FitKind, setup: { levelling: 'levelled' | 
 	}
 	return null;
 }
+
+/** Why this person may not check this fit as the second one, with the code of the refusal; null where they may. */
+export function whyNotCheckable(
+	fit: { state: 'made' | 'adopted' | 'superseded'; adoptedBy: string | null },
+	userId: string,
+): { code: string; message: string } | null {
+	if (fit.state === 'made') return { code: 'not-adopted', message: 'This fit is not adopted yet. It is adopted first, then checked.' };
+	if (fit.state === 'superseded') return { code: 'superseded', message: 'A newer fit of this set-up is adopted. Check that one.' };
+	if (fit.adoptedBy === userId) return { code: 'own-fit', message: 'You adopted this fit. Another site engineer checks it.' };
+	return null;
+}

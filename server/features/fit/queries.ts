@@ -1,10 +1,12 @@
-import { and, desc, eq, type SQL, sql } from 'drizzle-orm';
+import { and, asc, desc, eq, inArray, type SQL, sql } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/pg-core';
 import type { FitDetail, FitSummary } from '#shared/fit/contract.ts';
+import { type FitChoices, fitChanges } from '#shared/fit/fit-changes.ts';
 import type { Handle } from '../../db/database.ts';
 import { users } from '../../db/schema/account.ts';
 import { controlSets } from '../../db/schema/control.ts';
 import { fits } from '../../db/schema/fit.ts';
+import { sites } from '../../db/schema/site.ts';
 import { setups } from '../../db/schema/survey.ts';
 import { foundOne } from '../../platform/refuse.ts';
 
@@ -21,11 +23,13 @@ function fitRows(db: Handle, where: SQL | undefined) {
 			madeBy: maker.name,
 			adoptedBy: adopter.name,
 			checkedBy: checker.name,
+			isSecondAsked: sites.isFitCheckedBySecond,
 			isNewest: sql<boolean>`not exists (select 1 from control_sets as newer where newer.site_id = ${controlSets.siteId} and newer.number > ${controlSets.number})`,
 		})
 		.from(fits)
 		.innerJoin(setups, eq(setups.id, fits.setupId))
 		.innerJoin(controlSets, eq(controlSets.id, fits.controlSetId))
+		.innerJoin(sites, eq(sites.id, fits.siteId))
 		.innerJoin(maker, eq(maker.id, fits.madeBy))
 		.leftJoin(adopter, eq(adopter.id, fits.adoptedBy))
 		.leftJoin(checker, eq(checker.id, fits.checkedBy))
@@ -37,17 +41,54 @@ type FitRow = Awaited<ReturnType<typeof fitRows>>[number];
 /** The site's fits, newest first; of one set-up where it is named. */
 export async function fitsOf(db: Handle, siteId: string, setupId?: string): Promise<FitSummary[]> {
 	const ofSetup = setupId === undefined ? undefined : eq(fits.setupId, setupId);
-	return (await fitRows(db, and(eq(fits.siteId, siteId), ofSetup))).map(summaryOf);
+	return summariesOf(db, await fitRows(db, and(eq(fits.siteId, siteId), ofSetup)));
 }
 
 /** One fit of the site, as it was made; NOT_FOUND for another site's. */
 export async function fitOf(db: Handle, siteId: string, fitId: string): Promise<FitDetail> {
 	const row = foundOne(await fitRows(db, and(eq(fits.siteId, siteId), eq(fits.id, fitId))));
-	const { knownScale, shelves, result, pairs } = row.fit;
-	return { ...summaryOf(row), knownScale, shelves, result, pairs };
+	const summary = foundOne(await summariesOf(db, [row]));
+	const { knownScale, shelves, relabellings, result, pairs } = row.fit;
+	return { ...summary, knownScale, shelves, relabellings, result, pairs };
 }
 
-function summaryOf({ fit, ...row }: FitRow): FitSummary {
+async function summariesOf(db: Handle, rows: readonly FitRow[]): Promise<FitSummary[]> {
+	const changesOf = await changesBySetup(db, [...new Set(rows.map(({ fit }) => fit.setupId))]);
+	return rows.map((row) => summaryOf(row, changesOf.get(row.fit.id) ?? []));
+}
+
+/** What is other in each fit of these set-ups than in the one before it, by the fit's id. */
+async function changesBySetup(db: Handle, setupIds: readonly string[]): Promise<Map<string, string[]>> {
+	const changes = new Map<string, string[]>();
+	if (setupIds.length === 0) return changes;
+	const rows = await db
+		.select({
+			id: fits.id,
+			setupId: fits.setupId,
+			kind: fits.kind,
+			knownScale: fits.knownScale,
+			controlNumber: controlSets.number,
+			shelves: fits.shelves,
+			relabellings: fits.relabellings,
+			// The names alone: pairs and results of many fits are large.
+			pairNames: sql<
+				string[]
+			>`coalesce((select jsonb_agg(pair->>'name') from jsonb_array_elements(${fits.pairs}->'pairs') as pair), '[]'::jsonb)`,
+		})
+		.from(fits)
+		.innerJoin(controlSets, eq(controlSets.id, fits.controlSetId))
+		.where(inArray(fits.setupId, [...setupIds]))
+		.orderBy(asc(fits.number));
+	const last = new Map<string, FitChoices>();
+	for (const { id, setupId, ...choices } of rows) {
+		const before = last.get(setupId);
+		changes.set(id, before === undefined ? [] : fitChanges(before, choices));
+		last.set(setupId, choices);
+	}
+	return changes;
+}
+
+function summaryOf({ fit, ...row }: FitRow, changes: string[]): FitSummary {
 	return {
 		...row,
 		fitId: fit.id,
@@ -61,6 +102,10 @@ function summaryOf({ fit, ...row }: FitRow): FitSummary {
 		madeAt: fit.madeAt,
 		adoptedAt: fit.adoptedAt,
 		adoptedReason: fit.adoptedReason,
+		checkedAt: fit.checkedAt,
+		checkedNote: fit.checkedNote,
+		surveyorInCharge: fit.surveyorInCharge,
+		changes,
 		inputsSha256: fit.inputsSha256,
 	};
 }

@@ -1,5 +1,6 @@
 import { siteRoutes } from '../../platform/guard.ts';
 import { adoptFit } from './adopt-fit.ts';
+import { confirmFit } from './confirm-fit.ts';
 import { makeFit } from './make-fit.ts';
 import { fitOf, fitsOf } from './queries.ts';
 import { setupPairs } from './setup-pairs.ts';
@@ -18,4 +19,5 @@ export const fitRoutes = {
 		if (adopted === 'stale') throw errors.STALE();
 		return adopted;
 	}),
+	confirm: siteRoutes.fit.confirm.handler(({ input, context: { platform, member } }) => confirmFit(platform, member, input)),
 };

@@ -1,5 +1,5 @@
 import { and, asc, eq, isNull } from 'drizzle-orm';
-import type { PairsOfSetup } from '#shared/fit/contract.ts';
+import type { PairsOfSetup, Relabelling } from '#shared/fit/contract.ts';
 import type { Handle } from '../../db/database.ts';
 import { vectorOf } from '../../db/model-rows.ts';
 import { controlPoints, controlSets } from '../../db/schema/control.ts';
@@ -11,6 +11,7 @@ export interface SetupAndControl {
 	siteId: string;
 	setupId: string;
 	controlSetId: string;
+	relabellings?: readonly Relabelling[] | undefined;
 }
 
 /** A set-up's pairs against a control set, with the hashes of the files that both came from. */
@@ -22,7 +23,7 @@ export interface SetupPairs {
 }
 
 /** Reads both of the site and pairs them; NOT_FOUND for another site's, refused while the survey is not stored whole. */
-export async function setupPairs(db: Handle, { siteId, setupId, controlSetId }: SetupAndControl): Promise<SetupPairs> {
+export async function setupPairs(db: Handle, { siteId, setupId, controlSetId, relabellings = [] }: SetupAndControl): Promise<SetupPairs> {
 	const { setup, survey } = foundOne(
 		await db
 			.select({ setup: setups, survey: surveys })
@@ -53,6 +54,11 @@ export async function setupPairs(db: Handle, { siteId, setupId, controlSetId }: 
 		.from(surveyPoints)
 		.where(and(eq(surveyPoints.setupId, setupId), isNull(surveyPoints.voidedReason)))
 		.orderBy(asc(surveyPoints.row));
+	expectRelabellings(
+		relabellings,
+		points.map(({ name }) => name),
+		marks.map(({ name }) => name),
+	);
 	const { pointSigmaPlanM: plan, pointSigmaHeightM: height } = setup;
 	const setupSigmaM = plan === null || height === null ? null : ([plan, plan, height] as const);
 	const paired = pairTargets(
@@ -68,6 +74,7 @@ export async function setupPairs(db: Handle, { siteId, setupId, controlSetId }: 
 			sigmaPlanM,
 			sigmaHeightM,
 		})),
+		relabellings,
 	);
 	return {
 		pairs: { setupId, controlSetId, ...paired },
@@ -75,4 +82,16 @@ export async function setupPairs(db: Handle, { siteId, setupId, controlSetId }: 
 		surveyFileSha256: survey.fileSha256,
 		controlFileSha256: control.fileSha256,
 	};
+}
+
+/** Each names a target and a mark that are there, each once. */
+function expectRelabellings(relabellings: readonly Relabelling[], targets: readonly string[], marks: readonly string[]): void {
+	for (const [index, { target, mark }] of relabellings.entries()) {
+		const where = `relabellings.${index}`;
+		const earlier = relabellings.slice(0, index);
+		if (!targets.includes(target)) throw new Refused('no-such-target', `"${target}" is no point of this set-up.`, where);
+		if (!marks.includes(mark)) throw new Refused('no-such-mark', `"${mark}" is no control point in use.`, where);
+		if (earlier.some((one) => one.target === target)) throw new Refused('target-twice', `"${target}" is taken for two marks.`, where);
+		if (earlier.some((one) => one.mark === mark)) throw new Refused('mark-twice', `Two targets are taken for "${mark}".`, where);
+	}
 }

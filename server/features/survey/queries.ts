@@ -39,6 +39,7 @@ async function summariesOf(db: Handle, siteId: string, where: SQL | undefined): 
 			observer: survey.observer,
 			instrument: survey.instrument,
 			serial: survey.serial,
+			...(survey.observation === null ? {} : { observation: survey.observation }),
 			fileName: survey.fileName,
 			fileSha256: survey.fileSha256,
 			// What is stored of a survey that is not ready yet is nobody's to count.
@@ -82,6 +83,7 @@ async function setupsOf(db: Handle, siteId: string, surveyIds: readonly string[]
 				: { plan: setup.pointSigmaPlanM, height: setup.pointSigmaHeightM },
 		commonMm: setup.commonMm,
 		instrumentHeightM: setup.instrumentHeightM,
+		...(setup.observation === null ? {} : { observation: setup.observation }),
 		pointCount: countOf.get(setup.id) ?? 0,
 		targetCount: targets.get(setup.id)?.size ?? 0,
 		adoptedFitId: adopted.find(({ setupId }) => setupId === setup.id)?.fitId ?? null,

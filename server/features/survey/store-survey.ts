@@ -83,6 +83,7 @@ export async function storeSurvey(
 				pointSigmaHeightM: pointSigmaM?.height ?? null,
 				commonMm: setup.commonMm,
 				instrumentHeightM: setup.instrumentHeightM,
+				observation: setup.observation ?? null,
 			})),
 		);
 		await besides(tx);
