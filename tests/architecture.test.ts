@@ -22,7 +22,15 @@ const NOUNS = ['account', 'check', 'control', 'fit', 'flag', 'job', 'mail', 'mod
 const ENTRIES = /^(server\/(main|worker|cli)\.ts|server\/scripts\/[^/]+\.ts|src\/main\.tsx|.+\.worker\.ts)$/;
 
 /** Built and tested ahead of its first use: path → the issue that will use it. Empty before a release. */
-const AHEAD_OF_USE: Record<string, string> = {};
+const AHEAD_OF_USE: Record<string, string> = {
+	'shared/check/rejudge.ts': 'stored figures judged by another sheet before it is issued',
+	'shared/fit/adjust-setups.ts': 'set-ups tied by common targets, adjusted together',
+	'shared/fit/compare-epochs.ts': 'two surveys of the same marks compared',
+	'shared/fit/match-unnamed.ts': 'targets without names, proposed by their distances',
+	'shared/fit/mutual-distances.ts': 'targets without names, proposed by their distances',
+	'shared/fit/plan-survey.ts': 'what a survey can tell, said before anyone walks out',
+	'shared/fit/start-setups.ts': 'set-ups tied by common targets, adjusted together',
+};
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */
 const PURE_PACKAGES = ['zod', '@orpc/contract', 'ml-matrix'];
