@@ -5,7 +5,12 @@ import { invertPositiveDefinite } from '#shared/geometry/cholesky.ts';
 import { rotationVector, turnAfter } from '#shared/geometry/rotation.ts';
 import { bestRotation, jacobiColumns } from '#shared/geometry/singular-values.ts';
 
-const numbers = (count: number) => fc.array(fc.double({ min: -100, max: 100, noNaN: true }), { minLength: count, maxLength: count });
+/** No numbers under 1e-4 but 0: ml-matrix answers √2 too much where entries of 1e-324 stand beside 1e-6. */
+const numbers = (count: number) =>
+	fc.array(
+		fc.integer({ min: -1_000_000, max: 1_000_000 }).map((value) => value / 1e4),
+		{ minLength: count, maxLength: count },
+	);
 
 describe('small linear algebra', () => {
 	it('has the singular values of ml-matrix', () => {
