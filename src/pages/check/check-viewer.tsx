@@ -6,7 +6,7 @@ import { ChosenMark, DeviationPlan } from '#src/features/check/deviation-plan.ts
 import { drawnAxes, withBubbles } from '#src/features/model/grid-frame.ts';
 import { ChosenFootprint, ModelPlan } from '#src/features/model/model-plan.tsx';
 import { api } from '#src/lib/api.ts';
-import { PressChip, Segmented } from '#src/ui/chip.tsx';
+import { Chip, PressChip, Segmented } from '#src/ui/chip.tsx';
 import { hasWebGl2 } from '#src/ui/has-webgl.ts';
 import { type PlanScale, PlanStage } from '#src/ui/plan-stage.tsx';
 import { boxAround, grown, type ViewBox, type ViewCommands } from '#src/ui/view-commands.ts';
@@ -207,9 +207,9 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 						<span />
 					)}
 					<div className="flex flex-wrap justify-end gap-1.5">
-						<ToggleChip isOn={isOnlyThese} onPress={() => setOnlyThese(!isOnlyThese)} title="Draw only the elements the table shows">
+						<Chip isOn={isOnlyThese} onChange={setOnlyThese} title="Draw only the elements the table shows">
 							Only these
-						</ToggleChip>
+						</Chip>
 						<PressChip
 							onPress={() => {
 								setOnlyThese(false);
@@ -239,17 +239,3 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 }
 
 const noCommands: RefObject<ViewCommands | null> = { current: null };
-
-function ToggleChip({ isOn, onPress, title, children }: { isOn: boolean; onPress: () => void; title: string; children: string }) {
-	return (
-		<button
-			type="button"
-			aria-pressed={isOn}
-			title={title}
-			onClick={onPress}
-			className="inline-flex min-h-10 items-center rounded-round border border-rule bg-sheet px-3.5 leading-tight hover:border-ink aria-pressed:border-ink aria-pressed:shadow-[inset_0_0_0_1px_var(--color-ink)] pointer-coarse:min-h-12"
-		>
-			{children}
-		</button>
-	);
-}

@@ -25,6 +25,7 @@ import { WideRod, type WideRodTick } from '#src/ui/wide-rod.tsx';
 import { CheckFilters } from './check-filters.tsx';
 import { CheckStrip } from './check-strip.tsx';
 import { CheckViewer } from './check-viewer.tsx';
+import { NothingShown } from './nothing-shown.tsx';
 import { saveBlob } from './save-blob.ts';
 import { StaleNotice } from './stale-notice.tsx';
 import { useCheckView } from './use-check-view.ts';
@@ -229,30 +230,5 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 				)}
 			</div>
 		</>
-	);
-}
-
-/** The filters leave nothing: which, and the press that undoes it. */
-function NothingShown({ view }: { view: ReturnType<typeof useCheckView> }) {
-	const hasOtherFilter = view.pourId !== null || view.storey !== null || view.find !== '';
-	return (
-		<Notice
-			kind="empty"
-			title={view.passing.length === 0 ? 'Nothing here goes by that name.' : 'Nothing of what the chips show is here.'}
-			act={
-				<Button
-					onClick={() => {
-						view.setPourId(null);
-						view.setStorey(null);
-						view.setFind(null);
-					}}
-					whyNot={hasOtherFilter ? null : 'Press a chip above to show more.'}
-				>
-					Show the whole check
-				</Button>
-			}
-		>
-			{view.passing.length > 0 && `${count(view.passing.length)} deviations pass the other filters. Press a chip to show them.`}
-		</Notice>
 	);
 }
