@@ -57,7 +57,11 @@ function threadOf({ file, from }: WorkerFile, options: WorkerOptions): Worker {
 	const source = new URL(file, from);
 	if (existsSync(fileURLToPath(source))) {
 		// On Node 20 a thread takes no loader over from `--import`: it registers one itself, then begins.
-		const loader = pathToFileURL(createRequire(from).resolve('tsx/esm/api').replace(/\.cjs$/, '.mjs')).href;
+		const loader = pathToFileURL(
+			createRequire(from)
+				.resolve('tsx/esm/api')
+				.replace(/\.cjs$/, '.mjs'),
+		).href;
 		const begin = `import(${JSON.stringify(loader)}).then(({ register }) => { register(); return import(${JSON.stringify(source.href)}); });`;
 		return new Worker(begin, { ...options, eval: true });
 	}
