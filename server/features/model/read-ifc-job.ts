@@ -13,7 +13,7 @@ import { readIfcInChild } from './read-ifc-in-child.ts';
 import { storeReading } from './store-reading.ts';
 
 /** What one file may cost; a file that asks for more is refused with that reason, and the server lives. */
-const timeMs = 120_000;
+const timeMs = 300_000;
 const memoryMb = 1536;
 
 const noElements = 'The file can be read, but holds no building elements. Export the model with its elements, then upload it again.';
