@@ -84,6 +84,8 @@ export const fitSummary = z.object({
 	madeBy: z.string(),
 	madeAt: z.date(),
 	adoptedBy: z.string().nullable(),
+	/** Who cannot be the second person. */
+	adoptedById: z.uuid().nullable(),
 	adoptedAt: z.date().nullable(),
 	adoptedReason: z.string().nullable(),
 	/** The second person. */

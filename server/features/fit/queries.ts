@@ -100,6 +100,7 @@ function summaryOf({ fit, ...row }: FitRow, changes: string[]): FitSummary {
 		rmsM: fit.result.rms,
 		pairCount: fit.result.pairs.filter(({ heldBack }) => !heldBack).length,
 		madeAt: fit.madeAt,
+		adoptedById: fit.adoptedBy,
 		adoptedAt: fit.adoptedAt,
 		adoptedReason: fit.adoptedReason,
 		checkedAt: fit.checkedAt,

@@ -21,28 +21,37 @@ export function FitHistory({ fits, timeZone, addressOf, shownFitId }: FitHistory
 			<table className="w-full border-collapse">
 				<thead className="border-b border-ink text-small text-second">
 					<tr>
-						{['Fit', 'Kind', 'Pairs', 'rms, mm', 'State', 'By', 'When', 'Reason'].map((head, index) => (
-							<th key={head} scope="col" className={`px-3 py-2.5 font-medium ${index === 2 || index === 3 ? 'text-right' : 'text-left'}`}>
+						{['Fit', 'Pairs', 'rms, mm', 'State', 'By', 'When', 'What changed, and why it was adopted'].map((head, index) => (
+							<th key={head} scope="col" className={`px-3 py-2.5 font-medium ${index === 1 || index === 2 ? 'text-right' : 'text-left'}`}>
 								{head}
 							</th>
 						))}
 					</tr>
 				</thead>
 				<tbody>
-					{fits.map((fit) => (
+					{fits.map((fit, index) => (
 						<tr key={fit.fitId} className={`border-b border-hair ${fit.fitId === shownFitId ? 'row-chosen' : ''}`}>
 							<th scope="row" className="h-11 px-3 text-left font-strong whitespace-nowrap">
 								<Link to={addressOf(fit.fitId)} className="inline-flex min-h-9 items-center text-action underline underline-offset-3">
 									Fit {fit.number}
 								</Link>
 							</th>
-							<td className="px-3 whitespace-nowrap">{kindWords[fit.kind]}</td>
 							<td className="px-3 text-right">{fit.pairCount}</td>
 							<td className="px-3 text-right">{(fit.rmsM * 1000).toFixed(1)}</td>
 							<td className={`px-3 whitespace-nowrap ${fit.state === 'adopted' ? 'font-strong' : ''}`}>{stateWords[fit.state]}</td>
-							<td className="px-3 whitespace-nowrap">{fit.adoptedBy ?? fit.madeBy}</td>
+							<td className="px-3 whitespace-nowrap">
+								{fit.adoptedBy ?? fit.madeBy}
+								{fit.checkedBy && <span className="block text-small text-second">checked by {fit.checkedBy}</span>}
+							</td>
 							<td className="px-3 whitespace-nowrap">{isoMoment(fit.adoptedAt ?? fit.madeAt, timeZone)}</td>
-							<td className="min-w-60 px-3">{fit.adoptedReason ?? ''}</td>
+							<td className="min-w-72 px-3 py-2">
+								{fit.changes.length > 0
+									? fit.changes.join(' ')
+									: index === fits.length - 1
+										? `The first: ${kindWords[fit.kind]}.`
+										: 'Nothing in what went in.'}
+								{fit.adoptedReason && <span className="block text-small text-second">“{fit.adoptedReason}”</span>}
+							</td>
 						</tr>
 					))}
 				</tbody>

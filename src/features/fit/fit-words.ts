@@ -1,5 +1,5 @@
 import type { FitSummary } from '#shared/fit/contract.ts';
-import type { FitKind, FitOutcome, FitRefusal } from '#shared/fit/fit-schema.ts';
+import type { Finding, FitKind, FitOutcome, FitRefusal } from '#shared/fit/fit-schema.ts';
 import type { SetupSummary } from '#shared/survey/contract.ts';
 import { counted, signedNumber } from '#src/lib/format.ts';
 
@@ -18,11 +18,17 @@ export function kindsFor({ levelling, bringsScale }: Pick<SetupSummary, 'levelli
 }
 
 /** The page's headline: the consequence of the pairs as they lie. */
-export function fitHeadline(setupName: string, outcome: FitOutcome | null, adopted: FitSummary | null, hasChanged: boolean): string {
+export function fitHeadline(
+	setupName: string,
+	outcome: FitOutcome | null,
+	findings: readonly Finding[],
+	adopted: FitSummary | null,
+	hasChanged: boolean,
+): string {
 	if (outcome === null) return `Set-up ${setupName} has no pairs to fit`;
 	if (!outcome.ok) return `Set-up ${setupName} has no fit yet: ${beginLow(outcome.refusal.message)}`;
 	const { result } = outcome;
-	const accusing = result.findings.find((finding) => finding.pairs.length > 0 && finding.code !== 'far-from-targets');
+	const accusing = findings.find((finding) => finding.pairs.length > 0 && finding.code !== 'far-from-targets');
 	if (accusing) return `Set-up ${setupName} does not fit yet: ${beginLow(accusing.message)}`;
 	if (result.chiSquare && result.chiSquare.statistic > result.chiSquare.upper)
 		return `Set-up ${setupName} misfits by more than its σ allow: σ̂₀ is ${Math.sqrt(result.varianceFactor ?? 0).toFixed(1)}`;
@@ -30,6 +36,16 @@ export function fitHeadline(setupName: string, outcome: FitOutcome | null, adopt
 	const agrees = `${counted(inFit, 'target')} ${inFit === 1 ? 'agrees' : 'agree'} within ${(result.rms * 1000).toFixed(1)} mm`;
 	if (adopted && !hasChanged) return `Set-up ${setupName} is tied to the design: ${agrees}`;
 	return `Set-up ${setupName} fits: ${agrees}`;
+}
+
+/** Who stands behind an adopted fit, in half a sentence. */
+export function standingWords({ number, adoptedBy, checkedBy, isSecondAsked }: FitSummary): string {
+	const checked = checkedBy
+		? `checked by ${checkedBy}`
+		: isSecondAsked
+			? 'not checked by a second person'
+			: 'this site asks no second person';
+	return `fit ${number} adopted by ${adoptedBy}, ${checked}`;
 }
 
 function beginLow(sentence: string): string {

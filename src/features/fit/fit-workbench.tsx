@@ -1,26 +1,31 @@
-import { useMutation, useQueryClient } from '@tanstack/react-query';
-import { useId, useMemo, useState } from 'react';
+import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
+import { type ReactNode, useCallback, useDeferredValue, useMemo, useState } from 'react';
 import { computeFit } from '#shared/fit/compute-fit.ts';
-import type { FitDetail, FitSummary, PairsOfSetup, Shelf } from '#shared/fit/contract.ts';
+import type { FitDetail, FitSummary, PairsOfSetup, SurveyorInCharge } from '#shared/fit/contract.ts';
 import type { FitKind } from '#shared/fit/fit-schema.ts';
-import { shelvedInput } from '#shared/fit/shelved-input.ts';
+import { curedPairs, shelvedInput, takesParts } from '#shared/fit/shelved-input.ts';
 import type { SetupSummary } from '#shared/survey/contract.ts';
 import { useAddressState } from '#src/lib/address-state.ts';
 import { api } from '#src/lib/api.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
 import { Button } from '#src/ui/button.tsx';
-import { describedBy, FieldFrame, numberOf } from '#src/ui/field.tsx';
 import { Headline } from '#src/ui/headline.tsx';
 import { Notice } from '#src/ui/notice.tsx';
+import type { Cure } from './cures.ts';
 import { FindingCures } from './finding-cures.tsx';
+import { StandDialog } from './fit-dialogs.tsx';
 import { FitFigures } from './fit-figures.tsx';
 import { FitPlan } from './fit-plan.tsx';
 import { fitHeadline, kindsFor, kindWords, refusalTitle } from './fit-words.ts';
+import { KindAndScale } from './kind-and-scale.tsx';
+import { Leftovers } from './leftovers.tsx';
 import { pairFigures } from './pair-figures.ts';
 import { PairTable, shelfWords } from './pair-table.tsx';
 import { ReasonDialog } from './reason-dialog.tsx';
-import { useShelves } from './shelves-state.ts';
+import { type PairPlace, useShelves } from './shelves-state.ts';
 import type { PlanExtent } from './uncertainty-field.ts';
+import { UnnamedProposal } from './unnamed-proposal.tsx';
+import { useFitSearch } from './use-fit-search.ts';
 
 interface FitWorkbenchProps {
 	siteId: string;
@@ -32,48 +37,67 @@ interface FitWorkbenchProps {
 	grid: readonly { tag: string; points: readonly (readonly [number, number])[] }[];
 	outline: PlanExtent | null;
 	mayAdopt: boolean;
+	/** Further acts of the page, before its own. */
+	acts?: ReactNode;
 }
 
-/** Pairs on three shelves with the result at once: the engine runs here, and the server computes again what is kept. */
-export function FitWorkbench({ siteId, setup, pairs, start, adopted, grid, outline, mayAdopt }: FitWorkbenchProps) {
+type Asked = { what: 'adopt' } | { what: 'place'; name: string; place: PairPlace };
+
+/** Pairs on three shelves with the figures at once: the engine runs here, and the server computes again what is kept. */
+export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid, outline, mayAdopt, acts }: FitWorkbenchProps) {
 	const kinds = kindsFor(setup);
 	const [kind, setKind] = useState<FitKind>(start && kinds.includes(start.kind) ? start.kind : kinds[0]);
 	const [knownScale, setKnownScale] = useState<number | null>(start?.knownScale ?? null);
-	const shelves = useShelves(start?.shelves ?? []);
+	const choices = useShelves({ shelves: start?.shelves ?? [], relabellings: start?.relabellings ?? [] });
+	const { shelves, relabellings, put, exchange, relabel } = choices;
 	const [chosenName, choose] = useAddressState('at');
-	const [asked, setAsked] = useState<{ name: string; shelf: Shelf } | 'adopt' | null>(null);
+	const [asked, setAsked] = useState<Asked | null>(null);
+	const pairs = useRelabelledPairs(siteId, named, relabellings);
 
-	const outcome = useMemo(
-		() => (pairs.pairs.length === 0 ? null : computeFit(shelvedInput(pairs.pairs, kind, knownScale, shelves.shelves))),
-		[pairs.pairs, kind, knownScale, shelves.shelves],
-	);
+	const input = useMemo(() => shelvedInput(pairs.pairs, kind, knownScale, shelves), [pairs.pairs, kind, knownScale, shelves]);
+	// Figures at once; what is behind them is searched for in a thread.
+	const outcome = useMemo(() => (input.pairs.length === 0 ? null : computeFit(input, { findings: false })), [input]);
 	const fit = outcome?.ok ? outcome.result : null;
-	const figures = useMemo(() => pairFigures(pairs.pairs, fit), [pairs.pairs, fit]);
+	const search = useMemo(() => (fit === null ? null : { task: 'findings' as const, input }), [fit, input]);
+	const { answer, isSearching } = useFitSearch<'findings'>(search);
+	const findings = answer?.findings ?? [];
+	const used = useMemo(() => curedPairs(pairs.pairs, kind, shelves), [pairs.pairs, kind, shelves]);
+	const shown = useMemo(() => used.map(({ pair }) => pair), [used]);
+	const figures = useMemo(() => pairFigures(shown, fit), [shown, fit]);
+	// The picture may lag behind the figures by a frame.
+	const drawn = useDeferredValue(useMemo(() => ({ pairs: shown, fit }), [shown, fit]));
 
 	const queries = useQueryClient();
 	const make = useMutation(api.fit.make.mutationOptions());
 	const adopt = useMutation(api.fit.adopt.mutationOptions());
-	const keepAndAdopt = async (reason: string) => {
+	const keepAndAdopt = async (reason: string, surveyorInCharge: SurveyorInCharge) => {
 		const made = await make.mutateAsync({
 			siteId,
 			setupId: setup.setupId,
 			controlSetId: pairs.controlSetId,
 			kind,
 			knownScale,
-			shelves: [...shelves.shelves],
+			shelves: [...shelves],
+			...(relabellings.length > 0 ? { relabellings: [...relabellings] } : {}),
 		});
-		await adopt.mutateAsync({ siteId, fitId: made.fitId, reason });
+		await adopt.mutateAsync({ siteId, fitId: made.fitId, reason, surveyorInCharge });
 		setAsked(null);
 		await Promise.all([api.fit.key(), api.survey.key(), api.site.key()].map((queryKey) => queries.invalidateQueries({ queryKey })));
 	};
-	const move = (name: string, shelf: Shelf) => {
-		// Back into the fit needs no reason; out of it does, because it will be asked later.
-		if (shelf === 'set-aside') setAsked({ name, shelf });
-		else shelves.move([name], shelf, null);
+	const move = useCallback(
+		(name: string, place: PairPlace) => {
+			// Out of the fit, or into it in part, needs a reason, because it will be asked later.
+			if (place.shelf === 'set-aside' || place.use !== 'all') setAsked({ what: 'place', name, place });
+			else put([name], place, null);
+		},
+		[put],
+	);
+	const cure = (taken: Cure, reason: string) => {
+		if (taken.act === 'exchange') exchange(taken.names, reason);
+		else put(taken.names, taken.place, reason);
 	};
 	const isAsAdopted =
-		start !== null && start.fitId === adopted?.fitId && !shelves.hasChanged && kind === start.kind && knownScale === start.knownScale;
-	const whyNot = whyNotAdopt(mayAdopt, fit !== null, isAsAdopted);
+		start !== null && start.fitId === adopted?.fitId && !choices.hasChanged && kind === start.kind && knownScale === start.knownScale;
 
 	return (
 		<>
@@ -81,18 +105,26 @@ export function FitWorkbench({ siteId, setup, pairs, start, adopted, grid, outli
 				title={`Fit of set-up ${setup.name}`}
 				acts={
 					<>
-						{shelves.takeBack && <Button onClick={shelves.takeBack}>Take back</Button>}
-						<Button weight="act" whyNot={whyNot} isBusy={make.isPending || adopt.isPending} onClick={() => setAsked('adopt')}>
-							Adopt this fit
-						</Button>
+						{choices.takeBack && <Button onClick={choices.takeBack}>Take back</Button>}
+						{isAsAdopted ? acts : null}
+						{!isAsAdopted && (
+							<Button
+								weight="act"
+								whyNot={whyNotAdopt(mayAdopt, fit !== null)}
+								isBusy={make.isPending || adopt.isPending}
+								onClick={() => setAsked({ what: 'adopt' })}
+							>
+								Adopt this fit
+							</Button>
+						)}
 					</>
 				}
 			>
-				{fitHeadline(setup.name, outcome, adopted, shelves.hasChanged)}
+				{fitHeadline(setup.name, outcome, findings, adopted, choices.hasChanged)}
 			</Headline>
 			<div className="grid gap-4 desk:grid-cols-[minmax(0,1fr)_minmax(0,34rem)]">
 				<div className="flex min-w-0 flex-col gap-3.5">
-					<KindAndScale kinds={kinds} kind={kind} onKind={setKind} knownScale={knownScale} onKnownScale={setKnownScale} />
+					<UnnamedProposal pairs={pairs} levelling={setup.levelling} onTake={mayAdopt ? relabel : null} />
 					{outcome && !outcome.ok && (
 						<Notice kind="wrong" title={refusalTitle(outcome.refusal)}>
 							{outcome.refusal.message}
@@ -100,60 +132,72 @@ export function FitWorkbench({ siteId, setup, pairs, start, adopted, grid, outli
 					)}
 					{fit && (
 						<FindingCures
-							findings={fit.findings}
+							findings={findings}
 							pairs={pairs.pairs}
 							kind={kind}
 							knownScale={knownScale}
-							shelves={shelves.shelves}
+							shelves={shelves}
 							fit={fit}
-							onMove={mayAdopt ? shelves.move : null}
+							onCure={mayAdopt ? cure : null}
+							isSearching={isSearching}
 						/>
 					)}
 					<PairTable
 						pairs={pairs.pairs}
 						figures={figures}
-						shelfOf={shelves.shelfOf}
-						reasonOf={shelves.reasonOf}
+						shelvingOf={choices.shelvingOf}
+						mayPart={takesParts(kind)}
 						chosenName={chosenName}
 						onChoose={choose}
 						onMove={mayAdopt ? move : null}
 					/>
-					<Leftovers pairs={pairs} />
+					<Leftovers pairs={pairs} leftOut={used.flatMap(({ pair, isLeftOut }) => (isLeftOut ? [pair.name] : []))} />
+					<KindAndScale kinds={kinds} kind={kind} onKind={setKind} knownScale={knownScale} onKnownScale={setKnownScale} />
 				</div>
 				<div className="flex min-w-0 flex-col gap-3.5">
 					<div className="sheet overflow-hidden">
-						<FitPlan pairs={pairs.pairs} fit={fit} grid={grid} outline={outline} chosenName={chosenName} onChoose={choose} />
+						<FitPlan pairs={drawn.pairs} fit={drawn.fit} grid={grid} outline={outline} chosenName={chosenName} onChoose={choose} />
 					</div>
 					{fit && <FitFigures fit={fit} />}
 				</div>
 			</div>
-			{asked === 'adopt' && fit && (
-				<ReasonDialog
+			{asked?.what === 'adopt' && fit && (
+				<StandDialog
 					title={`Adopt the fit of set-up ${setup.name}?`}
+					label="Reason"
 					hint="Kept with the fit and read by whoever asks later why it was trusted."
 					act="Adopt this fit"
 					usual={['Residuals agree with the instrument’s σ', 'Independent check agrees']}
-					longest={500}
+					inCharge={start?.surveyorInCharge ?? null}
 					onSay={keepAndAdopt}
 					onClose={() => setAsked(null)}
 				>
 					<p className="mt-0">
 						{kindWords[kind]}; {fit.pairs.filter((pair) => !pair.heldBack).length} pairs in the fit, rms {(fit.rms * 1000).toFixed(1)} mm.{' '}
 						{fit.pairs.some((pair) => pair.heldBack) ? '' : <b>No independent check: no pair is held back. </b>}
+						{fit.chiSquare && fit.chiSquare.statistic > fit.chiSquare.upper && (
+							<b>It misfits by more than its σ allow: say why it is used all the same. </b>
+						)}
 						It is never edited afterwards; a later one supersedes it. Deviations of this set-up rest on it.
 					</p>
 					{(make.error ?? adopt.error) && <p role="alert">{refusalOf(make.error ?? adopt.error).message}</p>}
-				</ReasonDialog>
+				</StandDialog>
 			)}
-			{asked !== null && asked !== 'adopt' && (
+			{asked?.what === 'place' && (
 				<ReasonDialog
-					title={`${shelfWords[asked.shelf]}: ${asked.name}`}
+					title={`${placeWords(asked.place)}: ${asked.name}`}
 					hint="Kept with the fit and printed with it."
-					act={`Set ${asked.name} aside`}
-					usual={['Mark disturbed', 'Wrong label', 'Sighted badly']}
+					act={asked.place.use === 'all' ? `Set ${asked.name} aside` : `Use ${asked.name} in ${asked.place.use} only`}
+					usual={
+						asked.place.use === 'plan'
+							? ['Target height not certain', 'Level not observed']
+							: asked.place.use === 'level'
+								? ['Plan disturbed', 'Benchmark only']
+								: ['Mark disturbed', 'Wrong label', 'Sighted badly']
+					}
 					longest={300}
 					onSay={async (reason) => {
-						shelves.move([asked.name], asked.shelf, reason);
+						put([asked.name], asked.place, reason);
 						setAsked(null);
 					}}
 					onClose={() => setAsked(null)}
@@ -163,79 +207,26 @@ export function FitWorkbench({ siteId, setup, pairs, start, adopted, grid, outli
 	);
 }
 
-function whyNotAdopt(mayAdopt: boolean, hasFit: boolean, isAsAdopted: boolean): string | null {
+/** The pairs once targets are taken for marks they are not named like; those before stay until they are there. */
+function useRelabelledPairs(
+	siteId: string,
+	named: PairsOfSetup,
+	relabellings: readonly { target: string; mark: string; reason: string }[],
+) {
+	const { setupId, controlSetId } = named;
+	const { data } = useQuery({
+		...api.fit.pairs.queryOptions({ input: { siteId, setupId, controlSetId, relabellings: [...relabellings] } }),
+		enabled: relabellings.length > 0,
+		placeholderData: (before) => before ?? named,
+	});
+	return relabellings.length === 0 ? named : (data ?? named);
+}
+
+function placeWords({ shelf, use }: PairPlace): string {
+	return use === 'all' ? shelfWords[shelf] : `In ${use} only`;
+}
+
+function whyNotAdopt(mayAdopt: boolean, hasFit: boolean): string | null {
 	if (!mayAdopt) return 'A site engineer adopts fits.';
-	if (!hasFit) return 'There is no fit to adopt.';
-	return isAsAdopted ? 'This is the adopted fit. Move a pair or choose another fit first.' : null;
-}
-
-interface KindAndScaleProps {
-	kinds: readonly FitKind[];
-	kind: FitKind;
-	onKind: (kind: FitKind) => void;
-	knownScale: number | null;
-	onKnownScale: (scale: number | null) => void;
-}
-
-function KindAndScale({ kinds, kind, onKind, knownScale, onKnownScale }: KindAndScaleProps) {
-	const kindId = useId();
-	const scaleId = useId();
-	const [typed, setTyped] = useState(knownScale === null ? '' : String(knownScale));
-	const number = numberOf(typed, true);
-	const isWrong = number !== null && !(number >= 0.5 && number <= 2);
-	const inputClass =
-		'min-h-11 w-full rounded-corner border-[1.5px] border-field bg-sheet px-3 text-body text-ink aria-invalid:border-2 aria-invalid:border-ink pointer-coarse:min-h-12';
-	return (
-		<div className="grid gap-3.5 tablet:grid-cols-2">
-			<FieldFrame id={kindId} label="Fit">
-				<select id={kindId} value={kind} onChange={(event) => onKind(event.currentTarget.value as FitKind)} className={inputClass}>
-					{kinds.map((option) => (
-						<option key={option} value={option}>
-							{kindWords[option]}
-						</option>
-					))}
-				</select>
-			</FieldFrame>
-			{!kind.endsWith('-scaled') && kind !== 'height' && (
-				<FieldFrame
-					id={scaleId}
-					label="Known grid/ground factor, plan only"
-					error={isWrong ? 'A factor lies near 1: between 0.5 and 2.' : undefined}
-				>
-					<input
-						id={scaleId}
-						inputMode="decimal"
-						autoComplete="off"
-						placeholder="1"
-						value={typed}
-						aria-invalid={isWrong || undefined}
-						aria-describedby={describedBy(scaleId, false, isWrong)}
-						onChange={(event) => {
-							setTyped(event.currentTarget.value);
-							const next = numberOf(event.currentTarget.value, true);
-							if (next === null || (next >= 0.5 && next <= 2)) onKnownScale(next);
-						}}
-						className={`${inputClass} text-right`}
-					/>
-				</FieldFrame>
-			)}
-		</div>
-	);
-}
-
-/** What has no partner, and why σ are not used. */
-function Leftovers({ pairs }: { pairs: PairsOfSetup }) {
-	const lines = [
-		pairs.targetsWithoutControl.length > 0 && `Sighted as a target, but not in the control: ${pairs.targetsWithoutControl.join(', ')}.`,
-		pairs.controlWithoutTarget.length > 0 && `In the control, not sighted from here: ${pairs.controlWithoutTarget.join(', ')}.`,
-		pairs.sigmaNote,
-	].filter((line) => line !== false && line !== null);
-	if (lines.length === 0) return null;
-	return (
-		<ul className="m-0 flex list-none flex-col gap-1 p-0 text-second">
-			{lines.map((line) => (
-				<li key={line}>{line}</li>
-			))}
-		</ul>
-	);
+	return hasFit ? null : 'There is no fit to adopt.';
 }

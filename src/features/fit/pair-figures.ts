@@ -1,4 +1,4 @@
-import { carriedPointCovariance, fitCovarianceAt } from '#shared/fit/carry-point.ts';
+import { carriedPointCovariance, carryPoint, fitCovarianceAt } from '#shared/fit/carry-point.ts';
 import type { PairsOfSetup } from '#shared/fit/contract.ts';
 import type { FitPair, FitPairResult, FitResult } from '#shared/fit/fit-schema.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
@@ -9,7 +9,7 @@ export type Axis = 0 | 1 | 2;
 /** A pair as the table shows it. Millimetres, along the control frame's axes: where the fit puts the target, from its mark. */
 export interface PairFigures {
 	name: string;
-	/** Null along an axis that is not known, and for pairs that are set aside where there is no fit. */
+	/** Null along an axis that is not known, and where there is no fit. Of a pair that is not in the fit: what it would show. */
 	residualMm: [number | null, number | null, number | null];
 	/** What each residual is held against, ± mm; null where no σ is known. */
 	boundMm: [number | null, number | null, number | null];
@@ -34,7 +34,7 @@ export function pairFigures(pairs: PairsOfSetup['pairs'], fit: FitResult | null)
 }
 
 function figuresOf(pair: FitPair, result: FitPairResult | null, fit: FitResult | null): PairFigures {
-	const residualMm = (result?.residual ?? [null, null, null]).map((value) =>
+	const residualMm = (result?.residual ?? residualAside(pair, fit)).map((value) =>
 		value === null ? null : value * 1000,
 	) as PairFigures['residualMm'];
 	const boundMm = result && fit ? boundsMm(pair, result, fit) : ([null, null, null] as PairFigures['boundMm']);
@@ -53,6 +53,16 @@ function figuresOf(pair: FitPair, result: FitPairResult | null, fit: FitResult |
 		isBeyond: isBeyondCritical(result),
 		worstAxis,
 	};
+}
+
+/** Where the fit would put a pair that it does not use, from its mark; metres. */
+function residualAside({ survey, control }: FitPair, fit: FitResult | null): [number | null, number | null, number | null] {
+	const [x, y, z] = survey;
+	if (fit === null || z === null) return [null, null, null];
+	const isPlanKnown = fit.fit !== 'height' && x !== null && y !== null;
+	const carried = carryPoint(fit, [x ?? fit.origin[0], y ?? fit.origin[1], z]);
+	const along = (axis: Axis) => (control[axis] === null || (axis < 2 && !isPlanKnown) ? null : carried[axis] - control[axis]);
+	return [along(0), along(1), along(2)];
 }
 
 function isBeyondCritical(result: FitPairResult | null): boolean {

@@ -1,26 +1,45 @@
-import { type DragEvent, type KeyboardEvent, type ReactNode, useRef, useState } from 'react';
-import type { PairsOfSetup, Shelf } from '#shared/fit/contract.ts';
+import { type DragEvent, type KeyboardEvent, memo, type ReactNode, useRef, useState } from 'react';
+import type { PairsOfSetup, Shelf, Shelving } from '#shared/fit/contract.ts';
 import { noFigure, signedNumber } from '#src/lib/format.ts';
 import { Rod, rodScaleMm } from '#src/ui/rod.tsx';
 import { type Axis, axisNames, type PairFigures, pairSentence } from './pair-figures.ts';
+import type { PairPlace } from './shelves-state.ts';
 
 export const shelfWords: Record<Shelf, string> = { 'in-the-fit': 'In the fit', 'held-back': 'Held back', 'set-aside': 'Set aside' };
 const shelfOrder = ['in-the-fit', 'held-back', 'set-aside'] as const;
-const shelfKeys: Record<string, Shelf> = { f: 'in-the-fit', h: 'held-back', a: 'set-aside' };
+const whole = (shelf: Shelf): PairPlace => ({ shelf, use: 'all' });
+const shelfKeys: Record<string, PairPlace> = {
+	f: whole('in-the-fit'),
+	h: whole('held-back'),
+	a: whole('set-aside'),
+	p: { shelf: 'in-the-fit', use: 'plan' },
+	l: { shelf: 'in-the-fit', use: 'level' },
+};
+/** Where a pair can be put, in the order of the list. */
+const placeOptions: readonly { place: PairPlace; label: string }[] = [
+	{ place: shelfKeys.f ?? whole('in-the-fit'), label: 'In the fit' },
+	{ place: { shelf: 'in-the-fit', use: 'plan' }, label: 'In plan only' },
+	{ place: { shelf: 'in-the-fit', use: 'level' }, label: 'In level only' },
+	{ place: whole('held-back'), label: 'Held back' },
+	{ place: whole('set-aside'), label: 'Set aside' },
+];
+const placeKey = ({ shelf, use }: PairPlace) => `${shelf} ${use}`;
 
 interface PairTableProps {
 	pairs: PairsOfSetup['pairs'];
 	figures: ReadonlyMap<string, PairFigures>;
-	shelfOf: (name: string) => Shelf;
-	reasonOf: (name: string) => string | null;
+	shelvingOf: (name: string) => Shelving;
+	/** This kind of fit may use a pair in plan or in level only. */
+	mayPart: boolean;
 	chosenName: string | null;
 	onChoose: (name: string) => void;
-	/** Null: this person does not move pairs, or the fit is already made. */
-	onMove: ((name: string, shelf: Shelf) => void) | null;
+	/** Null: this person does not move pairs, or the fit is already made. Keep it the same function. */
+	onMove: ((name: string, place: PairPlace) => void) | null;
 }
 
-/** Every pair on its shelf, with its misfit; moved by press, drag or key (F in the fit, H held back, A set aside). */
-export function PairTable({ pairs, figures, shelfOf, reasonOf, chosenName, onChoose, onMove }: PairTableProps) {
+/** Every pair on its shelf, with its misfit; moved by press, drag or key (F in the fit, P plan only, L level only, H held back, A set aside). */
+export function PairTable({ pairs, figures, shelvingOf, mayPart, chosenName, onChoose, onMove }: PairTableProps) {
+	const shelfOf = (name: string) => shelvingOf(name).shelf;
 	const [overShelf, setOverShelf] = useState<Shelf | null>(null);
 	const body = useRef<HTMLTableElement>(null);
 	const shown = [...figures.values()];
@@ -39,15 +58,16 @@ export function PairTable({ pairs, figures, shelfOf, reasonOf, chosenName, onCho
 			onChoose(next.name);
 			body.current?.querySelector<HTMLButtonElement>(`[data-pair="${CSS.escape(next.name)}"]`)?.focus();
 		}
-		const shelf = shelfKeys[event.key.toLowerCase()];
-		const isCommand = !event.ctrlKey && !event.metaKey && !event.altKey;
-		if (shelf && isCommand && onMove && chosenName && shelfOf(chosenName) !== shelf) onMove(chosenName, shelf);
+		const place = shelfKeys[event.key.toLowerCase()];
+		const isCommand = !event.ctrlKey && !event.metaKey && !event.altKey && !(event.target instanceof HTMLSelectElement);
+		if (!place || !isCommand || !onMove || !chosenName || (place.use !== 'all' && !mayPart)) return;
+		if (placeKey(place) !== placeKey(placeOf(shelvingOf(chosenName)))) onMove(chosenName, place);
 	};
 	const drop = (event: DragEvent, shelf: Shelf) => {
 		event.preventDefault();
 		setOverShelf(null);
 		const name = event.dataTransfer.getData('text/plain');
-		if (onMove && pairs.some((pair) => pair.name === name) && shelfOf(name) !== shelf) onMove(name, shelf);
+		if (onMove && pairs.some((pair) => pair.name === name) && shelfOf(name) !== shelf) onMove(name, whole(shelf));
 	};
 	return (
 		<div className="sheet overflow-x-auto">
@@ -99,8 +119,8 @@ export function PairTable({ pairs, figures, shelfOf, reasonOf, chosenName, onCho
 									key={pair.name}
 									figures={figures.get(pair.name)}
 									name={pair.name}
-									shelf={shelf}
-									reason={reasonOf(pair.name)}
+									shelving={shelvingOf(pair.name)}
+									mayPart={mayPart}
 									scaleMm={scaleMm}
 									isChosen={pair.name === chosenName}
 									onChoose={onChoose}
@@ -118,15 +138,20 @@ export function PairTable({ pairs, figures, shelfOf, reasonOf, chosenName, onCho
 interface PairRowProps {
 	name: string;
 	figures: PairFigures | undefined;
-	shelf: Shelf;
-	reason: string | null;
+	shelving: Shelving;
+	mayPart: boolean;
 	scaleMm: number;
 	isChosen: boolean;
 	onChoose: (name: string) => void;
-	onMove: ((name: string, shelf: Shelf) => void) | null;
+	onMove: ((name: string, place: PairPlace) => void) | null;
 }
 
-function PairRow({ name, figures, shelf, reason, scaleMm, isChosen, onChoose, onMove }: PairRowProps) {
+const PairRow = memo(function PairRow({ name, figures, shelving, mayPart, scaleMm, isChosen, onChoose, onMove }: PairRowProps) {
+	const { reason, exchangedWith } = shelving;
+	const place = placeOf(shelving);
+	const cured = [exchangedWith && `takes the sighting labelled ${exchangedWith}`, place.use !== 'all' && `${place.use} only`]
+		.filter(Boolean)
+		.join(', ');
 	const axis: Axis = figures?.worstAxis ?? 2;
 	const bound = figures?.boundMm[axis] ?? null;
 	return (
@@ -144,6 +169,7 @@ function PairRow({ name, figures, shelf, reason, scaleMm, isChosen, onChoose, on
 					className="min-h-11 w-full text-left pointer-coarse:min-h-12"
 				>
 					{name}
+					{cured && <span className="block text-small font-medium">{cured}</span>}
 					{reason && <span className="block text-small font-normal text-second">{reason}</span>}
 				</button>
 			</th>
@@ -153,7 +179,7 @@ function PairRow({ name, figures, shelf, reason, scaleMm, isChosen, onChoose, on
 				</td>
 			))}
 			<td className="px-2 max-desk:hidden">
-				{figures && shelf !== 'set-aside' && (
+				{figures && (figures.residualMm[axis] ?? null) !== null && (
 					<span className="flex items-center gap-2">
 						<Rod
 							deviationMm={figures.residualMm[axis]}
@@ -174,13 +200,16 @@ function PairRow({ name, figures, shelf, reason, scaleMm, isChosen, onChoose, on
 					<label>
 						<span className="sr-only">Shelf of {name}</span>
 						<select
-							value={shelf}
-							onChange={(event) => onMove(name, event.currentTarget.value as Shelf)}
+							value={placeKey(place)}
+							onChange={(event) => {
+								const wanted = placeOptions.find((option) => placeKey(option.place) === event.currentTarget.value);
+								if (wanted) onMove(name, wanted.place);
+							}}
 							className="min-h-9 rounded-corner border border-field bg-sheet px-2 text-ink pointer-coarse:min-h-12"
 						>
-							{shelfOrder.map((option) => (
-								<option key={option} value={option}>
-									{shelfWords[option]}
+							{optionsFor(place, mayPart).map((option) => (
+								<option key={placeKey(option.place)} value={placeKey(option.place)}>
+									{option.label}
 								</option>
 							))}
 						</select>
@@ -189,6 +218,17 @@ function PairRow({ name, figures, shelf, reason, scaleMm, isChosen, onChoose, on
 			)}
 		</tr>
 	);
+});
+
+function placeOf({ shelf, use = 'all' }: Shelving): PairPlace {
+	return { shelf, use };
+}
+
+/** Parts only where the fit takes them, and where the pair lies now in any case. */
+function optionsFor(now: PairPlace, mayPart: boolean): readonly { place: PairPlace; label: string }[] {
+	const usual = placeOptions.filter(({ place }) => place.use === 'all' || mayPart || placeKey(place) === placeKey(now));
+	if (usual.some(({ place }) => placeKey(place) === placeKey(now))) return usual;
+	return [...usual, { place: now, label: `${shelfWords[now.shelf]}, ${now.use} only` }];
 }
 
 function figure(valueMm: number | null): ReactNode {

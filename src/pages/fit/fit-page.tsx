@@ -1,12 +1,13 @@
 import { useSuspenseQueries, useSuspenseQuery } from '@tanstack/react-query';
-import { useMemo } from 'react';
+import { type ReactNode, useMemo } from 'react';
 import { Link, useParams } from 'react-router-dom';
-import type { FitDetail } from '#shared/fit/contract.ts';
+import type { FitDetail, FitSummary } from '#shared/fit/contract.ts';
 import type { StoredElement } from '#shared/model/contract.ts';
 import { mayWith } from '#shared/permissions.ts';
 import type { SetupSummary } from '#shared/survey/contract.ts';
+import { CheckFit } from '#src/features/fit/check-fit.tsx';
 import { FitHistory } from '#src/features/fit/fit-history.tsx';
-import { kindWords } from '#src/features/fit/fit-words.ts';
+import { kindWords, standingWords } from '#src/features/fit/fit-words.ts';
 import { FitWorkbench } from '#src/features/fit/fit-workbench.tsx';
 import { KeptFit } from '#src/features/fit/kept-fit.tsx';
 import type { PlanExtent } from '#src/features/fit/uncertainty-field.ts';
@@ -22,13 +23,14 @@ export default function FitPage() {
 	const { siteId = '', surveyId = '', setupId = '' } = useParams();
 	const [controlWish] = useAddressState('control');
 	const [shownFitId] = useAddressState('fit', 'push');
-	const [{ data: site }, { data: survey }, { data: controlSets }, { data: fits }, { data: models }] = useSuspenseQueries({
+	const [{ data: site }, { data: survey }, { data: controlSets }, { data: fits }, { data: models }, { data: me }] = useSuspenseQueries({
 		queries: [
 			api.site.get.queryOptions({ input: { siteId } }),
 			api.survey.get.queryOptions({ input: { siteId, surveyId } }),
 			api.control.list.queryOptions({ input: { siteId } }),
 			api.fit.list.queryOptions({ input: { siteId, setupId } }),
 			api.model.list.queryOptions({ input: { siteId } }),
+			api.account.me.queryOptions(),
 		],
 	});
 	const setup = survey.setups.find((candidate) => candidate.setupId === setupId);
@@ -45,9 +47,7 @@ export default function FitPage() {
 				setup.bringsScale ? 'brings its own scale' : 'scale not known',
 				controlSet && `control ${controlSet.number}${controlSet === controlSets[0] ? ', newest' : ''}`,
 				`common part ${setup.commonMm} mm`,
-				adopted && (
-					<b key="adopted">{`fit ${adopted.number} adopted by ${adopted.adoptedBy}${adopted.checkedBy ? `, checked by ${adopted.checkedBy}` : ', not checked by a second person'}`}</b>
-				),
+				adopted && <b key="adopted">{standingWords(adopted)}</b>,
 			]}
 		/>
 	);
@@ -71,11 +71,19 @@ export default function FitPage() {
 			</>
 		);
 	const about = { siteId, setup, revisionId: revision?.revisionId ?? null };
+	const mayAdopt = mayWith(site.roles, 'fit.adopt');
+	const actsOn = (fit: FitSummary) => <>{me && <CheckFit siteId={siteId} fit={fit} userId={me.userId} mayAdopt={mayAdopt} />}</>;
 	return (
 		<>
 			{strip}
 			{shownFitId && fits.some((fit) => fit.fitId === shownFitId) ? (
-				<Kept {...about} fitId={shownFitId} timeZone={site.timeZone} back={`/sites/${siteId}/surveys/${surveyId}/setups/${setupId}`} />
+				<Kept
+					{...about}
+					fitId={shownFitId}
+					timeZone={site.timeZone}
+					back={`/sites/${siteId}/surveys/${surveyId}/setups/${setupId}`}
+					actsOn={actsOn}
+				/>
 			) : (
 				<Workbench
 					// What was moved belongs to these pairs: other control or a newly adopted fit starts anew.
@@ -83,8 +91,9 @@ export default function FitPage() {
 					{...about}
 					controlSetId={controlSet.controlSetId}
 					startFitId={fits.find((fit) => fit.controlSetId === controlSet.controlSetId)?.fitId ?? null}
-					mayAdopt={mayWith(site.roles, 'fit.adopt')}
-					adoptedFitId={adopted?.fitId ?? null}
+					mayAdopt={mayAdopt}
+					adopted={adopted}
+					actsOn={actsOn}
 				/>
 			)}
 			<h2 className="mt-8 mb-3 text-h2 font-strong">Fits of this set-up</h2>
@@ -102,15 +111,17 @@ interface AboutSetup {
 interface WorkbenchProps extends AboutSetup {
 	controlSetId: string;
 	startFitId: string | null;
-	adoptedFitId: string | null;
+	adopted: FitSummary | null;
 	mayAdopt: boolean;
+	/** What can be done with an adopted fit. */
+	actsOn: (fit: FitSummary) => ReactNode;
 }
 
-function Workbench({ siteId, setup, revisionId, controlSetId, startFitId, adoptedFitId, mayAdopt }: WorkbenchProps) {
+function Workbench({ siteId, setup, revisionId, controlSetId, startFitId, adopted: newest, mayAdopt, actsOn }: WorkbenchProps) {
 	const { data: pairs } = useSuspenseQuery(api.fit.pairs.queryOptions({ input: { siteId, setupId: setup.setupId, controlSetId } }));
 	const start = useKeptFit(siteId, startFitId);
 	const { grid, outline } = useModelOutline(siteId, revisionId);
-	const adopted = start && start.fitId === adoptedFitId ? start : null;
+	const adopted = start && start.fitId === newest?.fitId ? newest : null;
 	return (
 		<FitWorkbench
 			siteId={siteId}
@@ -121,16 +132,32 @@ function Workbench({ siteId, setup, revisionId, controlSetId, startFitId, adopte
 			grid={grid}
 			outline={outline}
 			mayAdopt={mayAdopt}
+			acts={adopted && actsOn(adopted)}
 		/>
 	);
 }
 
-function Kept({ siteId, setup, revisionId, fitId, timeZone, back }: AboutSetup & { fitId: string; timeZone: string; back: string }) {
+interface KeptProps extends AboutSetup {
+	fitId: string;
+	timeZone: string;
+	back: string;
+	actsOn: (fit: FitSummary) => ReactNode;
+}
+
+function Kept({ siteId, setup, revisionId, fitId, timeZone, back, actsOn }: KeptProps) {
 	const { data: fit } = useSuspenseQuery(api.fit.get.queryOptions({ input: { siteId, fitId } }));
 	const { grid, outline } = useModelOutline(siteId, revisionId);
 	return (
 		<>
-			<Headline title={`Fit ${fit.number} of set-up ${setup.name}`} acts={<ButtonLink to={back}>Back to the pairs</ButtonLink>}>
+			<Headline
+				title={`Fit ${fit.number} of set-up ${setup.name}`}
+				acts={
+					<>
+						<ButtonLink to={back}>Back to the pairs</ButtonLink>
+						{actsOn(fit)}
+					</>
+				}
+			>
 				{`Fit ${fit.number} of set-up ${setup.name}, ${fit.state === 'made' ? 'not adopted' : fit.state}: ${kindWords[fit.kind]}`}
 			</Headline>
 			<KeptFit fit={fit} timeZone={timeZone} grid={grid} outline={outline} />
