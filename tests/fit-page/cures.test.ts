@@ -29,6 +29,17 @@ function scene(count: number, spoil: (survey: Place[]) => void = () => {}): FitP
 	}));
 }
 
+/** The sighting of one target moved, metres. */
+const moved =
+	(index: number, by: Place) =>
+	(survey: Place[]): void => {
+		survey[index] = survey[index]!.map((value, axis) => value + by[axis]!) as Place;
+	};
+
+const exchanged = (survey: Place[]): void => {
+	[survey[1], survey[4]] = [survey[4]!, survey[1]!];
+};
+
 function fitted(pairs: FitPair[], shelves: Shelving[] = []): FitResult {
 	const outcome = computeFit(shelvedInput(pairs, 'levelled', null, shelves));
 	if (!outcome.ok) throw new Error(outcome.refusal.message);
@@ -37,10 +48,10 @@ function fitted(pairs: FitPair[], shelves: Shelving[] = []): FitResult {
 
 describe('the cure that fits a finding', () => {
 	it.each([
-		['a wrong target height', (s: Place[]) => void (s[3]![2] += 0.095), 'Use T4 in plan only'],
-		['two exchanged labels', (s: Place[]) => void ([s[1], s[4]] = [s[4]!, s[1]!]), 'Exchange T2 and T5'],
-		['a blunder', (s: Place[]) => void ((s[5]![0] += 0.04), (s[5]![1] -= 0.03), (s[5]![2] += 0.05)), 'Set T6 aside'],
-		['a slip in one coordinate', (s: Place[]) => void (s[5]![0] += 0.1), 'Set T6 aside'],
+		['a wrong target height', moved(3, [0, 0, 0.095]), 'Use T4 in plan only'],
+		['two exchanged labels', exchanged, 'Exchange T2 and T5'],
+		['a blunder', moved(5, [0.04, -0.03, 0.05]), 'Set T6 aside'],
+		['a slip in one coordinate', moved(5, [0.1, 0, 0]), 'Set T6 aside'],
 	])('is offered first for %s, and its outcome is that of the fit then made', (_, spoil, label) => {
 		const pairs = scene(9, spoil);
 		const before = fitted(pairs);
@@ -57,7 +68,7 @@ describe('the cure that fits a finding', () => {
 
 	it('names nobody where several stories are as good, and gives each its own presses', () => {
 		// Two targets: one is off, and nothing says which.
-		const pairs = scene(2, (survey) => void (survey[0]![2] += 0.05));
+		const pairs = scene(2, moved(0, [0, 0, 0.05]));
 		const accusing = fitted(pairs).findings.filter(({ evidence }) => Array.isArray(evidence.alternatives));
 		expect(accusing.length).toBeGreaterThan(0);
 		for (const finding of accusing) {
@@ -72,7 +83,7 @@ describe('the cure that fits a finding', () => {
 	});
 
 	it('offers no part of a pair where the fit takes none, and no press for what is cured elsewhere', () => {
-		const pairs = scene(8, (survey) => void (survey[3]![2] += 0.095));
+		const pairs = scene(8, moved(3, [0, 0, 0.095]));
 		const [finding] = fitted(pairs).findings;
 		expect(curesOf(finding!, 'free').flatMap(({ cures }) => cures.map(({ label }) => label))).toEqual(['Set T4 aside', 'Hold T4 back']);
 		expect(curesOf({ code: 'unit-ratio', pairs: [], message: '', evidence: { ratio: 1000 } }, 'levelled')).toEqual([]);
@@ -81,17 +92,17 @@ describe('the cure that fits a finding', () => {
 
 describe('shelves', () => {
 	it('put exchanged labels back on both sides, and one put back whole frees the other', () => {
-		const exchanged = withExchange([], ['T1', 'T2'], 'Labels.');
-		expect(exchanged.map(({ name, exchangedWith }) => [name, exchangedWith])).toEqual([
+		const both = withExchange([], ['T1', 'T2'], 'Labels.');
+		expect(both.map(({ name, exchangedWith }) => [name, exchangedWith])).toEqual([
 			['T1', 'T2'],
 			['T2', 'T1'],
 		]);
-		expect(withPlace(exchanged, ['T1'], { shelf: 'in-the-fit', use: 'all' }, null)).toEqual([]);
+		expect(withPlace(both, ['T1'], { shelf: 'in-the-fit', use: 'all' }, null)).toEqual([]);
 		// A third takes one of them: its partner is free again.
-		const third = withExchange(exchanged, ['T2', 'T3'], 'Other labels.');
+		const third = withExchange(both, ['T2', 'T3'], 'Other labels.');
 		expect(third.map(({ name }) => name).sort()).toEqual(['T2', 'T3']);
 		// Held back, a pair keeps its exchange.
-		const held = withPlace(exchanged, ['T1'], { shelf: 'held-back', use: 'all' }, null);
+		const held = withPlace(both, ['T1'], { shelf: 'held-back', use: 'all' }, null);
 		expect(held.find(({ name }) => name === 'T1')).toMatchObject({ shelf: 'held-back', exchangedWith: 'T2', reason: 'Labels.' });
 	});
 
@@ -112,7 +123,7 @@ describe('shelves', () => {
 	});
 
 	it('show what a pair that is set aside would be off by', () => {
-		const pairs = scene(8, (survey) => void (survey[3]![2] += 0.095));
+		const pairs = scene(8, moved(3, [0, 0, 0.095]));
 		const fit = fitted(pairs, [{ name: 'T4', shelf: 'set-aside', reason: 'x' }]);
 		expect(pairFigures(pairs, fit).get('T4')!.residualMm[2]).toBeGreaterThan(90);
 		expect(pairFigures(pairs, fit).get('T4')!.residualMm[2]).toBeLessThan(100);
