@@ -43,12 +43,14 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 						rev {revision.number}
 						{revision.isNewest ? ', newest' : <b>, not the newest</b>}
 					</Link>,
-					`survey ${survey.number}`,
+					<Link key="survey" to={`/sites/${siteId}/surveys/${survey.surveyId}`} className={quiet}>
+						survey {survey.number}
+					</Link>,
 					isFitOld ? <b key="fits">a newer fit is adopted</b> : uncheckedFits > 0 && `${counted(uncheckedFits, 'fit')} unchecked`,
-					<span key="sheet">
+					<Link key="sheet" to={`/sites/${siteId}/sheets/${sheet.sheetId}`} className={quiet}>
 						{sheetWords(sheet.name)}
 						{!sheet.isNewest && <b>, superseded</b>}
-					</span>,
+					</Link>,
 				]}
 			/>
 		);
@@ -60,7 +62,7 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 					rev {revision.number}
 					{revision.isNewest ? ', newest' : <b>, not the newest</b>}
 				</Link>,
-				<Link key="survey" to={`/sites/${siteId}/surveys`} className={quiet}>
+				<Link key="survey" to={`/sites/${siteId}/surveys/${survey.surveyId}`} className={quiet}>
 					survey {survey.number}, {calendarDay(survey.surveyedOn, check.madeAt)}, {counted(survey.setupCount, 'set-up')}
 				</Link>,
 				fits.length > 0 && (
@@ -69,10 +71,10 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 						{isFitOld && <b>, a newer one is adopted</b>}
 					</span>
 				),
-				<span key="sheet">
+				<Link key="sheet" to={`/sites/${siteId}/sheets/${sheet.sheetId}`} className={quiet}>
 					{sheetWords(sheet.name)}, {sheet.decision}
 					{!sheet.isNewest && <b>, superseded</b>}
-				</span>,
+				</Link>,
 				stateItem,
 			]}
 		/>
