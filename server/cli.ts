@@ -1,5 +1,6 @@
 import { readFile } from 'node:fs/promises';
 import { text } from 'node:stream/consumers';
+import { runCheckCommand } from './cli/check.ts';
 import { runCheckpoints } from './cli/checkpoints.ts';
 import { runFit } from './cli/fit.ts';
 import { runJudge } from './cli/judge.ts';
@@ -15,6 +16,7 @@ type Command = (args: readonly string[]) => Promise<Outcome> | Outcome;
 const commands: Record<string, Command> = {
 	fit: async (args) => onText(args, runFit),
 	judge: async (args) => onText(args, runJudge),
+	check: (args) => runCheckCommand(args, (note) => console.error(note)),
 	checkpoints: (args) => runCheckpoints(args, (note) => console.error(note)),
 };
 

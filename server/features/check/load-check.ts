@@ -1,6 +1,6 @@
 import { and, asc, eq } from 'drizzle-orm';
 import type { CheckInput } from '#shared/check/check-input.ts';
-import type { GridAxis } from '#shared/model/model-schema.ts';
+import { gridYawRad } from '#shared/model/grid-yaw.ts';
 import { matchMarks } from '#shared/survey/match-marks.ts';
 import type { Handle } from '../../db/database.ts';
 import { checkpointOf, elementOf, vectorOf } from '../../db/model-rows.ts';
@@ -101,11 +101,4 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 		},
 		withoutFit,
 	};
-}
-
-/** Which way the grid's first axis runs, counter-clockwise from east; null without a grid. */
-function gridYawRad(grid: readonly GridAxis[]): number | null {
-	const axis = grid.find(({ direction, points }) => direction === 'u' && points.length > 1) ?? grid.find(({ points }) => points.length > 1);
-	const [from, to] = [axis?.points[0], axis?.points.at(-1)];
-	return from === undefined || to === undefined ? null : Math.atan2(to[1] - from[1], to[0] - from[0]);
 }
