@@ -16,6 +16,7 @@ import {
 import { type CheckSummary, type Deviation, verdicts } from '../../../shared/check/check-schema.ts';
 import type { CheckDetail } from '../../../shared/check/contract.ts';
 import type { Finding } from '../../../shared/fit/fit-schema.ts';
+import type { LeftOutCheckpoint } from '../../../shared/model/requirement.ts';
 import { users } from './account.ts';
 import { at, id, millimetres, sha256, siteId } from './columns.ts';
 import { fits } from './fit.ts';
@@ -43,6 +44,8 @@ export const checks = pgTable(
 		summary: jsonb('summary').$type<CheckSummary>(),
 		findings: jsonb('findings').$type<Finding[]>(),
 		unmatchedPoints: jsonb('unmatched_points').$type<CheckDetail['unmatchedPoints']>(),
+		/** Checkpoints that were left out before the check, with the reason; null: none. */
+		leftOut: jsonb('left_out').$type<LeftOutCheckpoint[]>(),
 		inputsSha256: sha256('inputs_sha256').notNull(),
 		/** The engine that computed it, so that a later one is told apart. */
 		engineVersion: text('engine_version').notNull(),

@@ -16,6 +16,7 @@ import {
 	uuid,
 } from 'drizzle-orm/pg-core';
 import type { RevisionDetail } from '../../../shared/model/contract.ts';
+import { requirements } from '../../../shared/model/requirement.ts';
 import { characteristics } from '../../../shared/tolerance/sheet-schema.ts';
 import { users } from './account.ts';
 import { at, id, metres, sha256, siteId } from './columns.ts';
@@ -144,5 +145,82 @@ export const checkpoints = pgTable(
 		check('checkpoints_y_finite', finite('y_m')),
 		check('checkpoints_z_finite', finite('z_m')),
 		check('checkpoints_face_has_normal', sql`(${t.characteristic} = 'face') = (${t.normal} is not null)`),
+	],
+);
+
+export const requirementEnum = pgEnum('checkpoint_requirement', requirements);
+
+/** What a person said of a checkpoint: it outlives a revision by the checkpoint's stable id. None said: required. */
+export const checkpointChoices = pgTable(
+	'checkpoint_choices',
+	{
+		siteId: siteId(),
+		modelId: uuid('model_id').notNull(),
+		checkpointId: text('checkpoint_id').notNull(),
+		requirement: requirementEnum('requirement').notNull(),
+		reason: text('reason'),
+		chosenBy: uuid('chosen_by')
+			.notNull()
+			.references(() => users.id),
+		chosenAt: at('chosen_at').notNull(),
+	},
+	(t) => [
+		primaryKey({ columns: [t.modelId, t.checkpointId] }),
+		foreignKey({ columns: [t.siteId, t.modelId], foreignColumns: [models.siteId, models.id] }),
+		check('checkpoint_choices_left_out_says_why', sql`${t.requirement} <> 'left-out' or ${t.reason} is not null`),
+	],
+);
+
+/** Names that people gave to elements, kept across revisions by GlobalId. */
+export const elementMarks = pgTable(
+	'element_marks',
+	{
+		siteId: siteId(),
+		modelId: uuid('model_id').notNull(),
+		globalId: text('global_id').notNull(),
+		mark: text('mark').notNull(),
+		renamedBy: uuid('renamed_by')
+			.notNull()
+			.references(() => users.id),
+		renamedAt: at('renamed_at').notNull(),
+	},
+	(t) => [
+		primaryKey({ columns: [t.modelId, t.globalId] }),
+		foreignKey({ columns: [t.siteId, t.modelId], foreignColumns: [models.siteId, models.id] }),
+		check('element_marks_length', sql`char_length(${t.mark}) between 1 and 16`),
+	],
+);
+
+/** Checkpoints that people placed by picking on the model; a revision's own copy of each stands among its checkpoints. */
+export const addedCheckpoints = pgTable(
+	'added_checkpoints',
+	{
+		siteId: siteId(),
+		modelId: uuid('model_id').notNull(),
+		id: text('id').notNull(),
+		globalId: text('global_id').notNull(),
+		/** After the element's mark: "X1". */
+		markEnd: text('mark_end').notNull(),
+		characteristic: characteristicEnum('characteristic').notNull(),
+		label: text('label').notNull(),
+		reason: text('reason').notNull(),
+		xM: metres('x_m').notNull(),
+		yM: metres('y_m').notNull(),
+		zM: metres('z_m').notNull(),
+		normal: doublePrecision('normal').array(),
+		surface: doublePrecision('surface').array(),
+		isSoffit: boolean('is_soffit').notNull(),
+		/** The element's box where it was placed: in a revision that moves or reshapes the element it is not carried over. */
+		boxM: doublePrecision('box_m').array().notNull(),
+		addedBy: uuid('added_by')
+			.notNull()
+			.references(() => users.id),
+		addedAt: at('added_at').notNull(),
+	},
+	(t) => [
+		primaryKey({ columns: [t.modelId, t.id] }),
+		foreignKey({ columns: [t.siteId, t.modelId], foreignColumns: [models.siteId, models.id] }),
+		check('added_checkpoints_face_has_normal', sql`(${t.characteristic} = 'face') = (${t.normal} is not null)`),
+		check('added_checkpoints_box_whole', sql`cardinality(${t.boxM}) = 6`),
 	],
 );
