@@ -1,8 +1,9 @@
 import { invertPositiveDefinite } from '#shared/geometry/cholesky.ts';
 import type { FitObservations } from './fit-observations.ts';
-import { clonePose, type FitPose, movePose } from './fit-pose.ts';
+import { clonePose, copyPose, type FitPose, movePose, newPose } from './fit-pose.ts';
 import { fitUnknowns } from './least-pairs.ts';
 import { formNormalEquations, type NormalEquations, newNormalEquations } from './normal-equations.ts';
+import { formGradient } from './normal-gradient.ts';
 
 /** Plain steps before Newton's take over: sound surveys need three to six. */
 const PLAIN_STEPS = 12;
@@ -11,6 +12,8 @@ const STEPS = 120;
 export const SEARCH_STEPS = 40;
 /** A step under this share (of the span in metres, of a radian, of the scale) ends the iteration. */
 const STEP_END = 1e-13;
+/** A first step under this leaves the matrix as good as it was. */
+const SMALL_STEP = 1e-3;
 
 export interface Adjustment {
 	pose: FitPose;
@@ -23,32 +26,59 @@ export interface Adjustment {
 	state: 'converged' | 'stalled' | 'singular' | 'sigma';
 }
 
+/** Room for one adjustment of up to `count` pairs, to be used again: a search that adjusts by the thousand allocates once. */
+export interface AdjustSpace {
+	readonly count: number;
+	readonly equations: readonly [NormalEquations, NormalEquations];
+	readonly poses: readonly [FitPose, FitPose];
+	readonly cofactor: Float64Array;
+	readonly change: Float64Array;
+}
+
+export function newAdjustSpace(count: number): AdjustSpace {
+	return {
+		count,
+		equations: [newNormalEquations(count), newNormalEquations(count)],
+		poses: [newPose(), newPose()],
+		cofactor: new Float64Array(49),
+		change: new Float64Array(7),
+	};
+}
+
 /**
  * Takes a pose to the nearest minimum of F = Σ rᵀ·Σ⁻¹·r, Σ moving along (normal-equations.ts). Every step lowers F.
  *
  * δ = (ÂᵀΣ⁻¹Â)⁻¹·ÂᵀΣ⁻¹r converges at a rate of about residual/span; where that is slow (coarse σ, gross errors) Newton steps
- * with the second derivatives by differences of the exact gradient take over.
+ * with the second derivatives by differences of the exact gradient take over. The second step is taken with the matrix of the first where
+ * that step was small: the gradient is exact all the same, and the matrix changes by no more than residual/span.
  * @param start is left as it is
- * @param skip a pair to leave out; −1 for none
  * @param most steps at the most; a search gives up sooner than the fit itself
+ * @param space where the result lives: overwritten by the next adjustment in it. By default a new one
  */
-export function adjust(observations: FitObservations, start: FitPose, skip = -1, most = STEPS): Adjustment {
+export function adjust(
+	observations: FitObservations,
+	start: FitPose,
+	most = STEPS,
+	space = newAdjustSpace(observations.count),
+): Adjustment {
 	const unknowns = fitUnknowns(observations.kind);
 	const size = unknowns.length;
-	const span = spanOf(observations.control);
-	let pose = clonePose(start);
-	let equations = newNormalEquations(observations.count);
-	let trial = newNormalEquations(observations.count);
-	const cofactor = new Float64Array(size * size);
-	const change = new Float64Array(7);
+	const span = spanOf(observations);
+	const { change } = space;
+	let [equations, trial] = space.equations;
+	let [pose, moved] = space.poses;
+	copyPose(start, pose);
+	const cofactor = space.cofactor.length === size * size ? space.cofactor : space.cofactor.subarray(0, size * size);
 	let state: Adjustment['state'] = 'stalled';
 	let iterations = 0;
-	if (!formNormalEquations(observations, pose, equations, skip)) return { pose, equations, cofactor, iterations, state: 'sigma' };
+	if (!formNormalEquations(observations, pose, equations)) return { pose, equations, cofactor, iterations, state: 'sigma' };
 	let lastStep = Infinity;
+	/** Whether `equations` hold more than F and its gradient. */
+	let isFormed = true;
 	for (; iterations < most; iterations++) {
-		if (!cofactorOf(equations, unknowns, cofactor)) return { pose, equations, cofactor, iterations, state: 'singular' };
+		if (isFormed && !cofactorOf(equations, unknowns, cofactor)) return { pose, equations, cofactor, iterations, state: 'singular' };
 		change.fill(0);
-		const newton = iterations >= PLAIN_STEPS && newtonStep(observations, pose, equations, unknowns, span, change, skip);
+		const newton = iterations >= PLAIN_STEPS && newtonStep(observations, pose, equations, unknowns, span, change);
 		if (!newton) solveStep(cofactor, equations.gradient, unknowns, change);
 		let step = stepLength(change, span);
 		if (step < STEP_END || (step < 1e-9 && step > lastStep / 2)) {
@@ -56,12 +86,15 @@ export function adjust(observations: FitObservations, start: FitPose, skip = -1,
 			break;
 		}
 		let accepted = false;
+		const gradientOnly = iterations === 0 && step < SMALL_STEP;
 		for (let halving = 0; halving < 40; halving++) {
-			const moved = clonePose(pose);
+			copyPose(pose, moved);
 			movePose(moved, change);
-			if (formNormalEquations(observations, moved, trial, skip) && trial.objective <= equations.objective * (1 + 1e-13) + 1e-300) {
-				pose = moved;
+			const sound = gradientOnly ? formSums(observations, moved, trial) : formNormalEquations(observations, moved, trial);
+			if (sound && trial.objective <= equations.objective * (1 + 1e-13) + 1e-300) {
+				[pose, moved] = [moved, pose];
 				[equations, trial] = [trial, equations];
+				isFormed = !gradientOnly;
 				accepted = true;
 				break;
 			}
@@ -75,7 +108,17 @@ export function adjust(observations: FitObservations, start: FitPose, skip = -1,
 		}
 		lastStep = step;
 	}
+	if (!isFormed) {
+		if (!formNormalEquations(observations, pose, equations)) state = 'sigma';
+		else if (!cofactorOf(equations, unknowns, cofactor)) state = 'singular';
+	}
 	return { pose, equations, cofactor, iterations, state };
+}
+
+/** F and its gradient alone. */
+function formSums(observations: FitObservations, pose: FitPose, equations: NormalEquations): boolean {
+	equations.objective = formGradient(observations, pose, equations.gradient);
+	return Number.isFinite(equations.objective);
 }
 
 /** Q = N⁻¹ on the unknowns of the fit. False where they are not determined. */
@@ -102,13 +145,12 @@ function newtonStep(
 	unknowns: readonly number[],
 	span: number,
 	change: Float64Array,
-	skip: number,
 ): boolean {
 	const size = unknowns.length;
 	const hessian = new Float64Array(size * size);
-	const scratch = newNormalEquations(observations.count);
 	const move = new Float64Array(7);
 	const ahead = new Float64Array(7);
+	const behind = new Float64Array(7);
 	for (let j = 0; j < size; j++) {
 		const unknown = unknowns[j]!;
 		const h = (unknown < 3 ? span : 1) * 1e-5;
@@ -116,13 +158,12 @@ function newtonStep(
 		move[unknown] = h;
 		const forward = clonePose(pose);
 		movePose(forward, move);
-		if (!formNormalEquations(observations, forward, scratch, skip)) return false;
-		ahead.set(scratch.gradient);
+		if (!Number.isFinite(formGradient(observations, forward, ahead))) return false;
 		move[unknown] = -h;
 		const backward = clonePose(pose);
 		movePose(backward, move);
-		if (!formNormalEquations(observations, backward, scratch, skip)) return false;
-		for (let i = 0; i < size; i++) hessian[i * size + j] = (scratch.gradient[unknowns[i]!]! - ahead[unknowns[i]!]!) / (2 * h);
+		if (!Number.isFinite(formGradient(observations, backward, behind))) return false;
+		for (let i = 0; i < size; i++) hessian[i * size + j] = (behind[unknowns[i]!]! - ahead[unknowns[i]!]!) / (2 * h);
 	}
 	for (let i = 0; i < size; i++) {
 		for (let j = 0; j < i; j++) hessian[i * size + j] = hessian[j * size + i] = (hessian[i * size + j]! + hessian[j * size + i]!) / 2;
@@ -139,8 +180,8 @@ function stepLength(change: Float64Array, span: number): number {
 }
 
 /** The root mean square distance from the reduced origin, metres; 1 for a single pair. */
-function spanOf(control: Float64Array): number {
+function spanOf({ control, count }: FitObservations): number {
 	let square = 0;
-	for (const value of control) square += value * value;
-	return Math.sqrt((3 * square) / Math.max(control.length, 1)) || 1;
+	for (let at = 0; at < 3 * count; at++) square += control[at]! * control[at]!;
+	return Math.sqrt(square / Math.max(count, 1)) || 1;
 }

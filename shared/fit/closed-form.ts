@@ -1,5 +1,5 @@
 import { yawRotation } from '#shared/geometry/rotation.ts';
-import { bestRotation } from '#shared/geometry/singular-values.ts';
+import { bestTurn } from './best-turn.ts';
 import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
 import type { FitPose } from './fit-pose.ts';
 import { isLevelled, isScaled } from './least-pairs.ts';
@@ -13,10 +13,12 @@ import { isLevelled, isScaled } from './least-pairs.ts';
 const UNIQUE = 1e-11;
 
 /**
+ * @param leastExtentM free fits: neither side's second extent (spread.ts) is under this, metres; 0 where nothing is known of it
  * @param unique false where another rotation fits exactly as well (a mirrored square), or none at a positive scale
  */
 export interface ClosedForm {
 	pose: FitPose;
+	leastExtentM: number;
 	unique: boolean;
 }
 
@@ -37,7 +39,11 @@ function heightForm({ count, survey, control }: FitObservations, weight: Float64
 		total += weight[i]!;
 		sum += weight[i]! * (control[3 * i + 2]! - survey[3 * i + 2]!);
 	}
-	return { pose: { rotation: yawRotation(0), shift: Float64Array.of(0, 0, sum / total), planScale: 1, heightScale: 1 }, unique: true };
+	return {
+		pose: { rotation: yawRotation(0), shift: Float64Array.of(0, 0, sum / total), planScale: 1, heightScale: 1 },
+		leastExtentM: 0,
+		unique: true,
+	};
 }
 
 function levelledForm(observations: FitObservations, planWeight: Float64Array, heightWeight: Float64Array): ClosedForm {
@@ -95,22 +101,34 @@ function levelledForm(observations: FitObservations, planWeight: Float64Array, h
 		}
 	}
 	const heightScale = observations.scalesHeights ? planScale : 1;
-	return { pose: poseThrough(rotation, planScale, heightScale, meanSurvey, meanControl), unique };
+	return { pose: poseThrough(rotation, planScale, heightScale, meanSurvey, meanControl), leastExtentM: 0, unique };
 }
+
+// Scratch: searches fit by the thousand.
+const cross = new Float64Array(9);
+const singular = new Float64Array(3);
 
 function freeForm(observations: FitObservations, weights: Float64Array): ClosedForm {
 	const { count, survey, control } = observations;
 	let total = 0;
-	let [sx, sy, sz, cx, cy, cz] = [0, 0, 0, 0, 0, 0];
+	let heaviest = 0;
+	let sx = 0;
+	let sy = 0;
+	let sz = 0;
+	let cx = 0;
+	let cy = 0;
+	let cz = 0;
 	for (let i = 0; i < count; i++) {
+		const at = 3 * i;
 		const weight = weights[i]!;
 		total += weight;
-		sx += weight * survey[3 * i]!;
-		sy += weight * survey[3 * i + 1]!;
-		sz += weight * survey[3 * i + 2]!;
-		cx += weight * control[3 * i]!;
-		cy += weight * control[3 * i + 1]!;
-		cz += weight * control[3 * i + 2]!;
+		if (weight > heaviest) heaviest = weight;
+		sx += weight * survey[at]!;
+		sy += weight * survey[at + 1]!;
+		sz += weight * survey[at + 2]!;
+		cx += weight * control[at]!;
+		cy += weight * control[at + 1]!;
+		cz += weight * control[at + 2]!;
 	}
 	sx /= total;
 	sy /= total;
@@ -118,34 +136,59 @@ function freeForm(observations: FitObservations, weights: Float64Array): ClosedF
 	cx /= total;
 	cy /= total;
 	cz /= total;
-	const cross = new Float64Array(9);
+	let xe = 0;
+	let xn = 0;
+	let xh = 0;
+	let ye = 0;
+	let yn = 0;
+	let yh = 0;
+	let ze = 0;
+	let zn = 0;
+	let zh = 0;
 	let surveySquare = 0;
+	let controlSquare = 0;
 	for (let i = 0; i < count; i++) {
+		const at = 3 * i;
 		const weight = weights[i]!;
-		const x = survey[3 * i]! - sx;
-		const y = survey[3 * i + 1]! - sy;
-		const z = survey[3 * i + 2]! - sz;
-		const e = weight * (control[3 * i]! - cx);
-		const n = weight * (control[3 * i + 1]! - cy);
-		const h = weight * (control[3 * i + 2]! - cz);
+		const x = survey[at]! - sx;
+		const y = survey[at + 1]! - sy;
+		const z = survey[at + 2]! - sz;
+		const ownE = control[at]! - cx;
+		const ownN = control[at + 1]! - cy;
+		const ownH = control[at + 2]! - cz;
+		const e = weight * ownE;
+		const n = weight * ownN;
+		const h = weight * ownH;
 		surveySquare += weight * (x * x + y * y + z * z);
-		cross[0]! += x * e;
-		cross[1]! += x * n;
-		cross[2]! += x * h;
-		cross[3]! += y * e;
-		cross[4]! += y * n;
-		cross[5]! += y * h;
-		cross[6]! += z * e;
-		cross[7]! += z * n;
-		cross[8]! += z * h;
+		controlSquare += e * ownE + n * ownN + h * ownH;
+		xe += x * e;
+		xn += x * n;
+		xh += x * h;
+		ye += y * e;
+		yn += y * n;
+		yh += y * h;
+		ze += z * e;
+		zn += z * n;
+		zh += z * h;
 	}
+	cross[0] = xe;
+	cross[1] = xn;
+	cross[2] = xh;
+	cross[3] = ye;
+	cross[4] = yn;
+	cross[5] = yh;
+	cross[6] = ze;
+	cross[7] = zn;
+	cross[8] = zh;
 	const rotation = new Float64Array(9);
-	const singular = new Float64Array(3);
-	bestRotation(cross, rotation, singular);
-	const unique = singular[1]! + singular[2]! > 1e-14 * singular[0]! && singular[1]! + singular[2]! > UNIQUE * singular[1]!;
+	bestTurn(cross, rotation, singular);
+	const [first, second, third] = [singular[0]!, singular[1]!, singular[2]!];
+	const unique = second + third > 1e-14 * first && second + third > UNIQUE * second;
 	let scale = observations.fixedScale;
-	if (isScaled(observations.kind)) scale = (singular[0]! + singular[1]! + singular[2]!) / surveySquare;
-	return { pose: poseThrough(rotation, scale, scale, [sx, sy, sz], [cx, cy, cz]), unique };
+	if (isScaled(observations.kind)) scale = (first + second + third) / surveySquare;
+	// d₂(XᵀWY) ≤ d₂(√W·X)·d₁(√W·Y), and the scatter about the weighted mean is not over the heaviest weight times the scatter about the plain one.
+	const leastExtentM = count > 2 ? second / Math.sqrt(heaviest * count * Math.max(surveySquare, controlSquare)) : 0;
+	return { pose: poseThrough(rotation, scale, scale, [sx, sy, sz], [cx, cy, cz]), leastExtentM, unique };
 }
 
 /** The pose that takes one point to another. */

@@ -163,6 +163,11 @@ export const fitContract = {
 		})
 		.input(siteInput.extend({ fitId: z.uuid(), reason: plainText(500), surveyorInCharge: surveyorInCharge.optional() }))
 		.output(fitSummary),
+	/** The fit's report as PDF. */
+	report: base
+		.meta({ permission: 'fit.see' })
+		.input(siteInput.extend({ fitId: z.uuid() }))
+		.output(z.instanceof(Blob)),
 	/** A second person has checked the adopted fit; whoever adopted it cannot. */
 	confirm: base
 		.meta({ permission: 'fit.adopt' })

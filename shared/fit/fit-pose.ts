@@ -17,6 +17,18 @@ export function clonePose(pose: FitPose): FitPose {
 	return { rotation: pose.rotation.slice(), shift: pose.shift.slice(), planScale: pose.planScale, heightScale: pose.heightScale };
 }
 
+/** A pose to be written into; no rotation yet. */
+export function newPose(): FitPose {
+	return { rotation: new Float64Array(9), shift: new Float64Array(3), planScale: 1, heightScale: 1 };
+}
+
+export function copyPose(from: FitPose, to: FitPose): void {
+	for (let k = 0; k < 9; k++) to.rotation[k] = from.rotation[k]!;
+	for (let k = 0; k < 3; k++) to.shift[k] = from.shift[k]!;
+	to.planScale = from.planScale;
+	to.heightScale = from.heightScale;
+}
+
 /**
  * S·R, nine numbers, row by row, written into `out`: what takes a survey difference to a control difference.
  */

@@ -3,7 +3,7 @@ import { popeTau } from '#shared/geometry/student-t.ts';
 import type { Adjustment } from './adjust.ts';
 import { type FitObservations, observationCount } from './fit-observations.ts';
 import { fitUnknowns } from './least-pairs.ts';
-import { fullCofactor, pairReliability } from './pair-reliability.ts';
+import { fillPairFigures, newPairFigures, type PairFigures } from './pair-figures.ts';
 import { quickFit } from './solve-fit.ts';
 
 /** The level of all tests of one fit together: a clean set raises an alarm once in a thousand. */
@@ -31,6 +31,9 @@ export function sidakLevel(tests: number): number {
 	return -Math.expm1(Math.log1p(-FAMILY_LEVEL) / Math.max(tests, 1));
 }
 
+/** Scratch: searches test by the thousand. */
+let figures: PairFigures = newPairFigures(64);
+
 /**
  * Tests an adjustment of these observations.
  * @param spent further unknowns that the observations have been freed of
@@ -38,13 +41,15 @@ export function sidakLevel(tests: number): number {
 export function testFit(observations: FitObservations, adjustment: Adjustment, spent = 0): FitTrial {
 	const redundancy = observationCount(observations) - fitUnknowns(observations.kind).length - spent;
 	const objective = adjustment.equations.objective;
-	const cofactor = fullCofactor(adjustment, observations);
+	if (figures.standardised.length < 3 * observations.count) figures = newPairFigures(2 * observations.count);
+	fillPairFigures(observations, adjustment, figures);
 	let worst = 0;
 	let worstPair = -1;
 	let tests = 0;
 	for (let i = 0; i < observations.count; i++) {
-		for (const value of pairReliability(observations, adjustment, cofactor, i).standardised) {
-			if (value === null) continue;
+		for (let k = 0; k < 3; k++) {
+			const value = figures.standardised[3 * i + k]!;
+			if (Number.isNaN(value)) continue;
 			tests++;
 			if (value > worst) {
 				worst = value;

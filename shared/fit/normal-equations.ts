@@ -38,10 +38,9 @@ const matrix = new Float64Array(9);
 
 /**
  * Fills `equations` at `pose`. One pass, no small objects.
- * @param skip a pair to leave out of the sums (its own figures are filled all the same); −1 for none
  * @returns false where some Σ is singular or a number overflows
  */
-export function formNormalEquations(observations: FitObservations, pose: FitPose, equations: NormalEquations, skip = -1): boolean {
+export function formNormalEquations(observations: FitObservations, pose: FitPose, equations: NormalEquations): boolean {
 	const { count, survey, control, surveyVariance, controlVariance, known, sigmaGiven } = observations;
 	const { normal, gradient, residual, adjusted, inverse, covariance } = equations;
 	poseMatrix(pose, matrix);
@@ -117,11 +116,17 @@ export function formNormalEquations(observations: FitObservations, pose: FitPose
 			const vx = surveyVariance[at]!;
 			const vy = surveyVariance[at + 1]!;
 			const vz = surveyVariance[at + 2]!;
-			ee = vx * m0 * m0 + vy * m1 * m1 + vz * m2 * m2;
-			en = vx * m0 * m3 + vy * m1 * m4 + vz * m2 * m5;
-			eh = vx * m0 * m6 + vy * m1 * m7 + vz * m2 * m8;
-			nn = vx * m3 * m3 + vy * m4 * m4 + vz * m5 * m5;
-			nh = vx * m3 * m6 + vy * m4 * m7 + vz * m5 * m8;
+			const x0 = vx * m0;
+			const y0 = vy * m1;
+			const z0 = vz * m2;
+			const x1 = vx * m3;
+			const y1 = vy * m4;
+			const z1 = vz * m5;
+			ee = x0 * m0 + y0 * m1 + z0 * m2;
+			en = x0 * m3 + y0 * m4 + z0 * m5;
+			eh = x0 * m6 + y0 * m7 + z0 * m8;
+			nn = x1 * m3 + y1 * m4 + z1 * m5;
+			nh = x1 * m6 + y1 * m7 + z1 * m8;
 			hh = vx * m6 * m6 + vy * m7 * m7 + vz * m8 * m8;
 		}
 		const a = ee + controlVariance[at]!;
@@ -186,7 +191,6 @@ export function formNormalEquations(observations: FitObservations, pose: FitPose
 		covariance[six + 3] = d;
 		covariance[six + 4] = nh;
 		covariance[six + 5] = f;
-		if (i === skip) continue;
 		objective += re * ue + rn * un + rh * uh;
 		g0 += ue;
 		g1 += un;
@@ -237,14 +241,42 @@ export function formNormalEquations(observations: FitObservations, pose: FitPose
 		s5 += qe * v1 - qn * v0;
 		s6 += qe * v0 + qn * v1 + qh * v2;
 	}
-	normal.set([t00, t01, t02, c00, c01, c02, s0], 0);
-	normal.set([t01, t11, t12, c10, c11, c12, s1], 7);
-	normal.set([t02, t12, t22, c20, c21, c22, s2], 14);
-	normal.set([c00, c10, c20, o00, o01, o02, s3], 21);
-	normal.set([c01, c11, c21, o01, o11, o12, s4], 28);
-	normal.set([c02, c12, c22, o02, o12, o22, s5], 35);
-	normal.set([s0, s1, s2, s3, s4, s5, s6], 42);
-	gradient.set([g0, g1, g2, g3, g4, g5, g6]);
+	normal[0] = t00;
+	normal[1] = t01;
+	normal[2] = t02;
+	normal[3] = c00;
+	normal[4] = c01;
+	normal[5] = c02;
+	normal[6] = s0;
+	normal[8] = t11;
+	normal[9] = t12;
+	normal[10] = c10;
+	normal[11] = c11;
+	normal[12] = c12;
+	normal[13] = s1;
+	normal[16] = t22;
+	normal[17] = c20;
+	normal[18] = c21;
+	normal[19] = c22;
+	normal[20] = s2;
+	normal[24] = o00;
+	normal[25] = o01;
+	normal[26] = o02;
+	normal[27] = s3;
+	normal[32] = o11;
+	normal[33] = o12;
+	normal[34] = s4;
+	normal[40] = o22;
+	normal[41] = s5;
+	normal[48] = s6;
+	for (let row = 1; row < 7; row++) for (let column = 0; column < row; column++) normal[7 * row + column] = normal[7 * column + row]!;
+	gradient[0] = g0;
+	gradient[1] = g1;
+	gradient[2] = g2;
+	gradient[3] = g3;
+	gradient[4] = g4;
+	gradient[5] = g5;
+	gradient[6] = g6;
 	equations.objective = objective;
 	return sound && Number.isFinite(objective);
 }

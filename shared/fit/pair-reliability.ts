@@ -2,6 +2,7 @@ import { normalQuantile, twoSidedNormal } from '#shared/geometry/normal-distribu
 import type { Adjustment } from './adjust.ts';
 import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
 import { fitUnknowns } from './least-pairs.ts';
+import { LEAST_REDUNDANCY } from './pair-figures.ts';
 
 /** α₀ of the test of one residual, and the power with which a blunder of the smallest size is found (Baarda 1968). */
 export const PAIR_SIGNIFICANCE = 0.001;
@@ -12,9 +13,6 @@ export const NORMAL_CRITICAL = twoSidedNormal(PAIR_SIGNIFICANCE);
 
 /** Baarda's δ₀ = 4.13215: the shift of a normalised residual that is found at α₀ = 0.1 % with power 80 %, the far tail counted. */
 export const DELTA_0 = noncentrality();
-
-/** An axis with less redundancy than this counts as none. */
-const LEAST_REDUNDANCY = 1e-9;
 
 function noncentrality(): number {
 	// The near tail alone: the far one adds under 1e-13.

@@ -1,11 +1,11 @@
 import { turnAfter, yawRotation } from '#shared/geometry/rotation.ts';
-import { type Adjustment, adjust, SEARCH_STEPS } from './adjust.ts';
-import { closedForm } from './closed-form.ts';
+import { type Adjustment, type AdjustSpace, adjust, SEARCH_STEPS } from './adjust.ts';
+import { type ClosedForm, closedForm } from './closed-form.ts';
 import { type FitObservations, observationCount } from './fit-observations.ts';
 import type { FitPose } from './fit-pose.ts';
 import type { FitRefusal } from './fit-schema.ts';
 import { fitUnknowns, isLevelled, isScaled } from './least-pairs.ts';
-import { refuseGeometry, spreadOf } from './spread.ts';
+import { LEAST_SPREAD, refuseGeometry, spreadOf } from './spread.ts';
 
 export type Solution = { ok: true; adjustment: Adjustment } | { ok: false; refusal: FitRefusal };
 
@@ -17,22 +17,22 @@ const TIE = 1e-9;
  *
  * With weights the closed form is it, and the adjustment only takes its rounding out. With σ the closed form, with one number of weight a pair,
  * may start in the wrong valley where the pairs contradict each other or lie near a line; then the adjustment is also started from half and quarter turns.
+ * @param space where the adjustment lives: overwritten by the next one in it. By default a new one
  */
-export function solveFit(observations: FitObservations): Solution {
-	const refusal = refuseGeometry(observations);
+export function solveFit(observations: FitObservations, space?: AdjustSpace): Solution {
+	const start = startOf(observations);
+	const refusal = isSurelyApart(observations, start) ? null : refuseGeometry(observations);
 	if (refusal) return { ok: false, refusal };
-	const { planWeight, heightWeight } = startWeights(observations);
-	const start = closedForm(observations, planWeight, heightWeight);
 	if (!observations.sigmaGiven && !start.unique) return { ok: false, refusal: notUnique() };
-	let best = adjust(observations, start.pose);
+	let best = adjust(observations, start.pose, undefined, space);
 	if (
 		observations.sigmaGiven &&
 		observations.kind !== 'height' &&
-		(!start.unique || best.state !== 'converged' || isDoubtful(observations, best))
+		(!start.unique || best.state !== 'converged' || isDoubtful(observations, best, start))
 	) {
 		let rival = Infinity;
 		for (const pose of otherStarts(observations, start.pose)) {
-			const found = adjust(observations, pose, -1, SEARCH_STEPS);
+			const found = adjust(observations, pose, SEARCH_STEPS);
 			if (found.state !== 'converged') continue;
 			const lower = best.state !== 'converged' || found.equations.objective < best.equations.objective;
 			const [winner, loser] = lower ? [found, best] : [best, found];
@@ -69,14 +69,18 @@ export function solveFit(observations: FitObservations): Solution {
 /**
  * The minimum that the closed form leads to, without looking for others: for searches that try many subsets. Null where the pairs do not
  * determine the fit, or the iteration found no minimum.
+ * @param space where the adjustment lives: overwritten by the next one in it. By default a new one
  */
-export function quickFit(observations: FitObservations): Adjustment | null {
-	if (refuseGeometry(observations)) return null;
-	const { planWeight, heightWeight } = startWeights(observations);
-	const start = closedForm(observations, planWeight, heightWeight);
-	if (!start.unique) return null;
-	const adjustment = adjust(observations, start.pose, -1, SEARCH_STEPS);
+export function quickFit(observations: FitObservations, space?: AdjustSpace): Adjustment | null {
+	const start = startOf(observations);
+	if (!start.unique || (!isSurelyApart(observations, start) && refuseGeometry(observations))) return null;
+	const adjustment = adjust(observations, start.pose, SEARCH_STEPS, space);
 	return adjustment.state === 'converged' ? adjustment : null;
+}
+
+/** The closed form knows already that no extent is anywhere near the least: the careful look at both sides may be left out. */
+function isSurelyApart({ kind }: FitObservations, start: ClosedForm): boolean {
+	return !isLevelled(kind) && start.leastExtentM > 10 * LEAST_SPREAD;
 }
 
 function notUnique(): FitRefusal {
@@ -87,33 +91,54 @@ function notUnique(): FitRefusal {
 	};
 }
 
-/** One weight a pair for the closed form: the reciprocal of its mean variance. */
-function startWeights(observations: FitObservations): { planWeight: Float64Array; heightWeight: Float64Array } {
+/** The closed form with one weight a pair: the reciprocal of its mean variance. */
+function startOf(observations: FitObservations): ClosedForm {
 	const { count, survey, control, surveyVariance, controlVariance, kind } = observations;
 	const planWeight = new Float64Array(count);
-	const heightWeight = new Float64Array(count);
-	const ratio = isScaled(kind) ? spreadOf(control, count).extents[0] / spreadOf(survey, count).extents[0] : observations.fixedScale;
+	const heightWeight = isLevelled(kind) || kind === 'height' ? new Float64Array(count) : planWeight;
+	const ratio = isScaled(kind) ? squareAboutMean(control, count) / squareAboutMean(survey, count) : observations.fixedScale ** 2;
 	for (let i = 0; i < count; i++) {
-		const variance = [0, 1, 2].map((k) => controlVariance[3 * i + k]! + ratio * ratio * surveyVariance[3 * i + k]!);
-		if (isLevelled(kind)) {
-			planWeight[i] = 2 / (variance[0]! + variance[1]!);
-			heightWeight[i] = 1 / variance[2]!;
-		} else {
-			planWeight[i] = 3 / (variance[0]! + variance[1]! + variance[2]!);
-			heightWeight[i] = kind === 'height' ? 1 / variance[2]! : planWeight[i]!;
+		const at = 3 * i;
+		const e = controlVariance[at]! + ratio * surveyVariance[at]!;
+		const n = controlVariance[at + 1]! + ratio * surveyVariance[at + 1]!;
+		const h = controlVariance[at + 2]! + ratio * surveyVariance[at + 2]!;
+		if (heightWeight === planWeight) planWeight[i] = 3 / (e + n + h);
+		else {
+			planWeight[i] = 2 / (e + n);
+			heightWeight[i] = 1 / h;
 		}
 	}
-	return { planWeight, heightWeight };
+	return closedForm(observations, planWeight, heightWeight);
+}
+
+/** Σ of the squared distances from the mean, m². */
+function squareAboutMean(points: Float64Array, count: number): number {
+	let x = 0;
+	let y = 0;
+	let z = 0;
+	for (let at = 0; at < 3 * count; at += 3) {
+		x += points[at]!;
+		y += points[at + 1]!;
+		z += points[at + 2]!;
+	}
+	x /= count;
+	y /= count;
+	z /= count;
+	let square = 0;
+	for (let at = 0; at < 3 * count; at += 3) square += (points[at]! - x) ** 2 + (points[at + 1]! - y) ** 2 + (points[at + 2]! - z) ** 2;
+	return square;
 }
 
 /** F far beyond what σ allow, or points so near a line that another turn could fit within σ. */
-function isDoubtful(observations: FitObservations, { equations }: Adjustment): boolean {
+function isDoubtful(observations: FitObservations, { equations }: Adjustment, start: ClosedForm): boolean {
 	const redundancy = observationCount(observations) - fitUnknowns(observations.kind).length;
 	if (equations.objective > redundancy + 6 * Math.sqrt(2 * redundancy) + 12) return true;
 	let variance = 0;
-	for (const value of equations.covariance) variance = Math.max(variance, value);
+	for (let at = 0; at < 6 * observations.count; at++) if (equations.covariance[at]! > variance) variance = equations.covariance[at]!;
+	const least = 20 * Math.sqrt(variance);
+	if (start.leastExtentM > least) return false;
 	const { extents } = spreadOf(observations.control, observations.count, isLevelled(observations.kind));
-	return (isLevelled(observations.kind) ? extents[0] : extents[1]) < 20 * Math.sqrt(variance);
+	return (isLevelled(observations.kind) ? extents[0] : extents[1]) < least;
 }
 
 /** Poses about the centre of the control: quarter turns of the bearing, or half and quarter turns about the principal axes. */

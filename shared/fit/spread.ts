@@ -4,7 +4,7 @@ import type { FitRefusal } from './fit-schema.ts';
 import { isLevelled, leastPairs } from './least-pairs.ts';
 
 /** Spreads under this do not determine a direction, metres. */
-const LEAST_SPREAD = 1e-6;
+export const LEAST_SPREAD = 1e-6;
 
 /**
  * Root mean square extents along the principal axes, largest first, and the axes.
