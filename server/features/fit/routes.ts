@@ -1,6 +1,8 @@
 import { siteRoutes } from '../../platform/guard.ts';
 import { adoptFit } from './adopt-fit.ts';
 import { confirmFit } from './confirm-fit.ts';
+import { fitReportPdf } from './fit-report.ts';
+import { fitReportData } from './fit-report-data.ts';
 import { makeFit } from './make-fit.ts';
 import { fitOf, fitsOf } from './queries.ts';
 import { setupPairs } from './setup-pairs.ts';
@@ -18,6 +20,11 @@ export const fitRoutes = {
 		const adopted = await adoptFit(platform, member, input);
 		if (adopted === 'stale') throw errors.STALE();
 		return adopted;
+	}),
+	report: siteRoutes.fit.report.handler(async ({ input, context: { platform, member } }) => {
+		const data = await fitReportData(platform.db, member.siteId, input.fitId, platform.now());
+		const bytes = await fitReportPdf(data);
+		return new File([bytes as Uint8Array<ArrayBuffer>], `fit-${data.fit.number}.pdf`, { type: 'application/pdf' });
 	}),
 	confirm: siteRoutes.fit.confirm.handler(({ input, context: { platform, member } }) => confirmFit(platform, member, input)),
 };
