@@ -42,6 +42,7 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'fit.get': all,
 	'fit.make': [siteEngineer],
 	'fit.adopt': [siteEngineer],
+	'fit.report': all,
 	'fit.confirm': [siteEngineer],
 	'tolerance.list': all,
 	'tolerance.get': all,
