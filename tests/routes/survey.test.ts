@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { blankSetupObservation, blankSurveyObservation } from '#shared/survey/observation-record.ts';
 import { makePointList } from '../../fixtures/make-point-list.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { surveyPoints, surveys } from '../../server/db/schema/survey.ts';
@@ -142,5 +143,21 @@ describe('surveys', () => {
 		await expect(api.survey.get({ siteId, surveyId })).rejects.toMatchObject({ code: 'NOT_FOUND' });
 		await expect(api.survey.points({ siteId, surveyId })).rejects.toMatchObject({ code: 'NOT_FOUND' });
 		expect(await api.survey.list({ siteId })).toEqual([]);
+	});
+});
+
+describe('how a survey was measured', () => {
+	it('is kept as far as it was said, and nothing is made of what was not', async () => {
+		const own = await aSite(server);
+		const observation = { ...blankSurveyObservation, temperatureC: -2.5, ppmApplied: 'in-instrument' as const, fieldCheck: 'no' as const };
+		const setups = [aSetup({ observation: { ...blankSetupObservation, closingMm: 1.4 } })];
+		const form = { name: 'S', stage: 'as-cast' as const, surveyedOn: '2026-12-01', observer: 'A', instrument: 'B', serial: 'C' };
+		const text = 'name,x,y,z\nT1,0,0,0\n';
+		const { surveyId } = await storeSurvey(server, own.surveyor, text, { setups, survey: { ...form, observation } });
+		const survey = await own.observer.api.survey.get({ siteId: own.siteId, surveyId });
+		expect(survey.observation).toEqual(observation);
+		expect(survey.setups[0]?.observation).toMatchObject({ closingMm: 1.4, targetHeightM: null });
+		const silent = await storeSurvey(server, own.surveyor, text, { setups: [aSetup()] });
+		expect(await own.observer.api.survey.get({ siteId: own.siteId, surveyId: silent.surveyId })).not.toHaveProperty('observation');
 	});
 });

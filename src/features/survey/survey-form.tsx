@@ -2,11 +2,14 @@ import { useQueryClient } from '@tanstack/react-query';
 import { useMemo } from 'react';
 import { z } from 'zod';
 import { setupInput, surveyForm } from '#shared/survey/contract.ts';
+import { blankSetupObservation, blankSurveyObservation } from '#shared/survey/observation-record.ts';
 import { stages } from '#shared/tolerance/sheet-schema.ts';
 import { api, client } from '#src/lib/api.ts';
 import { counted } from '#src/lib/format.ts';
 import { NumberField, SelectField, TextField, TickField } from '#src/ui/field.tsx';
 import { Form, Submit } from '#src/ui/form.tsx';
+import { SetupObservationFields, SurveyObservationFields } from './observation-fields.tsx';
+import { saidOf } from './observation-said.ts';
 import type { ReadFile } from './point-file.tsx';
 import { stageWords } from './survey-words.ts';
 
@@ -46,6 +49,7 @@ export function SurveyFormFields({ siteId, read, today, send, onStored }: Survey
 					observer: '',
 					instrument: '',
 					serial: '',
+					observation: blankSurveyObservation,
 				},
 				setups: setups.map(({ name }) => ({
 					name,
@@ -55,6 +59,7 @@ export function SurveyFormFields({ siteId, read, today, send, onStored }: Survey
 					instrumentHeightM: null,
 					sigmaPlanMm: null,
 					sigmaHeightMm: null,
+					observation: blankSetupObservation,
 				})),
 			}}
 			onSubmit={async (said) => {
@@ -63,9 +68,9 @@ export function SurveyFormFields({ siteId, read, today, send, onStored }: Survey
 					siteId,
 					uploadId,
 					reading,
-					survey: said.survey,
+					survey: saidOf(said.survey),
 					setups: said.setups.map(({ sigmaPlanMm, sigmaHeightMm, ...setup }) => ({
-						...setup,
+						...saidOf(setup),
 						pointSigmaM: sigmaPlanMm !== null && sigmaHeightMm !== null ? { plan: sigmaPlanMm / 1000, height: sigmaHeightMm / 1000 } : null,
 					})),
 				});
@@ -81,6 +86,7 @@ export function SurveyFormFields({ siteId, read, today, send, onStored }: Survey
 				<TextField name="survey.instrument" label="Instrument" hint="Make and type" />
 				<TextField name="survey.serial" label="Its serial number" isMono />
 			</div>
+			<SurveyObservationFields />
 			{setups.map((setup, index) => (
 				<fieldset key={setup.name} className="sheet m-0 flex flex-col gap-3 px-4.5 pt-2 pb-4">
 					<legend className="px-1 text-h2 font-strong">
@@ -117,6 +123,7 @@ export function SurveyFormFields({ siteId, read, today, send, onStored }: Survey
 						/>
 					</div>
 					<TickField name={`setups.${index}.bringsScale`} label="The instrument brings its own scale, so the fit has none" />
+					<SetupObservationFields index={index} name={setup.name} />
 				</fieldset>
 			))}
 			<Submit

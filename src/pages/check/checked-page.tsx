@@ -26,7 +26,7 @@ import { CheckFilters } from './check-filters.tsx';
 import { CheckStrip } from './check-strip.tsx';
 import { CheckViewer } from './check-viewer.tsx';
 import { NothingShown } from './nothing-shown.tsx';
-import { saveBlob } from './save-blob.ts';
+import { saveBlob } from '#src/lib/save-blob.ts';
 import { StaleNotice } from './stale-notice.tsx';
 import { useCheckView } from './use-check-view.ts';
 import { usePoursOf } from './use-pours-of.ts';

@@ -10,6 +10,7 @@ import { FitHistory } from '#src/features/fit/fit-history.tsx';
 import { kindWords, standingWords } from '#src/features/fit/fit-words.ts';
 import { FitWorkbench } from '#src/features/fit/fit-workbench.tsx';
 import { KeptFit } from '#src/features/fit/kept-fit.tsx';
+import { ReportButton } from '#src/features/fit/report-button.tsx';
 import type { PlanExtent } from '#src/features/fit/uncertainty-field.ts';
 import { useAddressState } from '#src/lib/address-state.ts';
 import { api } from '#src/lib/api.ts';
@@ -72,7 +73,12 @@ export default function FitPage() {
 		);
 	const about = { siteId, setup, revisionId: revision?.revisionId ?? null };
 	const mayAdopt = mayWith(site.roles, 'fit.adopt');
-	const actsOn = (fit: FitSummary) => <>{me && <CheckFit siteId={siteId} fit={fit} userId={me.userId} mayAdopt={mayAdopt} />}</>;
+	const actsOn = (fit: FitSummary) => (
+		<>
+			<ReportButton siteId={siteId} fit={fit} />
+			{me && <CheckFit siteId={siteId} fit={fit} userId={me.userId} mayAdopt={mayAdopt} />}
+		</>
+	);
 	return (
 		<>
 			{strip}

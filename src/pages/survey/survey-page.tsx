@@ -1,6 +1,8 @@
 import { useQueryClient, useSuspenseQueries } from '@tanstack/react-query';
 import { Link, useParams } from 'react-router-dom';
 import { mayWith } from '#shared/permissions.ts';
+import type { SurveySummary } from '#shared/survey/contract.ts';
+import { observationWords } from '#src/features/survey/observation-words.ts';
 import { SurveyPointTable } from '#src/features/survey/survey-point-table.tsx';
 import { setupWords, stageWords, surveyHeadline } from '#src/features/survey/survey-words.ts';
 import { api } from '#src/lib/api.ts';
@@ -76,6 +78,7 @@ export default function SurveyPage() {
 						</li>
 					))}
 				</ul>
+				<HowMeasured survey={survey} />
 				<section aria-label="Points" className="flex flex-col gap-3">
 					<h2 className="m-0 text-h2 font-strong">
 						{measured.total > shownPoints
@@ -86,6 +89,21 @@ export default function SurveyPage() {
 				</section>
 			</div>
 		</>
+	);
+}
+
+/** The observation record, folded; what was left blank is said. */
+function HowMeasured({ survey }: { survey: SurveySummary }) {
+	const { said, notSaid } = observationWords(survey);
+	return (
+		<details className="sheet px-4.5 py-2">
+			<summary className="min-h-11 content-center pointer-coarse:min-h-12">
+				<b className="font-strong">How it was measured</b>{' '}
+				<span className="text-second">{said.length === 0 ? 'nothing was stated' : `${said.length} stated, ${notSaid.length} not`}</span>
+			</summary>
+			{said.length > 0 && <p className="mt-1 mb-1">{said.join(' · ')}</p>}
+			{notSaid.length > 0 && <p className="mt-0 mb-2 text-second">Not stated: {notSaid.join(', ')}.</p>}
+		</details>
 	);
 }
 
