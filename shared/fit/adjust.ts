@@ -2,8 +2,7 @@ import { invertPositiveDefinite } from '#shared/geometry/cholesky.ts';
 import type { FitObservations } from './fit-observations.ts';
 import { clonePose, copyPose, type FitPose, movePose, newPose } from './fit-pose.ts';
 import { fitUnknowns } from './least-pairs.ts';
-import { formNormalEquations, type NormalEquations, newNormalEquations } from './normal-equations.ts';
-import { formGradient } from './normal-gradient.ts';
+import { fillCovariances, formNormalEquations, type NormalEquations, newNormalEquations } from './normal-equations.ts';
 
 /** Plain steps before Newton's take over: sound surveys need three to six. */
 const PLAIN_STEPS = 12;
@@ -50,7 +49,7 @@ export function newAdjustSpace(count: number): AdjustSpace {
  *
  * δ = (ÂᵀΣ⁻¹Â)⁻¹·ÂᵀΣ⁻¹r converges at a rate of about residual/span; where that is slow (coarse σ, gross errors) Newton steps
  * with the second derivatives by differences of the exact gradient take over. The second step is taken with the matrix of the first where
- * that step was small: the gradient is exact all the same, and the matrix changes by no more than residual/span.
+ * that was small: the gradient is exact all the same, and the matrix changes by no more than residual/span.
  * @param start is left as it is
  * @param most steps at the most; a search gives up sooner than the fit itself
  * @param space where the result lives: overwritten by the next adjustment in it. By default a new one
@@ -73,10 +72,17 @@ export function adjust(
 	let iterations = 0;
 	if (!formNormalEquations(observations, pose, equations)) return { pose, equations, cofactor, iterations, state: 'sigma' };
 	let lastStep = Infinity;
-	/** Whether `equations` hold more than F and its gradient. */
-	let isFormed = true;
+	// Whether Q belongs to `equations`, and whether the next step is taken with it all the same.
+	let isCurrent = false;
+	let isKept = false;
 	for (; iterations < most; iterations++) {
-		if (isFormed && !cofactorOf(equations, unknowns, cofactor)) return { pose, equations, cofactor, iterations, state: 'singular' };
+		if (!isKept) {
+			if (!cofactorOf(equations, unknowns, cofactor)) {
+				state = 'singular';
+				break;
+			}
+			isCurrent = true;
+		}
 		change.fill(0);
 		const newton = iterations >= PLAIN_STEPS && newtonStep(observations, pose, equations, unknowns, span, change);
 		if (!newton) solveStep(cofactor, equations.gradient, unknowns, change);
@@ -86,15 +92,14 @@ export function adjust(
 			break;
 		}
 		let accepted = false;
-		const gradientOnly = iterations === 0 && step < SMALL_STEP;
 		for (let halving = 0; halving < 40; halving++) {
 			copyPose(pose, moved);
 			movePose(moved, change);
-			const sound = gradientOnly ? formSums(observations, moved, trial) : formNormalEquations(observations, moved, trial);
-			if (sound && trial.objective <= equations.objective * (1 + 1e-13) + 1e-300) {
+			if (formNormalEquations(observations, moved, trial) && trial.objective <= equations.objective * (1 + 1e-13) + 1e-300) {
 				[pose, moved] = [moved, pose];
 				[equations, trial] = [trial, equations];
-				isFormed = !gradientOnly;
+				isCurrent = false;
+				isKept = iterations === 0 && step < SMALL_STEP;
 				accepted = true;
 				break;
 			}
@@ -108,17 +113,10 @@ export function adjust(
 		}
 		lastStep = step;
 	}
-	if (!isFormed) {
-		if (!formNormalEquations(observations, pose, equations)) state = 'sigma';
-		else if (!cofactorOf(equations, unknowns, cofactor)) state = 'singular';
-	}
+	// Q belongs to the pose that is returned.
+	if (!isCurrent && state !== 'singular' && !cofactorOf(equations, unknowns, cofactor)) state = 'singular';
+	fillCovariances(observations, equations);
 	return { pose, equations, cofactor, iterations, state };
-}
-
-/** F and its gradient alone. */
-function formSums(observations: FitObservations, pose: FitPose, equations: NormalEquations): boolean {
-	equations.objective = formGradient(observations, pose, equations.gradient);
-	return Number.isFinite(equations.objective);
 }
 
 /** Q = N⁻¹ on the unknowns of the fit. False where they are not determined. */
@@ -150,7 +148,7 @@ function newtonStep(
 	const hessian = new Float64Array(size * size);
 	const move = new Float64Array(7);
 	const ahead = new Float64Array(7);
-	const behind = new Float64Array(7);
+	const scratch = newNormalEquations(observations.count);
 	for (let j = 0; j < size; j++) {
 		const unknown = unknowns[j]!;
 		const h = (unknown < 3 ? span : 1) * 1e-5;
@@ -158,12 +156,13 @@ function newtonStep(
 		move[unknown] = h;
 		const forward = clonePose(pose);
 		movePose(forward, move);
-		if (!Number.isFinite(formGradient(observations, forward, ahead))) return false;
+		if (!formNormalEquations(observations, forward, scratch)) return false;
+		ahead.set(scratch.gradient);
 		move[unknown] = -h;
 		const backward = clonePose(pose);
 		movePose(backward, move);
-		if (!Number.isFinite(formGradient(observations, backward, behind))) return false;
-		for (let i = 0; i < size; i++) hessian[i * size + j] = (behind[unknowns[i]!]! - ahead[unknowns[i]!]!) / (2 * h);
+		if (!formNormalEquations(observations, backward, scratch)) return false;
+		for (let i = 0; i < size; i++) hessian[i * size + j] = (scratch.gradient[unknowns[i]!]! - ahead[unknowns[i]!]!) / (2 * h);
 	}
 	for (let i = 0; i < size; i++) {
 		for (let j = 0; j < i; j++) hessian[i * size + j] = hessian[j * size + i] = (hessian[i * size + j]! + hessian[j * size + i]!) / 2;

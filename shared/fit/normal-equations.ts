@@ -1,5 +1,6 @@
-import { type FitObservations, KNOWN_ALL, KNOWN_PLAN } from './fit-observations.ts';
+import { type FitObservations, KNOWN_ALL, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
 import { type FitPose, poseMatrix } from './fit-pose.ts';
+import { sigmaGroupsOf } from './sigma-groups.ts';
 
 /**
  * The linearised condition control + v = S·R·(survey + v′) + shift of all pairs at a pose, and its normal equations.
@@ -7,6 +8,9 @@ import { type FitPose, poseMatrix } from './fit-pose.ts';
  * Gauss–Helmert (Pope 1972): A is taken at the adjusted survey coordinates x̂ = x + C_survey·(S·R)ᵀ·Σ⁻¹·r, Σ = C_control + S·R·C_survey·(S·R)ᵀ
  * at the pose itself. The gradient of F = Σ rᵀ·Σ⁻¹·r, with Σ moving along, is then exactly −2·Σ Aᵀ·Σ⁻¹·r, so an iteration that
  * stops with AᵀΣ⁻¹r = 0 has found a stationary point of F itself, not of F with Σ held still.
+ *
+ * Σ is the same for all pairs of the same σ (sigma-groups.ts), and A is linear in the adjusted coordinates q̂. So of each group only the sums of
+ * q̂, q̂q̂ᵀ, r, q̂rᵀ, rrᵀ are formed pair by pair, and AᵀΣ⁻¹A, AᵀΣ⁻¹r and rᵀΣ⁻¹r once from them.
  */
 export interface NormalEquations {
 	/** 7 × 7, row by row: Σ Aᵀ·Σ⁻¹·A, for all seven small changes. */
@@ -15,11 +19,15 @@ export interface NormalEquations {
 	readonly gradient: Float64Array;
 	/** F, without unit with σ. */
 	objective: number;
-	/** A pair: r = control − fitted (3), S·R·x̂ (3), Σ⁻¹ as xx, xy, xz, yy, yz, zz (6), Σ likewise (6). */
+	/** A pair: r = control − fitted (3), S·R·x̂ (3). Arrays may be longer than the pairs need. */
 	readonly residual: Float64Array;
 	readonly adjusted: Float64Array;
+	/** A pair: Σ⁻¹ as xx, xy, xz, yy, yz, zz (6), Σ likewise (6). Filled by fillCovariances. */
 	readonly inverse: Float64Array;
 	readonly covariance: Float64Array;
+	/** The same of each group. */
+	readonly groupInverse: Float64Array;
+	readonly groupCovariance: Float64Array;
 }
 
 export function newNormalEquations(count: number): NormalEquations {
@@ -31,18 +39,25 @@ export function newNormalEquations(count: number): NormalEquations {
 		adjusted: new Float64Array(3 * count),
 		inverse: new Float64Array(6 * count),
 		covariance: new Float64Array(6 * count),
+		groupInverse: new Float64Array(6 * count),
+		groupCovariance: new Float64Array(6 * count),
 	};
 }
 
 const matrix = new Float64Array(9);
+/** Σ of one group, what of it is carried from the survey side, and Σ⁻¹: xx, xy, xz, yy, yz, zz each. */
+const covariance = new Float64Array(6);
+const carried = new Float64Array(6);
+const inverse = new Float64Array(6);
 
 /**
- * Fills `equations` at `pose`. One pass, no small objects.
+ * Fills `equations` at `pose`, all but the covariances a pair (fillCovariances). One pass, no small objects.
  * @returns false where some Σ is singular or a number overflows
  */
 export function formNormalEquations(observations: FitObservations, pose: FitPose, equations: NormalEquations): boolean {
-	const { count, survey, control, surveyVariance, controlVariance, known, sigmaGiven } = observations;
-	const { normal, gradient, residual, adjusted, inverse, covariance } = equations;
+	const { survey, control } = observations;
+	const { normal, gradient, residual, adjusted, groupInverse, groupCovariance } = equations;
+	const { order, ends } = sigmaGroupsOf(observations);
 	poseMatrix(pose, matrix);
 	const m0 = matrix[0]!;
 	const m1 = matrix[1]!;
@@ -56,227 +71,239 @@ export function formNormalEquations(observations: FitObservations, pose: FitPose
 	const shiftE = pose.shift[0]!;
 	const shiftN = pose.shift[1]!;
 	const shiftH = pose.shift[2]!;
-	// Sums of the normal matrix: shift block t, mixed block t×ω (m), turn block ω, scale column.
-	let t00 = 0,
-		t01 = 0,
-		t02 = 0,
-		t11 = 0,
-		t12 = 0,
-		t22 = 0;
-	let c00 = 0,
-		c01 = 0,
-		c02 = 0,
-		c10 = 0,
-		c11 = 0,
-		c12 = 0,
-		c20 = 0,
-		c21 = 0,
-		c22 = 0;
-	let o00 = 0,
-		o01 = 0,
-		o02 = 0,
-		o11 = 0,
-		o12 = 0,
-		o22 = 0;
-	let s0 = 0,
-		s1 = 0,
-		s2 = 0,
-		s3 = 0,
-		s4 = 0,
-		s5 = 0,
-		s6 = 0;
-	let g0 = 0,
-		g1 = 0,
-		g2 = 0,
-		g3 = 0,
-		g4 = 0,
-		g5 = 0,
-		g6 = 0;
+	normal.fill(0);
+	gradient.fill(0);
 	let objective = 0;
 	let sound = true;
-	for (let i = 0; i < count; i++) {
-		const at = 3 * i;
-		const x = survey[at]!;
-		const y = survey[at + 1]!;
-		const z = survey[at + 2]!;
-		let qe = m0 * x + m1 * y + m2 * z;
-		let qn = m3 * x + m4 * y + m5 * z;
-		let qh = m6 * x + m7 * y + m8 * z;
-		let re = control[at]! - qe - shiftE;
-		let rn = control[at + 1]! - qn - shiftN;
-		let rh = control[at + 2]! - qh - shiftH;
-		// The carried survey covariance.
-		let ee = 0,
-			en = 0,
-			eh = 0,
-			nn = 0,
-			nh = 0,
-			hh = 0;
-		if (sigmaGiven) {
-			const vx = surveyVariance[at]!;
-			const vy = surveyVariance[at + 1]!;
-			const vz = surveyVariance[at + 2]!;
-			const x0 = vx * m0;
-			const y0 = vy * m1;
-			const z0 = vz * m2;
-			const x1 = vx * m3;
-			const y1 = vy * m4;
-			const z1 = vz * m5;
-			ee = x0 * m0 + y0 * m1 + z0 * m2;
-			en = x0 * m3 + y0 * m4 + z0 * m5;
-			eh = x0 * m6 + y0 * m7 + z0 * m8;
-			nn = x1 * m3 + y1 * m4 + z1 * m5;
-			nh = x1 * m6 + y1 * m7 + z1 * m8;
-			hh = vx * m6 * m6 + vy * m7 * m7 + vz * m8 * m8;
+	let begin = 0;
+	for (let group = 0; group < ends.length; group++) {
+		const end = ends[group]!;
+		if (!fillSigma(observations, order[begin]!)) sound = false;
+		const w0 = inverse[0]!;
+		const w1 = inverse[1]!;
+		const w2 = inverse[2]!;
+		const w3 = inverse[3]!;
+		const w4 = inverse[4]!;
+		const w5 = inverse[5]!;
+		for (let k = 0; k < 6; k++) {
+			groupInverse[6 * group + k] = inverse[k]!;
+			groupCovariance[6 * group + k] = covariance[k]!;
 		}
-		const a = ee + controlVariance[at]!;
-		const d = nn + controlVariance[at + 1]!;
-		const f = hh + controlVariance[at + 2]!;
-		let w00 = 0,
-			w01 = 0,
-			w02 = 0,
-			w11 = 0,
-			w12 = 0,
-			w22 = 0;
-		const knows = known[i]!;
-		if (knows === KNOWN_ALL) {
-			const k00 = d * f - nh * nh;
-			const k01 = eh * nh - en * f;
-			const k02 = en * nh - d * eh;
-			const determinant = a * k00 + en * k01 + eh * k02;
-			const over = 1 / determinant;
-			w00 = k00 * over;
-			w01 = k01 * over;
-			w02 = k02 * over;
-			w11 = (a * f - eh * eh) * over;
-			w12 = (en * eh - a * nh) * over;
-			w22 = (a * d - en * en) * over;
-			if (!(determinant > 1e-14 * a * d * f)) sound = false;
-		} else if (knows === KNOWN_PLAN) {
-			const determinant = a * d - en * en;
-			w00 = d / determinant;
-			w01 = -en / determinant;
-			w11 = a / determinant;
-			rh = 0;
-			if (!(determinant > 1e-14 * a * d)) sound = false;
-		} else {
-			w22 = 1 / f;
-			re = 0;
-			rn = 0;
-			if (!(f > 0)) sound = false;
+		// S·R·C·(S·R)ᵀ·Σ⁻¹: what of a residual goes to the survey side.
+		const c0 = carried[0]!;
+		const c1 = carried[1]!;
+		const c2 = carried[2]!;
+		const c3 = carried[3]!;
+		const c4 = carried[4]!;
+		const c5 = carried[5]!;
+		const b0 = c0 * w0 + c1 * w1 + c2 * w2;
+		const b1 = c0 * w1 + c1 * w3 + c2 * w4;
+		const b2 = c0 * w2 + c1 * w4 + c2 * w5;
+		const b3 = c1 * w0 + c3 * w1 + c4 * w2;
+		const b4 = c1 * w1 + c3 * w3 + c4 * w4;
+		const b5 = c1 * w2 + c3 * w4 + c4 * w5;
+		const b6 = c2 * w0 + c4 * w1 + c5 * w2;
+		const b7 = c2 * w1 + c4 * w3 + c5 * w4;
+		const b8 = c2 * w2 + c4 * w4 + c5 * w5;
+		const known = observations.known[order[begin]!]!;
+		const plan = (known & KNOWN_PLAN) !== 0 ? 1 : 0;
+		const height = (known & KNOWN_HEIGHT) !== 0 ? 1 : 0;
+		let qe = 0;
+		let qn = 0;
+		let qh = 0;
+		let ee = 0;
+		let en = 0;
+		let eh = 0;
+		let nn = 0;
+		let nh = 0;
+		let hh = 0;
+		let re = 0;
+		let rn = 0;
+		let rh = 0;
+		let z0 = 0;
+		let z1 = 0;
+		let z2 = 0;
+		let z3 = 0;
+		let z4 = 0;
+		let z5 = 0;
+		let z6 = 0;
+		let z7 = 0;
+		let z8 = 0;
+		let r0 = 0;
+		let r1 = 0;
+		let r2 = 0;
+		let r3 = 0;
+		let r4 = 0;
+		let r5 = 0;
+		for (let place = begin; place < end; place++) {
+			const at = 3 * order[place]!;
+			const x = survey[at]!;
+			const y = survey[at + 1]!;
+			const z = survey[at + 2]!;
+			let e = m0 * x + m1 * y + m2 * z;
+			let n = m3 * x + m4 * y + m5 * z;
+			let h = m6 * x + m7 * y + m8 * z;
+			const de = plan * (control[at]! - e - shiftE);
+			const dn = plan * (control[at + 1]! - n - shiftN);
+			const dh = height * (control[at + 2]! - h - shiftH);
+			e += b0 * de + b1 * dn + b2 * dh;
+			n += b3 * de + b4 * dn + b5 * dh;
+			h += b6 * de + b7 * dn + b8 * dh;
+			residual[at] = de;
+			residual[at + 1] = dn;
+			residual[at + 2] = dh;
+			adjusted[at] = e;
+			adjusted[at + 1] = n;
+			adjusted[at + 2] = h;
+			qe += e;
+			qn += n;
+			qh += h;
+			ee += e * e;
+			en += e * n;
+			eh += e * h;
+			nn += n * n;
+			nh += n * h;
+			hh += h * h;
+			re += de;
+			rn += dn;
+			rh += dh;
+			z0 += e * de;
+			z1 += e * dn;
+			z2 += e * dh;
+			z3 += n * de;
+			z4 += n * dn;
+			z5 += n * dh;
+			z6 += h * de;
+			z7 += h * dn;
+			z8 += h * dh;
+			r0 += de * de;
+			r1 += de * dn;
+			r2 += de * dh;
+			r3 += dn * dn;
+			r4 += dn * dh;
+			r5 += dh * dh;
 		}
-		const ue = w00 * re + w01 * rn + w02 * rh;
-		const un = w01 * re + w11 * rn + w12 * rh;
-		const uh = w02 * re + w12 * rn + w22 * rh;
-		// S·R·x̂
-		qe += ee * ue + en * un + eh * uh;
-		qn += en * ue + nn * un + nh * uh;
-		qh += eh * ue + nh * un + hh * uh;
-		residual[at] = re;
-		residual[at + 1] = rn;
-		residual[at + 2] = rh;
-		adjusted[at] = qe;
-		adjusted[at + 1] = qn;
-		adjusted[at + 2] = qh;
-		const six = 6 * i;
-		inverse[six] = w00;
-		inverse[six + 1] = w01;
-		inverse[six + 2] = w02;
-		inverse[six + 3] = w11;
-		inverse[six + 4] = w12;
-		inverse[six + 5] = w22;
-		covariance[six] = a;
-		covariance[six + 1] = en;
-		covariance[six + 2] = eh;
-		covariance[six + 3] = d;
-		covariance[six + 4] = nh;
-		covariance[six + 5] = f;
-		objective += re * ue + rn * un + rh * uh;
-		g0 += ue;
-		g1 += un;
-		g2 += uh;
-		g3 += qn * uh - qh * un;
-		g4 += qh * ue - qe * uh;
-		g5 += qe * un - qn * ue;
-		g6 += qe * ue + qn * un + qh * uh;
-		t00 += w00;
-		t01 += w01;
-		t02 += w02;
-		t11 += w11;
-		t12 += w12;
-		t22 += w22;
-		// W·K, K = −[q̂]×: column of turn E = (0, −qh, qn), of turn N = (qh, 0, −qe), of turn H = (−qn, qe, 0).
-		const k00 = w02 * qn - w01 * qh;
-		const k10 = w12 * qn - w11 * qh;
-		const k20 = w22 * qn - w12 * qh;
-		const k01 = w00 * qh - w02 * qe;
-		const k11 = w01 * qh - w12 * qe;
-		const k21 = w02 * qh - w22 * qe;
-		const k02 = w01 * qe - w00 * qn;
-		const k12 = w11 * qe - w01 * qn;
-		const k22 = w12 * qe - w02 * qn;
-		c00 += k00;
-		c01 += k01;
-		c02 += k02;
-		c10 += k10;
-		c11 += k11;
-		c12 += k12;
-		c20 += k20;
-		c21 += k21;
-		c22 += k22;
-		o00 += qn * k20 - qh * k10;
-		o01 += qn * k21 - qh * k11;
-		o02 += qn * k22 - qh * k12;
-		o11 += qh * k01 - qe * k21;
-		o12 += qh * k02 - qe * k22;
-		o22 += qe * k12 - qn * k02;
-		const v0 = w00 * qe + w01 * qn + w02 * qh;
-		const v1 = w01 * qe + w11 * qn + w12 * qh;
-		const v2 = w02 * qe + w12 * qn + w22 * qh;
-		s0 += v0;
-		s1 += v1;
-		s2 += v2;
-		s3 += qn * v2 - qh * v1;
-		s4 += qh * v0 - qe * v2;
-		s5 += qe * v1 - qn * v0;
-		s6 += qe * v0 + qn * v1 + qh * v2;
+		const members = end - begin;
+		begin = end;
+		objective += w0 * r0 + w3 * r3 + w5 * r5 + 2 * (w1 * r1 + w2 * r2 + w4 * r4);
+		// Σ q̂·uᵀ with u = Σ⁻¹·r, of which the turns take the odd part and the scale the trace.
+		gradient[0]! += w0 * re + w1 * rn + w2 * rh;
+		gradient[1]! += w1 * re + w3 * rn + w4 * rh;
+		gradient[2]! += w2 * re + w4 * rn + w5 * rh;
+		const en_ = z0 * w1 + z1 * w3 + z2 * w4;
+		const eh_ = z0 * w2 + z1 * w4 + z2 * w5;
+		const ne_ = z3 * w0 + z4 * w1 + z5 * w2;
+		const nh_ = z3 * w2 + z4 * w4 + z5 * w5;
+		const he_ = z6 * w0 + z7 * w1 + z8 * w2;
+		const hn_ = z6 * w1 + z7 * w3 + z8 * w4;
+		gradient[3]! += nh_ - hn_;
+		gradient[4]! += he_ - eh_;
+		gradient[5]! += en_ - ne_;
+		gradient[6]! += z0 * w0 + z1 * w1 + z2 * w2 + z3 * w1 + z4 * w3 + z5 * w4 + z6 * w2 + z7 * w4 + z8 * w5;
+		normal[0]! += members * w0;
+		normal[1]! += members * w1;
+		normal[2]! += members * w2;
+		normal[8]! += members * w3;
+		normal[9]! += members * w4;
+		normal[16]! += members * w5;
+		// Σ⁻¹·K, K = −[q̂]×: column of turn E = (0, −qh, qn), of turn N = (qh, 0, −qe), of turn H = (−qn, qe, 0).
+		normal[3]! += w2 * qn - w1 * qh;
+		normal[4]! += w0 * qh - w2 * qe;
+		normal[5]! += w1 * qe - w0 * qn;
+		normal[10]! += w4 * qn - w3 * qh;
+		normal[11]! += w1 * qh - w4 * qe;
+		normal[12]! += w3 * qe - w1 * qn;
+		normal[17]! += w5 * qn - w4 * qh;
+		normal[18]! += w2 * qh - w5 * qe;
+		normal[19]! += w4 * qe - w2 * qn;
+		normal[6]! += w0 * qe + w1 * qn + w2 * qh;
+		normal[13]! += w1 * qe + w3 * qn + w4 * qh;
+		normal[20]! += w2 * qe + w4 * qn + w5 * qh;
+		// Kᵀ·Σ⁻¹·K and the scale.
+		normal[24]! += w5 * nn - 2 * w4 * nh + w3 * hh;
+		normal[25]! += w2 * nh - w5 * en - w1 * hh + w4 * eh;
+		normal[26]! += w4 * en - w2 * nn - w3 * eh + w1 * nh;
+		normal[32]! += w0 * hh - 2 * w2 * eh + w5 * ee;
+		normal[33]! += w1 * eh - w0 * nh - w4 * ee + w2 * en;
+		normal[40]! += w3 * ee - 2 * w1 * en + w0 * nn;
+		normal[27]! += w2 * en + w4 * nn + w5 * nh - w1 * eh - w3 * nh - w4 * hh;
+		normal[34]! += w0 * eh + w1 * nh + w2 * hh - w2 * ee - w4 * en - w5 * eh;
+		normal[41]! += w1 * ee + w3 * en + w4 * eh - w0 * en - w1 * nn - w2 * nh;
+		normal[48]! += w0 * ee + w3 * nn + w5 * hh + 2 * (w1 * en + w2 * eh + w4 * nh);
 	}
-	normal[0] = t00;
-	normal[1] = t01;
-	normal[2] = t02;
-	normal[3] = c00;
-	normal[4] = c01;
-	normal[5] = c02;
-	normal[6] = s0;
-	normal[8] = t11;
-	normal[9] = t12;
-	normal[10] = c10;
-	normal[11] = c11;
-	normal[12] = c12;
-	normal[13] = s1;
-	normal[16] = t22;
-	normal[17] = c20;
-	normal[18] = c21;
-	normal[19] = c22;
-	normal[20] = s2;
-	normal[24] = o00;
-	normal[25] = o01;
-	normal[26] = o02;
-	normal[27] = s3;
-	normal[32] = o11;
-	normal[33] = o12;
-	normal[34] = s4;
-	normal[40] = o22;
-	normal[41] = s5;
-	normal[48] = s6;
 	for (let row = 1; row < 7; row++) for (let column = 0; column < row; column++) normal[7 * row + column] = normal[7 * column + row]!;
-	gradient[0] = g0;
-	gradient[1] = g1;
-	gradient[2] = g2;
-	gradient[3] = g3;
-	gradient[4] = g4;
-	gradient[5] = g5;
-	gradient[6] = g6;
 	equations.objective = objective;
 	return sound && Number.isFinite(objective);
+}
+
+/** Gives every pair the Σ and Σ⁻¹ of its group, as formed last. */
+export function fillCovariances(observations: FitObservations, equations: NormalEquations): void {
+	const { order, ends } = sigmaGroupsOf(observations);
+	const { groupInverse, groupCovariance } = equations;
+	let place = 0;
+	for (let group = 0; group < ends.length; group++) {
+		for (; place < ends[group]!; place++) {
+			const at = 6 * order[place]!;
+			for (let k = 0; k < 6; k++) {
+				equations.inverse[at + k] = groupInverse[6 * group + k]!;
+				equations.covariance[at + k] = groupCovariance[6 * group + k]!;
+			}
+		}
+	}
+}
+
+/** Σ, Σ⁻¹ and the carried covariance of pair i, at the pose in `matrix`. False where Σ is singular. */
+function fillSigma({ surveyVariance, controlVariance, known, sigmaGiven }: FitObservations, i: number): boolean {
+	carried.fill(0);
+	if (sigmaGiven) {
+		for (let k = 0; k < 3; k++) {
+			const variance = surveyVariance[3 * i + k]!;
+			const e = matrix[k]!;
+			const n = matrix[3 + k]!;
+			const h = matrix[6 + k]!;
+			carried[0]! += variance * e * e;
+			carried[1]! += variance * e * n;
+			carried[2]! += variance * e * h;
+			carried[3]! += variance * n * n;
+			carried[4]! += variance * n * h;
+			carried[5]! += variance * h * h;
+		}
+	}
+	const a = carried[0]! + controlVariance[3 * i]!;
+	const b = carried[1]!;
+	const c = carried[2]!;
+	const d = carried[3]! + controlVariance[3 * i + 1]!;
+	const e = carried[4]!;
+	const f = carried[5]! + controlVariance[3 * i + 2]!;
+	covariance[0] = a;
+	covariance[1] = b;
+	covariance[2] = c;
+	covariance[3] = d;
+	covariance[4] = e;
+	covariance[5] = f;
+	inverse.fill(0);
+	const knows = known[i]!;
+	if (knows === KNOWN_ALL) {
+		const k0 = d * f - e * e;
+		const k1 = c * e - b * f;
+		const k2 = b * e - d * c;
+		const determinant = a * k0 + b * k1 + c * k2;
+		const over = 1 / determinant;
+		inverse[0] = k0 * over;
+		inverse[1] = k1 * over;
+		inverse[2] = k2 * over;
+		inverse[3] = (a * f - c * c) * over;
+		inverse[4] = (b * c - a * e) * over;
+		inverse[5] = (a * d - b * b) * over;
+		return determinant > 1e-14 * a * d * f;
+	}
+	if (knows === KNOWN_PLAN) {
+		const determinant = a * d - b * b;
+		inverse[0] = d / determinant;
+		inverse[1] = -b / determinant;
+		inverse[3] = a / determinant;
+		return determinant > 1e-14 * a * d;
+	}
+	inverse[5] = 1 / f;
+	return f > 0;
 }
