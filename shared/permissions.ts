@@ -10,6 +10,8 @@ export const permissions = {
 	'site.see': everybody,
 	'model.see': everybody,
 	'model.write': ['project-engineer'],
+	'checkpoint.write': ['site-engineer'],
+	'mark.write': ['site-engineer', 'project-engineer'],
 	'control.see': everybody,
 	'control.write': ['site-engineer'],
 	'survey.see': everybody,

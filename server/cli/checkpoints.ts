@@ -3,7 +3,8 @@ import { createReadStream } from 'node:fs';
 import { mkdtemp, rm, stat } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import type { Checkpoint, Element, ModelReading } from '#shared/model/model-schema.ts';
+import type { Element, ModelReading } from '#shared/model/model-schema.ts';
+import { writeFieldCsv } from '#shared/model/write-field-csv.ts';
 import { readIfcInChild } from '../features/model/read-ifc-in-child.ts';
 
 type Answer = { exitCode: number; output: unknown };
@@ -67,16 +68,6 @@ export async function readModelFile(
 	}
 }
 
-const csvField = (text: string): string => (/[",\r\n]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text);
-
-/** `mark,easting,northing,height,code` in metres to 0.1 mm, design frame (X, Y, Z), one line a checkpoint. */
-function csvOf(checkpoints: readonly Checkpoint[]): string {
-	const lines = checkpoints.map(({ mark, place, characteristic }) =>
-		[csvField(mark), ...place.map((part) => part.toFixed(4)), characteristic.toUpperCase()].join(','),
-	);
-	return `${['mark,easting,northing,height,code', ...lines].join('\n')}\n`;
-}
-
 /**
  * The command line's `checkpoints`: arguments in, exit code and output out (0 done, 2 the input is refused, 1 a defect). With `--csv` the
  * output is text to print as it stands, else an object to print as JSON. `note` gets progress for standard error. Design frame, metres.
@@ -95,7 +86,7 @@ export async function runCheckpoints(args: readonly string[], note: (text: strin
 	const numbers = new Set(elements.map(({ entityNumber }) => entityNumber));
 	const checkpoints = reading.checkpoints.filter(({ entityNumber }) => numbers.has(entityNumber));
 	for (const finding of reading.findings) note(`${finding.code}: ${finding.message}`);
-	if (asked.isCsv) return { exitCode: 0, output: csvOf(checkpoints) };
+	if (asked.isCsv) return { exitCode: 0, output: writeFieldCsv(checkpoints) };
 	const { schema, unit, metresPerUnit, project, mapConversion, storeys, findings } = reading;
 	return {
 		exitCode: 0,

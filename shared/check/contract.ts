@@ -73,6 +73,8 @@ export const checkDetail = checkHead.extend({
 	elements: z.array(checkElement),
 	/** In checkpoint order. For a contractor only those of its own pours. */
 	deviations: z.array(deviationSchema),
+	/** Checkpoints that were left out before the check, counted by reason; absent where there are none. */
+	leftOut: z.array(z.object({ reason: z.string(), by: z.string(), count: z.number().int() })).optional(),
 });
 export type CheckDetail = z.infer<typeof checkDetail>;
 

@@ -1,9 +1,9 @@
-import { and, asc, eq } from 'drizzle-orm';
+import { and, asc, eq, inArray } from 'drizzle-orm';
 import type { CheckDetail, CheckElement } from '#shared/check/contract.ts';
 import type { Finding } from '#shared/fit/fit-schema.ts';
 import type { Handle } from '../../db/database.ts';
 import { checkpointOf } from '../../db/model-rows.ts';
-import { deviations } from '../../db/schema/check.ts';
+import { type checks, deviations } from '../../db/schema/check.ts';
 import { checkpoints, elements, revisions } from '../../db/schema/model.ts';
 import { pourElements, pours } from '../../db/schema/pour.ts';
 import type { Member } from '../../platform/platform.ts';
@@ -38,6 +38,7 @@ export async function checkDetailOf(db: Handle, member: Member, checkId: string)
 	return {
 		...head,
 		findings: findingsFor(row.check.findings ?? [], companyIds === null ? null : new Set(seen.map(({ mark }) => mark))),
+		...(await leftOutFor(db, row.check, byId)),
 		unmatchedPoints: companyIds === null ? (row.check.unmatchedPoints ?? []) : [],
 		elements: seen
 			.filter(({ id }) => shown.has(id))
@@ -58,6 +59,36 @@ export async function checkDetailOf(db: Handle, member: Member, checkId: string)
 			return deviationOf(deviation, checkpointOf(checkpoint, element));
 		}),
 	};
+}
+
+/** What was left out of the elements that the member sees, counted by reason and person. */
+async function leftOutFor(
+	db: Handle,
+	{ leftOut, revisionId }: typeof checks.$inferSelect,
+	seen: ReadonlyMap<string, unknown>,
+): Promise<Pick<CheckDetail, 'leftOut'>> {
+	if (leftOut === null || leftOut.length === 0) return {};
+	const placed = await db
+		.select({ id: checkpoints.id, elementId: checkpoints.elementId })
+		.from(checkpoints)
+		.where(
+			and(
+				eq(checkpoints.revisionId, revisionId),
+				inArray(
+					checkpoints.id,
+					leftOut.map(({ checkpointId }) => checkpointId),
+				),
+			),
+		);
+	const own = new Set(placed.flatMap(({ id, elementId }) => (seen.has(elementId) ? [id] : [])));
+	const counts = new Map<string, { reason: string; by: string; count: number }>();
+	for (const { checkpointId, reason, by } of leftOut) {
+		if (!own.has(checkpointId)) continue;
+		const key = JSON.stringify([reason, by]);
+		const counted = counts.get(key) ?? { reason, by, count: 0 };
+		counts.set(key, { ...counted, count: counted.count + 1 });
+	}
+	return counts.size === 0 ? {} : { leftOut: [...counts.values()].sort((one, other) => other.count - one.count) };
 }
 
 /** Of all pours, or of those companies'. */

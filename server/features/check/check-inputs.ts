@@ -1,9 +1,11 @@
 import { and, asc, eq, inArray, sql } from 'drizzle-orm';
+import type { LeftOutCheckpoint } from '#shared/model/requirement.ts';
 import { sha256OfJson } from '#shared/record/sha256.ts';
 import type { Handle } from '../../db/database.ts';
+import { users } from '../../db/schema/account.ts';
 import { controlSets } from '../../db/schema/control.ts';
 import { fits } from '../../db/schema/fit.ts';
-import { revisions } from '../../db/schema/model.ts';
+import { addedCheckpoints, checkpointChoices, checkpoints, elementMarks, revisions } from '../../db/schema/model.ts';
 import { setups, surveyPoints, surveys } from '../../db/schema/survey.ts';
 import { sheets } from '../../db/schema/tolerance.ts';
 import { foundOne, Refused } from '../../platform/refuse.ts';
@@ -89,17 +91,48 @@ export async function checkInputs(db: Handle, siteId: string, { revisionId, surv
 			'surveyId',
 		);
 	}
-	return { revision, survey, sheet, withFit };
+	return { revision, survey, sheet, withFit, leftOut: await leftOutOf(db, revision), said: await saidOf(db, revision.modelId) };
+}
+
+/** What persons left out of this revision, in a fixed order: not asked for in the check. */
+async function leftOutOf(db: Handle, { id, modelId }: typeof revisions.$inferSelect): Promise<LeftOutCheckpoint[]> {
+	const rows = await db
+		.select({ checkpointId: checkpointChoices.checkpointId, reason: checkpointChoices.reason, by: users.name })
+		.from(checkpointChoices)
+		.innerJoin(checkpoints, and(eq(checkpoints.id, checkpointChoices.checkpointId), eq(checkpoints.revisionId, id)))
+		.innerJoin(users, eq(users.id, checkpointChoices.chosenBy))
+		.where(and(eq(checkpointChoices.modelId, modelId), eq(checkpointChoices.requirement, 'left-out')))
+		.orderBy(asc(checkpointChoices.checkpointId));
+	return rows.map(({ checkpointId, reason, by }) => ({ checkpointId, reason: reason ?? '', by }));
+}
+
+/** Names and checkpoints that persons gave the model: a check meets points by them, and the model's file does not have them. */
+async function saidOf(db: Handle, modelId: string): Promise<{ marks: unknown[]; added: unknown[] }> {
+	const marks = await db
+		.select({ globalId: elementMarks.globalId, mark: elementMarks.mark })
+		.from(elementMarks)
+		.where(eq(elementMarks.modelId, modelId))
+		.orderBy(asc(elementMarks.globalId));
+	const added = await db
+		.select({ id: addedCheckpoints.id, xM: addedCheckpoints.xM, yM: addedCheckpoints.yM, zM: addedCheckpoints.zM })
+		.from(addedCheckpoints)
+		.where(eq(addedCheckpoints.modelId, modelId))
+		.orderBy(asc(addedCheckpoints.id));
+	return { marks, added };
 }
 
 /** SHA-256 over all that a check rests on, each by its hash: the same inputs and engine give the same result. */
-export function checkInputsSha256({ revision, survey, sheet, withFit }: CheckInputs): Promise<string> {
+export function checkInputsSha256({ revision, survey, sheet, withFit, leftOut, said }: CheckInputs): Promise<string> {
 	return sha256OfJson({
 		engineVersion,
 		modelFileSha256: revision.fileSha256,
 		surveyFileSha256: survey.fileSha256,
 		stage: survey.stage,
 		sheetSha256: sheet.contentSha256,
+		// Left away where nobody said anything, so that the hashes of checks without them stay what they were.
+		...(leftOut.length > 0 ? { leftOut: leftOut.map(({ checkpointId }) => checkpointId) } : {}),
+		...(said.marks.length > 0 ? { marks: said.marks } : {}),
+		...(said.added.length > 0 ? { addedCheckpoints: said.added } : {}),
 		setups: withFit.map(({ setup, fit, controlFileSha256 }) => ({
 			name: setup.name,
 			commonMm: setup.commonMm,

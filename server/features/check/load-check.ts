@@ -62,6 +62,8 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 		.from(checkpoints)
 		.where(and(eq(checkpoints.revisionId, check.revisionId)))
 		.orderBy(asc(checkpoints.position));
+	const leftOut = new Set(check.leftOut?.map(({ checkpointId }) => checkpointId));
+	const asked = checkpointRows.filter(({ id }) => !leftOut.has(id));
 	return {
 		input: {
 			elements: read.map(({ elementId, class: ifcClass, name, tag, storey, mark, title, sizesM }) => ({
@@ -74,7 +76,7 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 				title,
 				sizesM,
 			})),
-			checkpoints: checkpointRows.map((row) => checkpointOf(row, foundOne([byId.get(row.elementId)].filter((one) => one !== undefined)))),
+			checkpoints: asked.map((row) => checkpointOf(row, foundOne([byId.get(row.elementId)].filter((one) => one !== undefined)))),
 			setups: carriedBy.map(({ setup, result }) => ({
 				id: setup.id,
 				name: setup.name,

@@ -20,6 +20,8 @@ export async function runCheck(platform: Platform, member: Member, asked: AskedC
 		await lockSite(tx, siteId);
 		const inputs = await checkInputs(tx, siteId, asked);
 		if (fitsOf(inputs) !== fitsOf(seen)) throw new Conflict('Another fit was adopted a moment ago. Look again, then check.');
+		if (JSON.stringify([inputs.leftOut, inputs.said]) !== JSON.stringify([seen.leftOut, seen.said]))
+			throw new Conflict('Someone chose, named or placed checkpoints a moment ago. Look again, then check.');
 		const [row] = await tx
 			.select({ highest: max(checks.number) })
 			.from(checks)
@@ -34,6 +36,7 @@ export async function runCheck(platform: Platform, member: Member, asked: AskedC
 			stage: inputs.survey.stage,
 			state: 'computing',
 			jobId,
+			leftOut: inputs.leftOut.length > 0 ? inputs.leftOut : null,
 			inputsSha256,
 			engineVersion,
 			madeBy: member.userId,

@@ -1,11 +1,15 @@
 import { and, asc, desc, eq, sql } from 'drizzle-orm';
+import { alias } from 'drizzle-orm/pg-core';
 import type { z } from 'zod';
 import type { modelSummary, RevisionDetail, RevisionSummary, StoredElement, storedCheckpoint } from '#shared/model/contract.ts';
 import type { Handle } from '../../db/database.ts';
 import { checkpointOf, elementOf } from '../../db/model-rows.ts';
 import { users } from '../../db/schema/account.ts';
-import { checkpoints, elements, models, revisions } from '../../db/schema/model.ts';
+import { addedCheckpoints, checkpointChoices, checkpoints, elements, models, revisions } from '../../db/schema/model.ts';
 import { foundOne, NotFound, Refused } from '../../platform/refuse.ts';
+
+const chooser = alias(users, 'chooser');
+const adder = alias(users, 'adder');
 
 const summaryColumns = {
 	revisionId: revisions.id,
@@ -86,12 +90,29 @@ export async function elementsOf(db: Handle, siteId: string, revisionId: string)
 export async function checkpointsOf(db: Handle, siteId: string, revisionId: string): Promise<z.infer<typeof storedCheckpoint>[]> {
 	await expectRevision(db, siteId, revisionId);
 	const rows = await db
-		.select({ checkpoint: checkpoints, entityNumber: elements.entityNumber, globalId: elements.globalId })
+		.select({
+			checkpoint: checkpoints,
+			element: { entityNumber: elements.entityNumber, globalId: elements.globalId },
+			choice: checkpointChoices,
+			chosenBy: chooser.name,
+			added: { reason: addedCheckpoints.reason, at: addedCheckpoints.addedAt },
+			addedBy: adder.name,
+		})
 		.from(checkpoints)
 		.innerJoin(elements, eq(elements.id, checkpoints.elementId))
+		.innerJoin(revisions, eq(revisions.id, checkpoints.revisionId))
+		.leftJoin(checkpointChoices, and(eq(checkpointChoices.modelId, revisions.modelId), eq(checkpointChoices.checkpointId, checkpoints.id)))
+		.leftJoin(chooser, eq(chooser.id, checkpointChoices.chosenBy))
+		.leftJoin(addedCheckpoints, and(eq(addedCheckpoints.modelId, revisions.modelId), eq(addedCheckpoints.id, checkpoints.id)))
+		.leftJoin(adder, eq(adder.id, addedCheckpoints.addedBy))
 		.where(eq(checkpoints.revisionId, revisionId))
 		.orderBy(asc(checkpoints.position));
-	return rows.map(({ checkpoint, ...element }) => checkpointOf(checkpoint, element));
+	return rows.map(({ checkpoint, element, choice, chosenBy, added, addedBy }) => ({
+		...checkpointOf(checkpoint, element),
+		requirement: choice?.requirement ?? 'required',
+		choice: choice === null ? null : { by: chosenBy ?? '', at: choice.chosenAt, reason: choice.reason },
+		added: added === null ? null : { by: addedBy ?? '', at: added.at, reason: added.reason },
+	}));
 }
 
 /** The hash under which a revision's picture is kept; NOT_FOUND where it has none. */

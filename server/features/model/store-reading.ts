@@ -6,6 +6,8 @@ import { checkpoints, elements, revisions } from '../../db/schema/model.ts';
 import { storable } from '../../db/storable-text.ts';
 import type { KeptFile } from '../../platform/platform.ts';
 import { rememberFile } from '../../platform/uploads.ts';
+import { withSayings } from './kept-sayings.ts';
+import { lockModel } from './newest-revision.ts';
 
 /**
  * Stores what was read of a revision, whole or not at all. False where the revision is no longer being read: the job ran twice, or
@@ -18,8 +20,15 @@ export async function storeReading(
 	picture: KeptFile | null,
 	{ newId, now }: { newId: () => string; now: () => Date },
 ): Promise<boolean> {
+	const [revision] = await tx
+		.select({ modelId: revisions.modelId })
+		.from(revisions)
+		.where(and(eq(revisions.id, revisionId), eq(revisions.state, 'reading')));
+	if (revision === undefined) return false;
+	await lockModel(tx, revision.modelId);
 	if (picture !== null) await rememberFile(tx, picture, now());
-	const { elements: readElements, checkpoints: readCheckpoints, ...head } = storable(reading);
+	const known = await withSayings(tx, revision.modelId, storable(reading));
+	const { elements: readElements, checkpoints: readCheckpoints, ...head } = known;
 	const ready = await tx
 		.update(revisions)
 		.set({ state: 'ready', reason: null, reading: head, pictureSha256: picture?.sha256 ?? null })
