@@ -3,6 +3,7 @@ import { checkContract } from './check/contract.ts';
 import { controlContract } from './control/contract.ts';
 import { fitContract } from './fit/contract.ts';
 import { jobContract } from './job/contract.ts';
+import { mailContract } from './mail/contract.ts';
 import { modelContract } from './model/contract.ts';
 import { pourContract } from './pour/contract.ts';
 import { siteContract } from './site/contract.ts';
@@ -13,6 +14,7 @@ import { toleranceContract } from './tolerance/contract.ts';
 export const contract = {
 	account: accountContract,
 	site: siteContract,
+	mail: mailContract,
 	job: jobContract,
 	model: modelContract,
 	control: controlContract,

@@ -1,5 +1,6 @@
 import { resolve } from 'node:path';
 import { z } from 'zod';
+import type { MailSetting } from '../platform/mail.ts';
 
 /** What the environment says, read once. A wrong value stops the start with a sentence. */
 export interface Configuration {
@@ -15,6 +16,9 @@ export interface Configuration {
 	largestUploadBytes: number;
 	/** Fill an empty database with the invented demo site. */
 	isDemoWished: boolean;
+	mail: MailSetting;
+	/** What links in mails begin with; null: the address we listen on. */
+	publicUrl: string | null;
 	/** The client by Vite's middleware instead of the built files. */
 	isDevelopment: boolean;
 }
@@ -41,6 +45,29 @@ const variables = {
 	COOKIE_SECURE: { schema: onOff.optional(), says: 'on or off' },
 	TRUST_PROXY_HOPS: { schema: whole(0, 10).default(0), says: 'a number of proxies, 0 to 10' },
 	MAX_UPLOAD_MB: { schema: whole(1, 4000).default(400), says: 'megabytes, 1 to 4000' },
+	RESEND_API_KEY: { schema: z.string().min(8).optional(), says: 'a key of the mail service' },
+	MAIL_URL: {
+		schema: z
+			.string()
+			.regex(/^smtps?:\/\//)
+			.optional(),
+		says: 'an address that begins with smtp:// or smtps://',
+	},
+	MAIL_FROM: {
+		schema: z
+			.string()
+			.regex(/^[^\r\n@]*[^\s@<>]+@[^\s@<>]+>?$/)
+			.optional(),
+		says: 'a sender, like Site office <site@your-firm.example>',
+	},
+	PUBLIC_URL: {
+		schema: z
+			.string()
+			.regex(/^https?:\/\/[^/?#]+\/?$/)
+			.transform((url) => url.replace(/\/$/, ''))
+			.optional(),
+		says: 'the address people reach this server at, like https://board.your-firm.example',
+	},
 	DEMO: { schema: onOff.default('on'), says: 'on or off' },
 };
 
@@ -54,6 +81,7 @@ export function readConfiguration(environment: Record<string, string | undefined
 	};
 	const host = read('HOST');
 	const cookieSecure = read('COOKIE_SECURE');
+	const isDemoWished = read('DEMO') === 'on';
 	return {
 		port: read('PORT'),
 		host,
@@ -62,7 +90,25 @@ export function readConfiguration(environment: Record<string, string | undefined
 		isCookieSecure: cookieSecure === undefined ? !isLoopback(host) : cookieSecure === 'on',
 		proxyHops: read('TRUST_PROXY_HOPS'),
 		largestUploadBytes: read('MAX_UPLOAD_MB') * 1_000_000,
-		isDemoWished: read('DEMO') === 'on',
+		isDemoWished,
+		mail: mailSetting({ apiKey: read('RESEND_API_KEY'), url: read('MAIL_URL'), from: read('MAIL_FROM'), isDemoWished }),
+		publicUrl: read('PUBLIC_URL') ?? null,
 		isDevelopment: programArguments.includes('--dev'),
 	};
+}
+
+interface MailVariables {
+	apiKey: string | undefined;
+	url: string | undefined;
+	from: string | undefined;
+	isDemoWished: boolean;
+}
+
+/** A real service where one is named. Else the demo has a fake with a mailbox that anybody can read; without the demo there is none. */
+function mailSetting({ apiKey, url, from, isDemoWished }: MailVariables): MailSetting {
+	if (apiKey !== undefined && url !== undefined)
+		throw new Error('RESEND_API_KEY and MAIL_URL are both set; mail goes one way: leave one out.');
+	if (apiKey === undefined && url === undefined) return { kind: isDemoWished ? 'fake' : 'none' };
+	if (from === undefined) throw new Error('MAIL_FROM is not set; with a real mail service it must say the sender of our mails.');
+	return apiKey === undefined ? { kind: 'smtp', url: url ?? '', from } : { kind: 'resend', apiKey, from };
 }

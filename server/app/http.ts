@@ -10,6 +10,7 @@ import { countTries } from '../platform/tries.ts';
 import type { UploadServer } from '../platform/upload-server.ts';
 import { errorPage, notFoundPage } from './error-page.ts';
 import { securityHeaders } from './headers.ts';
+import { mailAsHtml } from './mail-as-html.ts';
 import type { router } from './router.ts';
 
 export const uploadsPath = '/api/uploads';
@@ -44,6 +45,7 @@ export function httpApp({ platform, sessions, uploads, router, client, isReady, 
 		await uploads.handle(request, response, await recognise(sessions, request, response));
 	});
 	app.use('/rpc', calls({ platform, sessions, router }));
+	app.get('/api/mailbox/:keptId', mailAsHtml(platform));
 	app.use(['/rpc', '/api'], notFoundPage);
 	app.use(client);
 	app.use(notFoundPage);

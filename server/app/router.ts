@@ -5,6 +5,7 @@ import { checkRoutes } from '../features/check/routes.ts';
 import { controlRoutes } from '../features/control/routes.ts';
 import { fitRoutes } from '../features/fit/routes.ts';
 import { jobRoutes } from '../features/job/routes.ts';
+import { mailRoutes } from '../features/mail/routes.ts';
 import { modelRoutes } from '../features/model/routes.ts';
 import { pourRoutes } from '../features/pour/routes.ts';
 import { siteRoutes } from '../features/site/routes.ts';
@@ -19,6 +20,7 @@ import { storeSurveyRoute } from '../workflows/store-survey.ts';
 export const router = {
 	account: accountRoutes,
 	site: { ...siteRoutes, found: foundSiteRoute },
+	mail: mailRoutes,
 	job: jobRoutes,
 	model: modelRoutes,
 	control: { ...controlRoutes, store: storeControlRoute },

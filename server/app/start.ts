@@ -4,7 +4,9 @@ import { join } from 'node:path';
 import { connectDatabase } from '../db/connect.ts';
 import type { Connection } from '../db/connection.ts';
 import { diskFiles } from '../platform/disk-files.ts';
+import { type OpenMail, openMail } from '../platform/open-mail.ts';
 import type { JobRunner, Platform } from '../platform/platform.ts';
+import { openPostman, type Postman } from '../platform/postman.ts';
 import { openQueue, type Queue } from '../platform/queue.ts';
 import { openSessions } from '../platform/session.ts';
 import { openUploads } from '../platform/upload-server.ts';
@@ -44,20 +46,25 @@ export async function startOn(
 	stop?: AbortSignal,
 ): Promise<RunningServer> {
 	const queue = openQueue(connection, runners);
+	const mail = await openMail(configuration.mail, join(configuration.dataDir, 'mailbox'));
+	let address = '';
 	const platform: Platform = {
 		db: connection.db,
 		transaction: queue.transaction,
 		files: diskFiles(join(configuration.dataDir, 'files')),
 		uploadFolder: join(configuration.dataDir, 'uploads'),
 		jobs: queue.jobs,
+		mail: { isOn: mail.service !== null, mailbox: mail.mailbox },
+		publicUrl: () => configuration.publicUrl ?? address,
 		now: () => new Date(),
 		newId: randomUUID,
 	};
 	const sessions = openSessions({ db: platform.db, isSecure: configuration.isCookieSecure, now: platform.now });
+	const postman = openPostman({ db: platform.db, service: mail.service, now: platform.now });
 	const server = createServer({ requestTimeout: requestTimeoutMs });
 	let closeClient = async () => {};
 	let isReady = false;
-	const close = () => closeAll(server, closeClient, queue, connection);
+	const close = () => closeAll(server, closeClient, { postman, mail }, queue, connection);
 	try {
 		const uploads = openUploads({ platform, path: uploadsPath, largestBytes: configuration.largestUploadBytes });
 		await sessions.deleteExpired();
@@ -66,8 +73,9 @@ export async function startOn(
 		closeClient = client.close;
 		const parts = { platform, sessions, uploads, router, client: client.handler, settings: configuration, isReady: () => isReady };
 		server.on('request', httpApp(parts));
-		const address = await listen(server, configuration);
+		address = await listen(server, configuration);
 		await queue.start(platform);
+		postman.start();
 		const demo = configuration.isDemoWished && !stop?.aborted ? await demoOn(platform) : null;
 		isReady = true;
 		return { address, platform, demo, close };
@@ -77,10 +85,18 @@ export async function startOn(
 	}
 }
 
-async function closeAll(server: Server, closeClient: () => Promise<void>, queue: Queue, connection: Connection): Promise<void> {
+async function closeAll(
+	server: Server,
+	closeClient: () => Promise<void>,
+	{ postman, mail }: { postman: Postman; mail: OpenMail },
+	queue: Queue,
+	connection: Connection,
+): Promise<void> {
 	server.close();
 	server.closeAllConnections();
 	await closeClient();
+	await postman.stop();
+	await mail.close();
 	await queue.stop();
 	await connection.close();
 	await queue.abandon();

@@ -30,6 +30,7 @@ export const routes: RouteObject[] = [
 		hydrateFallbackElement: <LoadingPage />,
 		children: [
 			{ path: '/sign-in', lazy: page(() => import('#src/pages/sign-in/sign-in-page.tsx')) },
+			{ path: '/mailbox', lazy: page(() => import('#src/pages/mailbox/mailbox-page.tsx')) },
 			{
 				element: <Gate />,
 				children: [

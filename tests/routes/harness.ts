@@ -51,6 +51,8 @@ export async function openTestServer(
 		proxyHops: 0,
 		largestUploadBytes: 5_000_000,
 		isDemoWished: false,
+		mail: { kind: 'fake' },
+		publicUrl: null,
 		isDevelopment: false,
 		...settings,
 	};

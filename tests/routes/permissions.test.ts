@@ -17,6 +17,7 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'account.me': 'anybody',
 	'account.signIn': 'anybody',
 	'account.signOut': 'signed in',
+	'mail.mailbox': 'anybody',
 	'site.list': 'signed in',
 	'site.found': 'signed in',
 	'site.get': all,
