@@ -2,6 +2,7 @@ import type { Adjustment } from './adjust.ts';
 import { designRows } from './design-rows.ts';
 import type { FitObservations } from './fit-observations.ts';
 import { fullCofactor } from './pair-reliability.ts';
+import { sigmaGroupsOf } from './sigma-groups.ts';
 
 /**
  * @param values the parameters' estimates
@@ -25,6 +26,7 @@ export function addParameters(
 	columns: readonly Float64Array[],
 ): AddedParameters | null {
 	const { equations } = adjustment;
+	const { groupOf } = sigmaGroupsOf(observations);
 	const cofactor = fullCofactor(adjustment, observations);
 	const size = columns.length;
 	const gain = columns.map(() => 0);
@@ -33,7 +35,7 @@ export function addParameters(
 	for (let i = 0; i < observations.count; i++) {
 		const rows = designRows(equations.adjusted[3 * i]!, equations.adjusted[3 * i + 1]!, equations.adjusted[3 * i + 2]!);
 		columns.forEach((column, a) => {
-			const weighted = weigh(equations.inverse, i, column);
+			const weighted = weigh(equations.inverse, 6 * groupOf[i]!, column, i);
 			for (let k = 0; k < 3; k++) {
 				gain[a]! += weighted[k]! * equations.residual[3 * i + k]!;
 				for (let p = 0; p < 7; p++) mixed[a]![p]! += rows[7 * k + p]! * weighted[k]!;
@@ -60,8 +62,7 @@ export function addParameters(
 	return { values, covariance, drop: values[0]! * gain[0]! + values[1]! * gain[1]! };
 }
 
-function weigh(inverse: Float64Array, i: number, column: Float64Array): [number, number, number] {
-	const at = 6 * i;
+function weigh(inverse: Float64Array, at: number, column: Float64Array, i: number): [number, number, number] {
 	const x = column[3 * i]!;
 	const y = column[3 * i + 1]!;
 	const z = column[3 * i + 2]!;

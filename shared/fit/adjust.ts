@@ -2,7 +2,7 @@ import { invertPositiveDefinite } from '#shared/geometry/cholesky.ts';
 import type { FitObservations } from './fit-observations.ts';
 import { clonePose, copyPose, type FitPose, movePose, newPose } from './fit-pose.ts';
 import { fitUnknowns } from './least-pairs.ts';
-import { fillCovariances, formNormalEquations, type NormalEquations, newNormalEquations } from './normal-equations.ts';
+import { formNormalEquations, type NormalEquations, newNormalEquations } from './normal-equations.ts';
 
 /** Plain steps before Newton's take over: sound surveys need three to six. */
 const PLAIN_STEPS = 12;
@@ -67,7 +67,7 @@ export function adjust(
 	let [equations, trial] = space.equations;
 	let [pose, moved] = space.poses;
 	copyPose(start, pose);
-	const cofactor = space.cofactor.length === size * size ? space.cofactor : space.cofactor.subarray(0, size * size);
+	const cofactor = size === 7 ? space.cofactor : space.cofactor.subarray(0, size * size);
 	let state: Adjustment['state'] = 'stalled';
 	let iterations = 0;
 	if (!formNormalEquations(observations, pose, equations)) return { pose, equations, cofactor, iterations, state: 'sigma' };
@@ -83,7 +83,7 @@ export function adjust(
 			}
 			isCurrent = true;
 		}
-		change.fill(0);
+		for (let k = 0; k < 7; k++) change[k] = 0;
 		const newton = iterations >= PLAIN_STEPS && newtonStep(observations, pose, equations, unknowns, span, change);
 		if (!newton) solveStep(cofactor, equations.gradient, unknowns, change);
 		let step = stepLength(change, span);
@@ -96,8 +96,12 @@ export function adjust(
 			copyPose(pose, moved);
 			movePose(moved, change);
 			if (formNormalEquations(observations, moved, trial) && trial.objective <= equations.objective * (1 + 1e-13) + 1e-300) {
-				[pose, moved] = [moved, pose];
-				[equations, trial] = [trial, equations];
+				const before = pose;
+				pose = moved;
+				moved = before;
+				const formed = trial;
+				trial = equations;
+				equations = formed;
 				isCurrent = false;
 				isKept = iterations === 0 && step < SMALL_STEP;
 				accepted = true;
@@ -115,7 +119,6 @@ export function adjust(
 	}
 	// Q belongs to the pose that is returned.
 	if (!isCurrent && state !== 'singular' && !cofactorOf(equations, unknowns, cofactor)) state = 'singular';
-	fillCovariances(observations, equations);
 	return { pose, equations, cofactor, iterations, state };
 }
 
@@ -174,7 +177,8 @@ function newtonStep(
 
 function stepLength(change: Float64Array, span: number): number {
 	let longest = 0;
-	for (let k = 0; k < 7; k++) longest = Math.max(longest, Math.abs(change[k]!) / (k < 3 ? span : 1));
+	for (let k = 0; k < 3; k++) longest = Math.max(longest, Math.abs(change[k]!) / span);
+	for (let k = 3; k < 7; k++) longest = Math.max(longest, Math.abs(change[k]!));
 	return longest;
 }
 

@@ -10,7 +10,8 @@ import { type FitObservations, observationCount, observationsOf } from './fit-ob
 import { poseMatrix } from './fit-pose.ts';
 import type { FitInput, FitOutcome, FitPair, FitPairResult, FitResult } from './fit-schema.ts';
 import { fitUnknowns } from './least-pairs.ts';
-import { leaveOneOut, misfitOf, type PartialResidual } from './leave-one-out.ts';
+import { fillLeaveOneOut, misfitOf, type PartialResidual } from './leave-one-out.ts';
+import { fillPairFigures, newPairFigures } from './pair-figures.ts';
 import { fullCofactor, NORMAL_CRITICAL, PAIR_SIGNIFICANCE, type PairReliability, pairReliability } from './pair-reliability.ts';
 import { solveFit } from './solve-fit.ts';
 
@@ -64,12 +65,12 @@ function describe(input: FitInput, inFit: readonly FitPair[], observations: FitO
 	const cofactor = fullCofactor(adjustment, observations);
 	const reliability = inFit.map((_, i) => pairReliability(observations, adjustment, cofactor, i));
 	const places = new Map(inFit.map((pair, i) => [pair, i]));
-	const withoutOne = leaveOneOut(observations, adjustment, reliability);
+	const withoutOne = misfitsWithoutOne(observations, adjustment);
 	base.pairs = input.pairs.map((pair) => {
 		const i = places.get(pair) ?? -1;
 		return i < 0
 			? heldBackResult(input, pair, base)
-			: pairResult(pair, i, observations, adjustment, reliability[i]!, withoutOne[i]!, varianceFactor, redundancy);
+			: pairResult(pair, i, observations, adjustment, reliability[i]!, withoutOne(i), varianceFactor, redundancy);
 	});
 	base.carried = (input.carry ?? []).map((point) => {
 		const matrix = scaledDifference(observations, adjustment, point.survey);
@@ -81,6 +82,21 @@ function describe(input: FitInput, inFit: readonly FitPair[], observations: FitO
 		};
 	});
 	return base;
+}
+
+/** Where a person looks, a refit more costs nothing: so exact, metres. */
+const SHOWN_EXACT_M = 1e-7;
+
+/** The misfit of pair i against a fit of the others; null where they do not determine one, and on an axis that is not known. */
+function misfitsWithoutOne(observations: FitObservations, adjustment: Adjustment): (i: number) => PartialResidual | null {
+	const figures = newPairFigures(observations.count);
+	fillPairFigures(observations, adjustment, figures);
+	const misfits = new Float64Array(3 * observations.count);
+	fillLeaveOneOut(observations, adjustment, figures, misfits, SHOWN_EXACT_M);
+	return (i) => {
+		const misfit = Array.from(misfits.subarray(3 * i, 3 * i + 3), (value) => (Number.isNaN(value) ? null : value));
+		return misfit.every((value) => value === null) ? null : (misfit as PartialResidual);
+	};
 }
 
 function translationOf(observations: FitObservations, { pose }: Adjustment, shift: Vector3): [number, number, number] {

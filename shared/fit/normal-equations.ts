@@ -22,12 +22,9 @@ export interface NormalEquations {
 	/** A pair: r = control − fitted (3), S·R·x̂ (3). Arrays may be longer than the pairs need. */
 	readonly residual: Float64Array;
 	readonly adjusted: Float64Array;
-	/** A pair: Σ⁻¹ as xx, xy, xz, yy, yz, zz (6), Σ likewise (6). Filled by fillCovariances. */
+	/** A group of sigmaGroupsOf: Σ⁻¹ as xx, xy, xz, yy, yz, zz (6), Σ likewise (6). */
 	readonly inverse: Float64Array;
 	readonly covariance: Float64Array;
-	/** The same of each group. */
-	readonly groupInverse: Float64Array;
-	readonly groupCovariance: Float64Array;
 }
 
 export function newNormalEquations(count: number): NormalEquations {
@@ -39,24 +36,22 @@ export function newNormalEquations(count: number): NormalEquations {
 		adjusted: new Float64Array(3 * count),
 		inverse: new Float64Array(6 * count),
 		covariance: new Float64Array(6 * count),
-		groupInverse: new Float64Array(6 * count),
-		groupCovariance: new Float64Array(6 * count),
 	};
 }
 
 const matrix = new Float64Array(9);
 /** Σ of one group, what of it is carried from the survey side, and Σ⁻¹: xx, xy, xz, yy, yz, zz each. */
-const covariance = new Float64Array(6);
+const sigma = new Float64Array(6);
 const carried = new Float64Array(6);
-const inverse = new Float64Array(6);
+const weight = new Float64Array(6);
 
 /**
- * Fills `equations` at `pose`, all but the covariances a pair (fillCovariances). One pass, no small objects.
+ * Fills `equations` at `pose`. One pass, no small objects.
  * @returns false where some Σ is singular or a number overflows
  */
 export function formNormalEquations(observations: FitObservations, pose: FitPose, equations: NormalEquations): boolean {
 	const { survey, control } = observations;
-	const { normal, gradient, residual, adjusted, groupInverse, groupCovariance } = equations;
+	const { normal, gradient, residual, adjusted, inverse, covariance } = equations;
 	const { order, ends } = sigmaGroupsOf(observations);
 	poseMatrix(pose, matrix);
 	const m0 = matrix[0]!;
@@ -71,23 +66,24 @@ export function formNormalEquations(observations: FitObservations, pose: FitPose
 	const shiftE = pose.shift[0]!;
 	const shiftN = pose.shift[1]!;
 	const shiftH = pose.shift[2]!;
-	normal.fill(0);
-	gradient.fill(0);
+	// Plain loops: a call of fill costs as much as ten pairs.
+	for (let k = 0; k < 49; k++) normal[k] = 0;
+	for (let k = 0; k < 7; k++) gradient[k] = 0;
 	let objective = 0;
 	let sound = true;
 	let begin = 0;
 	for (let group = 0; group < ends.length; group++) {
 		const end = ends[group]!;
 		if (!fillSigma(observations, order[begin]!)) sound = false;
-		const w0 = inverse[0]!;
-		const w1 = inverse[1]!;
-		const w2 = inverse[2]!;
-		const w3 = inverse[3]!;
-		const w4 = inverse[4]!;
-		const w5 = inverse[5]!;
+		const w0 = weight[0]!;
+		const w1 = weight[1]!;
+		const w2 = weight[2]!;
+		const w3 = weight[3]!;
+		const w4 = weight[4]!;
+		const w5 = weight[5]!;
 		for (let k = 0; k < 6; k++) {
-			groupInverse[6 * group + k] = inverse[k]!;
-			groupCovariance[6 * group + k] = covariance[k]!;
+			inverse[6 * group + k] = weight[k]!;
+			covariance[6 * group + k] = sigma[k]!;
 		}
 		// S·R·C·(S·R)ᵀ·Σ⁻¹: what of a residual goes to the survey side.
 		const c0 = carried[0]!;
@@ -236,52 +232,49 @@ export function formNormalEquations(observations: FitObservations, pose: FitPose
 	return sound && Number.isFinite(objective);
 }
 
-/** Gives every pair the Σ and Σ⁻¹ of its group, as formed last. */
-export function fillCovariances(observations: FitObservations, equations: NormalEquations): void {
-	const { order, ends } = sigmaGroupsOf(observations);
-	const { groupInverse, groupCovariance } = equations;
-	let place = 0;
-	for (let group = 0; group < ends.length; group++) {
-		for (; place < ends[group]!; place++) {
-			const at = 6 * order[place]!;
-			for (let k = 0; k < 6; k++) {
-				equations.inverse[at + k] = groupInverse[6 * group + k]!;
-				equations.covariance[at + k] = groupCovariance[6 * group + k]!;
-			}
-		}
-	}
-}
-
 /** Σ, Σ⁻¹ and the carried covariance of pair i, at the pose in `matrix`. False where Σ is singular. */
 function fillSigma({ surveyVariance, controlVariance, known, sigmaGiven }: FitObservations, i: number): boolean {
-	carried.fill(0);
+	let ee = 0;
+	let en = 0;
+	let eh = 0;
+	let nn = 0;
+	let nh = 0;
+	let hh = 0;
 	if (sigmaGiven) {
 		for (let k = 0; k < 3; k++) {
 			const variance = surveyVariance[3 * i + k]!;
 			const e = matrix[k]!;
 			const n = matrix[3 + k]!;
 			const h = matrix[6 + k]!;
-			carried[0]! += variance * e * e;
-			carried[1]! += variance * e * n;
-			carried[2]! += variance * e * h;
-			carried[3]! += variance * n * n;
-			carried[4]! += variance * n * h;
-			carried[5]! += variance * h * h;
+			const ve = variance * e;
+			const vn = variance * n;
+			ee += ve * e;
+			en += ve * n;
+			eh += ve * h;
+			nn += vn * n;
+			nh += vn * h;
+			hh += variance * h * h;
 		}
 	}
-	const a = carried[0]! + controlVariance[3 * i]!;
-	const b = carried[1]!;
-	const c = carried[2]!;
-	const d = carried[3]! + controlVariance[3 * i + 1]!;
-	const e = carried[4]!;
-	const f = carried[5]! + controlVariance[3 * i + 2]!;
-	covariance[0] = a;
-	covariance[1] = b;
-	covariance[2] = c;
-	covariance[3] = d;
-	covariance[4] = e;
-	covariance[5] = f;
-	inverse.fill(0);
+	carried[0] = ee;
+	carried[1] = en;
+	carried[2] = eh;
+	carried[3] = nn;
+	carried[4] = nh;
+	carried[5] = hh;
+	const a = ee + controlVariance[3 * i]!;
+	const b = en;
+	const c = eh;
+	const d = nn + controlVariance[3 * i + 1]!;
+	const e = nh;
+	const f = hh + controlVariance[3 * i + 2]!;
+	sigma[0] = a;
+	sigma[1] = b;
+	sigma[2] = c;
+	sigma[3] = d;
+	sigma[4] = e;
+	sigma[5] = f;
+	for (let k = 0; k < 6; k++) weight[k] = 0;
 	const knows = known[i]!;
 	if (knows === KNOWN_ALL) {
 		const k0 = d * f - e * e;
@@ -289,21 +282,21 @@ function fillSigma({ surveyVariance, controlVariance, known, sigmaGiven }: FitOb
 		const k2 = b * e - d * c;
 		const determinant = a * k0 + b * k1 + c * k2;
 		const over = 1 / determinant;
-		inverse[0] = k0 * over;
-		inverse[1] = k1 * over;
-		inverse[2] = k2 * over;
-		inverse[3] = (a * f - c * c) * over;
-		inverse[4] = (b * c - a * e) * over;
-		inverse[5] = (a * d - b * b) * over;
+		weight[0] = k0 * over;
+		weight[1] = k1 * over;
+		weight[2] = k2 * over;
+		weight[3] = (a * f - c * c) * over;
+		weight[4] = (b * c - a * e) * over;
+		weight[5] = (a * d - b * b) * over;
 		return determinant > 1e-14 * a * d * f;
 	}
 	if (knows === KNOWN_PLAN) {
 		const determinant = a * d - b * b;
-		inverse[0] = d / determinant;
-		inverse[1] = -b / determinant;
-		inverse[3] = a / determinant;
+		weight[0] = d / determinant;
+		weight[1] = -b / determinant;
+		weight[3] = a / determinant;
 		return determinant > 1e-14 * a * d;
 	}
-	inverse[5] = 1 / f;
+	weight[5] = 1 / f;
 	return f > 0;
 }

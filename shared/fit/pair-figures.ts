@@ -1,6 +1,7 @@
 import type { Adjustment } from './adjust.ts';
 import { type FitObservations, KNOWN_ALL, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
 import { fitUnknowns } from './least-pairs.ts';
+import { sigmaGroupsOf } from './sigma-groups.ts';
 
 /** An axis with less than this share of its variance left as redundancy counts as none. */
 export const LEAST_REDUNDANCY = 1e-9;
@@ -67,52 +68,80 @@ function fillTerms(kind: FitObservations['kind'], { cofactor: own }: Adjustment)
 	}
 }
 
-function fittedEntry(at: number, e: number, n: number, h: number): number {
-	return (
-		terms[at]! +
-		e * (terms[at + 1]! + e * terms[at + 4]! + n * terms[at + 5]! + h * terms[at + 6]!) +
-		n * (terms[at + 2]! + n * terms[at + 7]! + h * terms[at + 8]!) +
-		h * (terms[at + 3]! + h * terms[at + 9]!)
-	);
-}
-
 /**
  * Figures of all pairs (Baarda 1968; Mikhail & Gracie 1981), A at the adjusted coordinates.
  * @param figures of newPairFigures for at least as many pairs; filled
  */
 export function fillPairFigures(observations: FitObservations, adjustment: Adjustment, figures: PairFigures): void {
 	fillTerms(observations.kind, adjustment);
-	const { count, known } = observations;
+	const { known } = observations;
+	const { order, ends } = sigmaGroupsOf(observations);
 	const { residual, adjusted, inverse, covariance } = adjustment.equations;
 	const { redundancy, standardised, fitted } = figures;
-	for (let i = 0; i < count; i++) {
-		const at = 3 * i;
-		const six = 6 * i;
-		const e = adjusted[at]!;
-		const n = adjusted[at + 1]!;
-		const h = adjusted[at + 2]!;
-		const f0 = fittedEntry(0, e, n, h);
-		const f1 = fittedEntry(10, e, n, h);
-		const f2 = fittedEntry(20, e, n, h);
-		const f3 = fittedEntry(30, e, n, h);
-		const f4 = fittedEntry(40, e, n, h);
-		const f5 = fittedEntry(50, e, n, h);
-		fitted[six] = f0;
-		fitted[six + 1] = f1;
-		fitted[six + 2] = f2;
-		fitted[six + 3] = f3;
-		fitted[six + 4] = f4;
-		fitted[six + 5] = f5;
-		const w1 = inverse[six + 1]!;
-		const w2 = inverse[six + 2]!;
-		const w4 = inverse[six + 4]!;
-		redundancy[at] = 1 - (f0 * inverse[six]! + f1 * w1 + f2 * w2);
-		redundancy[at + 1] = 1 - (f1 * w1 + f3 * inverse[six + 3]! + f4 * w4);
-		redundancy[at + 2] = 1 - (f2 * w2 + f4 * w4 + f5 * inverse[six + 5]!);
-		standardised[at] = standardisedOf(residual[at]!, covariance[six]!, f0);
-		standardised[at + 1] = standardisedOf(residual[at + 1]!, covariance[six + 3]!, f3);
-		standardised[at + 2] = standardisedOf(residual[at + 2]!, covariance[six + 5]!, f5);
-		if (known[i] !== KNOWN_ALL) forgetUnknown(known[i]!, at, redundancy, standardised);
+	let place = 0;
+	for (let group = 0; group < ends.length; group++) {
+		const end = ends[group]!;
+		const own = 6 * group;
+		const w0 = inverse[own]!;
+		const w1 = inverse[own + 1]!;
+		const w2 = inverse[own + 2]!;
+		const w3 = inverse[own + 3]!;
+		const w4 = inverse[own + 4]!;
+		const w5 = inverse[own + 5]!;
+		const varianceE = covariance[own]!;
+		const varianceN = covariance[own + 3]!;
+		const varianceH = covariance[own + 5]!;
+		for (; place < end; place++) {
+			const i = order[place]!;
+			const at = 3 * i;
+			const six = 6 * i;
+			const e = adjusted[at]!;
+			const n = adjusted[at + 1]!;
+			const h = adjusted[at + 2]!;
+			const f0 =
+				terms[0]! +
+				e * (terms[1]! + e * terms[4]! + n * terms[5]! + h * terms[6]!) +
+				n * (terms[2]! + n * terms[7]! + h * terms[8]!) +
+				h * (terms[3]! + h * terms[9]!);
+			const f1 =
+				terms[10]! +
+				e * (terms[11]! + e * terms[14]! + n * terms[15]! + h * terms[16]!) +
+				n * (terms[12]! + n * terms[17]! + h * terms[18]!) +
+				h * (terms[13]! + h * terms[19]!);
+			const f2 =
+				terms[20]! +
+				e * (terms[21]! + e * terms[24]! + n * terms[25]! + h * terms[26]!) +
+				n * (terms[22]! + n * terms[27]! + h * terms[28]!) +
+				h * (terms[23]! + h * terms[29]!);
+			const f3 =
+				terms[30]! +
+				e * (terms[31]! + e * terms[34]! + n * terms[35]! + h * terms[36]!) +
+				n * (terms[32]! + n * terms[37]! + h * terms[38]!) +
+				h * (terms[33]! + h * terms[39]!);
+			const f4 =
+				terms[40]! +
+				e * (terms[41]! + e * terms[44]! + n * terms[45]! + h * terms[46]!) +
+				n * (terms[42]! + n * terms[47]! + h * terms[48]!) +
+				h * (terms[43]! + h * terms[49]!);
+			const f5 =
+				terms[50]! +
+				e * (terms[51]! + e * terms[54]! + n * terms[55]! + h * terms[56]!) +
+				n * (terms[52]! + n * terms[57]! + h * terms[58]!) +
+				h * (terms[53]! + h * terms[59]!);
+			fitted[six] = f0;
+			fitted[six + 1] = f1;
+			fitted[six + 2] = f2;
+			fitted[six + 3] = f3;
+			fitted[six + 4] = f4;
+			fitted[six + 5] = f5;
+			redundancy[at] = 1 - (f0 * w0 + f1 * w1 + f2 * w2);
+			redundancy[at + 1] = 1 - (f1 * w1 + f3 * w3 + f4 * w4);
+			redundancy[at + 2] = 1 - (f2 * w2 + f4 * w4 + f5 * w5);
+			standardised[at] = standardisedOf(residual[at]!, varianceE, f0);
+			standardised[at + 1] = standardisedOf(residual[at + 1]!, varianceN, f3);
+			standardised[at + 2] = standardisedOf(residual[at + 2]!, varianceH, f5);
+			if (known[i] !== KNOWN_ALL) forgetUnknown(known[i]!, at, redundancy, standardised);
+		}
 	}
 }
 

@@ -3,6 +3,7 @@ import type { Adjustment } from './adjust.ts';
 import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
 import { fitUnknowns } from './least-pairs.ts';
 import { LEAST_REDUNDANCY } from './pair-figures.ts';
+import { sigmaGroupsOf } from './sigma-groups.ts';
 
 /** α₀ of the test of one residual, and the power with which a blunder of the smallest size is found (Baarda 1968). */
 export const PAIR_SIGNIFICANCE = 0.001;
@@ -67,9 +68,10 @@ export function pairReliability(
 	i: number,
 ): PairReliability {
 	const { adjusted } = equations;
+	const at = 6 * sigmaGroupsOf(observations).groupOf[i]!;
 	fillDesign(adjusted[3 * i]!, adjusted[3 * i + 1]!, adjusted[3 * i + 2]!);
-	fillSymmetric(inverse, equations.inverse, i);
-	fillSymmetric(covariance, equations.covariance, i);
+	fillSymmetric(inverse, equations.inverse, at);
+	fillSymmetric(covariance, equations.covariance, at);
 	// Q·Aᵀ, 7 × 3.
 	for (let p = 0; p < 7; p++) {
 		for (let k = 0; k < 3; k++) {
@@ -132,9 +134,8 @@ function fillDesign(qe: number, qn: number, qh: number): void {
 	design[20] = qh;
 }
 
-/** xx, xy, xz, yy, yz, zz of pair i as nine numbers, row by row. */
-function fillSymmetric(out: Float64Array, six: Float64Array, i: number): void {
-	const at = 6 * i;
+/** xx, xy, xz, yy, yz, zz from `at` on as nine numbers, row by row. */
+function fillSymmetric(out: Float64Array, six: Float64Array, at: number): void {
 	out[0] = six[at]!;
 	out[1] = out[3] = six[at + 1]!;
 	out[2] = out[6] = six[at + 2]!;

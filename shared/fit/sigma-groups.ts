@@ -9,6 +9,8 @@ export interface SigmaGroups {
 	readonly order: Int32Array;
 	/** Where each group ends in `order`. */
 	readonly ends: Int32Array;
+	/** The group of each pair. */
+	readonly groupOf: Int32Array;
 }
 
 const found = new WeakMap<FitObservations, SigmaGroups>();
@@ -47,7 +49,7 @@ function groupPairs(observations: FitObservations): SigmaGroups {
 	const next = ends.slice();
 	const order = new Int32Array(count);
 	for (let i = count - 1; i >= 0; i--) order[--next[groupOf[i]!]!] = i;
-	return { order, ends };
+	return { order, ends, groupOf };
 }
 
 function isAlike({ surveyVariance, controlVariance, known }: FitObservations, i: number, j: number): boolean {

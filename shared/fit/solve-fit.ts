@@ -5,6 +5,7 @@ import { type FitObservations, observationCount } from './fit-observations.ts';
 import type { FitPose } from './fit-pose.ts';
 import type { FitRefusal } from './fit-schema.ts';
 import { fitUnknowns, isLevelled, isScaled } from './least-pairs.ts';
+import { sigmaGroupsOf } from './sigma-groups.ts';
 import { LEAST_SPREAD, refuseGeometry, spreadOf } from './spread.ts';
 
 export type Solution = { ok: true; adjustment: Adjustment } | { ok: false; refusal: FitRefusal };
@@ -134,7 +135,8 @@ function isDoubtful(observations: FitObservations, { equations }: Adjustment, st
 	const redundancy = observationCount(observations) - fitUnknowns(observations.kind).length;
 	if (equations.objective > redundancy + 6 * Math.sqrt(2 * redundancy) + 12) return true;
 	let variance = 0;
-	for (let at = 0; at < 6 * observations.count; at++) if (equations.covariance[at]! > variance) variance = equations.covariance[at]!;
+	const groups = sigmaGroupsOf(observations).ends.length;
+	for (let at = 0; at < 6 * groups; at++) if (equations.covariance[at]! > variance) variance = equations.covariance[at]!;
 	const least = 20 * Math.sqrt(variance);
 	if (start.leastExtentM > least) return false;
 	const { extents } = spreadOf(observations.control, observations.count, isLevelled(observations.kind));
