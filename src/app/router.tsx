@@ -62,6 +62,14 @@ export const routes: RouteObject[] = [
 								path: 'surveys/:surveyId',
 								word: 'Survey',
 							}),
+							sitePage('plan-survey', 'surveys', () => import('#src/pages/plan-survey/plan-survey-page.tsx'), {
+								path: 'surveys',
+								word: 'Surveys',
+							}),
+							sitePage('stability', 'control', () => import('#src/pages/stability/stability-page.tsx'), {
+								path: 'control',
+								word: 'Control',
+							}),
 							sitePage('check', 'check', () => import('#src/pages/checks/checks-page.tsx')),
 							sitePage('checks/:checkId', 'check', () => import('#src/pages/check/check-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), { path: 'check', word: 'Checks' }),

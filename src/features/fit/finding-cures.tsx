@@ -81,7 +81,7 @@ function Outcome({ before, after, isKnown }: { before: FitWorth; after: FitWorth
 	const factor = (worth: FitWorth) => (worth.varianceFactor === null ? '–' : short(worth.varianceFactor));
 	return (
 		<span className="text-strip text-second">
-			then rms {mm(before.rmsM)} → <b className="text-ink">{mm(after.rmsM)} mm</b>
+			then rms {mm(before.rmsM)} → <b className="text-ink">{mm(after.rmsM)}</b>
 			{before.sigmaGiven && ` · variance factor ${factor(before)} → ${factor(after)}`}
 			{before.worst &&
 				after.worst &&
@@ -91,10 +91,11 @@ function Outcome({ before, after, isKnown }: { before: FitWorth; after: FitWorth
 }
 
 function mm(valueM: number): string {
-	return (valueM * 1000).toFixed(1);
+	return valueM >= 1 ? `${valueM.toFixed(2)} m` : `${(valueM * 1000).toFixed(1)} mm`;
 }
 
 function short(value: number): string {
+	if (value >= 1e5) return 'over 100 000';
 	return value >= 100 ? value.toFixed(0) : value.toFixed(1);
 }
 
@@ -102,6 +103,7 @@ function short(value: number): string {
 function evidenceWords(evidence: Readonly<Record<string, unknown>>): string | null {
 	const figures = Object.entries(evidence).flatMap(([name, value]) => {
 		if (name === 'misfits' && Array.isArray(value)) return value.flatMap(misfitWords);
+		if (name === 'agreeing' && typeof value === 'number') return [`${value} pairs agree`];
 		if (typeof value === 'string') return [`${spaced(name)} ${value}`];
 		if (typeof value !== 'number' || !Number.isFinite(value)) return [];
 		const isMetres = /M$|metres$/i.test(name) && Math.abs(value) < 1;

@@ -13,7 +13,7 @@ export function FitFigures({ fit, inputsSha256 = null }: FitFiguresProps) {
 	const rows: [string, string][] = [
 		['Carries', `${turnWords(fit.rotation)}, shifted ${fit.translation.map((value) => metres(value)).join(', ')} m`],
 		['Scale', fit.scale === 1 ? '1, the instrument’s own' : `${signedNumber((fit.scale - 1) * 1e6, 1)} ppm from 1`],
-		['rms', `${(fit.rms * 1000).toFixed(1)} mm`],
+		['rms', fit.rms >= 1 ? `${fit.rms.toFixed(3)} m` : `${(fit.rms * 1000).toFixed(1)} mm`],
 		['Redundancy', fit.redundancy === 0 ? '0: the residuals prove nothing' : String(fit.redundancy)],
 	];
 	if (fit.varianceFactor !== null && fit.chiSquare)

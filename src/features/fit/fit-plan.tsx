@@ -13,6 +13,8 @@ interface FitPlanProps {
 	outline: PlanExtent | null;
 	chosenName: string | null;
 	onChoose: (name: string) => void;
+	/** Below the picture, where it shows another thing than a fit's residuals. */
+	caption?: string;
 }
 
 const widthPx = 560;
@@ -24,7 +26,7 @@ const arrowPx = 34;
  * The set-up's targets in plan: where they are, which way each misses (arrows to a stated exaggeration), its ellipse at 95 %,
  * and how well the fit is known about them.
  */
-export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose }: FitPlanProps) {
+export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose, caption }: FitPlanProps) {
 	const scene = useMemo(() => sceneOf(pairs, fit, outline), [pairs, fit, outline]);
 	const { toX, toY, metresPerPx, marks, field, exaggeration } = scene;
 	const bar = roundLength(metresPerPx * 90);
@@ -80,7 +82,7 @@ export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose }: Fit
 					return (
 						lowest && (
 							<text key={level.expandedUncertaintyMm} x={lowest[0]} y={lowest[1] - 5} textAnchor="middle" className="fill-ink text-[12px]">
-								±{level.expandedUncertaintyMm}
+								±{level.expandedUncertaintyMm >= 1000 ? `${level.expandedUncertaintyMm / 1000} m` : level.expandedUncertaintyMm}
 							</text>
 						)
 					);
@@ -133,9 +135,11 @@ export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose }: Fit
 				</g>
 			</svg>
 			<figcaption className="border-t border-hair px-4 py-3 text-strip text-second">
-				{known
-					? 'Dotted: the fit alone is known to ± that many mm in plan. Ellipses: the residual’s 95 %. Arrows: where the fit puts the target, from its mark.'
-					: 'How well this fit is known cannot be said: no σ, and no pair to spare.'}
+				{caption
+					? caption
+					: known
+						? 'Dotted: the fit alone is known to ± that many mm in plan. Ellipses: the residual’s 95 %. Arrows: where the fit puts the target, from its mark.'
+						: 'How well this fit is known cannot be said: no σ, and no pair to spare.'}
 			</figcaption>
 		</figure>
 	);

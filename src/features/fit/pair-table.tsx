@@ -154,69 +154,77 @@ const PairRow = memo(function PairRow({ name, figures, shelving, mayPart, scaleM
 		.join(', ');
 	const axis: Axis = figures?.worstAxis ?? 2;
 	const bound = figures?.boundMm[axis] ?? null;
+	const note = [cured, reason].filter(Boolean).join(': ');
 	return (
-		<tr
-			draggable={onMove !== null}
-			onDragStart={(event) => event.dataTransfer.setData('text/plain', name)}
-			className={`border-b border-hair ${isChosen ? 'row-chosen' : ''}`}
-		>
-			<th scope="row" className="h-11 px-3 text-left font-strong">
-				<button
-					type="button"
-					data-pair={name}
-					aria-pressed={isChosen}
-					onClick={() => onChoose(name)}
-					className="min-h-11 w-full text-left pointer-coarse:min-h-12"
-				>
-					{name}
-					{cured && <span className="block text-small font-medium">{cured}</span>}
-					{reason && <span className="block text-small font-normal text-second">{reason}</span>}
-				</button>
-			</th>
-			{figures?.residualMm.map((value, index) => (
-				<td key={axisNames[index]} className={`px-2 text-right ${figures.isBeyond && index === axis ? 'font-strong' : ''}`}>
-					{figure(value)}
+		<>
+			<tr
+				draggable={onMove !== null}
+				onDragStart={(event) => event.dataTransfer.setData('text/plain', name)}
+				className={`${note ? '' : 'border-b border-hair'} ${isChosen ? 'row-chosen' : ''}`}
+			>
+				<th scope="row" className="h-11 px-3 text-left font-strong">
+					<button
+						type="button"
+						data-pair={name}
+						aria-pressed={isChosen}
+						onClick={() => onChoose(name)}
+						className="min-h-11 w-full text-left pointer-coarse:min-h-12"
+					>
+						{name}
+					</button>
+				</th>
+				{figures?.residualMm.map((value, index) => (
+					<td key={axisNames[index]} className={`px-2 text-right ${figures.isBeyond && index === axis ? 'font-strong' : ''}`}>
+						{figure(value)}
+					</td>
+				))}
+				<td className="px-2 max-desk:hidden">
+					{figures && (figures.residualMm[axis] ?? null) !== null && (
+						<span className="flex items-center gap-2">
+							<Rod
+								deviationMm={figures.residualMm[axis]}
+								limitsMm={bound === null ? null : [-bound, bound]}
+								expandedUncertaintyMm={null}
+								scaleMm={scaleMm}
+								glyph={figures.isBeyond ? ((figures.residualMm[axis] ?? 0) >= 0 ? 'proud' : 'shy') : 'within'}
+								sentence={pairSentence(figures)}
+								widthPx={116}
+							/>
+							<span className="text-small text-second">{axisNames[axis].toLowerCase()}</span>
+						</span>
+					)}
 				</td>
-			))}
-			<td className="px-2 max-desk:hidden">
-				{figures && (figures.residualMm[axis] ?? null) !== null && (
-					<span className="flex items-center gap-2">
-						<Rod
-							deviationMm={figures.residualMm[axis]}
-							limitsMm={bound === null ? null : [-bound, bound]}
-							expandedUncertaintyMm={null}
-							scaleMm={scaleMm}
-							glyph={figures.isBeyond ? ((figures.residualMm[axis] ?? 0) >= 0 ? 'proud' : 'shy') : 'within'}
-							sentence={pairSentence(figures)}
-							widthPx={132}
-						/>
-						<span className="text-small text-second">{axisNames[axis].toLowerCase()}</span>
-					</span>
+				<td className="px-2 text-right max-tablet:hidden">{figure(figures?.leftOutMm?.[axis] ?? null)}</td>
+				{onMove && (
+					<td className="px-3">
+						<label>
+							<span className="sr-only">Shelf of {name}</span>
+							<select
+								value={placeKey(place)}
+								onChange={(event) => {
+									const wanted = placeOptions.find((option) => placeKey(option.place) === event.currentTarget.value);
+									if (wanted) onMove(name, wanted.place);
+								}}
+								className="min-h-9 rounded-corner border border-field bg-sheet px-2 text-ink pointer-coarse:min-h-12"
+							>
+								{optionsFor(place, mayPart).map((option) => (
+									<option key={placeKey(option.place)} value={placeKey(option.place)}>
+										{option.label}
+									</option>
+								))}
+							</select>
+						</label>
+					</td>
 				)}
-			</td>
-			<td className="px-2 text-right max-tablet:hidden">{figure(figures?.leftOutMm?.[axis] ?? null)}</td>
-			{onMove && (
-				<td className="px-3">
-					<label>
-						<span className="sr-only">Shelf of {name}</span>
-						<select
-							value={placeKey(place)}
-							onChange={(event) => {
-								const wanted = placeOptions.find((option) => placeKey(option.place) === event.currentTarget.value);
-								if (wanted) onMove(name, wanted.place);
-							}}
-							className="min-h-9 rounded-corner border border-field bg-sheet px-2 text-ink pointer-coarse:min-h-12"
-						>
-							{optionsFor(place, mayPart).map((option) => (
-								<option key={placeKey(option.place)} value={placeKey(option.place)}>
-									{option.label}
-								</option>
-							))}
-						</select>
-					</label>
-				</td>
+			</tr>
+			{note && (
+				<tr className="border-b border-hair">
+					<td colSpan={onMove ? 7 : 6} className="px-3 pb-2.5 text-small text-second">
+						{note}
+					</td>
+				</tr>
 			)}
-		</tr>
+		</>
 	);
 });
 
@@ -233,6 +241,7 @@ function optionsFor(now: PairPlace, mayPart: boolean): readonly { place: PairPla
 
 function figure(valueMm: number | null): ReactNode {
 	if (valueMm === null) return noFigure;
-	const text = signedNumber(valueMm, 1);
+	// Gross mistakes are metres, and a column of millimetres would push the rest of the table away.
+	const text = Math.abs(valueMm) >= 10_000 ? `${signedNumber(valueMm / 1000, 1)} m` : signedNumber(valueMm, 1);
 	return Number(valueMm.toFixed(1)) > 0 ? `+${text}` : text;
 }

@@ -2,6 +2,7 @@ import { contours } from 'd3-contour';
 import { carryPoint, coverageFactor, fitCovarianceAt, fitInflation } from '#shared/fit/carry-point.ts';
 import type { FitResult } from '#shared/fit/fit-schema.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
+import type { StoredElement } from '#shared/model/contract.ts';
 
 /** A rectangle in plan, design frame, metres. */
 export interface PlanExtent {
@@ -9,6 +10,18 @@ export interface PlanExtent {
 	minN: number;
 	maxE: number;
 	maxN: number;
+}
+
+/** The rectangle about all bodies of a model, design frame; null where none has a body. */
+export function planExtentOf(elements: readonly StoredElement[]): PlanExtent | null {
+	const boxes = elements.flatMap(({ boxM }) => (boxM ? [boxM] : []));
+	if (boxes.length === 0) return null;
+	return {
+		minE: boxes.reduce((least, { min }) => Math.min(least, min[0]), Infinity),
+		minN: boxes.reduce((least, { min }) => Math.min(least, min[1]), Infinity),
+		maxE: boxes.reduce((most, { max }) => Math.max(most, max[0]), -Infinity),
+		maxN: boxes.reduce((most, { max }) => Math.max(most, max[1]), -Infinity),
+	};
 }
 
 /** One level of "known to ±U": its outline encloses what is known better. Closed rings of design E, N. */

@@ -11,7 +11,7 @@ import { useSendFile } from '#src/features/survey/send-file.ts';
 import { useAddressState } from '#src/lib/address-state.ts';
 import { api } from '#src/lib/api.ts';
 import { bytes, counted, isoMoment } from '#src/lib/format.ts';
-import { Button } from '#src/ui/button.tsx';
+import { Button, ButtonLink } from '#src/ui/button.tsx';
 import { Headline } from '#src/ui/headline.tsx';
 import { Notice } from '#src/ui/notice.tsx';
 import { Progress } from '#src/ui/progress.tsx';
@@ -46,9 +46,12 @@ export default function ControlPage() {
 				acts={
 					!isBringing &&
 					sets.length > 0 && (
-						<Button whyNot={mayWrite ? null : 'A site engineer brings control.'} onClick={() => setIsBringing(true)}>
-							Bring newer control
-						</Button>
+						<>
+							<ButtonLink to={`/sites/${siteId}/stability`}>Did a mark move?</ButtonLink>
+							<Button whyNot={mayWrite ? null : 'A site engineer brings control.'} onClick={() => setIsBringing(true)}>
+								Bring newer control
+							</Button>
+						</>
 					)
 				}
 			>

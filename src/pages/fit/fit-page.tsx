@@ -2,7 +2,6 @@ import { useSuspenseQueries, useSuspenseQuery } from '@tanstack/react-query';
 import { type ReactNode, useMemo } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import type { FitDetail, FitSummary } from '#shared/fit/contract.ts';
-import type { StoredElement } from '#shared/model/contract.ts';
 import { mayWith } from '#shared/permissions.ts';
 import type { SetupSummary } from '#shared/survey/contract.ts';
 import { CheckFit } from '#src/features/fit/check-fit.tsx';
@@ -11,7 +10,7 @@ import { kindWords, standingWords } from '#src/features/fit/fit-words.ts';
 import { FitWorkbench } from '#src/features/fit/fit-workbench.tsx';
 import { KeptFit } from '#src/features/fit/kept-fit.tsx';
 import { ReportButton } from '#src/features/fit/report-button.tsx';
-import type { PlanExtent } from '#src/features/fit/uncertainty-field.ts';
+import { planExtentOf } from '#src/features/fit/uncertainty-field.ts';
 import { useAddressState } from '#src/lib/address-state.ts';
 import { api } from '#src/lib/api.ts';
 import { ButtonLink } from '#src/ui/button.tsx';
@@ -190,15 +189,4 @@ function useModelOutline(siteId: string, revisionId: string | null) {
 /** One or none, so that a query is asked only where there is an id. */
 function optional(id: string | null): string[] {
 	return id === null ? [] : [id];
-}
-
-function planExtentOf(elements: readonly StoredElement[]): PlanExtent | null {
-	const boxes = elements.flatMap(({ boxM }) => (boxM ? [boxM] : []));
-	if (boxes.length === 0) return null;
-	return {
-		minE: boxes.reduce((least, { min }) => Math.min(least, min[0]), Infinity),
-		minN: boxes.reduce((least, { min }) => Math.min(least, min[1]), Infinity),
-		maxE: boxes.reduce((most, { max }) => Math.max(most, max[0]), -Infinity),
-		maxN: boxes.reduce((most, { max }) => Math.max(most, max[1]), -Infinity),
-	};
 }

@@ -8,7 +8,7 @@ import { SurveyFormFields } from '#src/features/survey/survey-form.tsx';
 import { SurveyList } from '#src/features/survey/survey-list.tsx';
 import { api } from '#src/lib/api.ts';
 import { bytes, counted, isoMoment } from '#src/lib/format.ts';
-import { Button } from '#src/ui/button.tsx';
+import { Button, ButtonLink } from '#src/ui/button.tsx';
 import { Headline } from '#src/ui/headline.tsx';
 import { Notice } from '#src/ui/notice.tsx';
 import { Progress } from '#src/ui/progress.tsx';
@@ -32,12 +32,14 @@ export default function SurveysPage() {
 			<Headline
 				title="Surveys"
 				acts={
-					!isBringing &&
-					surveys.length > 0 && (
-						<Button weight="act" whyNot={mayWrite ? null : 'A site engineer brings surveys.'} onClick={() => setIsBringing(true)}>
-							Bring a survey
-						</Button>
-					)
+					<>
+						<ButtonLink to={`/sites/${siteId}/plan-survey`}>Before going out</ButtonLink>
+						{!isBringing && surveys.length > 0 && (
+							<Button weight="act" whyNot={mayWrite ? null : 'A site engineer brings surveys.'} onClick={() => setIsBringing(true)}>
+								Bring a survey
+							</Button>
+						)}
+					</>
 				}
 			>
 				{headlineOf(surveys)}
