@@ -1,8 +1,10 @@
 import { chiSquareQuantile } from '#shared/geometry/chi-square.ts';
 import { seededRandom } from '#shared/geometry/seeded-random.ts';
 import { varianceRatioTail } from '#shared/geometry/student-t.ts';
-import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN, pickPairs } from './fit-observations.ts';
+import { agree, distanceAgreement, mostAround } from './distance-agreement.ts';
+import { type FitObservations, KNOWN_ALL, KNOWN_HEIGHT, KNOWN_PLAN, pickPairs } from './fit-observations.ts';
 import { type FitTrial, sidakLevel, tryFit } from './fit-trial.ts';
+import { largestAgreement } from './largest-agreement.ts';
 import { leastPairs } from './least-pairs.ts';
 import { prediction } from './prediction.ts';
 import { quickFit } from './solve-fit.ts';
@@ -13,6 +15,8 @@ const SAMPLES = 2000;
 /** So many of the largest groups are worked out in full: among many pairs the largest few are all but the same. */
 const WORKED_OUT = 24;
 const WORKED_OUT_OF_MANY = 6;
+/** Groups smaller than the largest by more than this are not looked for where distances tell beforehand. */
+const SMALLER_GROUPS = 3;
 
 /** Pairs that agree with one another, and the fit of them alone. `kept` are indices into the observations, rising. */
 export interface Consensus {
@@ -34,7 +38,9 @@ export function consensusGroups(observations: FitObservations): Consensus[] {
 	const subsets = minimalSubsets(observations.count, leastPairs(observations.kind));
 	const factor = observations.sigmaGiven ? 1 : robustVariance(observations, subsets);
 	const limits = [1, 2, 3].map((degrees) => factor * chiSquareQuantile(1 - sidakLevel(observations.count), degrees));
+	const isHopeless = contradiction(observations, limits[2]!);
 	for (const subset of subsets) {
+		if (isHopeless(subset)) continue;
 		const fit = quickFit(pickPairs(observations, subset));
 		if (!fit) continue;
 		const kept: number[] = [];
@@ -53,6 +59,29 @@ export function consensusGroups(observations: FitObservations): Consensus[] {
 		if (consensus) found.set(consensus.kept.join(' '), consensus);
 	}
 	return [...found.values()].sort((a, b) => b.kept.length - a.kept.length);
+}
+
+/**
+ * Which subsets need no fit: of a free fit with σ, three pairs whose mutual distances contradict each other, and three with which far fewer pairs
+ * agree by distance than some three have in agreement. Distances are held against the worst σ of all pairs, so nothing that could be one of the
+ * largest groups is passed over.
+ */
+function contradiction(observations: FitObservations, limit: number): (subset: readonly number[]) => boolean {
+	const { kind, count, survey, control, surveyVariance, controlVariance, known, sigmaGiven, fixedScale } = observations;
+	if (kind !== 'free' || !sigmaGiven || fixedScale !== 1 || count > EXHAUSTIVE_PAIRS || known.some((value) => value !== KNOWN_ALL)) {
+		return () => false;
+	}
+	let variance = 0;
+	for (let i = 0; i < count; i++) {
+		const own =
+			Math.max(...[0, 1, 2].map((k) => surveyVariance[3 * i + k]!)) + Math.max(...[0, 1, 2].map((k) => controlVariance[3 * i + k]!));
+		variance = Math.max(variance, own);
+	}
+	const toleranceM = Math.sqrt(limit * variance);
+	const agreement = distanceAgreement(survey, control, count, toleranceM);
+	const least = largestAgreement(survey, control, count, toleranceM, agreement).size - SMALLER_GROUPS;
+	return ([i, j, k]) =>
+		!(agree(agreement, i!, j!) && agree(agreement, i!, k!) && agree(agreement, j!, k!)) || mostAround(agreement, i!, j!, k!) < least;
 }
 
 function degreesOf(known: number): number {
