@@ -14,7 +14,7 @@ export function qualityBlocks({ fit }: FitReportData): ReportBlock[] {
 		),
 		...findings.map(({ message }) => text(`– ${message}`)),
 		...(fit.changes.length > 0 ? [text(`Other than in the fit before it: ${fit.changes.join(' ')}`)] : []),
-		text(`Adopted because: ${said(fit.adoptedReason)}.`),
+		text(`Adopted because: ${said(fit.adoptedReason)}`),
 		text(
 			'Not corrected: temperature of the structure (50 m at 20 K: 10 mm), shrinkage, creep, earth curvature and refraction (0.7 mm at 100 m). Uncertainty grows away from the targets; outside their span this fit should not be used without further targets.',
 		),

@@ -27,12 +27,12 @@ export function planFigure(data: FitReportData): ReportBlock {
 		? data.measured.filter((_, index) => index % every === 0).map(({ name, surveyM }) => placeOf(name, carryPoint(fit.result, surveyM)))
 		: [];
 	const station = isPlanKnown && isOriginNear(data) ? placeOf('origin', carryPoint(fit.result, [0, 0, 0])) : null;
-	const extent = [...marks, ...dots, ...(station ? [station] : [])];
+	const extent = [...marks, ...dots];
 	const longest = Math.max(0, ...fit.result.pairs.map(({ residual: [e, n] }) => Math.hypot(e ?? 0, n ?? 0)));
 	const held = fit.result.pairs.filter(({ heldBack }) => heldBack).length;
 	return {
 		kind: 'figure',
-		alt: `Plan sketch, north up: ${marks.length} targets, ${held} of them held back, ${data.measuredCount} measured places${station ? ', the origin of the survey frame' : ''}; each target with the way it misses its mark.`,
+		alt: `Plan sketch, north up: ${marks.length} targets, ${held} of them held back, ${data.measuredCount} measured places; each target with the way it misses its mark.`,
 		heightPt,
 		draw: (pen, box) => {
 			if (extent.length === 0) return pen.word('No place is known in plan.', box.x, box.y);
@@ -49,19 +49,23 @@ export function planFigure(data: FitReportData): ReportBlock {
 			const exaggeration = longest > 0 ? roundDown((arrowPt * view.metresPerPt) / longest) : null;
 			for (const { name, east, north } of marks)
 				drawMark(pen, view.place(east, north), name, results.get(name), exaggeration, view.metresPerPt);
-			if (station) {
-				const [x, y] = view.place(station.east, station.north);
-				pen.line([
-					[x - 4, y + 3],
-					[x + 4, y + 3],
-					[x, y - 4],
-					[x - 4, y + 3],
-				]);
-				pen.word('origin of the survey frame', x + 6, y - 3);
-			}
+			if (station) drawOrigin(pen, view, station);
 			drawScale(pen, box, view.metresPerPt, exaggeration);
 		},
 	};
+}
+
+/** Only where it lies in the picture: it must not make the work small. */
+function drawOrigin(pen: Pen, { place, isInside }: ReturnType<typeof viewOf>, { east, north }: PlanPlace): void {
+	const [x, y] = place(east, north);
+	if (!isInside(x, y)) return;
+	pen.line([
+		[x - 4, y + 3],
+		[x + 4, y + 3],
+		[x, y - 4],
+		[x - 4, y + 3],
+	]);
+	pen.word('origin of the survey frame', x + 6, y - 3);
 }
 
 function drawMark(

@@ -13,7 +13,7 @@ export function givenSections(data: FitReportData): ReportSection[] {
 				text(
 					`To tie set-up ${data.fit.setupName} of survey ${data.survey.number} to the design, so that what it measured can be held against the model. Stage: ${stageSentences[data.survey.stage] ?? data.survey.stage}.`,
 				),
-				text(`Not surveyed, and why: ${said(data.survey.observation?.notSurveyed)}.`),
+				text(`Not surveyed, and why: ${said(data.survey.observation?.notSurveyed)}`),
 			],
 		},
 		{ number: 3, title: 'Persons', blocks: [facts(personRows(data))] },

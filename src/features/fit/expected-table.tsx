@@ -12,16 +12,16 @@ export function ExpectedTable({ groups }: { groups: readonly PlannedGroup[] }) {
 						<th scope="col" className="px-3 py-2.5 text-left font-medium">
 							Checkpoints
 						</th>
-						<th scope="col" className="px-2 py-2.5 text-right font-medium">
+						<th scope="col" className="px-2 py-2.5 text-right font-medium max-tablet:hidden">
 							Number
 						</th>
-						<th scope="col" className="px-2 py-2.5 text-right font-medium">
+						<th scope="col" className="px-2 py-2.5 text-right font-medium max-tablet:hidden">
 							± usual, mm
 						</th>
 						<th scope="col" className="px-2 py-2.5 text-right font-medium">
 							± worst, mm
 						</th>
-						<th scope="col" className="px-2 py-2.5 text-right font-medium">
+						<th scope="col" className="px-2 py-2.5 text-right font-medium max-tablet:hidden">
 							Tolerance, mm
 						</th>
 						<th scope="col" className="px-2 py-2.5 text-right font-medium">
@@ -38,12 +38,14 @@ export function ExpectedTable({ groups }: { groups: readonly PlannedGroup[] }) {
 							<th scope="row" className="h-11 px-3 text-left font-strong">
 								{group.name}
 							</th>
-							<td className="px-2 text-right">{count(group.count)}</td>
-							<td className="px-2 text-right">{group.medianExpandedMm.toFixed(1)}</td>
+							<td className="px-2 text-right max-tablet:hidden">{count(group.count)}</td>
+							<td className="px-2 text-right max-tablet:hidden">{group.medianExpandedMm.toFixed(1)}</td>
 							<td className="px-2 text-right">{group.worstExpandedMm.toFixed(1)}</td>
-							<td className="px-2 text-right">{group.toleranceMm === null ? '–' : Number(group.toleranceMm.toFixed(1))}</td>
+							<td className="px-2 text-right max-tablet:hidden">
+								{group.toleranceMm === null ? '–' : Number(group.toleranceMm.toFixed(1))}
+							</td>
 							<td className="px-2 text-right">{group.capability === null ? '–' : group.capability.toFixed(1)}</td>
-							<td className="px-3">{decidedWords(group)}</td>
+							<td className="px-3 py-2">{decidedWords(group)}</td>
 						</tr>
 					))}
 				</tbody>

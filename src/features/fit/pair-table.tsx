@@ -89,7 +89,7 @@ export function PairTable({ pairs, figures, shelvingOf, mayPart, chosenName, onC
 							Left out
 						</th>
 						{onMove && (
-							<th scope="col" className="px-3 py-2.5 text-left font-medium">
+							<th scope="col" className="px-3 py-2.5 text-left font-medium max-tablet:hidden">
 								Shelf
 							</th>
 						)}
@@ -160,7 +160,7 @@ const PairRow = memo(function PairRow({ name, figures, shelving, mayPart, scaleM
 			<tr
 				draggable={onMove !== null}
 				onDragStart={(event) => event.dataTransfer.setData('text/plain', name)}
-				className={`${note ? '' : 'border-b border-hair'} ${isChosen ? 'row-chosen' : ''}`}
+				className={`${note ? '' : 'border-b border-hair'} ${onMove ? 'max-tablet:border-b-0' : ''} ${isChosen ? 'row-chosen' : ''}`}
 			>
 				<th scope="row" className="h-11 px-3 text-left font-strong">
 					<button
@@ -196,37 +196,56 @@ const PairRow = memo(function PairRow({ name, figures, shelving, mayPart, scaleM
 				</td>
 				<td className="px-2 text-right max-tablet:hidden">{figure(figures?.leftOutMm?.[axis] ?? null)}</td>
 				{onMove && (
-					<td className="px-3">
-						<label>
-							<span className="sr-only">Shelf of {name}</span>
-							<select
-								value={placeKey(place)}
-								onChange={(event) => {
-									const wanted = placeOptions.find((option) => placeKey(option.place) === event.currentTarget.value);
-									if (wanted) onMove(name, wanted.place);
-								}}
-								className="min-h-9 rounded-corner border border-field bg-sheet px-2 text-ink pointer-coarse:min-h-12"
-							>
-								{optionsFor(place, mayPart).map((option) => (
-									<option key={placeKey(option.place)} value={placeKey(option.place)}>
-										{option.label}
-									</option>
-								))}
-							</select>
-						</label>
+					<td className="px-3 max-tablet:hidden">
+						<ShelfSelect name={name} place={place} mayPart={mayPart} onMove={onMove} />
 					</td>
 				)}
 			</tr>
-			{note && (
-				<tr className="border-b border-hair">
+			{/* A phone has no room for a column of shelves: there it stands below the figures. */}
+			{(note || onMove) && (
+				<tr className={`border-b border-hair ${note ? '' : 'tablet:hidden'}`}>
 					<td colSpan={onMove ? 7 : 6} className="px-3 pb-2.5 text-small text-second">
 						{note}
+						{onMove && (
+							<span className="mt-1 block tablet:hidden">
+								<ShelfSelect name={name} place={place} mayPart={mayPart} onMove={onMove} />
+							</span>
+						)}
 					</td>
 				</tr>
 			)}
 		</>
 	);
 });
+
+interface ShelfSelectProps {
+	name: string;
+	place: PairPlace;
+	mayPart: boolean;
+	onMove: (name: string, place: PairPlace) => void;
+}
+
+function ShelfSelect({ name, place, mayPart, onMove }: ShelfSelectProps) {
+	return (
+		<label>
+			<span className="sr-only">Shelf of {name}</span>
+			<select
+				value={placeKey(place)}
+				onChange={(event) => {
+					const wanted = placeOptions.find((option) => placeKey(option.place) === event.currentTarget.value);
+					if (wanted) onMove(name, wanted.place);
+				}}
+				className="min-h-9 rounded-corner border border-field bg-sheet px-2 text-ink pointer-coarse:min-h-12"
+			>
+				{optionsFor(place, mayPart).map((option) => (
+					<option key={placeKey(option.place)} value={placeKey(option.place)}>
+						{option.label}
+					</option>
+				))}
+			</select>
+		</label>
+	);
+}
 
 function placeOf({ shelf, use = 'all' }: Shelving): PairPlace {
 	return { shelf, use };
@@ -242,6 +261,6 @@ function optionsFor(now: PairPlace, mayPart: boolean): readonly { place: PairPla
 function figure(valueMm: number | null): ReactNode {
 	if (valueMm === null) return noFigure;
 	// Gross mistakes are metres, and a column of millimetres would push the rest of the table away.
-	const text = Math.abs(valueMm) >= 10_000 ? `${signedNumber(valueMm / 1000, 1)} m` : signedNumber(valueMm, 1);
+	const text = Math.abs(valueMm) >= 1000 ? `${signedNumber(valueMm / 1000, 2)} m` : signedNumber(valueMm, 1);
 	return Number(valueMm.toFixed(1)) > 0 ? `+${text}` : text;
 }

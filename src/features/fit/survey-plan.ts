@@ -3,6 +3,7 @@ import type { FitKind, FitPair, FitRefusal, FitResult } from '#shared/fit/fit-sc
 import { type PlannedCheckpoint, type PlannedUncertainty, planSurvey, type SurveyPlan } from '#shared/fit/plan-survey.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
 import type { StoredCheckpoint, StoredElement } from '#shared/model/contract.ts';
+import { classInWords } from '#shared/tolerance/element-words.ts';
 import { matchPreparedRule, prepareRules } from '#shared/tolerance/match-rule.ts';
 import type { Stage, ToleranceSheet } from '#shared/tolerance/sheet-schema.ts';
 
@@ -57,7 +58,7 @@ export interface GroupedCheckpoint extends PlannedCheckpoint {
 	group: string;
 }
 
-/** The model's checkpoints with the tolerance that the sheet sets for each at a stage. Element names as IFC writes them, without "Ifc". */
+/** The model's checkpoints with the tolerance that the sheet sets for each at a stage. Left-out ones are not looked at. */
 export function plannedCheckpoints(
 	elements: readonly StoredElement[],
 	checkpoints: readonly StoredCheckpoint[],
@@ -67,9 +68,9 @@ export function plannedCheckpoints(
 	const byId = new Map(elements.map((element) => [element.elementId, element]));
 	const rules = prepareRules(sheet?.rules ?? []);
 	const widths = new Map<string, number | null>();
-	return checkpoints.flatMap(({ elementId, characteristic, place, direction, label }): GroupedCheckpoint[] => {
+	return checkpoints.flatMap(({ elementId, characteristic, place, direction, label, requirement }): GroupedCheckpoint[] => {
 		const element = byId.get(elementId);
-		if (!element) return [];
+		if (!element || requirement === 'left-out') return [];
 		const key = `${elementId} ${characteristic}`;
 		let width = widths.get(key);
 		if (width === undefined) {
@@ -79,7 +80,7 @@ export function plannedCheckpoints(
 			width = widthOf(limitsMm, characteristic === 'plan');
 			widths.set(key, width);
 		}
-		const group = `${element.class.replace(/^Ifc/, '').replace(/([a-z])([A-Z])/g, '$1 $2')}, ${characteristic}`;
+		const group = `${classInWords(element.class)}, ${characteristic}`;
 		return [
 			{ name: `${element.title}, ${label}`, place, direction: directionOf(characteristic, direction), toleranceWidthM: width, group },
 		];
