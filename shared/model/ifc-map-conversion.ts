@@ -1,5 +1,5 @@
 import type { Finding } from '../fit/fit-schema.ts';
-import { modelFinding } from './ifc-finding.ts';
+import { figureInWords, modelFinding } from './ifc-finding.ts';
 import { lengthUnitM, unitInWords } from './ifc-units.ts';
 import type { MapConversion } from './model-schema.ts';
 import type { Part21Entity, Part21File } from './part21.ts';
@@ -20,7 +20,7 @@ function checkScale(conversion: MapConversion, metresPerUnit: number, isWritten:
 		findings.push(
 			modelFinding(
 				'map-scale',
-				`The map conversion ${isWritten ? `writes Scale ${conversion.scale}` : 'writes no Scale, which means 1'}, while the model is in ${unitInWords(metresPerUnit)} and the map in ${unitInWords(conversion.mapUnitM)}. As written, 1 m in the model is ${ratio} m on the map; the units alone would ask for Scale ${expected}. Choose the reading before map coordinates are used.`,
+				`The map conversion ${isWritten ? `writes Scale ${figureInWords(conversion.scale)}` : 'writes no Scale, which means 1'}, while the model is in ${unitInWords(metresPerUnit)} and the map in ${unitInWords(conversion.mapUnitM)}. As written, 1 m in the model is ${figureInWords(ratio)} m on the map; the units alone would ask for Scale ${figureInWords(expected)}. Choose the reading before map coordinates are used.`,
 				{ asWritten: { scale: conversion.scale, mapMetresPerModelMetre: ratio }, byUnits: { scale: expected, mapMetresPerModelMetre: 1 } },
 			),
 		);
@@ -28,7 +28,7 @@ function checkScale(conversion: MapConversion, metresPerUnit: number, isWritten:
 		findings.push(
 			modelFinding(
 				'map-scale-factor',
-				`The map conversion has a scale factor of ${ratio} beyond the units (${((ratio - 1) * 1e6).toFixed(1)} ppm). By the standard it multiplies heights too: ${(Math.abs(ratio - 1) * 50_000).toFixed(1)} mm at 50 m.`,
+				`The map conversion has a scale factor of ${figureInWords(ratio)} beyond the units (${((ratio - 1) * 1e6).toFixed(1)} ppm). By the standard it multiplies heights too: ${(Math.abs(ratio - 1) * 50_000).toFixed(1)} mm at 50 m.`,
 				{ mapMetresPerModelMetre: ratio },
 			),
 		);
@@ -95,7 +95,7 @@ function fromEntity(file: Part21File, entity: Part21Entity, metresPerUnit: numbe
 		findings.push(
 			modelFinding(
 				'map-conversion-broken',
-				`#${entity.number} ${entity.type} has no Eastings or Northings that are numbers; the model is taken to have no map position.`,
+				`The map conversion #${entity.number} has no Eastings or Northings that are numbers; the model is taken to have no map position.`,
 			),
 		);
 		return { conversion: null, findings };
@@ -107,7 +107,7 @@ function fromEntity(file: Part21File, entity: Part21Entity, metresPerUnit: numbe
 				findings.push(
 					modelFinding(
 						'map-axis-factors',
-						`#${entity.number} scales its three axes differently (${factors.join(', ')}). This is not supported: the model is taken to have no map position.`,
+						`The map conversion #${entity.number} scales its three axes differently (${factors.map(figureInWords).join(', ')}). This is not supported: the model is taken to have no map position.`,
 						{ factors },
 					),
 				);

@@ -1,5 +1,5 @@
 import type { Finding } from '../fit/fit-schema.ts';
-import { modelFinding } from './ifc-finding.ts';
+import { figureInWords, modelFinding } from './ifc-finding.ts';
 import type { Part21File } from './part21.ts';
 import { enumerationOf, numberOf, refOf, refsOf, textOf } from './part21-value.ts';
 
@@ -40,7 +40,7 @@ const NAMED: readonly (readonly [number, string])[] = [
 /** A length unit in words, from its metres: "millimetre"; one that has no name: "unit of 0.5 m". */
 export function unitInWords(metresPerUnit: number): string {
 	for (const [metres, name] of NAMED) if (Math.abs(metresPerUnit - metres) < metres * 1e-7) return name;
-	return `unit of ${metresPerUnit} m`;
+	return `unit of ${figureInWords(metresPerUnit)} m`;
 }
 
 /** Metres per unit of a named unit entity; null where it is no length unit or cannot be followed. */
@@ -113,7 +113,7 @@ export function readModelUnit(file: Part21File): { ok: true; unit: ModelUnit } |
 			findings.push(
 				modelFinding(
 					'unit-not-in-project',
-					`No project names its length unit; ${unitInWords(found[0]!.metresPerUnit)} is taken from ${found[0]!.from}.`,
+					`No project names its length unit: the ${unitInWords(found[0]!.metresPerUnit)} is taken from the ${found[0]!.from}.`,
 					{
 						metresPerUnit: found[0]!.metresPerUnit,
 					},
@@ -132,7 +132,7 @@ export function readModelUnit(file: Part21File): { ok: true; unit: ModelUnit } |
 		findings.push(
 			modelFinding(
 				'unit-contradiction',
-				`The file names more than one length unit: ${found.map((unit) => `${unitInWords(unit.metresPerUnit)} (${unit.from})`).join(', ')}. The first is used; check a known length before anything else.`,
+				`The file names more than one length unit: ${found.map((unit) => `${unitInWords(unit.metresPerUnit)} (in ${unit.from})`).join(', ')}. The first is used; check a known length before anything else.`,
 				{ readings: found.map((unit) => ({ metresPerUnit: unit.metresPerUnit, from: unit.from })) },
 			),
 		);

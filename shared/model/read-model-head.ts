@@ -1,6 +1,6 @@
 import type { Finding } from '../fit/fit-schema.ts';
 import type { Affine } from './affine.ts';
-import { modelFinding } from './ifc-finding.ts';
+import { counted, figureInWords, modelFinding } from './ifc-finding.ts';
 import { readGrids } from './ifc-grid.ts';
 import { readMapConversion } from './ifc-map-conversion.ts';
 import { placementReader, type ReadPlacement } from './ifc-placement.ts';
@@ -63,7 +63,7 @@ function fileFindings(file: Part21File, schema: SchemaName): Finding[] {
 		findings.push(
 			modelFinding(
 				'repeated-entity-number',
-				`${file.repeatedNumbers.length} entity numbers are given twice (first #${file.repeatedNumbers[0]}); the last one counts.`,
+				`${counted(file.repeatedNumbers.length, 'entity number is', 'entity numbers are')} given twice (the first is #${file.repeatedNumbers[0]}): the last entity of a number counts.`,
 				{
 					numbers: file.repeatedNumbers.slice(0, 20),
 				},
@@ -71,9 +71,13 @@ function fileFindings(file: Part21File, schema: SchemaName): Finding[] {
 		);
 	if (file.oddStatements > 0)
 		findings.push(
-			modelFinding('odd-statements', `${file.oddStatements} statements are no entities and were passed over.`, {
-				count: file.oddStatements,
-			}),
+			modelFinding(
+				'odd-statements',
+				`${counted(file.oddStatements, 'statement is no entity and was', 'statements are no entities and were')} passed over.`,
+				{
+					count: file.oddStatements,
+				},
+			),
 		);
 	if (!file.hasEndLine)
 		findings.push(
@@ -104,7 +108,7 @@ export function readModelHead(bytes: Uint8Array): { ok: true; head: ModelHead } 
 		findings.push(
 			modelFinding(
 				'world-coordinate-system',
-				`The file's WorldCoordinateSystem (context #${system.context}) stands at ${system.shiftM.map((part) => `${part} m`).join(', ')}${system.isTurned ? ' and is turned' : ''}. Programs differ on whether it moves the model: it is not applied here. Check one known point.`,
+				`The file's WorldCoordinateSystem (context #${system.context}) stands at ${system.shiftM.map((part) => `${figureInWords(part)} m`).join(', ')}${system.isTurned ? ' and is turned' : ''}. Programs differ on whether that moves the model: here it does not. Check one known point.`,
 				{ shiftM: system.shiftM, isTurned: system.isTurned },
 			),
 		);

@@ -1,7 +1,7 @@
 import type { Finding } from '#shared/fit/fit-schema.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
 import { differenceOf, scaleShift } from '#shared/model/affine.ts';
-import { modelFinding } from '#shared/model/ifc-finding.ts';
+import { counted, modelFinding } from '#shared/model/ifc-finding.ts';
 import type { ReadPlacement } from '#shared/model/ifc-placement.ts';
 import type { ElementDraft } from '#shared/model/model-elements.ts';
 import type { ModelReading } from '#shared/model/model-schema.ts';
@@ -173,7 +173,7 @@ function elementFindings(
 		findings.push(
 			modelFinding(
 				'repeated-global-id',
-				`${repeated.length} GlobalIds stand for more than one element (${repeated[0]![0]}: ${repeated[0]![1]}). They are told apart by their entity number, which the next revision may not keep.`,
+				`${counted(repeated.length, 'GlobalId stands', 'GlobalIds stand')} for more than one element (${repeated[0]![0]} for ${repeated[0]![1]}). Such elements are told apart by their entity numbers, which the next revision may not keep.`,
 				{ count: repeated.length },
 				repeated.map(([globalId]) => globalId),
 			),
@@ -183,7 +183,7 @@ function elementFindings(
 		findings.push(
 			modelFinding(
 				'missing-global-id',
-				`${missing} elements have no GlobalId. They are known by their entity number, which the next revision may not keep.`,
+				`${counted(missing, 'element has', 'elements have')} no GlobalId. Such elements are known by their entity numbers, which the next revision may not keep.`,
 				{ count: missing },
 			),
 		);
@@ -191,7 +191,7 @@ function elementFindings(
 		findings.push(
 			modelFinding(
 				'no-geometry',
-				`${withoutBody.length} of ${of} elements have no geometry that can be used.`,
+				`${withoutBody.length} of ${counted(of, 'element', 'elements')} ${withoutBody.length === 1 ? 'has' : 'have'} no geometry that can be used.`,
 				{ count: withoutBody.length, of },
 				withoutBody,
 			),
@@ -200,7 +200,7 @@ function elementFindings(
 		findings.push(
 			modelFinding(
 				'linear-placement-contradiction',
-				`${contradicting.length} elements stand along an alignment, and the position written beside it says another place. The picture follows the alignment; no checkpoints are placed on them.`,
+				`${counted(contradicting.length, 'element stands', 'elements stand')} along an alignment, and the position written beside that says another place. The picture follows the alignment; no checkpoints are placed there.`,
 				{ count: contradicting.length },
 				contradicting,
 			),
