@@ -1,6 +1,7 @@
 import { useDeferredValue, useMemo, useState } from 'react';
 import { counted } from '#src/lib/format.ts';
 import { Button } from '#src/ui/button.tsx';
+import { Chip } from '#src/ui/chip.tsx';
 import { FindingCard } from '#src/ui/finding-card.tsx';
 import { Headline } from '#src/ui/headline.tsx';
 import { Notice } from '#src/ui/notice.tsx';
@@ -58,14 +59,9 @@ export function SurveyPlanner({ marks, withoutSigma, checkpoints, grid, outline 
 						<legend className="mb-1.5 p-0 font-medium">Marks that will be sighted</legend>
 						<div className="flex flex-wrap gap-2">
 							{marks.map(({ name }) => (
-								<Button
-									key={name}
-									weight={leftOut.has(name) ? 'quiet' : 'act'}
-									aria-pressed={!leftOut.has(name)}
-									onClick={() => toggle(name)}
-								>
+								<Chip key={name} isOn={!leftOut.has(name)} onChange={() => toggle(name)}>
 									{name}
-								</Button>
+								</Chip>
 							))}
 						</div>
 						{withoutSigma.length > 0 && (

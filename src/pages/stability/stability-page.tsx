@@ -1,4 +1,4 @@
-import { useSuspenseQueries, useSuspenseQuery } from '@tanstack/react-query';
+import { useSuspenseQueries } from '@tanstack/react-query';
 import { useId, useMemo } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import type { FitSummary } from '#shared/fit/contract.ts';
@@ -15,7 +15,10 @@ import { Strip } from '#src/ui/strip.tsx';
 /** Between surveys: did any mark move between two adopted fits? */
 export default function StabilityPage() {
 	const { siteId = '' } = useParams();
-	const { data: fits } = useSuspenseQuery(api.fit.list.queryOptions({ input: { siteId } }));
+	const [{ data: fits }, { data: surveys }] = useSuspenseQueries({
+		queries: [api.fit.list.queryOptions({ input: { siteId } }), api.survey.list.queryOptions({ input: { siteId } })],
+	});
+	const surveyOf = new Map(surveys.map((survey) => [survey.surveyId, `survey ${survey.number} of ${survey.surveyedOn}`]));
 	const [earlier, setEarlier] = useAddressState('before');
 	const [later, setLater] = useAddressState('after');
 	const adopted = fits.filter(({ state }) => state === 'adopted').sort((a, b) => b.number - a.number);
@@ -46,8 +49,8 @@ export default function StabilityPage() {
 			{strip}
 			<Compared siteId={siteId} before={before} after={after}>
 				<div className="grid gap-3.5 tablet:grid-cols-2">
-					<FitChoice label="Before" fits={adopted} value={before.fitId} onValue={setEarlier} />
-					<FitChoice label="After" fits={adopted} value={after.fitId} onValue={setLater} />
+					<FitChoice label="Before" surveyOf={surveyOf} fits={adopted} value={before.fitId} onValue={setEarlier} />
+					<FitChoice label="After" surveyOf={surveyOf} fits={adopted} value={after.fitId} onValue={setLater} />
 				</div>
 			</Compared>
 		</>
@@ -95,12 +98,14 @@ function headlineOf({ comparison, marks }: StabilityTest): string {
 
 interface FitChoiceProps {
 	label: string;
+	/** A survey in words, by its id. */
+	surveyOf: ReadonlyMap<string, string>;
 	fits: readonly FitSummary[];
 	value: string;
 	onValue: (fitId: string) => void;
 }
 
-function FitChoice({ label, fits, value, onValue }: FitChoiceProps) {
+function FitChoice({ label, surveyOf, fits, value, onValue }: FitChoiceProps) {
 	const id = useId();
 	return (
 		<FieldFrame id={id} label={label}>
@@ -112,7 +117,7 @@ function FitChoice({ label, fits, value, onValue }: FitChoiceProps) {
 			>
 				{fits.map((fit) => (
 					<option key={fit.fitId} value={fit.fitId}>
-						Fit {fit.number}, set-up {fit.setupName}, {fit.pairCount} pairs
+						Fit {fit.number}, {surveyOf.get(fit.surveyId)}, set-up {fit.setupName}
 					</option>
 				))}
 			</select>
