@@ -2,7 +2,8 @@ import type { Vector3 } from '#shared/geometry/frame.ts';
 import { observationsOf } from './fit-observations.ts';
 import { poseMatrix } from './fit-pose.ts';
 import type { FitInput } from './fit-schema.ts';
-import { distanceTable, nearestWithin, pairsOfLength, sortedPairs } from './mutual-distances.ts';
+import { distanceTable, nearestWithin, pairsByLength, pairsOfLength } from './mutual-distances.ts';
+import { fitRigid, newRigidFit } from './rigid-fit.ts';
 import { quickFit } from './solve-fit.ts';
 
 export interface UnnamedPoint {
@@ -52,9 +53,9 @@ export function matchUnnamed(input: UnnamedMatchInput): UnnamedMatches {
 	const count = targets.length;
 	const targetTable = distanceTable(targets);
 	const controlTable = distanceTable(control);
-	const lengths = sortedPairs(controlTable, control.length);
 	// Two ends, each off by up to the tolerance.
 	const slack = 2 * toleranceM;
+	const lengths = pairsByLength(controlTable, control.length, slack);
 	const order = byReach(targetTable, count);
 	let best = least;
 	let hypothesesFitted = 0;
@@ -66,11 +67,12 @@ export function matchUnnamed(input: UnnamedMatchInput): UnnamedMatches {
 			const b = order[later]!;
 			const length = targetTable[a * count + b]!;
 			if (length < 4 * slack) continue;
-			for (const [i, j] of pairsOfLength(lengths, length, slack)) {
-				for (const [p, q] of [
-					[i, j],
-					[j, i],
-				] as const) {
+			for (const code of pairsOfLength(lengths, controlTable, length, slack)) {
+				const i = Math.floor(code / control.length);
+				const j = code % control.length;
+				for (let way = 0; way < 2; way++) {
+					const p = way === 0 ? i : j;
+					const q = way === 0 ? j : i;
 					const seeds = agreeing(input, targetTable, controlTable, a, b, p, q, slack, best);
 					if (!seeds) continue;
 					const key = seeds.map(([t, c]) => `${t}:${c}`).join(' ');
@@ -109,26 +111,41 @@ function agreeing(
 ): [number, number][] | null {
 	const count = targets.length;
 	const size = control.length;
-	const level = (t: number, from: number, c: number, to: number): boolean =>
-		fit === 'free' || Math.abs(targets[t]!.point[2] - targets[from]!.point[2] - control[c]!.point[2] + control[to]!.point[2]) <= slack;
-	if (!level(b, a, q, p)) return null;
+	const isFree = fit === 'free';
+	if (!isFree && !isLevel(targets, control, b, a, q, p, slack)) return null;
 	const seeds: [number, number][] = [
 		[a, p],
 		[b, q],
 	];
+	const rowP = p * size;
+	const rowQ = q * size;
 	for (let t = 0; t < count; t++) {
 		if (seeds.length + count - t < best) return null;
 		if (t === a || t === b) continue;
 		const toA = targetTable[a * count + t]!;
 		const toB = targetTable[b * count + t]!;
 		for (let c = 0; c < size; c++) {
-			if (Math.abs(controlTable[p * size + c]! - toA) > slack || Math.abs(controlTable[q * size + c]! - toB) > slack) continue;
-			if (c === p || c === q || !level(t, a, c, p) || !consistent(seeds, targetTable, controlTable, count, size, t, c, slack)) continue;
+			if (Math.abs(controlTable[rowP + c]! - toA) > slack || Math.abs(controlTable[rowQ + c]! - toB) > slack) continue;
+			if (c === p || c === q || !(isFree || isLevel(targets, control, t, a, c, p, slack))) continue;
+			if (!consistent(seeds, targetTable, controlTable, count, size, t, c, slack)) continue;
 			seeds.push([t, c]);
 			break;
 		}
 	}
 	return seeds.length >= Math.min(best, 3) ? seeds : null;
+}
+
+/** Whether the height from one target to the other is that from one control point to the other. */
+function isLevel(
+	targets: readonly UnnamedPoint[],
+	control: readonly UnnamedPoint[],
+	t: number,
+	from: number,
+	c: number,
+	to: number,
+	slack: number,
+): boolean {
+	return Math.abs(targets[t]!.point[2] - targets[from]!.point[2] - control[c]!.point[2] + control[to]!.point[2]) <= slack;
 }
 
 /** The first three that agree fix the rest: a further one must keep its distance to the third as well. */
@@ -147,30 +164,73 @@ function consistent(
 	);
 }
 
+/** Takes survey coordinates to where a fit puts them. */
+type Placing = (point: Vector3) => Vector3;
+
+/** The fit of these targets to these control points, all equally good; null where they do not determine it. */
+function placingOf({ fit, targets, control }: UnnamedMatchInput, assigned: readonly (readonly [number, number])[]): Placing | null {
+	if (fit === 'levelled') return levelledPlacing(targets, control, assigned);
+	const survey = new Float64Array(3 * assigned.length);
+	const known = new Float64Array(3 * assigned.length);
+	for (let i = 0; i < assigned.length; i++) {
+		const from = targets[assigned[i]![0]]!.point;
+		const to = control[assigned[i]![1]]!.point;
+		for (let k = 0; k < 3; k++) {
+			survey[3 * i + k] = from[k]!;
+			known[3 * i + k] = to[k]!;
+		}
+	}
+	const rigid = newRigidFit();
+	if (!fitRigid(survey, known, 0, assigned.length, rigid)) return null;
+	return placing(rigid.rotation, rigid.surveyMean, rigid.controlMean);
+}
+
+function levelledPlacing(
+	targets: readonly UnnamedPoint[],
+	control: readonly UnnamedPoint[],
+	assigned: readonly (readonly [number, number])[],
+): Placing | null {
+	const pairs: FitInput['pairs'] = assigned.map(([t, c], i) => ({
+		name: String(i),
+		survey: [...targets[t]!.point],
+		control: [...control[c]!.point],
+	}));
+	const observations = observationsOf({ fit: 'levelled', pairs }, pairs);
+	const fit = quickFit(observations);
+	if (!fit) return null;
+	const matrix = new Float64Array(9);
+	poseMatrix(fit.pose, matrix);
+	const shift = observations.controlOrigin.map((value, k) => value + fit.pose.shift[k]!);
+	return placing(matrix, observations.surveyOrigin, shift);
+}
+
+function placing(matrix: Float64Array, from: ArrayLike<number>, to: ArrayLike<number>): Placing {
+	return (point) => {
+		const x = point[0] - from[0]!;
+		const y = point[1] - from[1]!;
+		const z = point[2] - from[2]!;
+		return [
+			matrix[0]! * x + matrix[1]! * y + matrix[2]! * z + to[0]!,
+			matrix[3]! * x + matrix[4]! * y + matrix[5]! * z + to[1]!,
+			matrix[6]! * x + matrix[7]! * y + matrix[8]! * z + to[2]!,
+		];
+	};
+}
+
 /** Fits the proposal, matches all targets to the nearest control points, and fits again until the match stays the same. */
 function workOut(input: UnnamedMatchInput, seeds: readonly [number, number][]): UnnamedMatch | null {
 	const { targets, control, toleranceM } = input;
-	const matrix = new Float64Array(9);
-	let assigned = seeds;
+	let assigned: readonly (readonly [number, number])[] = seeds;
 	for (let round = 0; round < 6; round++) {
-		const pairs: FitInput['pairs'] = assigned.map(([t, c], i) => ({
-			name: String(i),
-			survey: [...targets[t]!.point],
-			control: [...control[c]!.point],
-		}));
-		const observations = observationsOf({ fit: input.fit, pairs }, pairs);
-		const fit = quickFit(observations);
-		if (!fit) return null;
-		poseMatrix(fit.pose, matrix);
+		const place = placingOf(input, assigned);
+		if (!place) return null;
 		// The first round is off by what a small proposal extrapolates.
 		const reach = round === 0 ? 3 * toleranceM : toleranceM;
-		const place = ({ point }: UnnamedPoint): Vector3 => {
-			const [x, y, z] = [0, 1, 2].map((k) => point[k]! - observations.surveyOrigin[k]!) as [number, number, number];
-			return [0, 1, 2].map(
-				(k) => matrix[3 * k]! * x + matrix[3 * k + 1]! * y + matrix[3 * k + 2]! * z + fit.pose.shift[k]! + observations.controlOrigin[k]!,
-			) as unknown as Vector3;
-		};
-		const next = nearestWithin(targets.map(place), control, reach);
+		const next = nearestWithin(
+			targets.map(({ point }) => place(point)),
+			control,
+			reach,
+		);
 		const settled =
 			round > 0 && next.length === assigned.length && next.every(([t, c], k) => assigned[k]![0] === t && assigned[k]![1] === c);
 		if (settled || round === 5) {

@@ -7,42 +7,61 @@ export function distanceTable(points: readonly { point: Vector3 }[]): Float64Arr
 	const count = points.length;
 	const table = new Float64Array(count * count);
 	for (let i = 0; i < count; i++) {
+		const a = points[i]!.point;
 		for (let j = 0; j < i; j++) {
-			const [a, b] = [points[i]!.point, points[j]!.point];
-			table[i * count + j] = table[j * count + i] = Math.hypot(a[0] - b[0], a[1] - b[1], a[2] - b[2]);
+			const b = points[j]!.point;
+			const x = a[0] - b[0];
+			const y = a[1] - b[1];
+			const z = a[2] - b[2];
+			table[i * count + j] = table[j * count + i] = Math.sqrt(x * x + y * y + z * z);
 		}
 	}
 	return table;
 }
 
-/** Pairs by length, shortest first. */
-export interface SortedPairs {
-	lengths: Float64Array;
-	/** i·count + j, i > j. */
-	codes: Uint32Array;
-	count: number;
+/** Pairs by length, in cells of a given width: found by counting, without a sort. */
+export interface PairsByLength {
+	/** i·count + j, i > j, cell by cell. */
+	readonly codes: Int32Array;
+	/** Where each cell ends in `codes`. */
+	readonly ends: Int32Array;
+	readonly widthM: number;
+	readonly count: number;
 }
 
-export function sortedPairs(table: Float64Array, count: number): SortedPairs {
-	const size = (count * (count - 1)) / 2;
-	const codes = new Uint32Array(size);
-	let at = 0;
-	for (let i = 0; i < count; i++) for (let j = 0; j < i; j++) codes[at++] = i * count + j;
-	codes.sort((a, b) => table[a]! - table[b]!);
-	return { lengths: Float64Array.from(codes, (code) => table[code]!), codes, count };
-}
+const MOST_CELLS = 8192;
 
-/** The pairs whose length is within `slack` of `length`. */
-export function pairsOfLength({ lengths, codes, count }: SortedPairs, length: number, slack: number): [number, number][] {
-	let low = 0;
-	let high = lengths.length;
-	while (low < high) {
-		const middle = (low + high) >> 1;
-		if (lengths[middle]! < length - slack) low = middle + 1;
-		else high = middle;
+/**
+ * @param table of distanceTable
+ * @param widthM of a cell, metres; wider where the longest pair would need too many
+ */
+export function pairsByLength(table: Float64Array, count: number, widthM: number): PairsByLength {
+	let longest = 0;
+	for (let at = 0; at < table.length; at++) if (table[at]! > longest) longest = table[at]!;
+	const width = Math.max(widthM, longest / (MOST_CELLS - 1), Number.MIN_VALUE);
+	const ends = new Int32Array(Math.floor(longest / width) + 1);
+	for (let i = 0; i < count; i++) for (let j = 0; j < i; j++) ends[Math.floor(table[i * count + j]! / width)]!++;
+	for (let cell = 1; cell < ends.length; cell++) ends[cell]! += ends[cell - 1]!;
+	const codes = new Int32Array((count * (count - 1)) / 2);
+	const next = ends.slice();
+	for (let i = 0; i < count; i++) {
+		for (let j = 0; j < i; j++) {
+			const code = i * count + j;
+			codes[--next[Math.floor(table[code]! / width)]!] = code;
+		}
 	}
-	const found: [number, number][] = [];
-	for (; low < lengths.length && lengths[low]! <= length + slack; low++) found.push([Math.floor(codes[low]! / count), codes[low]! % count]);
+	return { codes, ends, widthM: width, count };
+}
+
+/** The codes i·count + j of the pairs whose length is within `slack` of `length`. */
+export function pairsOfLength({ codes, ends, widthM }: PairsByLength, table: Float64Array, length: number, slack: number): number[] {
+	const found: number[] = [];
+	const first = Math.max(0, Math.floor((length - slack) / widthM));
+	const last = Math.min(ends.length - 1, Math.floor((length + slack) / widthM));
+	if (first > last) return found;
+	for (let at = first === 0 ? 0 : ends[first - 1]!; at < ends[last]!; at++) {
+		if (Math.abs(table[codes[at]!]! - length) <= slack) found.push(codes[at]!);
+	}
 	return found;
 }
 
