@@ -25,10 +25,6 @@ const ENTRIES = /^(server\/(main|worker|cli)\.ts|server\/scripts\/[^/]+\.ts|src\
 const AHEAD_OF_USE: Record<string, string> = {
 	'shared/check/rejudge.ts': 'stored figures judged by another sheet before it is issued',
 	'shared/fit/adjust-setups.ts': 'set-ups tied by common targets, adjusted together',
-	'shared/fit/compare-epochs.ts': 'two surveys of the same marks compared',
-	'shared/fit/match-unnamed.ts': 'targets without names, proposed by their distances',
-	'shared/fit/mutual-distances.ts': 'targets without names, proposed by their distances',
-	'shared/fit/plan-survey.ts': 'what a survey can tell, said before anyone walks out',
 	'shared/fit/start-setups.ts': 'set-ups tied by common targets, adjusted together',
 };
 
