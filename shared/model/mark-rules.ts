@@ -49,7 +49,10 @@ export function whyNotNamed(
 			if (other !== undefined && other.elementId !== elementId && (isNew || wanted.has(other.elementId)))
 				return {
 					elementId: isNew ? elementId : other.elementId,
-					message: `"${name}" would stand for two: it is too like "${other.mark}".`,
+					message:
+						other.mark === name
+							? `"${name}" is the mark of another already.`
+							: `"${name}" and "${other.mark}" would be taken for one another.`,
 				};
 			keys.set(key, { elementId, mark: name });
 		}

@@ -18,8 +18,10 @@ export interface PicturePart {
 	readonly name: string;
 	readonly faces: BufferGeometry;
 	readonly edges: BufferGeometry;
-	/** Running numbers of the element under a ray, the nearest first, each with its distance in metres. */
-	readonly under: (ray: Ray) => { readonly element: number; readonly distanceM: number }[];
+	/** Running numbers of the element under a ray, the nearest first, each with its distance in metres and its face's normal toward the ray's start. */
+	readonly under: (
+		ray: Ray,
+	) => { readonly element: number; readonly distanceM: number; readonly normal: readonly [number, number, number] }[];
 }
 
 /** A model's picture, ready to draw. The scene's frame: design frame less `originM`, metres, Z up. Never measured on. */
@@ -72,8 +74,12 @@ function partOf(mesh: Mesh): PicturePart | null {
 			tree ??= new MeshBVH(faces, { indirect: true });
 			return tree
 				.raycast(ray, DoubleSide)
-				.filter((hit) => hit.face)
-				.map((hit) => ({ element: elements[hit.face!.a]!, distanceM: hit.distance }))
+				.flatMap(({ face, distance: distanceM }) => {
+					if (!face) return [];
+					const { x, y, z } = face.normal;
+					const side = face.normal.dot(ray.direction) > 0 ? -1 : 1;
+					return [{ element: elements[face.a]!, distanceM, normal: [side * x, side * y, side * z] as const }];
+				})
 				.sort((a, b) => a.distanceM - b.distanceM);
 		},
 	};

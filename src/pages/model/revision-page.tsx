@@ -1,26 +1,126 @@
 import { useSuspenseQueries } from '@tanstack/react-query';
-import { useMemo } from 'react';
+import { useCallback, useMemo, useRef, useState } from 'react';
 import { Link, useParams } from 'react-router-dom';
+import { mapScaleFinding } from '#shared/control/map-frame.ts';
+import type { RevisionDetail } from '#shared/model/contract.ts';
+import { AddCheckpointForm } from '#src/features/model/add-checkpoint-form.tsx';
+import { CheckpointTable } from '#src/features/model/checkpoint-table.tsx';
+import { ChooseBar } from '#src/features/model/choose-bar.tsx';
+import { ElementProperties } from '#src/features/model/element-properties.tsx';
 import { ElementTable } from '#src/features/model/element-table.tsx';
-import { frameWords } from '#src/features/model/frame-words.ts';
+import { FieldList } from '#src/features/model/field-list.tsx';
+import { Georeference } from '#src/features/model/georeference.tsx';
+import { ModelFindings } from '#src/features/model/model-findings.tsx';
+import {
+	checkpointsByElement,
+	elementsAt,
+	placeFromAddress,
+	placeToAddress,
+	reasonsWithout,
+	storeyOf,
+	treeOf,
+} from '#src/features/model/model-place.ts';
+import { ModelTree } from '#src/features/model/model-tree.tsx';
+import { NameBar } from '#src/features/model/name-bar.tsx';
+import { WithoutCheckpoints } from '#src/features/model/without-checkpoints.tsx';
+import { useAddressState } from '#src/lib/address-state.ts';
 import { api } from '#src/lib/api.ts';
 import { counted } from '#src/lib/format.ts';
-import { FindingCard } from '#src/ui/finding-card.tsx';
+import { useMay, useSite } from '#src/lib/session.ts';
+import { PressChip, Segmented } from '#src/ui/chip.tsx';
 import { Headline } from '#src/ui/headline.tsx';
+import { useIsBelow } from '#src/ui/screen-width.ts';
 import { Strip } from '#src/ui/strip.tsx';
+import { grown, type ViewCommands } from '#src/ui/view-commands.ts';
+import type { PickedOnModel } from './revision-scene.tsx';
+import { RevisionViewer } from './revision-viewer.tsx';
 
-/** What one revision holds: elements by storey, where it lies, what was found and what was left out. */
+const noIds: ReadonlySet<string> = new Set();
+
+/** What one revision holds: its elements by storey and class, their checkpoints, where it lies, what was found, what is left out and why. */
 export default function RevisionPage() {
 	const { siteId = '', revisionId = '' } = useParams();
-	const [{ data: revision }, { data: elements }] = useSuspenseQueries({
+	const input = { siteId, revisionId };
+	const [{ data: revision }, { data: elements }, { data: checkpoints }, { data: models }] = useSuspenseQueries({
 		queries: [
-			api.model.revision.queryOptions({ input: { siteId, revisionId } }),
-			api.model.elements.queryOptions({ input: { siteId, revisionId } }),
+			api.model.revision.queryOptions({ input }),
+			api.model.elements.queryOptions({ input }),
+			api.model.checkpoints.queryOptions({ input }),
+			api.model.list.queryOptions({ input: { siteId } }),
 		],
 	});
+	const site = useSite();
+	const isPhone = useIsBelow('tablet');
 	const { reading } = revision;
+	const newest = models.find(({ modelId }) => modelId === revision.modelId)?.revisions.find(({ state }) => state === 'ready');
+	const isNewest = newest?.revisionId === revisionId;
+	const [mayChoose, mayName] = [useMay('checkpoint.write'), useMay('mark.write') && isNewest];
+
+	const [show, setShow] = useAddressState('show', 'push');
+	const [where, setWhere] = useAddressState('in', 'push');
+	const [find, setFind] = useAddressState('find');
+	const [elementId, chooseElement] = useAddressState('at');
+	const [checkpointId, setCheckpoint] = useAddressState('point');
+	const [view, setView] = useAddressState('view', 'push');
+	const [ticked, setTicked] = useState(noIds);
+	const [typed, setTyped] = useState<ReadonlyMap<string, string> | null>(null);
+	const [isPlacing, setPlacing] = useState(false);
+	const [picked, setPicked] = useState<PickedOnModel | null>(null);
+	const commands = useRef<ViewCommands | null>(null);
+
+	const place = useMemo(() => placeFromAddress(where), [where]);
+	const tree = useMemo(() => treeOf(elements, reading.storeys), [elements, reading.storeys]);
+	const shown = useMemo(() => elementsAt(elements, place, find ?? ''), [elements, place, find]);
+	const ofElement = useMemo(() => checkpointsByElement(checkpoints), [checkpoints]);
+	const shownCheckpoints = useMemo(() => shown.flatMap((element) => ofElement.get(element.elementId) ?? []), [shown, ofElement]);
+	const reasons = useMemo(() => reasonsWithout(reading.skipped, elements), [reading.skipped, elements]);
 	const whyNone = useMemo(() => new Map(reading.skipped.map((skipped) => [skipped.entityNumber, skipped.why])), [reading.skipped]);
-	const without = elements.filter((element) => element.checkpointCount === 0).length;
+	const chosen = checkpoints.find(({ id }) => id === checkpointId) ?? null;
+	const chosenElement = elements.find((element) => element.elementId === (chosen?.elementId ?? elementId)) ?? null;
+	const leftOut = checkpoints.filter(({ requirement }) => requirement === 'left-out').length;
+
+	const chooseCheckpoint = useCallback(
+		(id: string) => {
+			setCheckpoint(id);
+			chooseElement(null);
+		},
+		[setCheckpoint, chooseElement],
+	);
+	const chooseOnlyElement = useCallback(
+		(id: string) => {
+			setCheckpoint(null);
+			chooseElement(id);
+		},
+		[setCheckpoint, chooseElement],
+	);
+	const onEntity = useCallback(
+		(entityNumber: number) => {
+			const element = elements.find((each) => each.entityNumber === entityNumber);
+			if (element) chooseOnlyElement(element.elementId);
+		},
+		[elements, chooseOnlyElement],
+	);
+	const tick = useCallback((ids: readonly string[], isTicked: boolean) => {
+		setTicked((before) => {
+			const after = new Set(before);
+			for (const id of ids)
+				if (isTicked) after.add(id);
+				else after.delete(id);
+			return after;
+		});
+	}, []);
+	const untick = useCallback(() => setTicked(noIds), []);
+	const type = useCallback((id: string, mark: string) => setTyped((before) => new Map(before ?? []).set(id, mark)), []);
+	const frame = (): void => {
+		if (chosen !== null) commands.current?.frame(grown({ min: chosen.place, max: chosen.place }, 2));
+		else if (chosenElement?.boxM) commands.current?.frame(grown(chosenElement.boxM, 0.5));
+	};
+	const pickedElement = picked === null ? null : (elements.find(({ entityNumber }) => entityNumber === picked.entityNumber) ?? null);
+	const isCheckpoints = show === 'checkpoints';
+	const without = elements.length - new Set(checkpoints.map((checkpoint) => checkpoint.elementId)).size;
+	const shownOnPhone = isPhone ? (view ?? 'list') : null;
+
+	const treeView = <ModelTree tree={tree} place={place} onPlace={(next) => setWhere(placeToAddress(next))} />;
 	return (
 		<>
 			<Strip
@@ -28,29 +128,194 @@ export default function RevisionPage() {
 					<Link key="models" to={`/sites/${siteId}/model`} className="underline underline-offset-3">
 						{revision.modelName}
 					</Link>,
-					`revision ${revision.number}`,
+					`revision ${revision.number}${isNewest ? ', newest' : ''}`,
 					revision.fileName,
 					reading.schema,
 					reading.unit,
 					reading.project,
 				]}
 			/>
-			<Headline title={`${revision.modelName}, revision ${revision.number}`}>
-				{without === 0
-					? `All ${counted(elements.length, 'element')} have checkpoints: ${counted(revision.checkpointCount, 'place')}`
-					: `${counted(elements.length - without, 'element')} have ${counted(revision.checkpointCount, 'checkpoint')}; ${without} have none`}
+			<Headline
+				title={`${revision.modelName}, revision ${revision.number}`}
+				acts={
+					<FieldList
+						siteId={siteId}
+						revisionId={revisionId}
+						name={`${revision.modelName} rev ${revision.number}`}
+						storeys={[...new Set(elements.flatMap(({ storey }) => (storey === '' ? [] : [storey])))]}
+						whyNoMap={whyNoMap(reading)}
+					/>
+				}
+			>
+				{headlineOf(elements.length, without, checkpoints.length, leftOut)}
 			</Headline>
-			<p className="mt-0 max-w-[75ch]">{frameWords(reading.mapConversion)} Everything is checked in the model’s own frame.</p>
-			<div className="flex flex-col gap-6">
-				{reading.findings.length > 0 && (
-					<section aria-label="What was found in the file" className="flex flex-col gap-3">
-						{reading.findings.map((finding) => (
-							<FindingCard key={finding.code + finding.message} title={finding.message} />
-						))}
-					</section>
-				)}
-				<ElementTable elements={elements} whyNone={whyNone} />
+			<Georeference reading={reading} />
+			<div className="mt-3 mb-4">
+				<ModelFindings findings={reading.findings} />
 			</div>
+			<div className="mb-3 flex flex-wrap items-end gap-2.5">
+				<Segmented
+					legend="List"
+					value={isCheckpoints ? 'checkpoints' : 'elements'}
+					onChange={(next) => setShow(next === 'checkpoints' ? next : null)}
+					options={[
+						{ value: 'elements', label: `Elements ${shown.length}` },
+						{ value: 'checkpoints', label: `Checkpoints ${shownCheckpoints.length}` },
+					]}
+				/>
+				<label className="flex min-w-0 flex-1 basis-56 flex-col font-medium tablet:max-w-88">
+					<span className="sr-only">Find</span>
+					<input
+						type="search"
+						value={find ?? ''}
+						onChange={(event) => setFind(event.currentTarget.value || null)}
+						placeholder="Find: C/3, wall, ground …"
+						className="min-h-10 rounded-corner border-[1.5px] border-field bg-sheet px-3 font-normal text-ink placeholder:text-second pointer-coarse:min-h-12"
+					/>
+				</label>
+				{mayName && !isCheckpoints && (
+					<NameBar
+						siteId={siteId}
+						revisionId={revisionId}
+						elements={elements}
+						typed={typed}
+						onBegin={() => setTyped(new Map())}
+						onEnd={() => setTyped(null)}
+					/>
+				)}
+				{isPhone && (
+					<Segmented
+						legend="Show as"
+						value={shownOnPhone ?? 'list'}
+						onChange={(next) => setView(next === 'list' ? null : next)}
+						options={[
+							{ value: 'list', label: 'List' },
+							{ value: 'plan', label: 'On plan' },
+							{ value: 'model', label: 'On model' },
+						]}
+					/>
+				)}
+			</div>
+			<div className="grid gap-3.5 cabin:grid-cols-[15rem_minmax(0,1fr)] desk:grid-cols-[15rem_minmax(0,1.35fr)_minmax(0,1fr)]">
+				{isPhone ? (
+					<details>
+						<summary className="min-h-12 cursor-pointer py-2.5 font-medium">
+							{place.storey === null ? 'By storey and class' : placeToAddress(place)?.replace('/Ifc', ', ')}
+						</summary>
+						{treeView}
+					</details>
+				) : (
+					<div className="self-start">{treeView}</div>
+				)}
+				<div className={isPhone && shownOnPhone !== 'list' ? 'hidden' : 'flex min-w-0 flex-col gap-2.5'}>
+					{mayChoose && isCheckpoints && <ChooseBar siteId={siteId} revisionId={revisionId} ids={[...ticked]} onDone={untick} />}
+					{isCheckpoints ? (
+						<CheckpointTable
+							elements={shown}
+							ofElement={ofElement}
+							chosenId={chosen?.id ?? null}
+							onChoose={chooseCheckpoint}
+							ticked={ticked}
+							onTick={tick}
+							mayTick={mayChoose}
+						/>
+					) : (
+						<ElementTable
+							elements={shown}
+							chosenId={chosenElement?.elementId ?? null}
+							onChoose={chooseOnlyElement}
+							typed={mayName ? typed : null}
+							onType={type}
+						/>
+					)}
+				</div>
+				<div className="flex min-w-0 flex-col gap-3.5 cabin:col-start-2 desk:col-start-3">
+					{(!isPhone || shownOnPhone !== 'list') && (
+						<div className="h-[min(26rem,60dvh)]">
+							<RevisionViewer
+								siteId={siteId}
+								revision={revision}
+								elements={elements}
+								shown={shown}
+								checkpoints={shownCheckpoints}
+								chosen={chosen}
+								chosenElement={chosenElement}
+								mode={view === 'model' ? 'model' : 'plan'}
+								onMode={(next) => setView(next === 'model' || isPhone ? next : null)}
+								isPlacing={isPlacing}
+								commands={commands}
+								onChoose={chooseCheckpoint}
+								onElement={onEntity}
+								onPlace={setPicked}
+							/>
+						</div>
+					)}
+					{mayChoose && isNewest && (!isPhone || shownOnPhone !== 'list') && (
+						<div className="flex flex-wrap gap-2">
+							<PressChip
+								onPress={() => {
+									setPlacing(!isPlacing);
+									if (!isPlacing) setView('model');
+								}}
+								title="Press a face of the model: a checkpoint of your own"
+							>
+								{isPlacing ? 'Stop placing' : 'Place a checkpoint'}
+							</PressChip>
+						</div>
+					)}
+					{chosenElement ? (
+						<ElementProperties
+							element={chosenElement}
+							checkpoint={chosen}
+							whyNone={
+								chosenElement.checkpointCount === 0 ? (whyNone.get(chosenElement.entityNumber) ?? 'its class is not checked') : undefined
+							}
+							timeZone={site.timeZone}
+							acts={
+								<span className="flex gap-1.5">
+									{(!isPhone || shownOnPhone !== 'list') && <PressChip onPress={frame}>Frame</PressChip>}
+									<PressChip onPress={() => setWhere(placeToAddress({ storey: storeyOf(chosenElement), class: chosenElement.class }))}>
+										Only its kind
+									</PressChip>
+								</span>
+							}
+						/>
+					) : (
+						!isPhone && <p className="m-0 px-1 text-second">Choose a row or a place: here stands what is known of it.</p>
+					)}
+				</div>
+			</div>
+			<div className="mt-6">
+				<WithoutCheckpoints reasons={reasons} onElement={chooseOnlyElement} />
+			</div>
+			{picked && pickedElement && (
+				<AddCheckpointForm
+					siteId={siteId}
+					revisionId={revisionId}
+					element={pickedElement}
+					place={picked.place}
+					normal={picked.normal}
+					onAdded={(id) => {
+						setPicked(null);
+						setPlacing(false);
+						setShow('checkpoints');
+						chooseCheckpoint(id);
+					}}
+					onClose={() => setPicked(null)}
+				/>
+			)}
 		</>
 	);
+}
+
+function headlineOf(elementCount: number, without: number, checkpointCount: number, leftOut: number): string {
+	const asked = leftOut === 0 ? '' : `, ${leftOut} of them left out`;
+	return without === 0
+		? `All ${counted(elementCount, 'element')} have checkpoints: ${counted(checkpointCount, 'place')}${asked}`
+		: `${counted(elementCount - without, 'element')} have ${counted(checkpointCount, 'checkpoint')}${asked}; ${without} have none`;
+}
+
+function whyNoMap({ mapConversion, metresPerUnit }: RevisionDetail['reading']): string | null {
+	if (mapConversion === null) return 'The model does not say where it lies on the map.';
+	return mapScaleFinding(mapConversion, metresPerUnit)?.message ?? null;
 }
