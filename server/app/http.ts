@@ -64,7 +64,7 @@ const refuseForeignOrigin: RequestHandler = (request, response, next) => {
 async function recognise(sessions: Sessions, request: Request, response: Response): Promise<SignedIn | null> {
 	const { signedIn, cookie } = await sessions.validate(request.headers.cookie);
 	if (cookie !== null) response.append('set-cookie', cookie);
-	return signedIn;
+	return signedIn && { ...signedIn, ...(request.ip !== undefined && { address: request.ip }) };
 }
 
 function calls({ platform, sessions, router }: Pick<HttpParts, 'platform' | 'sessions' | 'router'>): RequestHandler {

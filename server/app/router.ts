@@ -12,6 +12,7 @@ import { siteRoutes } from '../features/site/routes.ts';
 import { surveyRoutes } from '../features/survey/routes.ts';
 import { toleranceRoutes } from '../features/tolerance/routes.ts';
 import type { RequestContext } from '../platform/guard.ts';
+import { acceptInvitationRoute } from '../workflows/accept-invitation.ts';
 import { foundSiteRoute } from '../workflows/found-site.ts';
 import { storeControlRoute } from '../workflows/store-control.ts';
 import { storeSurveyRoute } from '../workflows/store-survey.ts';
@@ -19,7 +20,7 @@ import { storeSurveyRoute } from '../workflows/store-survey.ts';
 /** All routes of the contract: one that is missing does not compile. */
 export const router = {
 	account: accountRoutes,
-	site: { ...siteRoutes, found: foundSiteRoute },
+	site: { ...siteRoutes, found: foundSiteRoute, acceptInvitation: acceptInvitationRoute },
 	mail: mailRoutes,
 	job: jobRoutes,
 	model: modelRoutes,

@@ -5,12 +5,18 @@ import type { Transaction } from '../db/database.ts';
 import { auditEntries } from '../db/schema/record.ts';
 import type { Member, SignedIn } from './platform.ts';
 
+/** Whoever came by a link, without a session. */
+export interface Nobody {
+	userId: null;
+	address: string | null;
+}
+
 /**
  * Writes who did what, as what, inside the transaction that does it: no act without its entry, no entry without its act.
  * A member's entry belongs to the site, a signed-in person's to nobody but them; `siteId` names the site where the act made one.
  * The time is the database's, so that the order of entries does not depend on which process wrote them.
  */
-export async function audit(tx: Transaction, actor: Member | SignedIn, entry: AuditEntry, siteId?: string): Promise<void> {
+export async function audit(tx: Transaction, actor: Member | SignedIn | Nobody, entry: AuditEntry, siteId?: string): Promise<void> {
 	const member = 'siteId' in actor ? actor : null;
 	await tx.insert(auditEntries).values({
 		id: randomUUID(),
@@ -20,6 +26,7 @@ export async function audit(tx: Transaction, actor: Member | SignedIn, entry: Au
 		kind: entry.kind,
 		subjectId: entry.subjectId,
 		data: entry.data,
+		address: actor.address ?? null,
 		at: sql`now()`,
 	});
 }

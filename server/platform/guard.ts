@@ -4,7 +4,7 @@ import { contract } from '#shared/contract.ts';
 import { mayWith, type Permission, type SitePermission } from '#shared/permissions.ts';
 import { memberOf } from './membership.ts';
 import type { Member, Platform, SignedIn } from './platform.ts';
-import { Conflict, NotFound, Refused } from './refuse.ts';
+import { Conflict, Forbidden, NotFound, Refused } from './refuse.ts';
 import type { Tries } from './tries.ts';
 
 /** The session of this request. What is set goes out with the answer as a cookie. */
@@ -84,6 +84,7 @@ function asContractError(error: unknown): unknown {
 		return new ORPCError('REFUSED', { status: 422, message: error.message, data });
 	}
 	if (error instanceof Conflict) return new ORPCError('CONFLICT', { status: 409, message: error.message });
+	if (error instanceof Forbidden) return new ORPCError('FORBIDDEN', { status: 403, message: error.message });
 	if (error instanceof NotFound) return new ORPCError('NOT_FOUND', { status: 404, message: error.message });
 	if (error instanceof ORPCError && error.code === 'BAD_REQUEST' && error.cause instanceof ValidationError) {
 		// Only path and sentence: zod's own issues echo patterns and what was sent.

@@ -19,5 +19,5 @@ export async function memberOf(db: Handle, person: SignedIn, siteId: string, now
 		.orderBy(asc(memberships.role));
 	if (rows.length === 0) return null;
 	const companyIds = new Set(rows.flatMap(({ companyId }) => (companyId === null ? [] : [companyId])));
-	return { ...person, siteId, roles: rows.map(({ role }) => role), companyIds: [...companyIds] };
+	return { ...person, siteId, roles: [...new Set(rows.map(({ role }) => role))], companyIds: [...companyIds] };
 }

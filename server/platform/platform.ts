@@ -75,6 +75,8 @@ export interface SignedIn {
 	userId: string;
 	name: string;
 	email: string;
+	/** The network address of the request, for the audit trail; a job has none. */
+	address?: string;
 }
 
 /** A person on the site of the request. */

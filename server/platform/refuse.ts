@@ -20,6 +20,14 @@ export class Conflict extends Error {
 	}
 }
 
+/** The member's role does not reach this far. FORBIDDEN. */
+export class Forbidden extends Error {
+	constructor(message = 'Your role on this site does not allow this.') {
+		super(message);
+		this.name = 'Forbidden';
+	}
+}
+
 /** Not there, on another site, or not this person's to see: the same answer. NOT_FOUND. */
 export class NotFound extends Error {
 	constructor(message = 'There is no such thing here, or it is not yours to see.') {

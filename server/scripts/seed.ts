@@ -133,7 +133,9 @@ async function addPeople(platform: Platform): Promise<{ siteId: string; members:
 			const userId = newId();
 			const companyId = company === null ? null : (companyIds.get(company) ?? null);
 			await tx.insert(users).values({ id: userId, email, name, passwordHash, createdAt: now() });
-			await tx.insert(memberships).values({ id: newId(), siteId, userId, role, companyId, fromAt: now() });
+			// The one of each company leads its people.
+			const isLead = role === 'contractor';
+			await tx.insert(memberships).values({ id: newId(), siteId, userId, role, companyId, isLead, fromAt: now() });
 			members.set(role, { userId, name, email, siteId, roles: [role], companyIds: companyId === null ? [] : [companyId] });
 		}
 		const founder = memberOf(members, 'project-engineer');

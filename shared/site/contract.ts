@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
 import { roles } from '../permissions.ts';
+import { emailAddress, peopleContract } from './people-contract.ts';
 
 export const role = z.enum(roles);
 
@@ -32,12 +33,13 @@ export const siteDetail = siteSummary.extend({
 	line: lineSchema,
 });
 
+/** The owner's contact is invited as the first owner's representative, who names all later ones. */
+export const foundSiteInput = z.object({ name: plainText(80), timeZone: plainText(60), ownersContact: emailAddress.nullable().optional() });
+
 export const siteContract = {
 	list: base.meta({ permission: 'signed-in' }).output(z.array(siteSummary)),
 	/** The founder is site and project engineer of a new site, with a starter sheet issued. */
-	found: base
-		.meta({ permission: 'signed-in' })
-		.input(z.object({ name: plainText(80), timeZone: plainText(60) }))
-		.output(siteSummary),
+	found: base.meta({ permission: 'signed-in' }).input(foundSiteInput).output(siteSummary),
 	get: base.meta({ permission: 'site.see' }).input(siteInput).output(siteDetail),
+	...peopleContract,
 };

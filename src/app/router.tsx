@@ -23,6 +23,14 @@ const sitePage = (path: string, place: Place, load: () => Promise<PageModule>, b
 	handle: { place, ...(back && { back }) } satisfies PageHandle,
 });
 
+/** A page of a site that hangs from no place of the line. */
+const besidePage = (path: string, load: () => Promise<PageModule>): RouteObject => ({
+	path,
+	lazy: page(load),
+	errorElement: <RouteFault />,
+	handle: { place: null, back: { path: '', word: 'Board' } } satisfies PageHandle,
+});
+
 /** All addresses of the program. A new page is a line here. */
 export const routes: RouteObject[] = [
 	{
@@ -30,6 +38,7 @@ export const routes: RouteObject[] = [
 		hydrateFallbackElement: <LoadingPage />,
 		children: [
 			{ path: '/sign-in', lazy: page(() => import('#src/pages/sign-in/sign-in-page.tsx')) },
+			{ path: '/invitation', lazy: page(() => import('#src/pages/invitation/invitation-page.tsx')) },
 			{ path: '/mailbox', lazy: page(() => import('#src/pages/mailbox/mailbox-page.tsx')) },
 			{
 				element: <Gate />,
@@ -74,6 +83,7 @@ export const routes: RouteObject[] = [
 							sitePage('checks/:checkId', 'check', () => import('#src/pages/check/check-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('pours', 'pours', () => import('#src/pages/pours/pours-page.tsx')),
+							besidePage('people', () => import('#src/pages/people/people-page.tsx')),
 							{ path: '*', lazy: page(() => import('#src/pages/not-found/not-found-page.tsx')) },
 						],
 					},

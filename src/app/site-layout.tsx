@@ -25,10 +25,10 @@ function SiteFrame() {
 					<Head
 						memberRole={roleWords(site.roles)}
 						back={
-							place === null
-								? null
-								: back
-									? { to: `${home}/${generatePath(back.path, parts)}`, word: back.word }
+							back
+								? { to: back.path === '' ? home : `${home}/${generatePath(back.path, parts)}`, word: back.word }
+								: place === null
+									? null
 									: { to: home, word: site.name }
 						}
 					>

@@ -13,8 +13,10 @@ export const auditEntries = pgTable(
 		roles: text('roles').array().notNull(),
 		kind: text('kind').notNull(),
 		subjectId: text('subject_id'),
+		/** The network address the act came from; null where a job or the server itself acted. */
+		address: text('address'),
 		data: jsonb('data').$type<Record<string, unknown>>().notNull(),
 		at: at('at').notNull(),
 	},
-	(t) => [index('audit_entries_site').on(t.siteId, t.at)],
+	(t) => [index('audit_entries_site').on(t.siteId, t.at), index('audit_entries_subject').on(t.siteId, t.subjectId)],
 );

@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm';
-import { boolean, check, foreignKey, index, pgEnum, pgTable, text, unique, uuid } from 'drizzle-orm/pg-core';
+import { boolean, check, foreignKey, index, pgEnum, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
 import { roles } from '../../../shared/permissions.ts';
 import { users } from './account.ts';
 import { at, id, siteId } from './columns.ts';
@@ -44,7 +44,7 @@ export const buildings = pgTable(
 	(t) => [unique('buildings_site_id').on(t.siteId, t.id), unique('buildings_name').on(t.siteId, t.name)],
 );
 
-/** One row a role; a person may hold several, never the owner's representative with another (kept by the policy). Leaving ends the row, past acts stay. */
+/** One row a role; a person may hold several, never the owner's representative with another (the database refuses it). Leaving ends the row, past acts stay. */
 export const memberships = pgTable(
 	'memberships',
 	{
@@ -55,6 +55,10 @@ export const memberships = pgTable(
 			.references(() => users.id),
 		role: roleEnum('role').notNull(),
 		companyId: uuid('company_id'),
+		/** Of a contractor: names and sends away the company's people on this site. */
+		isLead: boolean('is_lead').notNull().default(false),
+		/** A deputy's holder; a deputy's row has an end from the start. */
+		deputyFor: uuid('deputy_for').references(() => users.id),
 		fromAt: at('from_at').notNull(),
 		leftAt: at('left_at'),
 	},
@@ -63,8 +67,49 @@ export const memberships = pgTable(
 			columns: [t.siteId, t.companyId],
 			foreignColumns: [companies.siteId, companies.id],
 		}),
-		unique('memberships_once').on(t.siteId, t.userId, t.role),
+		uniqueIndex('memberships_once').on(t.siteId, t.userId, t.role).where(sql`${t.leftAt} is null`),
+		index('memberships_site').on(t.siteId, t.userId),
 		index('memberships_user').on(t.userId),
 		check('memberships_contractor_has_company', sql`${t.role} <> 'contractor' or ${t.companyId} is not null`),
+		check('memberships_lead_of_contractor', sql`not ${t.isLead} or ${t.role} = 'contractor'`),
+		check('memberships_deputy_ends', sql`${t.deputyFor} is null or ${t.leftAt} is not null`),
+	],
+);
+
+/** By mail, for one use. Only the hash of what the link holds is kept. Open: not accepted, not ended, not over. */
+export const invitations = pgTable(
+	'invitations',
+	{
+		id: id(),
+		siteId: siteId().references(() => sites.id),
+		email: text('email').notNull(),
+		roles: roleEnum('roles').array().notNull(),
+		companyId: uuid('company_id'),
+		isLead: boolean('is_lead').notNull(),
+		/** Of a deputy: for whom, from when, until when. */
+		deputyFor: uuid('deputy_for').references(() => users.id),
+		fromAt: at('from_at'),
+		untilAt: at('until_at'),
+		tokenHash: text('token_hash').notNull(),
+		invitedBy: uuid('invited_by')
+			.notNull()
+			.references(() => users.id),
+		createdAt: at('created_at').notNull(),
+		sentAt: at('sent_at').notNull(),
+		expiresAt: at('expires_at').notNull(),
+		acceptedAt: at('accepted_at'),
+		acceptedBy: uuid('accepted_by').references(() => users.id),
+		/** Withdrawn, or declined by whoever has the link. */
+		endedAt: at('ended_at'),
+		isDeclined: boolean('is_declined').notNull(),
+	},
+	(t) => [
+		foreignKey({ columns: [t.siteId, t.companyId], foreignColumns: [companies.siteId, companies.id] }),
+		uniqueIndex('invitations_token').on(t.tokenHash),
+		index('invitations_site').on(t.siteId),
+		check('invitations_token_hashed', sql`${t.tokenHash} ~ '^[0-9a-f]{64}$'`),
+		check('invitations_contractor_has_company', sql`not ('contractor' = any(${t.roles})) or ${t.companyId} is not null`),
+		check('invitations_deputy_ends', sql`${t.deputyFor} is null or (${t.fromAt} is not null and ${t.untilAt} is not null)`),
+		check('invitations_accepted_by', sql`(${t.acceptedAt} is null) = (${t.acceptedBy} is null)`),
 	],
 );

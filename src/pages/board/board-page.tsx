@@ -1,6 +1,7 @@
 import { useQuery, useSuspenseQueries } from '@tanstack/react-query';
 import { Link } from 'react-router-dom';
 import type { CheckDetail } from '#shared/check/contract.ts';
+import { BesideTheLine } from '#src/features/site/beside-the-line.tsx';
 import { nextActs } from '#src/features/site/next-acts.ts';
 import { NextForYou } from '#src/features/site/next-for-you.tsx';
 import { PlacesList } from '#src/features/site/places-list.tsx';
@@ -52,6 +53,7 @@ export default function BoardPage() {
 				{check && <Homeless siteId={siteId} check={check} />}
 			</section>
 			<PlacesList siteId={siteId} line={line} />
+			<BesideTheLine siteId={siteId} />
 		</div>
 	);
 }

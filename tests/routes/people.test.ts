@@ -1,0 +1,362 @@
+import { randomUUID } from 'node:crypto';
+import { setTimeout as wait } from 'node:timers/promises';
+import { safe } from '@orpc/client';
+import { and, eq } from 'drizzle-orm';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Role } from '#shared/permissions.ts';
+import { users } from '../../server/db/schema/account.ts';
+import { auditEntries } from '../../server/db/schema/record.ts';
+import { invitations, memberships } from '../../server/db/schema/site.ts';
+import { areSeparate, type Held, mayName } from '../../server/features/site/naming.ts';
+import { cookieOf, openTestServer, type TestServer } from './harness.ts';
+
+const password = 'north river 31 crane barrow';
+
+let server: TestServer;
+type Actor = Awaited<ReturnType<TestServer['addMember']>>;
+let siteId: string;
+let otherSiteId: string;
+let fennick: string;
+let oster: string;
+const on: Record<string, Actor> = {};
+beforeAll(async () => {
+	server = await openTestServer({ proxyHops: 1 });
+	siteId = await server.addSite('Quay 7');
+	otherSiteId = await server.addSite('Elsewhere');
+	fennick = await server.addCompany(siteId, 'Fennick Forms');
+	oster = await server.addCompany(siteId, 'Oster Steel');
+	on.site = await server.addMember(siteId, ['site-engineer']);
+	on.project = await server.addMember(siteId, ['project-engineer']);
+	on.lead = await server.addMember(siteId, ['contractor'], fennick);
+	await server.platform.db.update(memberships).set({ isLead: true }).where(eq(memberships.userId, on.lead.userId));
+	on.worker = await server.addMember(siteId, ['contractor'], fennick);
+	on.steel = await server.addMember(siteId, ['contractor'], oster);
+	on.owner = await server.addMember(siteId, ['owners-representative']);
+	on.observer = await server.addMember(siteId, ['observer']);
+	on.stranger = await server.addMember(otherSiteId, ['project-engineer']);
+});
+afterAll(() => server.close());
+
+/** The newest link that was mailed to this address. */
+async function tokenFor(email: string, than?: string): Promise<string> {
+	for (let n = 0; n < 150; n += 1) {
+		const mail = (await server.api().mail.mailbox()).find(({ to }) => to === email);
+		const token = /\/invitation#([\w-]+)/.exec(mail?.text ?? '')?.[1];
+		if (token !== undefined && token !== than) return token;
+		await wait(100);
+	}
+	throw new Error(`No mail came for ${email}`);
+}
+
+const newEmail = () => `new.${randomUUID().slice(0, 8)}@example.com`;
+const asked = (role: Role | 'both-engineers', email = newEmail(), companyId: string | null = null) => ({
+	siteId,
+	email,
+	role,
+	companyId,
+	isLead: false,
+});
+const codeOf = async (call: Promise<unknown>) => {
+	const { error } = await safe(call);
+	if (error === null) return 'done';
+	const refused = error as { code?: string; data?: { code?: string } };
+	return refused.data?.code ?? refused.code ?? String(error);
+};
+
+describe('an invitation', () => {
+	it('names inviter, site, role, company and what waits, and makes a new person a member, signed in', async () => {
+		const email = newEmail();
+		await on.lead!.api.site.invite(asked('contractor', email.toUpperCase(), fennick));
+		const token = await tokenFor(email);
+		const mail = (await server.api().mail.mailbox()).find(({ to }) => to === email)!;
+		for (const words of [on.lead!.name, 'Quay 7', 'contractor', 'Fennick Forms', 'Nothing is on the site yet', 'for one use']) {
+			expect(mail.text).toContain(words);
+		}
+		const [row] = await server.platform.db.select().from(invitations).where(eq(invitations.email, email));
+		expect(JSON.stringify(row)).not.toContain(token);
+		expect(await server.api().site.openInvitation({ token })).toMatchObject({
+			siteName: 'Quay 7',
+			email,
+			isKnown: false,
+			roles: ['contractor'],
+		});
+
+		const answer = await server.fetch('/rpc/site/acceptInvitation', {
+			method: 'POST',
+			headers: { 'content-type': 'application/json' },
+			// Fields nobody asked for change nothing.
+			body: JSON.stringify({
+				json: {
+					token,
+					newPerson: { name: 'Nora New', password, role: 'project-engineer', email: 'x@example.com' },
+					roles: ['observer'],
+					siteId: otherSiteId,
+				},
+			}),
+		});
+		expect(answer.status).toBe(200);
+		const mine = server.api(cookieOf(answer.headers.get('set-cookie') ?? ''));
+		expect(await mine.account.me()).toMatchObject({ name: 'Nora New', email });
+		expect(await mine.site.list()).toMatchObject([{ siteId, roles: ['contractor'] }]);
+		expect(await server.api().account.signIn({ email, password })).toMatchObject({ name: 'Nora New' });
+		const kinds = await server.platform.db
+			.select({ kind: auditEntries.kind })
+			.from(auditEntries)
+			.where(and(eq(auditEntries.siteId, siteId), eq(auditEntries.subjectId, row!.id)));
+		expect(kinds.map(({ kind }) => kind).sort()).toEqual(['invitation-accepted', 'member-invited']);
+		// Used up.
+		expect(await codeOf(server.api().site.openInvitation({ token }))).toBe('NOT_FOUND');
+		expect(await codeOf(mine.site.acceptInvitation({ token, newPerson: null }))).toBe('NOT_FOUND');
+	});
+
+	it('is accepted once where two open it at the same moment', async () => {
+		const email = newEmail();
+		await on.project!.api.site.invite(asked('observer', email));
+		const token = await tokenFor(email);
+		const accept = (name: string) => codeOf(server.api().site.acceptInvitation({ token, newPerson: { name, password } }));
+		const outcomes = await Promise.all([accept('First'), accept('Second'), accept('Third')]);
+		expect(outcomes.filter((outcome) => outcome === 'done')).toHaveLength(1);
+		expect(await server.platform.db.select().from(users).where(eq(users.email, email))).toHaveLength(1);
+	});
+
+	it('holds for a known person only as that person', async () => {
+		const known = await server.addPerson('Known Kim', password);
+		await on.project!.api.site.invite(asked('both-engineers', known.email));
+		const token = await tokenFor(known.email);
+		expect(await server.api().site.openInvitation({ token })).toMatchObject({ isKnown: true });
+		const newPerson = { name: 'Mallory', password };
+		expect(await codeOf(server.api().site.acceptInvitation({ token, newPerson }))).toBe('sign-in-first');
+		expect(await codeOf(on.stranger!.api.site.acceptInvitation({ token, newPerson: null }))).toBe('other-person');
+		const mine = server.api(known.cookie);
+		expect(await mine.site.acceptInvitation({ token, newPerson: null })).toEqual({ siteId });
+		expect(await mine.site.list()).toMatchObject([{ siteId, roles: ['site-engineer', 'project-engineer'] }]);
+	});
+
+	it.each([
+		['over', { expiresAt: new Date(Date.now() - 1000) }],
+		['withdrawn', { endedAt: new Date() }],
+	])('does not open when it is %s', async (_, change) => {
+		const email = newEmail();
+		const { invitationId } = await on.project!.api.site.invite(asked('observer', email));
+		const token = await tokenFor(email);
+		await server.platform.db.update(invitations).set(change).where(eq(invitations.id, invitationId));
+		for (const call of [
+			server.api().site.openInvitation({ token }),
+			server.api().site.declineInvitation({ token }),
+			server.api().site.acceptInvitation({ token, newPerson: { name: 'Late', password } }),
+		]) {
+			expect(await codeOf(call)).toBe('NOT_FOUND');
+		}
+	});
+
+	it('is told apart neither altered nor made up', async () => {
+		const email = newEmail();
+		await on.project!.api.site.invite(asked('observer', email));
+		const token = await tokenFor(email);
+		const altered = (token.startsWith('A') ? 'B' : 'A') + token.slice(1);
+		const answers = await Promise.all(
+			[altered, 'x'.repeat(43)].map(async (wrong) =>
+				JSON.stringify((await safe(server.api().site.openInvitation({ token: wrong }))).error),
+			),
+		);
+		expect(new Set(answers).size).toBe(1);
+		expect(await codeOf(server.api().site.openInvitation({ token: `${token}x` }))).toBe('BAD_REQUEST');
+	});
+
+	it('sent again has another link, and the old one no longer holds; "not me" ends it', async () => {
+		const email = newEmail();
+		const { invitationId } = await on.project!.api.site.invite(asked('observer', email));
+		const old = await tokenFor(email);
+		expect(await codeOf(on.project!.api.site.invite(asked('observer', email)))).toBe('already-invited');
+		await on.project!.api.site.sendAgain({ siteId, invitationId });
+		const token = await tokenFor(email, old);
+		expect(await codeOf(server.api().site.openInvitation({ token: old }))).toBe('NOT_FOUND');
+		await server.api().site.declineInvitation({ token });
+		expect(await codeOf(server.api().site.openInvitation({ token }))).toBe('NOT_FOUND');
+		const { invitations: listed } = await on.project!.api.site.people({ siteId });
+		expect(listed.find((one) => one.invitationId === invitationId)?.state).toBe('declined');
+		const entries = await server.platform.db.select().from(auditEntries).where(eq(auditEntries.subjectId, invitationId));
+		expect(entries.find(({ kind }) => kind === 'invitation-declined')).toMatchObject({ userId: null, siteId, address: expect.any(String) });
+	});
+
+	it('of another site is not there for sending again or withdrawing', async () => {
+		const { invitationId } = await on.project!.api.site.invite(asked('observer'));
+		for (const id of [invitationId, randomUUID()]) {
+			expect(await codeOf(on.stranger!.api.site.sendAgain({ siteId: otherSiteId, invitationId: id }))).toBe('NOT_FOUND');
+			expect(await codeOf(on.stranger!.api.site.withdrawInvitation({ siteId: otherSiteId, invitationId: id }))).toBe('NOT_FOUND');
+		}
+		// Nor one that the member could not have written.
+		expect(await codeOf(on.lead!.api.site.withdrawInvitation({ siteId, invitationId }))).toBe('NOT_FOUND');
+	});
+
+	it('takes no password that is short, common or made of one’s own name', async () => {
+		const email = 'marjolein.vandenberg@example.com';
+		await on.project!.api.site.invite(asked('observer', email));
+		const token = await tokenFor(email);
+		const accept = (tried: string) =>
+			codeOf(server.api().site.acceptInvitation({ token, newPerson: { name: 'Marjolein Vandenberg', password: tried } }));
+		expect(await accept('short words')).toBe('BAD_REQUEST');
+		for (const tried of ['Password1234!', 'qwertyuiop123', 'aaaaaaaaaaaaaaa', 'Marjolein2026!', 'P@ssw0rd2026!!', 'plumb-and-level']) {
+			expect([tried, await accept(tried)]).toEqual([tried, 'common-password']);
+		}
+		expect(await accept(password)).toBe('done');
+	});
+});
+
+describe('who may name whom', () => {
+	const nobody = { role: 'observer', companyId: null, isLead: false, isDeputy: false } satisfies Held;
+	const project = { ...nobody, role: 'project-engineer' } satisfies Held;
+	const owner = { ...nobody, role: 'owners-representative' } satisfies Held;
+	const lead = { ...nobody, role: 'contractor', companyId: 'a', isLead: true } satisfies Held;
+
+	it('follows the table', () => {
+		const roles = ['site-engineer', 'project-engineer', 'contractor', 'owners-representative', 'observer'] as const;
+		const named = (held: Held, hasHad = true) => roles.filter((role) => mayName([held], { role, companyId: 'a' }, hasHad));
+		expect(named(project)).toEqual(['site-engineer', 'project-engineer', 'contractor', 'observer']);
+		expect(named(project, false)).toEqual(roles);
+		expect(named(owner)).toEqual(['owners-representative']);
+		expect(named({ ...owner, isDeputy: true })).toEqual([]);
+		expect(named(lead)).toEqual(['contractor']);
+		expect(named({ ...lead, isLead: false })).toEqual([]);
+		expect(named({ ...lead, companyId: 'b' })).toEqual([]);
+		for (const held of [nobody, { ...nobody, role: 'site-engineer' } satisfies Held]) expect(named(held, false)).toEqual([]);
+		expect(areSeparate(['site-engineer', 'project-engineer'])).toBe(true);
+		expect(areSeparate(['owners-representative', 'observer'])).toBe(false);
+	});
+
+	it('is refused by the server for everybody else', async () => {
+		for (const who of ['site', 'observer']) expect(await codeOf(on[who]!.api.site.invite(asked('observer')))).toBe('FORBIDDEN');
+		expect(await codeOf(on.project!.api.site.invite(asked('owners-representative')))).toBe('FORBIDDEN');
+		expect(await codeOf(on.owner!.api.site.invite(asked('site-engineer')))).toBe('FORBIDDEN');
+		expect(await codeOf(on.worker!.api.site.invite(asked('contractor', newEmail(), fennick)))).toBe('FORBIDDEN');
+		expect(await codeOf(on.lead!.api.site.invite(asked('contractor', newEmail(), oster)))).toBe('FORBIDDEN');
+		expect(await codeOf(on.lead!.api.site.invite(asked('observer')))).toBe('FORBIDDEN');
+		expect(await codeOf(on.owner!.api.site.invite(asked('owners-representative')))).toBe('done');
+		// A company of another site, and a person who is not on this one.
+		const foreign = await server.addCompany(otherSiteId, 'Foreign Forms');
+		expect(await codeOf(on.project!.api.site.invite(asked('contractor', newEmail(), foreign)))).toBe('NOT_FOUND');
+		const given = { siteId, role: 'observer' as const, companyId: null, isLead: false };
+		expect(await codeOf(on.project!.api.site.giveRole({ ...given, userId: on.stranger!.userId }))).toBe('NOT_FOUND');
+		expect(await codeOf(on.observer!.api.site.giveRole({ ...given, userId: on.observer!.userId, role: 'project-engineer' }))).toBe(
+			'FORBIDDEN',
+		);
+	});
+
+	it('keeps owner’s representatives apart from every other role, by the policy and by the database', async () => {
+		expect(await codeOf(on.owner!.api.site.invite(asked('owners-representative', on.site!.email)))).toBe('both-sides');
+		expect(await codeOf(on.project!.api.site.invite(asked('observer', on.owner!.email)))).toBe('both-sides');
+		const given = { siteId, companyId: null, isLead: false };
+		expect(await codeOf(on.owner!.api.site.giveRole({ ...given, userId: on.project!.userId, role: 'owners-representative' }))).toBe(
+			'both-sides',
+		);
+		const row = { id: randomUUID(), siteId, companyId: null, fromAt: new Date() };
+		const write = (userId: string, role: Role) => server.platform.db.insert(memberships).values({ ...row, userId, role });
+		await expect(write(on.site!.userId, 'owners-representative')).rejects.toThrow();
+		await expect(write(on.owner!.userId, 'observer')).rejects.toThrow();
+		// Invited before, on the other side by the time of accepting.
+		const between = await server.addPerson('Ben Between');
+		await on.owner!.api.site.invite(asked('owners-representative', between.email));
+		const token = await tokenFor(between.email);
+		await write(between.userId, 'observer');
+		expect(await codeOf(server.api(between.cookie).site.acceptInvitation({ token, newPerson: null }))).toBe('both-sides');
+		expect(await server.api(between.cookie).site.list()).toMatchObject([{ roles: ['observer'] }]);
+	});
+
+	it('lets the owner’s contact be named at founding, and that one name the next', async () => {
+		const founder = await server.addPerson('Fred Founder');
+		const email = newEmail();
+		const site = await server.api(founder.cookie).site.found({ name: 'New quay', timeZone: 'Europe/Zurich', ownersContact: email });
+		const token = await tokenFor(email);
+		const answer = await server.fetch('/rpc/site/acceptInvitation', {
+			method: 'POST',
+			headers: { 'content-type': 'application/json' },
+			body: JSON.stringify({ json: { token, newPerson: { name: 'Olive Owner', password } } }),
+		});
+		const owner = server.api(cookieOf(answer.headers.get('set-cookie') ?? ''));
+		const next = { ...asked('owners-representative'), siteId: site.siteId };
+		expect(await codeOf(server.api(founder.cookie).site.invite(next))).toBe('FORBIDDEN');
+		expect(await codeOf(owner.site.invite(next))).toBe('done');
+	});
+});
+
+describe('leaving', () => {
+	it('ends at once what a signed-in person sees, and leaves what was done', async () => {
+		const leaver = await server.addMember(siteId, ['site-engineer']);
+		const { people } = await on.project!.api.site.people({ siteId });
+		const { membershipId } = people.find(({ userId }) => userId === leaver.userId)!.holdings[0]!;
+		expect(await codeOf(on.observer!.api.site.endRole({ siteId, membershipId }))).toBe('FORBIDDEN');
+		expect(await codeOf(on.stranger!.api.site.endRole({ siteId: otherSiteId, membershipId }))).toBe('NOT_FOUND');
+		expect(await codeOf(leaver.api.site.get({ siteId }))).toBe('done');
+		await on.project!.api.site.endRole({ siteId, membershipId });
+		expect(await codeOf(leaver.api.site.get({ siteId }))).toBe('NOT_FOUND');
+		expect(await leaver.api.site.list()).toEqual([]);
+		expect(await codeOf(on.project!.api.site.endRole({ siteId, membershipId }))).toBe('NOT_FOUND');
+		const [row] = await server.platform.db.select().from(memberships).where(eq(memberships.id, membershipId));
+		expect(row?.leftAt).toBeInstanceOf(Date);
+		// Back again: a second row, the first stays.
+		await on.project!.api.site.invite(asked('site-engineer', leaver.email));
+		await leaver.api.site.acceptInvitation({ token: await tokenFor(leaver.email), newPerson: null });
+		expect(await server.platform.db.select().from(memberships).where(eq(memberships.userId, leaver.userId))).toHaveLength(2);
+	});
+
+	it('is anybody’s own to do, except the last who could name the next', async () => {
+		const lonely = await server.addSite('Lonely');
+		const project = await server.addMember(lonely, ['project-engineer']);
+		const owner = await server.addMember(lonely, ['owners-representative']);
+		const worker = await server.addMember(lonely, ['observer']);
+		const own = async ({ api, userId }: Actor) =>
+			(await api.site.people({ siteId: lonely })).people.find((one) => one.userId === userId)!.holdings[0]!.membershipId;
+		for (const actor of [project, owner]) {
+			expect(await codeOf(actor.api.site.endRole({ siteId: lonely, membershipId: await own(actor) }))).toBe('last-one');
+		}
+		expect(await codeOf(project.api.site.endRole({ siteId: lonely, membershipId: await own(owner) }))).toBe('FORBIDDEN');
+		expect(await codeOf(worker.api.site.endRole({ siteId: lonely, membershipId: await own(worker) }))).toBe('done');
+	});
+});
+
+describe('a deputy', () => {
+	it('is named by the holder alone, from and until, and names no owner’s representative', async () => {
+		const deputy = await server.addPerson('Dina Deputy');
+		const hourMs = 3_600_000;
+		const span = { fromAt: new Date(Date.now() - hourMs), untilAt: new Date(Date.now() + hourMs) };
+		const named = { siteId, email: deputy.email, role: 'owners-representative' as const, ...span };
+		for (const who of ['project', 'site', 'lead']) expect(await codeOf(on[who]!.api.site.nameDeputy(named))).toBe('FORBIDDEN');
+		expect(await codeOf(on.owner!.api.site.nameDeputy({ ...named, untilAt: new Date(Date.now() - 1) }))).toBe('no-time');
+		expect(await codeOf(on.owner!.api.site.nameDeputy({ ...named, email: on.site!.email }))).toBe('both-sides');
+		await on.owner!.api.site.nameDeputy(named);
+		const mine = server.api(deputy.cookie);
+		await mine.site.acceptInvitation({ token: await tokenFor(deputy.email), newPerson: null });
+		expect(await mine.site.list()).toMatchObject([{ siteId, roles: ['owners-representative'] }]);
+		expect(await codeOf(mine.site.invite(asked('owners-representative')))).toBe('FORBIDDEN');
+		// The time is over: the guard asks it at each request.
+		await server.platform.db
+			.update(memberships)
+			.set({ leftAt: new Date(Date.now() - 1) })
+			.where(eq(memberships.userId, deputy.userId));
+		expect(await codeOf(mine.site.get({ siteId }))).toBe('NOT_FOUND');
+	});
+});
+
+describe('the list of people', () => {
+	it('shows a contractor its own and who leads the site, not the other firms’ people, and no addresses beyond its own', async () => {
+		const seen = (await on.worker!.api.site.people({ siteId })).people;
+		const ids = seen.map(({ userId }) => userId);
+		for (const who of ['site', 'project', 'lead', 'worker', 'owner']) expect(ids).toContain(on[who]!.userId);
+		expect(ids).not.toContain(on.steel!.userId);
+		expect(seen.find(({ userId }) => userId === on.project!.userId)?.email).toBeNull();
+		expect(seen.find(({ userId }) => userId === on.lead!.userId)?.email).toBe(on.lead!.email);
+		expect((await on.worker!.api.site.people({ siteId })).invitations).toEqual([]);
+		expect((await on.project!.api.site.people({ siteId })).people.map(({ userId }) => userId)).toContain(on.steel!.userId);
+		expect((await on.observer!.api.site.people({ siteId })).nameableRoles).toEqual([]);
+	});
+});
+
+describe('companies', () => {
+	it('are added and renamed by the project engineer, each name once, those of other sites untouched', async () => {
+		const { companyId } = await on.project!.api.site.addCompany({ siteId, name: 'Harrow Piling' });
+		expect(await codeOf(on.project!.api.site.addCompany({ siteId, name: 'Harrow Piling' }))).toBe('name-taken');
+		expect(await codeOf(on.project!.api.site.renameCompany({ siteId, companyId, name: 'Oster Steel' }))).toBe('name-taken');
+		expect(await codeOf(on.stranger!.api.site.renameCompany({ siteId: otherSiteId, companyId, name: 'Taken over' }))).toBe('NOT_FOUND');
+		expect(await codeOf(on.project!.api.site.renameCompany({ siteId, companyId, name: 'Harrow & Sons' }))).toBe('done');
+	});
+});
