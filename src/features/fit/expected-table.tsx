@@ -57,6 +57,6 @@ export function ExpectedTable({ groups }: { groups: readonly PlannedGroup[] }) {
 function decidedWords({ capability, neverDecided, doubtful, count: all }: PlannedGroup) {
 	if (capability === null) return <span className="text-second">no rule sets two sides</span>;
 	if (neverDecided > 0) return <b>{neverDecided === all ? 'never within' : `${count(neverDecided)} never within`}</b>;
-	if (doubtful > 0) return `near its limits too close to call${doubtful === all ? '' : ` (${count(doubtful)})`}`;
+	if (doubtful > 0) return `near its limits not${doubtful === all ? '' : ` (${count(doubtful)})`}`;
 	return 'yes';
 }

@@ -11,9 +11,13 @@ export function StabilityTable({ test: { comparison, marks } }: { test: Stabilit
 					<thead className="border-b border-ink text-small text-second">
 						<tr>
 							{heads.map((head, index) => (
-								<th key={head} scope="col" className={`px-3 py-2.5 font-medium ${index === 0 || index === 5 ? 'text-left' : 'text-right'}`}>
+								<th
+									key={head}
+									scope="col"
+									className={`px-3 py-2.5 font-medium ${index === 0 || index === 5 ? 'text-left' : 'text-right'} ${index === 4 ? 'max-tablet:hidden' : ''}`}
+								>
 									{head}
-									{index > 0 && index < 4 ? ', mm' : ''}
+									{index > 0 && index < 4 && <span className="max-tablet:hidden">, mm</span>}
 								</th>
 							))}
 						</tr>
@@ -29,7 +33,7 @@ export function StabilityTable({ test: { comparison, marks } }: { test: Stabilit
 										{movementMm ? signedMm(movementMm[axis] ?? null, 0) : noFigure}
 									</td>
 								))}
-								<td className="px-3 text-right">{standardised === null ? noFigure : standardised.toFixed(1)}</td>
+								<td className="px-3 text-right max-tablet:hidden">{standardised === null ? noFigure : standardised.toFixed(1)}</td>
 								<td className="px-3">{isStable === null ? 'cannot be told' : isStable ? 'kept its place' : <b>moved</b>}</td>
 							</tr>
 						))}
@@ -37,7 +41,7 @@ export function StabilityTable({ test: { comparison, marks } }: { test: Stabilit
 				</table>
 			</div>
 			<p className="m-0 text-second">
-				After less before, along the design’s axes, on the marks that kept their places. Global congruency test (Pelzer 1971):{' '}
+				After less before, mm, along the design’s axes, on the marks that kept their places. Global congruency test (Pelzer 1971):{' '}
 				{comparison.statistic.toFixed(1)} on {comparison.degrees} degrees of freedom, limit {comparison.critical.toFixed(1)} at 0.1 %:{' '}
 				{comparison.congruent ? 'nothing moved' : 'something moved'}.
 			</p>
