@@ -1,7 +1,7 @@
 import { yawRotation } from '#shared/geometry/rotation.ts';
 import { bestTurn } from './best-turn.ts';
 import { type FitObservations, KNOWN_HEIGHT, KNOWN_PLAN } from './fit-observations.ts';
-import type { FitPose } from './fit-pose.ts';
+import { type FitPose, newPose } from './fit-pose.ts';
 import { isLevelled, isScaled } from './least-pairs.ts';
 
 /**
@@ -26,10 +26,16 @@ export interface ClosedForm {
  * @param observations at least the least pairs, with spread
  * @param planWeight one positive number a pair, used for E and N
  * @param heightWeight the same for H; free fits use planWeight for all three
+ * @param pose where a free fit writes its pose, for searches that fit by the thousand. By default a new one
  */
-export function closedForm(observations: FitObservations, planWeight: Float64Array, heightWeight: Float64Array): ClosedForm {
+export function closedForm(
+	observations: FitObservations,
+	planWeight: Float64Array,
+	heightWeight: Float64Array,
+	pose: FitPose = newPose(),
+): ClosedForm {
 	if (observations.kind === 'height') return heightForm(observations, heightWeight);
-	return isLevelled(observations.kind) ? levelledForm(observations, planWeight, heightWeight) : freeForm(observations, planWeight);
+	return isLevelled(observations.kind) ? levelledForm(observations, planWeight, heightWeight) : freeForm(observations, planWeight, pose);
 }
 
 function heightForm({ count, survey, control }: FitObservations, weight: Float64Array): ClosedForm {
@@ -108,7 +114,7 @@ function levelledForm(observations: FitObservations, planWeight: Float64Array, h
 const cross = new Float64Array(9);
 const singular = new Float64Array(3);
 
-function freeForm(observations: FitObservations, weights: Float64Array): ClosedForm {
+function freeForm(observations: FitObservations, weights: Float64Array, pose: FitPose): ClosedForm {
 	const { count, survey, control } = observations;
 	let total = 0;
 	let heaviest = 0;
@@ -180,15 +186,23 @@ function freeForm(observations: FitObservations, weights: Float64Array): ClosedF
 	cross[6] = ze;
 	cross[7] = zn;
 	cross[8] = zh;
-	const rotation = new Float64Array(9);
+	const { rotation, shift } = pose;
 	bestTurn(cross, rotation, singular);
-	const [first, second, third] = [singular[0]!, singular[1]!, singular[2]!];
+	const first = singular[0]!;
+	const second = singular[1]!;
+	const third = singular[2]!;
 	const unique = second + third > 1e-14 * first && second + third > UNIQUE * second;
 	let scale = observations.fixedScale;
 	if (isScaled(observations.kind)) scale = (first + second + third) / surveySquare;
 	// d₂(XᵀWY) ≤ d₂(√W·X)·d₁(√W·Y), and the scatter about the weighted mean is not over the heaviest weight times the scatter about the plain one.
 	const leastExtentM = count > 2 ? second / Math.sqrt(heaviest * count * Math.max(surveySquare, controlSquare)) : 0;
-	return { pose: poseThrough(rotation, scale, scale, [sx, sy, sz], [cx, cy, cz]), leastExtentM, unique };
+	for (let row = 0; row < 3; row++) {
+		const turned = rotation[3 * row]! * sx + rotation[3 * row + 1]! * sy + rotation[3 * row + 2]! * sz;
+		shift[row] = (row === 0 ? cx : row === 1 ? cy : cz) - scale * turned;
+	}
+	pose.planScale = scale;
+	pose.heightScale = scale;
+	return { pose, leastExtentM, unique };
 }
 
 /** The pose that takes one point to another. */

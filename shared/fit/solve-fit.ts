@@ -2,7 +2,7 @@ import { turnAfter, yawRotation } from '#shared/geometry/rotation.ts';
 import { type Adjustment, type AdjustSpace, adjust, SEARCH_STEPS } from './adjust.ts';
 import { type ClosedForm, closedForm } from './closed-form.ts';
 import { type FitObservations, observationCount } from './fit-observations.ts';
-import type { FitPose } from './fit-pose.ts';
+import { type FitPose, newPose } from './fit-pose.ts';
 import type { FitRefusal } from './fit-schema.ts';
 import { fitUnknowns, isLevelled, isScaled } from './least-pairs.ts';
 import { sigmaGroupsOf } from './sigma-groups.ts';
@@ -92,11 +92,20 @@ function notUnique(): FitRefusal {
 	};
 }
 
+// Scratch: an array of more than a few numbers costs as much as the sums over it. The start is read before the next one is made.
+let planWeights = new Float64Array(64);
+let heightWeights = new Float64Array(64);
+const startPose = newPose();
+
 /** The closed form with one weight a pair: the reciprocal of its mean variance. */
 function startOf(observations: FitObservations): ClosedForm {
 	const { count, survey, control, surveyVariance, controlVariance, kind } = observations;
-	const planWeight = new Float64Array(count);
-	const heightWeight = isLevelled(kind) || kind === 'height' ? new Float64Array(count) : planWeight;
+	if (planWeights.length < count) {
+		planWeights = new Float64Array(2 * count);
+		heightWeights = new Float64Array(2 * count);
+	}
+	const planWeight = planWeights;
+	const heightWeight = isLevelled(kind) || kind === 'height' ? heightWeights : planWeights;
 	const ratio = isScaled(kind) ? squareAboutMean(control, count) / squareAboutMean(survey, count) : observations.fixedScale ** 2;
 	for (let i = 0; i < count; i++) {
 		const at = 3 * i;
@@ -109,7 +118,7 @@ function startOf(observations: FitObservations): ClosedForm {
 			heightWeight[i] = 1 / h;
 		}
 	}
-	return closedForm(observations, planWeight, heightWeight);
+	return closedForm(observations, planWeight, heightWeight, startPose);
 }
 
 /** Σ of the squared distances from the mean, m². */
