@@ -11,8 +11,9 @@ export function writeFieldCsv(
 	checkpoints: readonly Pick<Checkpoint, 'mark' | 'place' | 'characteristic'>[],
 	placeOf: (designPlace: Vector3) => Vector3 = (place) => place,
 ): string {
+	const metres = (part: number): string => part.toFixed(4).replace(/^-(0\.0000)$/, '$1');
 	const lines = checkpoints.map(({ mark, place, characteristic }) =>
-		[csvField(mark), ...placeOf(place).map((part) => part.toFixed(4)), characteristic.toUpperCase()].join(','),
+		[csvField(mark), ...placeOf(place).map(metres), characteristic.toUpperCase()].join(','),
 	);
 	return `${['mark,easting,northing,height,code', ...lines].join('\n')}\n`;
 }

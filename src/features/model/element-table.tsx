@@ -1,7 +1,6 @@
 import { useMemo, useState } from 'react';
 import type { StoredElement } from '#shared/model/contract.ts';
 import { newMark } from '#shared/model/mark-rules.ts';
-import { metres } from '#src/lib/format.ts';
 import { type Column, Table, type TableGroup } from '#src/ui/table.tsx';
 import type { Sorting } from '#src/ui/table-rows.ts';
 import { classWords, storeyOf } from './model-place.ts';
@@ -34,15 +33,6 @@ export function ElementTable({ elements, chosenId, onChoose, typed, onType }: El
 				widthPx: typed === null ? 140 : 200,
 			},
 			{ key: 'class', head: 'Class', cell: (row) => classWords(row.class), orderBy: (row) => row.class, onlyFrom: 'tablet', widthPx: 168 },
-			{
-				key: 'height',
-				head: 'Height, m',
-				align: 'end',
-				cell: (row) => metres(row.sizesM.height),
-				orderBy: (row) => row.sizesM.height,
-				onlyFrom: 'desk',
-				widthPx: 104,
-			},
 			{
 				key: 'checkpoints',
 				head: 'Checkpoints',

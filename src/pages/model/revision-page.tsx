@@ -1,5 +1,5 @@
 import { useSuspenseQueries } from '@tanstack/react-query';
-import { useCallback, useMemo, useRef, useState } from 'react';
+import { useMemo, useRef, useState } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import { mapScaleFinding } from '#shared/control/map-frame.ts';
 import type { RevisionDetail } from '#shared/model/contract.ts';
@@ -11,19 +11,10 @@ import { ElementTable } from '#src/features/model/element-table.tsx';
 import { FieldList } from '#src/features/model/field-list.tsx';
 import { Georeference } from '#src/features/model/georeference.tsx';
 import { ModelFindings } from '#src/features/model/model-findings.tsx';
-import {
-	checkpointsByElement,
-	elementsAt,
-	placeFromAddress,
-	placeToAddress,
-	reasonsWithout,
-	storeyOf,
-	treeOf,
-} from '#src/features/model/model-place.ts';
+import { placeToAddress, reasonsWithout, storeyOf, treeOf } from '#src/features/model/model-place.ts';
 import { ModelTree } from '#src/features/model/model-tree.tsx';
 import { NameBar } from '#src/features/model/name-bar.tsx';
 import { WithoutCheckpoints } from '#src/features/model/without-checkpoints.tsx';
-import { useAddressState } from '#src/lib/address-state.ts';
 import { api } from '#src/lib/api.ts';
 import { counted } from '#src/lib/format.ts';
 import { useMay, useSite } from '#src/lib/session.ts';
@@ -34,8 +25,7 @@ import { Strip } from '#src/ui/strip.tsx';
 import { grown, type ViewCommands } from '#src/ui/view-commands.ts';
 import type { PickedOnModel } from './revision-scene.tsx';
 import { RevisionViewer } from './revision-viewer.tsx';
-
-const noIds: ReadonlySet<string> = new Set();
+import { useRevisionView } from './use-revision-view.ts';
 
 /** What one revision holds: its elements by storey and class, their checkpoints, where it lies, what was found, what is left out and why. */
 export default function RevisionPage() {
@@ -56,67 +46,42 @@ export default function RevisionPage() {
 	const isNewest = newest?.revisionId === revisionId;
 	const [mayChoose, mayName] = [useMay('checkpoint.write'), useMay('mark.write') && isNewest];
 
-	const [show, setShow] = useAddressState('show', 'push');
-	const [where, setWhere] = useAddressState('in', 'push');
-	const [find, setFind] = useAddressState('find');
-	const [elementId, chooseElement] = useAddressState('at');
-	const [checkpointId, setCheckpoint] = useAddressState('point');
-	const [view, setView] = useAddressState('view', 'push');
-	const [ticked, setTicked] = useState(noIds);
-	const [typed, setTyped] = useState<ReadonlyMap<string, string> | null>(null);
+	const {
+		isCheckpoints,
+		setShow,
+		place,
+		setWhere,
+		find,
+		setFind,
+		view,
+		setView,
+		shown,
+		ofElement,
+		shownCheckpoints,
+		chosen,
+		chosenElement,
+		chooseCheckpoint,
+		chooseOnlyElement,
+		onEntity,
+		ticked,
+		tick,
+		untick,
+		typed,
+		setTyped,
+		type,
+	} = useRevisionView(elements, checkpoints);
 	const [isPlacing, setPlacing] = useState(false);
 	const [picked, setPicked] = useState<PickedOnModel | null>(null);
 	const commands = useRef<ViewCommands | null>(null);
-
-	const place = useMemo(() => placeFromAddress(where), [where]);
 	const tree = useMemo(() => treeOf(elements, reading.storeys), [elements, reading.storeys]);
-	const shown = useMemo(() => elementsAt(elements, place, find ?? ''), [elements, place, find]);
-	const ofElement = useMemo(() => checkpointsByElement(checkpoints), [checkpoints]);
-	const shownCheckpoints = useMemo(() => shown.flatMap((element) => ofElement.get(element.elementId) ?? []), [shown, ofElement]);
 	const reasons = useMemo(() => reasonsWithout(reading.skipped, elements), [reading.skipped, elements]);
 	const whyNone = useMemo(() => new Map(reading.skipped.map((skipped) => [skipped.entityNumber, skipped.why])), [reading.skipped]);
-	const chosen = checkpoints.find(({ id }) => id === checkpointId) ?? null;
-	const chosenElement = elements.find((element) => element.elementId === (chosen?.elementId ?? elementId)) ?? null;
 	const leftOut = checkpoints.filter(({ requirement }) => requirement === 'left-out').length;
-
-	const chooseCheckpoint = useCallback(
-		(id: string) => {
-			setCheckpoint(id);
-			chooseElement(null);
-		},
-		[setCheckpoint, chooseElement],
-	);
-	const chooseOnlyElement = useCallback(
-		(id: string) => {
-			setCheckpoint(null);
-			chooseElement(id);
-		},
-		[setCheckpoint, chooseElement],
-	);
-	const onEntity = useCallback(
-		(entityNumber: number) => {
-			const element = elements.find((each) => each.entityNumber === entityNumber);
-			if (element) chooseOnlyElement(element.elementId);
-		},
-		[elements, chooseOnlyElement],
-	);
-	const tick = useCallback((ids: readonly string[], isTicked: boolean) => {
-		setTicked((before) => {
-			const after = new Set(before);
-			for (const id of ids)
-				if (isTicked) after.add(id);
-				else after.delete(id);
-			return after;
-		});
-	}, []);
-	const untick = useCallback(() => setTicked(noIds), []);
-	const type = useCallback((id: string, mark: string) => setTyped((before) => new Map(before ?? []).set(id, mark)), []);
 	const frame = (): void => {
 		if (chosen !== null) commands.current?.frame(grown({ min: chosen.place, max: chosen.place }, 2));
 		else if (chosenElement?.boxM) commands.current?.frame(grown(chosenElement.boxM, 0.5));
 	};
 	const pickedElement = picked === null ? null : (elements.find(({ entityNumber }) => entityNumber === picked.entityNumber) ?? null);
-	const isCheckpoints = show === 'checkpoints';
 	const without = elements.length - new Set(checkpoints.map((checkpoint) => checkpoint.elementId)).size;
 	const shownOnPhone = isPhone ? (view ?? 'list') : null;
 
@@ -167,7 +132,7 @@ export default function RevisionPage() {
 					<span className="sr-only">Find</span>
 					<input
 						type="search"
-						value={find ?? ''}
+						value={find}
 						onChange={(event) => setFind(event.currentTarget.value || null)}
 						placeholder="Find: C/3, wall, ground …"
 						className="min-h-10 rounded-corner border-[1.5px] border-field bg-sheet px-3 font-normal text-ink placeholder:text-second pointer-coarse:min-h-12"
