@@ -37,7 +37,9 @@ const people: readonly { role: Role; name: string; email: string; company: strin
 	{ role: 'project-engineer', name: 'Ida Roen', email: 'project@marrowby.example', company: null },
 	{ role: 'contractor', name: 'Lena Fennick', email: 'contractor@marrowby.example', company: 'Fennick Forms' },
 	{ role: 'owners-representative', name: 'R. Amadi', email: 'owner@marrowby.example', company: null },
-	{ role: 'observer', name: 'T. Okoro', email: 'observer@marrowby.example', company: null },
+	{ role: 'observer', name: 'N. Vale', email: 'observer@marrowby.example', company: null },
+	// The second person: a fit is checked by another than who adopted it.
+	{ role: 'site-engineer', name: 'T. Okoro', email: 'second@marrowby.example', company: null },
 ];
 const companyNames = ['Fennick Forms', 'Oster Steel'] as const;
 
@@ -111,12 +113,12 @@ export function demoSentence(): string {
 	return [`The demo site is invented, and so are all people on it. Password of each: ${demoPassword}`, ...lines].join('\n');
 }
 
-async function addPeople(platform: Platform): Promise<{ siteId: string; members: Map<Role, Member>; companyIds: Map<string, string> }> {
+async function addPeople(platform: Platform): Promise<{ siteId: string; members: Member[]; companyIds: Map<string, string> }> {
 	const { newId, now } = platform;
 	const siteId = newId();
 	const passwordHash = await hashPassword(demoPassword);
 	const companyIds = new Map(companyNames.map((name) => [name as string, newId()]));
-	const members = new Map<Role, Member>();
+	const members: Member[] = [];
 	await platform.transaction(async (tx) => {
 		await tx.insert(sites).values({
 			id: siteId,
@@ -136,19 +138,19 @@ async function addPeople(platform: Platform): Promise<{ siteId: string; members:
 			// The one of each company leads its people.
 			const isLead = role === 'contractor';
 			await tx.insert(memberships).values({ id: newId(), siteId, userId, role, companyId, isLead, fromAt: now() });
-			members.set(role, { userId, name, email, siteId, roles: [role], companyIds: companyId === null ? [] : [companyId] });
+			members.push({ userId, name, email, siteId, roles: [role], companyIds: companyId === null ? [] : [companyId] });
 		}
 		const founder = memberOf(members, 'project-engineer');
 		await audit(tx, founder, { kind: 'site-founded', subjectId: siteId, data: { name: siteName, isInvented: true } });
-		for (const { userId, roles } of members.values()) {
+		for (const { userId, roles } of members) {
 			await audit(tx, founder, { kind: 'member-added', subjectId: userId, data: { roles } });
 		}
 	});
 	return { siteId, members, companyIds };
 }
 
-function memberOf(members: ReadonlyMap<Role, Member>, role: Role): Member {
-	const member = members.get(role);
+function memberOf(members: readonly Member[], role: Role): Member {
+	const member = members.find(({ roles }) => roles.includes(role));
 	if (!member) throw new Error(`The demo has no ${role}.`);
 	return member;
 }

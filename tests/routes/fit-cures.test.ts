@@ -156,7 +156,11 @@ describe('the second person', () => {
 describe('the report', () => {
 	it('is a PDF of the fit, for whoever may see it, and of no other site', async () => {
 		const { siteId, surveyor, observer, input } = await tied(sighted());
-		const { fitId, number } = await surveyor.api.fit.make({ ...input, ...levelled, shelves: [shelving({ name: 'T2', shelf: 'held-back' })] });
+		const { fitId, number } = await surveyor.api.fit.make({
+			...input,
+			...levelled,
+			shelves: [shelving({ name: 'T2', shelf: 'held-back' })],
+		});
 		const file = await observer.api.fit.report({ siteId, fitId });
 		expect(file).toMatchObject({ type: 'application/pdf', name: `fit-${number}.pdf` });
 		expect(new TextDecoder('latin1').decode((await file.arrayBuffer()).slice(0, 8))).toBe('%PDF-1.7');
