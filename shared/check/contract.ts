@@ -38,6 +38,8 @@ export const checkHead = z.object({
 			isNewest: z.boolean(),
 		}),
 	),
+	/** False where the site has switched the second person off: its fits are not unchecked then, nobody asks for it. */
+	isSecondPersonAsked: z.boolean(),
 	sheet: z.object({
 		sheetId: z.uuid(),
 		name: z.string(),

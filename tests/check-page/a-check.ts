@@ -79,6 +79,7 @@ export function aCheck(over: Partial<CheckDetail> = {}): CheckDetail {
 		state: 'trial',
 		reason: null,
 		jobId: null,
+		isSecondPersonAsked: true,
 		stage: 'as-cast',
 		revision: { revisionId: id(20), modelName: 'Structure', number: 4, isNewest: true },
 		survey: { surveyId: id(21), number: 14, name: 'Columns', surveyedOn: '2026-12-03', setupCount: 1 },

@@ -57,6 +57,7 @@ const aHead = (over: Partial<CheckHead> = {}): CheckHead => ({
 	revision: { revisionId: 'r4', modelName: 'Structure', number: 4, isNewest: true },
 	survey: { surveyId: 's14', number: 14, name: 'ground columns', surveyedOn: '2026-12-01', setupCount: 1 },
 	fits: [{ fitId: 'f1', setupId: 'u1', setupName: '1', number: 1, adoptedBy: 'Jo', checkedBy: null, isNewest: true }],
+	isSecondPersonAsked: true,
 	sheet: { sheetId: 't', name: 'C2', revision: 2, decision: 'guarded', isNewest: true },
 	summary: { within: 9, outside: 6, 'too-close-to-call': 2, undecided: 0, 'not-measured': 0, 'no-tolerance': 0 },
 	madeBy: 'Jo',

@@ -31,7 +31,7 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 	);
 	const { sheet } = foundOne(await db.select({ sheet: sheets.sheet }).from(sheets).where(eq(sheets.id, check.sheetId)));
 	const carriedBy = await db
-		.select({ setup: setups, result: fits.result, controlSetId: fits.controlSetId })
+		.select({ setup: setups, result: fits.result, controlSetId: fits.controlSetId, relabellings: fits.relabellings })
 		.from(checkFits)
 		.innerJoin(setups, eq(setups.id, checkFits.setupId))
 		.innerJoin(fits, eq(fits.id, checkFits.fitId))
@@ -40,19 +40,23 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 	const allSetups = await db.select().from(setups).where(eq(setups.surveyId, check.surveyId)).orderBy(asc(setups.name));
 	const rows = await db.select().from(surveyPoints).where(eq(surveyPoints.surveyId, check.surveyId)).orderBy(asc(surveyPoints.row));
 	const targets = new Map<string, ReadonlySet<string>>();
-	for (const { setup, controlSetId } of carriedBy) {
+	for (const { setup, controlSetId, relabellings } of carriedBy) {
 		const names = rows.flatMap(({ setupId, name }) => (setupId === setup.id ? [name] : []));
 		const marks = await db.select({ name: controlPoints.name }).from(controlPoints).where(eq(controlPoints.controlSetId, controlSetId));
 		const matched = matchMarks(
 			names,
 			marks.map(({ name }) => name),
 		);
-		targets.set(setup.id, new Set(matched.keys()));
+		// What the fit took for a mark is control, however it is named.
+		targets.set(setup.id, new Set([...matched.keys(), ...relabellings.map(({ target }) => target)]));
 	}
 	const used = rows.filter(({ setupId, name }) => targets.has(setupId) && targets.get(setupId)?.has(name) !== true);
 	const withoutFit = allSetups
 		.filter(({ id }) => !targets.has(id))
-		.map(({ id, name }) => ({ name, pointCount: rows.filter(({ setupId }) => setupId === id).length }))
+		.map(({ id, name }) => ({
+			name,
+			pointCount: rows.filter(({ setupId, voidedReason }) => setupId === id && voidedReason === null).length,
+		}))
 		.filter(({ pointCount }) => pointCount > 0);
 	const elementRows = await db.select().from(elements).where(eq(elements.revisionId, check.revisionId)).orderBy(asc(elements.entityNumber));
 	const read = elementRows.map(elementOf);

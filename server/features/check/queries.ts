@@ -10,6 +10,7 @@ import { controlSets } from '../../db/schema/control.ts';
 import { fits } from '../../db/schema/fit.ts';
 import { checkpoints, elements, models, revisions } from '../../db/schema/model.ts';
 import { pourElements, pours } from '../../db/schema/pour.ts';
+import { sites } from '../../db/schema/site.ts';
 import { setups, surveys } from '../../db/schema/survey.ts';
 import { sheets } from '../../db/schema/tolerance.ts';
 import type { Member } from '../../platform/platform.ts';
@@ -37,6 +38,7 @@ function checkRows(db: Handle, where: SQL | undefined) {
 				setupCount: sql<number>`(select count(*)::int from ${setups} where ${setups.surveyId} = ${surveys.id})`,
 			},
 			sheet: sheets,
+			isSecondPersonAsked: sites.isFitCheckedBySecond,
 			madeBy: users.name,
 		})
 		.from(checks)
@@ -44,6 +46,7 @@ function checkRows(db: Handle, where: SQL | undefined) {
 		.innerJoin(models, eq(models.id, revisions.modelId))
 		.innerJoin(surveys, eq(surveys.id, checks.surveyId))
 		.innerJoin(sheets, eq(sheets.id, checks.sheetId))
+		.innerJoin(sites, eq(sites.id, checks.siteId))
 		.innerJoin(users, eq(users.id, checks.madeBy))
 		.where(where)
 		.orderBy(desc(checks.number));
@@ -67,7 +70,7 @@ async function headsOf(db: Handle, member: Member, rows: readonly CheckRow[]): P
 	const carriedBy = await fitsOfChecks(db, checkIds);
 	const companyIds = narrowedTo(member);
 	const narrowed = companyIds === null ? null : await summariesOfCompanies(db, checkIds, companyIds);
-	return rows.map(({ check, revision, survey, sheet, madeBy }) => ({
+	return rows.map(({ check, revision, survey, sheet, isSecondPersonAsked, madeBy }) => ({
 		checkId: check.id,
 		number: check.number,
 		state: check.state,
@@ -77,6 +80,7 @@ async function headsOf(db: Handle, member: Member, rows: readonly CheckRow[]): P
 		revision,
 		survey,
 		fits: carriedBy.flatMap(({ checkId, ...fit }) => (checkId === check.id ? [fit] : [])),
+		isSecondPersonAsked,
 		sheet: {
 			sheetId: sheet.id,
 			name: sheet.name,

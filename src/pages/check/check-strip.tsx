@@ -15,13 +15,18 @@ const stateWords: Record<CheckHead['state'], string | null> = {
 };
 
 /** Who stands behind the fits, each name once: "fits by Jo Marsh, checked by T. Okoro". */
-function fitWords(fits: CheckHead['fits']): string {
+function fitWords({ fits, isSecondPersonAsked }: Pick<CheckHead, 'fits' | 'isSecondPersonAsked'>): string {
 	const word = fits.length === 1 ? 'fit' : `${fits.length} fits`;
 	const makers = [...new Set(fits.map((fit) => fit.adoptedBy))].join(' and ');
 	const checkers = [...new Set(fits.flatMap((fit) => (fit.checkedBy === null ? [] : [fit.checkedBy])))].join(' and ');
-	const unchecked = fits.filter((fit) => fit.checkedBy === null).length;
-	if (unchecked === fits.length) return `${word} by ${makers}, unchecked`;
+	const unchecked = uncheckedCount({ fits, isSecondPersonAsked });
+	if (checkers === '') return `${word} by ${makers}${unchecked > 0 ? ', unchecked' : ''}`;
 	return `${word} by ${makers}, checked by ${checkers}${unchecked > 0 ? `, ${unchecked} unchecked` : ''}`;
+}
+
+/** Fits that a second person should have checked and has not; none where the site asks for nobody. */
+function uncheckedCount({ fits, isSecondPersonAsked }: Pick<CheckHead, 'fits' | 'isSecondPersonAsked'>): number {
+	return isSecondPersonAsked ? fits.filter((fit) => fit.checkedBy === null).length : 0;
 }
 
 /** What the check rests on, and whether that is the newest. Each leads to the thing itself. */
@@ -32,7 +37,7 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 	const quiet = 'text-second no-underline hover:underline hover:underline-offset-3';
 	const state = stateWords[check.state];
 	const isPhone = useIsBelow('tablet');
-	const uncheckedFits = fits.filter((fit) => fit.checkedBy === null).length;
+	const uncheckedFits = uncheckedCount(check);
 	const stateItem = state !== null && <b key="state">{state}</b>;
 	if (isPhone) {
 		return (
@@ -67,7 +72,7 @@ export function CheckStrip({ check }: { check: CheckHead }) {
 				</Link>,
 				fits.length > 0 && (
 					<span key="fits">
-						{fitWords(fits)}
+						{fitWords(check)}
 						{isFitOld && <b>, a newer one is adopted</b>}
 					</span>
 				),
