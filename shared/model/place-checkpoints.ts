@@ -2,6 +2,7 @@ import { add, dot } from './affine.ts';
 import { type CheckpointDraft, faceDraft, levelDraft, planDraft, type ShapeAnswer } from './checkpoint-draft.ts';
 import { compassOf, largestPair, type PrismAxis, prismAxes, sectionOf } from './element-shape.ts';
 import { edgeFaces, LEVEL_NZ, levelFace, longestEdge, planExtents, STANDING_NZ, spreadOverFace, treadLevels } from './level-checkpoints.ts';
+import { slabOpenings } from './opening-checkpoints.ts';
 import { extentAlong, type PlanarFace, planarFaces } from './planar-face.ts';
 import { beamCheckpoints, inclinedCheckpoints, wallCheckpoints } from './side-checkpoints.ts';
 import { type SolidMesh, weldMesh } from './solid-mesh.ts';
@@ -61,7 +62,7 @@ function slabCheckpoints(
 		if (axis && extents && extents.longerM <= 4) drafts.push(planDraft(axis.to, 'Its middle, on top', 'H'));
 	}
 	for (const face of [top, soffit]) if (face) drafts.push(...spreadOverFace(mesh, face));
-	drafts.push(...edgeFaces(mesh, faces));
+	drafts.push(...edgeFaces(mesh, faces), ...slabOpenings(mesh, faces));
 	return inPieces(drafts, sizesM, kind, 'it has no flat outer top or soffit');
 }
 

@@ -4,6 +4,7 @@ import { type CheckpointDraft, faceDraft, levelDraft, metresInWords, planDraft, 
 import { compassOf, type FacePair, largestPair, type PrismAxis, sectionOf } from './element-shape.ts';
 import { type FacePlan, isClear, nearestClear, placeOn, planOfFace, stations } from './face-plan.ts';
 import { LEVEL_NZ, levelFace, STANDING_NZ } from './level-checkpoints.ts';
+import { wallOpenings } from './opening-checkpoints.ts';
 import { extentAlong, type PlanarFace } from './planar-face.ts';
 import type { SolidMesh } from './solid-mesh.ts';
 
@@ -63,6 +64,18 @@ function levelsAlong(mesh: SolidMesh, face: PlanarFace, along: Vector3): Checkpo
 	});
 }
 
+/** The level of a wall's base: one, as near to its middle as its width allows. */
+function baseLevel(mesh: SolidMesh, faces: readonly PlanarFace[], along: Vector3): CheckpointDraft[] {
+	const base = levelFace(faces, false);
+	if (!base) return [];
+	const plan = planOfFace(mesh, base, along);
+	const width = plan.vMax - plan.vMin;
+	const clear = nearestClear(plan, (plan.uMin + plan.uMax) / 2, (plan.vMin + plan.vMax) / 2, Math.min(0.05, width / 4));
+	if (!clear) return [];
+	const place = placeOn(plan, clear.u, clear.v);
+	return [levelDraft(mesh, base, place[0], place[1], 'Base', 'B')];
+}
+
 /** Walls: faces on the two large sides on a grid, their free ends, and levels on top. The sides may lean. */
 export function wallCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[]): ShapeAnswer {
 	const pair = largestPair(faces, (face) => Math.abs(face.normal[2]) < 0.9);
@@ -88,6 +101,7 @@ export function wallCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[]): 
 	}
 	const top = levelFace(faces, true);
 	if (top) drafts.push(...levelsAlong(mesh, top, plan.u));
+	drafts.push(...baseLevel(mesh, faces, plan.u), ...wallOpenings(mesh, faces, pair.first.normal, plan));
 	return {
 		drafts,
 		sizesM: { length: lengthAlong.max - lengthAlong.min, height: mesh.max[2] - mesh.min[2], thickness: pair.distanceM },

@@ -81,3 +81,24 @@ export function ownOf(p: readonly number[], yawRad: number, shift: Point): Point
 	const [x, y] = [p[0]! - shift[0], p[1]! - shift[1]];
 	return [x * Math.cos(yawRad) + y * Math.sin(yawRad), -x * Math.sin(yawRad) + y * Math.cos(yawRad), p[2]! - shift[2]];
 }
+
+/** A round plate with a round hole, both many-sided with corners on the true circles. */
+export function ringBody(outerM: number, innerM: number, heightM: number, sides: number): MadeMesh {
+	const points: number[] = [];
+	const triangles: number[] = [];
+	for (let i = 0; i < sides; i++) {
+		const [c, s] = [Math.cos((2 * Math.PI * i) / sides), Math.sin((2 * Math.PI * i) / sides)];
+		points.push(outerM * c, outerM * s, 0, outerM * c, outerM * s, heightM, innerM * c, innerM * s, 0, innerM * c, innerM * s, heightM);
+	}
+	for (let i = 0; i < sides; i++) {
+		const [a, b] = [4 * i, 4 * ((i + 1) % sides)];
+		const quad = (p: number, q: number, r: number, s: number): void => {
+			triangles.push(p, q, r, p, r, s);
+		};
+		quad(a, b, b + 1, a + 1);
+		quad(b + 2, a + 2, a + 3, b + 3);
+		quad(a + 1, b + 1, b + 3, a + 3);
+		quad(b, a, a + 2, b + 2);
+	}
+	return { xyzM: Float64Array.from(points), triangles: Uint32Array.from(triangles) };
+}

@@ -117,8 +117,7 @@ describe('walls', () => {
 					expect(Math.hypot(Math.max(left - own[0], 0, own[0] - right), Math.max(own[2] - 2.1, 0))).toBeGreaterThan(0.076);
 				}
 				// Not the door's head, though it may be wider than what is left above.
-				for (const level of placed.drafts.filter(({ characteristic }) => characteristic === 'level'))
-					expect(level.place[2] - at[2]).toBeCloseTo(height, 6);
+				for (const level of placed.drafts.filter(({ code }) => code === 'T')) expect(level.place[2] - at[2]).toBeCloseTo(height, 6);
 				expect(placed.sizesM.thickness).toBeCloseTo(thickness, 6);
 				expect(placed.sizesM.length).toBeCloseTo(length, 6);
 			}),

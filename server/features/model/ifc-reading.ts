@@ -8,6 +8,7 @@ import type { ModelReading } from '#shared/model/model-schema.ts';
 import { refOf, textOf } from '#shared/model/part21-value.ts';
 import { type PlacedElement, placeCheckpoints } from '#shared/model/place-checkpoints.ts';
 import type { ModelHead } from '#shared/model/read-model-head.ts';
+import { dropBuriedPlateFaces } from './buried-plate-faces.ts';
 import type { pictureBuilder } from './glb-picture.ts';
 import type { IfcGeometry, RawMesh } from './ifc-geometry.ts';
 
@@ -144,6 +145,18 @@ export function readElements(
 		draft.placed = isMany ? thinned(placed) : placed;
 		if (placed.drafts.length === 0) skip(placed.why ?? 'its shape offers no place for a checkpoint');
 	});
+	if (!isMany)
+		dropBuriedPlateFaces(drafts, (entityNumber) => {
+			const entity = head.file.entity(entityNumber);
+			const { gridPlacement } = head.placementOf(refOf(entity?.args[5]));
+			const gridMatrix = gridPlacement === null ? null : head.gridMatrix(gridPlacement);
+			before(entityNumber, of - 1, of);
+			try {
+				return geometry.meshOf(entityNumber, gridMatrix && scaleShift(gridMatrix, metresPerUnit));
+			} catch {
+				throw new BrokenEngine(entityNumber);
+			}
+		});
 	before(0, of, of);
 	return {
 		drafts,
