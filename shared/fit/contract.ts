@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
-import { fitInput, fitKind, fitRefusal, fitResult } from './fit-schema.ts';
+import { findingSchema, fitInput, fitKind, fitRefusal, fitResult } from './fit-schema.ts';
 
 /** in the fit · held back: checked against it, never in it · set aside: with a reason. */
 export const shelfNames = ['in-the-fit', 'held-back', 'set-aside'] as const;
@@ -67,6 +67,8 @@ export const pairsOfSetup = z.object({
 		.optional(),
 	/** Targets taken for marks they are not named like. */
 	relabellings: z.array(relabelling).optional(),
+	/** What the repeats of its targets tell of the set-up itself: `moved-setup`. Absent where there is nothing to tell. */
+	findings: z.array(findingSchema).optional(),
 });
 export type PairsOfSetup = z.infer<typeof pairsOfSetup>;
 

@@ -124,8 +124,11 @@ function agreeing(
 		if (t === a || t === b) continue;
 		const toA = targetTable[a * count + t]!;
 		const toB = targetTable[b * count + t]!;
+		const least = toA - slack;
+		const most = toA + slack;
 		for (let c = 0; c < size; c++) {
-			if (Math.abs(controlTable[rowP + c]! - toA) > slack || Math.abs(controlTable[rowQ + c]! - toB) > slack) continue;
+			const toP = controlTable[rowP + c]!;
+			if (toP > most || toP < least || Math.abs(controlTable[rowQ + c]! - toB) > slack) continue;
 			if (c === p || c === q || !(isFree || isLevel(targets, control, t, a, c, p, slack))) continue;
 			if (!consistent(seeds, targetTable, controlTable, count, size, t, c, slack)) continue;
 			seeds.push([t, c]);

@@ -29,7 +29,8 @@ export interface PairsByLength {
 	readonly count: number;
 }
 
-const MOST_CELLS = 8192;
+/** More cells than a quarter of the pairs would cost more to make than they save. */
+const PAIRS_A_CELL = 4;
 
 /**
  * @param table of distanceTable
@@ -38,11 +39,12 @@ const MOST_CELLS = 8192;
 export function pairsByLength(table: Float64Array, count: number, widthM: number): PairsByLength {
 	let longest = 0;
 	for (let at = 0; at < table.length; at++) if (table[at]! > longest) longest = table[at]!;
-	const width = Math.max(widthM, longest / (MOST_CELLS - 1), Number.MIN_VALUE);
+	const pairs = (count * (count - 1)) / 2;
+	const width = Math.max(widthM, (PAIRS_A_CELL * longest) / (pairs + 1), Number.MIN_VALUE);
 	const ends = new Int32Array(Math.floor(longest / width) + 1);
 	for (let i = 0; i < count; i++) for (let j = 0; j < i; j++) ends[Math.floor(table[i * count + j]! / width)]!++;
 	for (let cell = 1; cell < ends.length; cell++) ends[cell]! += ends[cell - 1]!;
-	const codes = new Int32Array((count * (count - 1)) / 2);
+	const codes = new Int32Array(pairs);
 	const next = ends.slice();
 	for (let i = 0; i < count; i++) {
 		for (let j = 0; j < i; j++) {
@@ -72,15 +74,18 @@ export function nearestWithin(
 	reach: number,
 ): [number, number, number][] {
 	const candidates: [number, number, number][] = [];
-	places.forEach((place, i) => {
-		points.forEach(({ point }, j) => {
-			const x = place[0] - point[0];
-			const y = place[1] - point[1];
-			const z = place[2] - point[2];
+	for (let i = 0; i < places.length; i++) {
+		const [e, n, h] = places[i]!;
+		for (let j = 0; j < points.length; j++) {
+			const { point } = points[j]!;
+			const x = e - point[0];
+			if (x > reach || x < -reach) continue;
+			const y = n - point[1];
+			const z = h - point[2];
 			const square = x * x + y * y + z * z;
 			if (square <= reach * reach) candidates.push([i, j, Math.sqrt(square)]);
-		});
-	});
+		}
+	}
 	candidates.sort((a, b) => a[2] - b[2]);
 	const usedPlaces = new Set<number>();
 	const usedPoints = new Set<number>();

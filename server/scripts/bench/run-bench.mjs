@@ -19,7 +19,7 @@ const { values, positionals } = parseArgs({
 	},
 });
 
-const worker = join(values.built ?? join(root, 'dist/server'), 'measure.worker.js');
+const worker = join(values.built ?? join(root, 'dist/server'), 'measure.js');
 if (values.built === undefined) {
 	install();
 	if (!build()) process.exit(1);

@@ -1,12 +1,12 @@
-import { adjustWorkloads } from './adjust-workloads.ts';
-import { csvWorkloads } from './csv-workloads.ts';
-import { fitWorkloads } from './fit-workloads.ts';
-import { searchWorkloads } from './search-workloads.ts';
-import type { Workload } from './workload.ts';
+import { adjustWorkloads } from './bench/adjust-workloads.ts';
+import { csvWorkloads } from './bench/csv-workloads.ts';
+import { fitWorkloads } from './bench/fit-workloads.ts';
+import { searchWorkloads } from './bench/search-workloads.ts';
+import type { Workload } from './bench/workload.ts';
 
 /**
- * One measurement in a process of its own: `node dist/server/measure.worker.js <workload> <product|yardstick> [units] [times]` prints one line of
- * JSON. With no argument it prints what can be measured. run-bench.mjs starts it and compares.
+ * One measurement in a process of its own: `node dist/server/measure.js <workload> <product|yardstick> [units] [times]` prints one line of
+ * JSON. With no argument it prints what can be measured. bench/run-bench.mjs starts it and compares.
  */
 
 const workloads: readonly Workload[] = [...fitWorkloads, ...adjustWorkloads, ...searchWorkloads, ...csvWorkloads];
