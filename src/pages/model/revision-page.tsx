@@ -161,7 +161,7 @@ export default function RevisionPage() {
 					/>
 				)}
 			</div>
-			<div className="grid gap-3.5 cabin:grid-cols-[15rem_minmax(0,1fr)] desk:grid-cols-[15rem_minmax(0,1.35fr)_minmax(0,1fr)]">
+			<div className="grid gap-3.5 cabin:grid-cols-[15rem_minmax(0,1fr)] desk:grid-cols-[13rem_minmax(0,1.65fr)_minmax(0,1fr)]">
 				{isPhone ? (
 					<details>
 						<summary className="min-h-12 cursor-pointer py-2.5 font-medium">
