@@ -6,6 +6,7 @@ import { jobContract } from './job/contract.ts';
 import { mailContract } from './mail/contract.ts';
 import { modelContract } from './model/contract.ts';
 import { pourContract } from './pour/contract.ts';
+import { recordContract } from './record/contract.ts';
 import { siteContract } from './site/contract.ts';
 import { surveyContract } from './survey/contract.ts';
 import { toleranceContract } from './tolerance/contract.ts';
@@ -23,4 +24,5 @@ export const contract = {
 	tolerance: toleranceContract,
 	check: checkContract,
 	pour: pourContract,
+	record: recordContract,
 };

@@ -12,6 +12,7 @@ export const permissions = {
 	'member.write': ['project-engineer', 'contractor', 'owners-representative'],
 	'company.write': ['project-engineer'],
 	'deputy.name': ['site-engineer', 'project-engineer', 'contractor', 'owners-representative'],
+	'audit.see': ['site-engineer', 'project-engineer', 'owners-representative', 'observer'],
 	'model.see': everybody,
 	'model.write': ['project-engineer'],
 	'checkpoint.write': ['site-engineer'],

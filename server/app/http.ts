@@ -79,12 +79,14 @@ function calls({ platform, sessions, router }: Pick<HttpParts, 'platform' | 'ses
 		],
 	});
 	return async (request, response, next) => {
+		const origin = { userAgent: request.headers['user-agent'] ?? null, address: request.ip ?? null };
 		const context: RequestContext = {
 			platform,
 			signedIn: await recognise(sessions, request, response),
 			session: {
-				start: async (userId) => void response.append('set-cookie', await sessions.create(userId)),
+				start: async (userId) => void response.append('set-cookie', await sessions.create(userId, origin)),
 				end: async () => void response.append('set-cookie', await sessions.end(request.headers.cookie)),
+				id: sessions.idOf(request.headers.cookie),
 			},
 			address: request.ip ?? 'unknown',
 			tries,

@@ -8,6 +8,7 @@ import { jobRoutes } from '../features/job/routes.ts';
 import { mailRoutes } from '../features/mail/routes.ts';
 import { modelRoutes } from '../features/model/routes.ts';
 import { pourRoutes } from '../features/pour/routes.ts';
+import { recordRoutes } from '../features/record/routes.ts';
 import { siteRoutes } from '../features/site/routes.ts';
 import { surveyRoutes } from '../features/survey/routes.ts';
 import { toleranceRoutes } from '../features/tolerance/routes.ts';
@@ -30,4 +31,5 @@ export const router = {
 	tolerance: toleranceRoutes,
 	check: checkRoutes,
 	pour: pourRoutes,
+	record: recordRoutes,
 } satisfies Router<typeof contract, RequestContext>;

@@ -11,6 +11,8 @@ import type { Tries } from './tries.ts';
 export interface SessionDoor {
 	start: (userId: string) => Promise<void>;
 	end: () => Promise<void>;
+	/** What stands in the table for it; null without one. */
+	id: string | null;
 }
 
 /** What a request brings, before anything was asked of it. */

@@ -8,7 +8,9 @@ import type { SignedIn } from './platform.ts';
 /** The only file that knows the session library (docs/decisions/002). */
 export interface Sessions {
 	/** A new session; answers the cookie to set. */
-	create: (userId: string) => Promise<string>;
+	create: (userId: string, from?: SessionOrigin) => Promise<string>;
+	/** What stands in the table for this cookie header's session, by which a person tells it from the others; null without one. */
+	idOf: (cookieHeader: string | undefined) => string | null;
 	/** Who sends this cookie header, and a cookie to set where the session was prolonged. */
 	validate: (cookieHeader: string | undefined) => Promise<{ signedIn: SignedIn | null; cookie: string | null }>;
 	/** Ends the session of this cookie header; answers the cookie that clears it. */
@@ -18,6 +20,12 @@ export interface Sessions {
 	deleteExpired: () => Promise<void>;
 }
 
+/** Where a session began: shown to its person, so that a strange one is seen. */
+export interface SessionOrigin {
+	userAgent: string | null;
+	address: string | null;
+}
+
 /** A session that is used lives on, up to this long after its start. */
 const longestMs = 90 * 24 * 3_600_000;
 
@@ -25,6 +33,7 @@ declare module 'lucia' {
 	interface Register {
 		Lucia: Lucia<Record<never, never>, { name: string; email: string }>;
 		DatabaseUserAttributes: { name: string; email: string };
+		DatabaseSessionAttributes: SessionOrigin & { createdAt: Date };
 	}
 }
 
@@ -45,10 +54,14 @@ export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean;
 		}
 	};
 	return {
-		create: async (userId) => {
+		create: async (userId, { userAgent, address } = { userAgent: null, address: null }) => {
 			// The start is part of the secret: who changes it changes the hash, and has no session.
 			const sessionId = `${now().getTime().toString(36)}.${randomBytes(32).toString('base64url')}`;
-			const session = await lucia.createSession(userId, {}, { sessionId });
+			const session = await lucia.createSession(
+				userId,
+				{ userAgent: userAgent?.slice(0, 200) ?? null, address, createdAt: now() },
+				{ sessionId },
+			);
 			return lucia.createSessionCookie(session.id).serialize();
 		},
 		validate: async (cookieHeader) => {
@@ -63,6 +76,10 @@ export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean;
 			const signedIn = { userId: user.id, name: user.name, email: user.email };
 			return { signedIn, cookie: session.fresh ? lucia.createSessionCookie(sessionId).serialize() : null };
 		},
+		idOf: (cookieHeader) => {
+			const sessionId = sessionIdIn(cookieHeader);
+			return sessionId === null ? null : hashedId(sessionId);
+		},
 		end: async (cookieHeader) => {
 			const sessionId = sessionIdIn(cookieHeader);
 			if (sessionId !== null) await lucia.invalidateSession(sessionId);
@@ -73,18 +90,21 @@ export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean;
 	};
 }
 
+function hashedId(sessionId: string): string {
+	return createHash('sha256').update(sessionId).digest('hex');
+}
+
 /** The table holds the SHA-256 of what the cookie holds: who reads the table or a backup of it is not signed in. */
 function hashingIds(adapter: Adapter): Adapter {
-	const hashed = (sessionId: string) => createHash('sha256').update(sessionId).digest('hex');
 	return {
 		getSessionAndUser: async (sessionId) => {
-			const [session, user] = await adapter.getSessionAndUser(hashed(sessionId));
+			const [session, user] = await adapter.getSessionAndUser(hashedId(sessionId));
 			return [session && { ...session, id: sessionId }, user];
 		},
 		getUserSessions: (userId) => adapter.getUserSessions(userId),
-		setSession: (session) => adapter.setSession({ ...session, id: hashed(session.id) }),
-		updateSessionExpiration: (sessionId, expiresAt) => adapter.updateSessionExpiration(hashed(sessionId), expiresAt),
-		deleteSession: (sessionId) => adapter.deleteSession(hashed(sessionId)),
+		setSession: (session) => adapter.setSession({ ...session, id: hashedId(session.id) }),
+		updateSessionExpiration: (sessionId, expiresAt) => adapter.updateSessionExpiration(hashedId(sessionId), expiresAt),
+		deleteSession: (sessionId) => adapter.deleteSession(hashedId(sessionId)),
 		deleteUserSessions: (userId) => adapter.deleteUserSessions(userId),
 		deleteExpiredSessions: () => adapter.deleteExpiredSessions(),
 	};

@@ -1,5 +1,7 @@
 import { z } from 'zod';
 import { base } from '../base-contract.ts';
+import { emailAddress, secretToken } from '../site/people-contract.ts';
+import { newPassword } from './password-rule.ts';
 
 export const person = z.object({
 	userId: z.uuid(),
@@ -12,6 +14,22 @@ export const signInInput = z.object({
 	email: z.email('Write an e-mail address.').max(200),
 	password: z.string().min(1, 'Write your password.').max(200),
 });
+
+const tooMany = { TOO_MANY: { status: 429, message: 'Too many tries. Wait a quarter of an hour, then try again.' } };
+const done = z.object({ done: z.literal(true) });
+
+export const ownSession = z.object({
+	/** What stands in the table: it names a session to its person and opens nothing. */
+	sessionId: z.string(),
+	/** Null where the session began before this was kept. */
+	createdAt: z.date().nullable(),
+	userAgent: z.string().nullable(),
+	address: z.string().nullable(),
+	expiresAt: z.date(),
+	/** The one that asks. */
+	isThis: z.boolean(),
+});
+export type OwnSession = z.infer<typeof ownSession>;
 
 export const accountContract = {
 	me: base.meta({ permission: 'public' }).output(person.nullable()),
@@ -29,5 +47,32 @@ export const accountContract = {
 		})
 		.input(signInInput)
 		.output(person),
+	/** The same answer, after the same work, whether the address has an account or not. */
+	askReset: base
+		.meta({ permission: 'public' })
+		.errors(tooMany)
+		.input(z.object({ email: emailAddress }))
+		.output(done),
+	/** By the mailed link: a new password; every session of the person ends. */
+	resetPassword: base
+		.meta({ permission: 'public' })
+		.errors({
+			...tooMany,
+			NOT_FOUND: { status: 404, message: 'This link does not hold: it was used, a newer one was sent, or its half hour is over.' },
+		})
+		.input(z.object({ token: secretToken, password: newPassword }))
+		.output(done),
+	/** The other sessions end. */
+	changePassword: base
+		.meta({ permission: 'signed-in' })
+		.errors({ ...tooMany, WRONG: { status: 422, message: 'This is not your password.' } })
+		.input(z.object({ current: z.string().min(1, 'Write your password.').max(200), password: newPassword }))
+		.output(done),
+	sessions: base.meta({ permission: 'signed-in' }).output(z.array(ownSession)),
+	/** One of one's own; null: all but this one. */
+	endSessions: base
+		.meta({ permission: 'signed-in' })
+		.input(z.object({ sessionId: z.string().nullable() }))
+		.output(z.object({ ended: z.number().int() })),
 	signOut: base.meta({ permission: 'signed-in' }).output(z.object({ signedOut: z.literal(true) })),
 };

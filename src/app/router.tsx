@@ -39,6 +39,7 @@ export const routes: RouteObject[] = [
 		children: [
 			{ path: '/sign-in', lazy: page(() => import('#src/pages/sign-in/sign-in-page.tsx')) },
 			{ path: '/invitation', lazy: page(() => import('#src/pages/invitation/invitation-page.tsx')) },
+			{ path: '/reset', lazy: page(() => import('#src/pages/reset/reset-page.tsx')) },
 			{ path: '/mailbox', lazy: page(() => import('#src/pages/mailbox/mailbox-page.tsx')) },
 			{
 				element: <Gate />,
@@ -46,7 +47,10 @@ export const routes: RouteObject[] = [
 					{ index: true, element: <Navigate to="/sites" replace /> },
 					{
 						element: <ListLayout />,
-						children: [{ path: '/sites', lazy: page(() => import('#src/pages/sites/sites-page.tsx')), errorElement: <RouteFault /> }],
+						children: [
+							{ path: '/sites', lazy: page(() => import('#src/pages/sites/sites-page.tsx')), errorElement: <RouteFault /> },
+							{ path: '/account', lazy: page(() => import('#src/pages/account/account-page.tsx')), errorElement: <RouteFault /> },
+						],
 					},
 					{
 						path: '/sites/:siteId',
@@ -83,6 +87,7 @@ export const routes: RouteObject[] = [
 							sitePage('checks/:checkId', 'check', () => import('#src/pages/check/check-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('pours', 'pours', () => import('#src/pages/pours/pours-page.tsx')),
+							besidePage('audit', () => import('#src/pages/audit/audit-page.tsx')),
 							besidePage('people', () => import('#src/pages/people/people-page.tsx')),
 							{ path: '*', lazy: page(() => import('#src/pages/not-found/not-found-page.tsx')) },
 						],

@@ -16,6 +16,11 @@ const all = [siteEngineer, projectEngineer, contractor, ownersRepresentative, ob
 const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[number][]> = {
 	'account.me': 'anybody',
 	'account.signIn': 'anybody',
+	'account.askReset': 'anybody',
+	'account.resetPassword': 'anybody',
+	'account.changePassword': 'signed in',
+	'account.sessions': 'signed in',
+	'account.endSessions': 'signed in',
 	'account.signOut': 'signed in',
 	'mail.mailbox': 'anybody',
 	'site.list': 'signed in',
@@ -68,6 +73,8 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'check.get': all,
 	'check.csv': all,
 	'check.run': [siteEngineer],
+	'record.audit': [siteEngineer, projectEngineer, ownersRepresentative, observer],
+	'record.auditCsv': [siteEngineer, projectEngineer, ownersRepresentative, observer],
 	'pour.list': all,
 	'pour.add': [projectEngineer],
 };

@@ -1,6 +1,11 @@
 import { audit } from '../../platform/audit.ts';
 import { openRoutes, signedInRoutes } from '../../platform/guard.ts';
+import { changePassword } from './change-password.ts';
+import { endSessions, sessionsOf } from './own-sessions.ts';
+import { askReset, resetPassword } from './reset-password.ts';
 import { signIn } from './sign-in.ts';
+
+const done = { done: true } as const;
 
 export const accountRoutes = {
 	me: openRoutes.account.me.handler(({ context }) => context.signedIn),
@@ -11,6 +16,26 @@ export const accountRoutes = {
 		await context.session.start(outcome.person.userId);
 		return outcome.person;
 	}),
+	askReset: openRoutes.account.askReset.handler(async ({ input, errors, context }) => {
+		if (!(await askReset(context.platform, context.tries, input.email, context.address))) throw errors.TOO_MANY();
+		return done;
+	}),
+	resetPassword: openRoutes.account.resetPassword.handler(async ({ input, errors, context }) => {
+		if (!(await resetPassword(context.platform, context.tries, input, context.address))) throw errors.TOO_MANY();
+		return done;
+	}),
+	changePassword: signedInRoutes.account.changePassword.handler(async ({ input, errors, context }) => {
+		const outcome = await changePassword(context.platform, context.tries, context.signedIn, context.session.id, input);
+		if (outcome === 'too-many') throw errors.TOO_MANY();
+		if (outcome === 'wrong') throw errors.WRONG();
+		return done;
+	}),
+	sessions: signedInRoutes.account.sessions.handler(({ context: { platform, signedIn, session } }) =>
+		sessionsOf(platform.db, signedIn, session.id, platform.now()),
+	),
+	endSessions: signedInRoutes.account.endSessions.handler(async ({ input, context: { platform, signedIn, session } }) => ({
+		ended: await platform.transaction((tx) => endSessions(tx, signedIn, session.id, input.sessionId)),
+	})),
 	signOut: signedInRoutes.account.signOut.handler(async ({ context: { platform, session, signedIn } }) => {
 		await session.end();
 		await platform.transaction((tx) => audit(tx, signedIn, { kind: 'signed-out', subjectId: signedIn.userId, data: {} }));

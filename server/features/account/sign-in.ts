@@ -33,6 +33,6 @@ export async function signIn(
 	if (!(await isPassword(user?.passwordHash ?? null, password)) || user === undefined) return { state: 'wrong' };
 	for (const { key } of keys) tries.giveBack(key);
 	const person = { userId: user.userId, name: user.name, email: user.email };
-	await platform.transaction((tx) => audit(tx, person, { kind: 'signed-in', subjectId: user.userId, data: {} }));
+	await platform.transaction((tx) => audit(tx, { ...person, address }, { kind: 'signed-in', subjectId: user.userId, data: {} }));
 	return { state: 'in', person };
 }

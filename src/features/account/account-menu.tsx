@@ -1,5 +1,6 @@
 import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useId } from 'react';
+import { Link } from 'react-router-dom';
 import type { Person } from '#shared/account/contract.ts';
 import { api } from '#src/lib/api.ts';
 import { type ColourSetWish, chooseColourSet, useColourSet } from '#src/lib/colour-set.ts';
@@ -30,6 +31,7 @@ interface AccountMenuProps {
 export function AccountMenu({ person, role, onSignedOut }: AccountMenuProps) {
 	const menuId = useId();
 	const { wish } = useColourSet();
+	const closeMenu = () => document.getElementById(menuId)?.hidePopover();
 	const queries = useQueryClient();
 	const signOut = useMutation(
 		api.account.signOut.mutationOptions({
@@ -63,6 +65,11 @@ export function AccountMenu({ person, role, onSignedOut }: AccountMenuProps) {
 					</p>
 					<Segmented legend="Colours on this device" options={wishes} value={wish} onChange={chooseColourSet} />
 				</div>
+				<p className="m-0 mb-4">
+					<Link to="/account" onClick={closeMenu} className="inline-flex min-h-6 items-center pointer-coarse:min-h-12">
+						Your account: sessions, password
+					</Link>
+				</p>
 				<Button onClick={() => signOut.mutate({})} isBusy={signOut.isPending}>
 					Sign out
 				</Button>

@@ -1,8 +1,13 @@
 import { Link } from 'react-router-dom';
+import { useMay } from '#src/lib/session.ts';
 
 /** What belongs to the site and hangs from no place of its line. */
 export function BesideTheLine({ siteId }: { siteId: string }) {
-	const places = [{ path: 'people', word: 'People', what: 'who is on the site, in which role, for which firm' }];
+	const mayAudit = useMay('audit.see');
+	const places = [
+		{ path: 'people', word: 'People', what: 'who is on the site, in which role, for which firm' },
+		...(mayAudit ? [{ path: 'audit', word: 'Record of acts', what: 'who did what, as what, and when' }] : []),
+	];
 	return (
 		<nav aria-labelledby="beside">
 			<h2 id="beside" className="m-0 mt-6 mb-2 text-h2 font-strong">

@@ -38,7 +38,7 @@ export function InviteForm({ siteId, roles, companies, onInvited, onLeave }: Inv
 			? [{ value: 'both-engineers', label: roleWords(['site-engineer', 'project-engineer']) }]
 			: []),
 	];
-	const first = roles.includes('contractor') ? 'contractor' : (roles[0] ?? 'observer');
+	const first = roles[0] ?? 'observer';
 	return (
 		<Form
 			schema={schema}

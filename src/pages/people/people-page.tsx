@@ -4,6 +4,7 @@ import { useNavigate } from 'react-router-dom';
 import type { SitePerson } from '#shared/site/people-contract.ts';
 import { CompanyForm } from '#src/features/site/company-form.tsx';
 import { DeputyForm } from '#src/features/site/deputy-form.tsx';
+import { GiveRoleForm } from '#src/features/site/give-role-form.tsx';
 import { InvitationList } from '#src/features/site/invitation-list.tsx';
 import { InviteForm } from '#src/features/site/invite-form.tsx';
 import { PeopleList, peopleGroups } from '#src/features/site/people-list.tsx';
@@ -63,6 +64,18 @@ export default function PeoplePage() {
 					<DeputyForm siteId={siteId} roles={data.deputisableRoles} onNamed={leave} onLeave={leave} />
 				</FormSheet>
 			)}
+			{act === 'role' && mayName && (
+				<FormSheet label="Give a role">
+					<GiveRoleForm
+						siteId={siteId}
+						people={data.people}
+						roles={data.nameableRoles}
+						companies={companies.filter(({ companyId }) => data.nameableCompanyIds.includes(companyId))}
+						onGiven={leave}
+						onLeave={leave}
+					/>
+				</FormSheet>
+			)}
 			{act === 'company' && (
 				<FormSheet label="Companies">
 					<CompanyForm siteId={siteId} companies={companies} onDone={leave} onLeave={leave} />
@@ -77,7 +90,10 @@ export default function PeoplePage() {
 			)}
 			{data.invitations.length > 0 && <InvitationList siteId={siteId} invitations={data.invitations} now={now} />}
 			<Everybody people={data.people} meId={me.userId} siteId={siteId} timeZone={timeZone} />
-			<CompanyPress isOpen={act === 'company'} onOpen={() => setAct('company')} />
+			<div className="flex flex-wrap gap-2.5">
+				{mayName && act !== 'role' && <Button onClick={() => setAct('role')}>Give a role</Button>}
+				<CompanyPress isOpen={act === 'company'} onOpen={() => setAct('company')} />
+			</div>
 		</>
 	);
 }

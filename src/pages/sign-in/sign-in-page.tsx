@@ -1,5 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
-import { Navigate, useNavigate, useSearchParams } from 'react-router-dom';
+import { Link, Navigate, useNavigate, useSearchParams } from 'react-router-dom';
 import { SignInForm } from '#src/features/account/sign-in-form.tsx';
 import { api } from '#src/lib/api.ts';
 import { Headline } from '#src/ui/headline.tsx';
@@ -26,7 +26,12 @@ export default function SignInPage() {
 				</p>
 				<SignInForm onSignedIn={() => navigate(back, { replace: true })} />
 			</main>
-			<footer className="mt-4 text-small text-second">No account? Whoever leads your site invites you.</footer>
+			<footer className="mt-4 text-small text-second">
+				<Link to="/reset" className="inline-flex min-h-6 items-center pointer-coarse:min-h-12">
+					Forgot your password?
+				</Link>
+				<p className="m-0 mt-2">No account? Whoever leads your site invites you.</p>
+			</footer>
 		</div>
 	);
 }
