@@ -41,6 +41,7 @@ export function fitSetups(
 		const paired = pairTargets(
 			own.map((row) => ({
 				name: row.name,
+				row: row.row,
 				code: row.code,
 				surveyM: whole(row.xyzM),
 				sigmaM: row.sigmaM === null ? null : whole(row.sigmaM),
@@ -62,6 +63,7 @@ export function fitSetups(
 			fit: outcome.result,
 			targets: own,
 			findings: [
+				...(paired.findings ?? []).map((finding) => ({ ...finding, evidence: { ...evidence, ...finding.evidence } })),
 				...(paired.notes ?? []).flatMap((note) => said('targets', note, [])),
 				...(paired.sigmaNote === null ? [] : said('sigma-unused', paired.sigmaNote, [])),
 				...(left.length === 0 ? [] : leftOut(left, kind, said)),

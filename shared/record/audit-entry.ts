@@ -28,6 +28,8 @@ export const auditKinds = [
 	'control-stored',
 	'survey-stored',
 	'survey-failed',
+	'points-voided',
+	'points-restored',
 	'fit-made',
 	'fit-adopted',
 	'fit-checked',

@@ -72,8 +72,28 @@ export const surveyPoint = z.object({
 	offsetMm: z.number(),
 	code: z.string(),
 	isTarget: z.boolean(),
+	/** Why later fits and checks pass over it; absent where they do not. */
+	voidedReason: z.string().optional(),
 });
 export type StoredSurveyPoint = z.infer<typeof surveyPoint>;
+
+/** Rows of the file, both ends with them; `toRow` null: to its end. */
+const voidInput = siteInput.extend({
+	setupId: z.uuid(),
+	fromRow: z.number().int().min(1),
+	toRow: z.number().int().min(1).nullable(),
+	reason: plainText(300),
+});
+
+export const voidedPoints = z.object({
+	/** Points that were voided, or taken back, by this. */
+	pointCount: z.number().int(),
+	/** Points of the set-up that count now. */
+	leftCount: z.number().int(),
+	/** The set-up's adopted fit, which keeps the pairs it was made of. */
+	adoptedFitNumber: z.number().int().nullable(),
+});
+export type VoidedPoints = z.infer<typeof voidedPoints>;
 
 const surveyInput = siteInput.extend({ surveyId: z.uuid() });
 
@@ -113,4 +133,8 @@ export const surveyContract = {
 			}),
 		)
 		.output(z.object({ surveyId: z.uuid(), jobId: z.uuid().nullable() })),
+	/** Later fits and checks pass over these points; those made before stand on what they were made of. */
+	voidPoints: base.meta({ permission: 'survey.write' }).input(voidInput).output(voidedPoints),
+	/** Takes it back: they count again. */
+	unvoidPoints: base.meta({ permission: 'survey.write' }).input(voidInput).output(voidedPoints),
 };

@@ -45,7 +45,7 @@ describe('pairs', () => {
 	it('are the marks that both have, repeats averaged, σ from both sides', async () => {
 		const { siteId, surveyor, setupIds, controlSetId } = await surveyed();
 		const setupId = setupIds[0]!;
-		const { pairs, sigmaNote, notes, controlWithoutTarget, targetsWithoutControl } = await surveyor.api.fit.pairs({
+		const { pairs, findings, sigmaNote, notes, controlWithoutTarget, targetsWithoutControl } = await surveyor.api.fit.pairs({
 			siteId,
 			setupId,
 			controlSetId,
@@ -68,6 +68,8 @@ describe('pairs', () => {
 			}
 		}
 		expect(notes?.join()).toMatch(/was sighted 2 times/);
+		// The demonstration's instrument stood still.
+		expect(findings).toBeUndefined();
 	});
 
 	it('say why σ are not used, and what was taken for the same mark', async () => {

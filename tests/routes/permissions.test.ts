@@ -60,6 +60,8 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'survey.get': all,
 	'survey.points': all,
 	'survey.store': [siteEngineer],
+	'survey.voidPoints': [siteEngineer],
+	'survey.unvoidPoints': [siteEngineer],
 	'fit.pairs': all,
 	'fit.list': all,
 	'fit.get': all,

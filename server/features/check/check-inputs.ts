@@ -1,4 +1,4 @@
-import { and, asc, eq, inArray, sql } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNotNull, isNull, sql } from 'drizzle-orm';
 import type { LeftOutCheckpoint } from '#shared/model/requirement.ts';
 import { sha256OfJson } from '#shared/record/sha256.ts';
 import type { Handle } from '../../db/database.ts';
@@ -58,7 +58,7 @@ export async function checkInputs(db: Handle, siteId: string, { revisionId, surv
 		.select({ setup: setups, pointCount: sql<number>`count(${surveyPoints.row})::int` })
 		.from(setups)
 		.innerJoin(surveyPoints, eq(surveyPoints.setupId, setups.id))
-		.where(eq(setups.surveyId, surveyId))
+		.where(and(eq(setups.surveyId, surveyId), isNull(surveyPoints.voidedReason)))
 		.groupBy(setups.id)
 		.orderBy(asc(setups.name));
 	const adopted =
@@ -91,7 +91,25 @@ export async function checkInputs(db: Handle, siteId: string, { revisionId, surv
 			'surveyId',
 		);
 	}
-	return { revision, survey, sheet, withFit, leftOut: await leftOutOf(db, revision), said: await saidOf(db, revision.modelId) };
+	return {
+		revision,
+		survey,
+		sheet,
+		withFit,
+		leftOut: await leftOutOf(db, revision),
+		said: await saidOf(db, revision.modelId),
+		voidedRows: await voidedRowsOf(db, surveyId),
+	};
+}
+
+/** Rows of the survey's file that are voided, in order: a check passes over them, and the file's hash does not tell. */
+async function voidedRowsOf(db: Handle, surveyId: string): Promise<number[]> {
+	const rows = await db
+		.select({ row: surveyPoints.row })
+		.from(surveyPoints)
+		.where(and(eq(surveyPoints.surveyId, surveyId), isNotNull(surveyPoints.voidedReason)))
+		.orderBy(asc(surveyPoints.row));
+	return rows.map(({ row }) => row);
 }
 
 /** What persons left out of this revision, in a fixed order: not asked for in the check. */
@@ -122,7 +140,7 @@ async function saidOf(db: Handle, modelId: string): Promise<{ marks: unknown[]; 
 }
 
 /** SHA-256 over all that a check rests on, each by its hash: the same inputs and engine give the same result. */
-export function checkInputsSha256({ revision, survey, sheet, withFit, leftOut, said }: CheckInputs): Promise<string> {
+export function checkInputsSha256({ revision, survey, sheet, withFit, leftOut, said, voidedRows }: CheckInputs): Promise<string> {
 	return sha256OfJson({
 		engineVersion,
 		modelFileSha256: revision.fileSha256,
@@ -133,6 +151,7 @@ export function checkInputsSha256({ revision, survey, sheet, withFit, leftOut, s
 		...(leftOut.length > 0 ? { leftOut: leftOut.map(({ checkpointId }) => checkpointId) } : {}),
 		...(said.marks.length > 0 ? { marks: said.marks } : {}),
 		...(said.added.length > 0 ? { addedCheckpoints: said.added } : {}),
+		...(voidedRows.length > 0 ? { voidedRows } : {}),
 		setups: withFit.map(({ setup, fit, controlFileSha256 }) => ({
 			name: setup.name,
 			commonMm: setup.commonMm,

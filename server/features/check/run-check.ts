@@ -22,6 +22,8 @@ export async function runCheck(platform: Platform, member: Member, asked: AskedC
 		if (fitsOf(inputs) !== fitsOf(seen)) throw new Conflict('Another fit was adopted a moment ago. Look again, then check.');
 		if (JSON.stringify([inputs.leftOut, inputs.said]) !== JSON.stringify([seen.leftOut, seen.said]))
 			throw new Conflict('Someone chose, named or placed checkpoints a moment ago. Look again, then check.');
+		if (JSON.stringify(inputs.voidedRows) !== JSON.stringify(seen.voidedRows))
+			throw new Conflict('Points were voided or taken back a moment ago. Look again, then check.');
 		const [row] = await tx
 			.select({ highest: max(checks.number) })
 			.from(checks)

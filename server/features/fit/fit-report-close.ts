@@ -6,7 +6,9 @@ import { fixed, mmOf, momentIn, notStated, said } from './fit-report-words.ts';
 /** Section 15: what was looked for, what changed, why it was adopted, how far it may be used. */
 export function qualityBlocks({ fit }: FitReportData): ReportBlock[] {
 	const { findings } = fit.result;
+	const ofSetup = fit.pairs.findings ?? [];
 	return [
+		...ofSetup.map(({ message }) => text(`Of the set-up: ${message}`)),
 		text(
 			findings.length === 0
 				? 'The engine’s search for blunders, exchanged labels, units, axes, scale, tilt, distance constant and weak geometry raised nothing.'

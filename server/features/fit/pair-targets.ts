@@ -1,3 +1,4 @@
+import { movedSetupFindings, type TargetSight } from '#shared/fit/closing-sight.ts';
 import type { PairsOfSetup, Relabelling } from '#shared/fit/contract.ts';
 import type { FitPair } from '#shared/fit/fit-schema.ts';
 import { isTargetCode, matchMarks } from '#shared/survey/match-marks.ts';
@@ -5,6 +6,8 @@ import { isTargetCode, matchMarks } from '#shared/survey/match-marks.ts';
 /** A point of a set-up, survey frame, metres; σ already its own or the set-up's. */
 export interface SetupPoint {
 	name: string;
+	/** Line of the file. */
+	row: number;
 	code: string;
 	surveyM: readonly [number, number, number];
 	sigmaM: readonly [number, number, number] | null;
@@ -44,6 +47,7 @@ export function pairTargets(
 		return sights === undefined ? [] : [pairOf(mark, sights)];
 	});
 	const sigmaNote = whyNoSigma(paired);
+	const findings = movedSetupFindings(targetSights(points, matches));
 	const unmatched = points.filter(({ name, code }) => isTargetCode(code) && !matches.has(name));
 	return {
 		pairs: paired.map(({ pair }) => (sigmaNote === null ? pair : { name: pair.name, survey: pair.survey, control: pair.control })),
@@ -60,7 +64,16 @@ export function pairTargets(
 			),
 		},
 		...(relabellings.length > 0 ? { relabellings: [...relabellings] } : {}),
+		...(findings.length > 0 ? { findings } : {}),
 	};
+}
+
+/** Sights of whatever is a target: named like a mark, whose name it then bears, or coded as one. */
+function targetSights(points: readonly SetupPoint[], matches: ReturnType<typeof matchMarks>): TargetSight[] {
+	return points.flatMap(({ name, code, row, surveyM, sigmaM }) => {
+		const mark = matches.get(name)?.mark;
+		return mark !== undefined || isTargetCode(code) ? [{ name: mark ?? name, row, surveyM, sigmaM }] : [];
+	});
 }
 
 /** Points under the names of the marks that they were found to be; one that bears such a mark's name already gives it up. */
@@ -139,24 +152,14 @@ function looseNotes(matches: ReturnType<typeof matchMarks>): string[] {
 	);
 }
 
-/** Repeats are said, and how far apart the two furthest are; beyond 3σ√2 along an axis they are called too far apart. */
+/** Repeats are said, and how far apart the two furthest are; whether that is too far is `movedSetupFindings`' to say. */
 function repeatNote(name: string, sights: readonly SetupPoint[]): string | null {
 	if (sights.length === 1) return null;
 	let apartM = 0;
-	let isTooFar = false;
 	for (const [i, one] of sights.entries()) {
-		for (const other of sights.slice(0, i)) {
-			const differenceM = axes((k) => one.surveyM[k] - other.surveyM[k]);
-			apartM = Math.max(apartM, Math.hypot(...differenceM));
-			const [sigma, sigmaOther] = [one.sigmaM, other.sigmaM];
-			if (sigma !== null && sigmaOther !== null) {
-				isTooFar ||= axes((k) => Math.abs(differenceM[k]) > 3 * Math.hypot(sigma[k], sigmaOther[k])).some(Boolean);
-			}
-		}
+		for (const other of sights.slice(0, i)) apartM = Math.max(apartM, Math.hypot(...axes((k) => one.surveyM[k] - other.surveyM[k])));
 	}
-	const apart = `${(apartM * 1000).toFixed(1)} mm apart`;
-	const said = `${name} was sighted ${sights.length} times, at most ${apart}; the mean is used.`;
-	return isTooFar ? `${said} That is more than three standard deviations of a difference: the instrument may have moved.` : said;
+	return `${name} was sighted ${sights.length} times, at most ${(apartM * 1000).toFixed(1)} mm apart; the mean is used.`;
 }
 
 function axes<Value>(of: (axis: 0 | 1 | 2) => Value): Axes<Value> {

@@ -62,8 +62,9 @@ export async function setupPairs(db: Handle, { siteId, setupId, controlSetId, re
 	const { pointSigmaPlanM: plan, pointSigmaHeightM: height } = setup;
 	const setupSigmaM = plan === null || height === null ? null : ([plan, plan, height] as const);
 	const paired = pairTargets(
-		points.map(({ name, code, xM, yM, zM, sigmaM }) => ({
+		points.map(({ name, row, code, xM, yM, zM, sigmaM }) => ({
 			name,
+			row,
 			code,
 			surveyM: [xM, yM, zM],
 			sigmaM: sigmaM === null ? setupSigmaM : vectorOf(sigmaM),

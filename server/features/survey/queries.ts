@@ -127,6 +127,7 @@ export async function pointsOf(
 			offsetMm: row.offsetMm,
 			code: row.code,
 			isTarget: matched.has(row.name) || isTargetCode(row.code),
+			...(row.voidedReason === null ? {} : { voidedReason: row.voidedReason }),
 		})),
 	};
 }

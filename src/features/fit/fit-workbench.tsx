@@ -22,6 +22,7 @@ import { Leftovers } from './leftovers.tsx';
 import { pairFigures } from './pair-figures.ts';
 import { PairTable, shelfWords } from './pair-table.tsx';
 import { ReasonDialog } from './reason-dialog.tsx';
+import { SetupFindings } from './setup-findings.tsx';
 import { type PairPlace, useShelves } from './shelves-state.ts';
 import type { PlanExtent } from './uncertainty-field.ts';
 import { UnnamedProposal } from './unnamed-proposal.tsx';
@@ -130,6 +131,7 @@ export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid
 							{outcome.refusal.message}
 						</Notice>
 					)}
+					<SetupFindings findings={pairs.findings ?? []} voids={mayAdopt ? { siteId, setup } : null} />
 					{fit && (
 						<FindingCures
 							findings={findings}

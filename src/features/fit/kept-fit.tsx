@@ -9,6 +9,7 @@ import { FitPlan } from './fit-plan.tsx';
 import { Leftovers } from './leftovers.tsx';
 import { pairFigures } from './pair-figures.ts';
 import { PairTable } from './pair-table.tsx';
+import { SetupFindings } from './setup-findings.tsx';
 import type { PlanExtent } from './uncertainty-field.ts';
 
 interface KeptFitProps {
@@ -29,6 +30,7 @@ export function KeptFit({ fit, timeZone, grid, outline }: KeptFitProps) {
 		<div className="grid gap-4 desk:grid-cols-[minmax(0,1fr)_minmax(0,34rem)]">
 			<div className="flex min-w-0 flex-col gap-3.5">
 				<Standing fit={fit} timeZone={timeZone} />
+				<SetupFindings findings={fit.pairs.findings ?? []} voids={null} />
 				<FindingCures
 					findings={fit.result.findings}
 					pairs={fit.pairs.pairs}

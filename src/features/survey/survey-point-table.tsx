@@ -2,17 +2,25 @@ import { useMemo } from 'react';
 import type { SetupSummary, StoredSurveyPoint } from '#shared/survey/contract.ts';
 import { useAddressState } from '#src/lib/address-state.ts';
 import { metres } from '#src/lib/format.ts';
+import { Button } from '#src/ui/button.tsx';
 import { type Column, Table, type TableGroup } from '#src/ui/table.tsx';
 
 interface SurveyPointTableProps {
 	points: readonly StoredSurveyPoint[];
 	setups: readonly SetupSummary[];
+	/** Null: this person takes no voided points back. */
+	onTakeBack: ((setup: SetupSummary) => void) | null;
 }
 
 const columns: readonly Column<StoredSurveyPoint>[] = [
 	{ key: 'row', head: 'Row', align: 'end', cell: (point) => point.row, widthPx: 80, onlyFrom: 'tablet' },
 	{ key: 'name', head: 'Point', isRowHead: true, cell: (point) => point.name, orderBy: (point) => point.name },
-	{ key: 'kind', head: 'Is', cell: (point) => (point.isTarget ? 'target' : ''), widthPx: 90 },
+	{
+		key: 'kind',
+		head: 'Is',
+		cell: (point) => [point.isTarget && 'target', point.voidedReason !== undefined && 'voided'].filter(Boolean).join(', '),
+		widthPx: 130,
+	},
 	{ key: 'x', head: 'x, m', align: 'end', cell: (point) => <span className="font-mono">{metres(point.surveyM[0])}</span> },
 	{ key: 'y', head: 'y, m', align: 'end', cell: (point) => <span className="font-mono">{metres(point.surveyM[1])}</span> },
 	{ key: 'z', head: 'z, m', align: 'end', cell: (point) => <span className="font-mono">{metres(point.surveyM[2])}</span> },
@@ -34,23 +42,31 @@ const columns: readonly Column<StoredSurveyPoint>[] = [
 ];
 
 /** Points as they were measured, survey frame of their set-up. */
-export function SurveyPointTable({ points, setups }: SurveyPointTableProps) {
+export function SurveyPointTable({ points, setups, onTakeBack }: SurveyPointTableProps) {
 	const [chosen, choose] = useAddressState('at');
 	const groups = useMemo(
 		() =>
 			setups.map((setup): TableGroup<StoredSurveyPoint> => {
 				const rows = points.filter((point) => point.setupId === setup.setupId);
+				const voided = rows.filter((point) => point.voidedReason !== undefined);
+				const reasons = [...new Set(voided.map((point) => point.voidedReason))];
 				return {
 					key: setup.setupId,
 					rows,
 					head: (
 						<>
 							<b>Set-up {setup.name}</b> <span className="text-second">{rows.length}</span>
+							{voided.length > 0 && (
+								<span className="ml-3">
+									<b>{voided.length} voided</b>: {reasons.join(' ')}{' '}
+									{onTakeBack !== null && <Button onClick={() => onTakeBack(setup)}>Take back</Button>}
+								</span>
+							)}
 						</>
 					),
 				};
 			}),
-		[points, setups],
+		[points, setups, onTakeBack],
 	);
 	return (
 		<Table

@@ -1,10 +1,12 @@
 import { useQueryClient, useSuspenseQueries } from '@tanstack/react-query';
+import { useState } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import { mayWith } from '#shared/permissions.ts';
-import type { SurveySummary } from '#shared/survey/contract.ts';
+import type { SetupSummary, SurveySummary } from '#shared/survey/contract.ts';
 import { observationWords } from '#src/features/survey/observation-words.ts';
 import { SurveyPointTable } from '#src/features/survey/survey-point-table.tsx';
 import { setupWords, stageWords, surveyHeadline } from '#src/features/survey/survey-words.ts';
+import { UnvoidDialog } from '#src/features/survey/void-dialog.tsx';
 import { api } from '#src/lib/api.ts';
 import { count, counted } from '#src/lib/format.ts';
 import { useJob } from '#src/lib/job-progress.ts';
@@ -27,6 +29,7 @@ export default function SurveyPage() {
 		],
 	});
 	const mayCheck = mayWith(site.roles, 'check.write');
+	const [restored, setRestored] = useState<SetupSummary | null>(null);
 	const isTied = survey.setups.some((setup) => setup.adoptedFitId !== null);
 	return (
 		<>
@@ -85,7 +88,12 @@ export default function SurveyPage() {
 							? `The first ${count(shownPoints)} of ${count(measured.total)} points`
 							: `${count(measured.total)} points`}
 					</h2>
-					<SurveyPointTable points={measured.points} setups={survey.setups} />
+					<SurveyPointTable
+						points={measured.points}
+						setups={survey.setups}
+						onTakeBack={mayWith(site.roles, 'survey.write') ? setRestored : null}
+					/>
+					{restored && <UnvoidDialog siteId={siteId} setup={restored} onClose={() => setRestored(null)} />}
 				</section>
 			</div>
 		</>
