@@ -142,6 +142,28 @@ describe('a check', { timeout: 180_000 }, () => {
 		expect(new Set(partly.check.deviations.flatMap(({ setupId: by }) => by ?? []))).toEqual(new Set([setupId]));
 	});
 
+	it('leaves out targets that the fit took for marks, and points that were voided, and has another hash then', async () => {
+		const site = await modelled('made-frame-mm-ifc4x3.ifc');
+		const { siteId, surveyor, checkpoints } = site;
+		const { control, survey } = asBuilt(checkpoints.slice(0, 5));
+		const { controlSetId } = await storeControl(server, surveyor, control);
+		const { surveyId } = await storeSurvey(server, surveyor, survey.replace('\nT1,', '\n101,'));
+		const setupId = (await surveyor.api.survey.get({ siteId, surveyId })).setups[0]!.setupId;
+		const relabellings = [{ target: '101', mark: 'T1', reason: 'By mutual distances.' }];
+		const about = { siteId, setupId, controlSetId, kind: 'levelled' as const, knownScale: null, shelves: [] };
+		const { fitId } = await surveyor.api.fit.make({ ...about, relabellings });
+		await surveyor.api.fit.adopt({ siteId, fitId, reason: 'Residuals are nil.' });
+		const whole = await run(site, surveyId);
+		expect(whole.check.unmatchedPoints).toEqual([]);
+		expect(whole.check.isSecondPersonAsked).toBe(true);
+		// Row 1 is the header, 2 to 5 the targets: the first two shots.
+		await surveyor.api.survey.voidPoints({ siteId, setupId, fromRow: 6, toRow: 7, reason: 'Tripod knocked.' });
+		const fewer = await run(site, surveyId);
+		expect(whole.check.summary['not-measured'] + 2).toBe(fewer.check.summary['not-measured']);
+		expect(fewer.check.inputsSha256).not.toBe(whole.check.inputsSha256);
+		expect((await surveyor.api.check.get({ siteId, checkId: whole.checkId })).summary).toEqual(whole.check.summary);
+	});
+
 	it('that meets nothing ends failed, with what is likely wrong, and stores no deviation', async () => {
 		const site = await modelled('made-frame-mm-ifc4x3.ifc');
 		const far = site.checkpoints.map((checkpoint, index) => {
