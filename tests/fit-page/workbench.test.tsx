@@ -33,7 +33,14 @@ const setup: SetupSummary = {
 // A search for causes takes its time on a busy machine.
 configure({ asyncUtilTimeout: 20_000 });
 
+// The browser of the tests has no dialogs of its own.
 beforeEach(() => {
+	HTMLDialogElement.prototype.showModal ??= function showModal(this: HTMLDialogElement) {
+		this.open = true;
+	};
+	HTMLDialogElement.prototype.close ??= function close(this: HTMLDialogElement) {
+		this.open = false;
+	};
 	vi.stubGlobal('fetch', () => new Promise(() => {}));
 });
 afterEach(() => {
@@ -112,17 +119,27 @@ describe('the workbench', () => {
 
 	it('asks a reason before a pair is set aside, and keeps it in sight', async () => {
 		await show({ pairs: pairs(6) });
-		HTMLDialogElement.prototype.showModal ??= function showModal(this: HTMLDialogElement) {
-			this.open = true;
-		};
-		HTMLDialogElement.prototype.close ??= function close(this: HTMLDialogElement) {
-			this.open = false;
-		};
 		fireEvent.change(screen.getAllByLabelText('Shelf of T2')[0]!, { target: { value: 'set-aside all' } });
 		fireEvent.click(await screen.findByRole('button', { name: 'Mark disturbed' }));
 		fireEvent.click(screen.getByRole('button', { name: 'Set T2 aside' }));
 		await waitFor(() => expect(screen.getByText('Mark disturbed', { selector: 'td' })).toBeTruthy());
 		expect(heading()).toContain('5 targets agree');
+	});
+
+	it('says first that the instrument moved, and offers to void what came after to whoever may', async () => {
+		const evidence = { lastGoodRow: 9, firstRow: 2, lastRow: 40 };
+		const findings = [
+			{ code: 'moved-setup', pairs: ['T1'], message: 'T1 came back 12.0 mm off along z: did the instrument move?', evidence },
+		];
+		await show({ pairs: pairs(6), findings });
+		expect(screen.getByRole('heading', { name: /^T1 came back 12\.0 mm off/ })).toBeTruthy();
+		fireEvent.click(screen.getByRole('button', { name: 'Void what came after row 9' }));
+		expect(await screen.findByDisplayValue('9')).toBeTruthy();
+		expect(screen.getByRole('button', { name: 'Void them' })).toBeTruthy();
+		cleanup();
+		await show({ pairs: pairs(6), findings }, false);
+		expect(screen.getByRole('heading', { name: /^T1 came back/ })).toBeTruthy();
+		expect(screen.queryByRole('button', { name: /^Void/ })).toBeNull();
 	});
 
 	it('lets who may not adopt look only', async () => {
