@@ -40,7 +40,8 @@ for (const name of readdirSync(from).filter((file) => file.endsWith('.ifc') && f
 	}
 	const { reading } = outcome;
 	note(name, reading);
-	const count = (characteristic: string): number => reading.checkpoints.filter((checkpoint) => checkpoint.characteristic === characteristic).length;
+	const count = (characteristic: string): number =>
+		reading.checkpoints.filter((checkpoint) => checkpoint.characteristic === characteristic).length;
 	const withSome = new Set(reading.checkpoints.map(({ entityNumber }) => entityNumber)).size;
 	const atOpenings = reading.checkpoints.filter(({ label }) => /^(Opening|Recess|Round opening)/.test(label)).length;
 	const findings = [...new Set(reading.findings.map(({ code }) => code))].join(', ');
@@ -52,5 +53,7 @@ rmSync(folder, { recursive: true, force: true });
 console.log('\n| why no checkpoint | elements | files | classes |\n| --- | --- | --- | --- |');
 for (const [why, { elements, files, classes }] of [...reasons].sort((a, b) => b[1].elements - a[1].elements)) {
 	const most = [...classes].sort((a, b) => b[1] - a[1]).slice(0, 5);
-	console.log(`| ${why} | ${elements} | ${files.size} | ${most.map(([className, times]) => `${className.slice(3)} ${times}`).join(', ')} |`);
+	console.log(
+		`| ${why} | ${elements} | ${files.size} | ${most.map(([className, times]) => `${className.slice(3)} ${times}`).join(', ')} |`,
+	);
 }

@@ -22,6 +22,9 @@ const SHORTEST_M = 0.2;
 /** In front of the face, to see whether another part of the element covers it. */
 const BEFORE_M = 0.005;
 
+/** In front of a head or sill, to look along it: more than a facet of a twisted soffit falls. */
+const BESIDE_M = 0.05;
+
 const MOST_FACES = 160;
 
 /** Proven inner faces square to the sides of a wall or slab, not covered by another body of the element. */
@@ -44,6 +47,16 @@ function revealsOf(mesh: SolidMesh, faces: readonly PlanarFace[], across: Vector
 const isBare = (mesh: SolidMesh, face: PlanarFace, place: Vector3): boolean =>
 	!isInsideMesh(mesh, add(place, scale(face.normal, BEFORE_M)));
 
+/** Whether the wall goes on at the other side, or for a head or sill at both sides: a step in its top, or an overhang, is no opening. */
+function isEnclosed(mesh: SolidMesh, face: PlanarFace, place: Vector3, along: Vector3): boolean {
+	const before = add(place, scale(face.normal, BESIDE_M));
+	const ways = Math.abs(face.normal[2]) > LEVEL_NZ ? [along, scale(along, -1)] : [face.normal];
+	return ways.every((way) => {
+		const far = firstHitM(mesh, before, way);
+		return far !== null && far <= WIDEST_OPENING_M;
+	});
+}
+
 /** Which edge it is: the one on the side that the face turns its back to. */
 const sideOf = (face: PlanarFace): { word: string; code: string } => {
 	const compass = compassOf([-face.normal[0], -face.normal[1]]);
@@ -58,7 +71,7 @@ function middleOf(plan: FacePlan): { u: number; v: number } | null {
 }
 
 /**
- * Of a wall: for each opening or recess its standing edges (a face each, at half their height), its head and its sill (a level each, in the
+ * Of a wall: for each opening its standing edges (a face each, at half their height), its head and its sill (a level each, in the
  * middle). `across`: the normal of the wall's sides, `wall`: one of them laid out.
  */
 export function wallOpenings(mesh: SolidMesh, faces: readonly PlanarFace[], across: Vector3, wall: FacePlan): CheckpointDraft[] {
@@ -74,7 +87,7 @@ export function wallOpenings(mesh: SolidMesh, faces: readonly PlanarFace[], acro
 		const middle = middleOf(plan);
 		if (!middle) continue;
 		const place = placeOn(plan, middle.u, middle.v);
-		if (!isBare(mesh, face, place)) continue;
+		if (!isBare(mesh, face, place) || !isEnclosed(mesh, face, place, wall.u)) continue;
 		const where = `${metresInWords(place[2] - mesh.min[2])} above the wall's base, ${fromEnd(place)}`;
 		if (face.normal[2] > LEVEL_NZ) drafts.push(levelDraft(mesh, face, place[0], place[1], `Opening, sill, ${where}`, 'OU'));
 		else if (face.normal[2] < -LEVEL_NZ) drafts.push(levelDraft(mesh, face, place[0], place[1], `Opening, head, ${where}`, 'OT'));

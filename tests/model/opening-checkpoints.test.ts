@@ -79,6 +79,13 @@ describe('openings in walls', () => {
 		]);
 	});
 
+	it('are none where the wall is stepped: at its top, or under an overhang', () => {
+		const stepped = cellBody([0, 3, 6, 10], [0, 0.3], [0, 1, 2, 3], (i, _, k) => k <= i);
+		expect(openingsOf(place('IfcWall', stepped), 0, [0, 0, 0])).toEqual([]);
+		const hanging = cellBody([0, 3, 6, 10], [0, 0.3], [0, 1, 2, 3], (i, _, k) => k >= i);
+		expect(openingsOf(place('IfcWall', hanging), 0, [0, 0, 0])).toEqual([]);
+	});
+
 	it('do not show where a second body fills them', () => {
 		const wall = cellBody([0, 4, 5, 10], [0, 0.3], [0, 2, 3], (i, _, k) => !(i === 1 && k === 0));
 		const filling = cellBody([3.99, 5.01], [0.01, 0.29], [0, 2.01], () => true);

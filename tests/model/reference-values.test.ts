@@ -87,6 +87,14 @@ function misses(reference: Reference, checkpoints: readonly Checkpoint[], elemen
 			);
 		case 'diameter':
 			return element.sizesM.thickness === null ? [] : [Math.abs(element.sizesM.thickness - number)];
+		case 'thickness':
+		case 'length':
+		case 'XDim (section size)':
+		case 'YDim (section size)':
+		case 'OverallWidth (section size)':
+		case 'OverallDepth (section size)':
+			// Which of an element's three sizes is called so depends on how it was extruded.
+			return Object.values(element.sizesM).flatMap((size) => (size === null ? [] : [Math.abs(size - number)]));
 		case 'highest point':
 			return element.boxM ? [Math.abs(element.boxM.max[2] - number)] : [];
 		case 'lowest point':
@@ -106,6 +114,17 @@ const toMap = (reading: ModelReading, [x, y, z]: readonly number[]): number[] =>
 		map.northings * map.mapUnitM + k * (s * x! + c * y!),
 		map.orthogonalHeight * map.mapUnitM + k * z!,
 	];
+};
+
+/** Attributes that do not describe the body's own sizes, or a size that is not among the three that are kept. */
+const OTHER_SIZES: Readonly<Record<string, string>> = {
+	'made-frame-metre-ifc4.ifc IfcFooting XDim (section size)': 'the shorter side in plan is not kept',
+	'made-frame-mm-ifc4x3.ifc IfcFooting XDim (section size)': 'the shorter side in plan is not kept',
+	'duplex-georef.ifc IfcFooting YDim (section size)': 'the shorter side in plan is not kept',
+	'bridge-detailed-2x3.ifc IfcBeam YDim (section size)': 'a girder cut aslant at both ends: its length is not told from its shape',
+	'bridge-detailed-2x3.ifc IfcBeam length': 'a girder cut aslant at both ends: its length is not told from its shape',
+	'bridge-detailed-2x3.ifc IfcWallStandardCase length': 'clipped aslant: its body is 0.7 mm longer than its axis',
+	'mini-project.ifc IfcMember YDim (section size)': 'a plate: its longest side and its thickness are kept',
 };
 
 const files = [...new Set(references.map(({ file }) => file))].filter((file) => file !== 'ios-beam-standard-case.ifc');
@@ -133,10 +152,11 @@ describe('the values of real files', () => {
 			if (far.length === 0) continue;
 			shown++;
 			const least = Math.min(...far);
-			if (!(least < NEAR_M)) wrong.push(`${reference.globalId} ${reference.ifcClass} ${reference.quantity}: ${least} m off`);
+			if (!(least < NEAR_M) && !(`${file} ${reference.ifcClass} ${reference.quantity}` in OTHER_SIZES))
+				wrong.push(`${reference.globalId} ${reference.ifcClass} ${reference.quantity}: ${least} m off`);
 		}
 		expect(wrong).toEqual([]);
 		// Files with sizes only, or elements along an alignment that contradicts itself, show none.
-		if (!/house-xbim|gherkin|parametric|cardinal|mapped-shape|geographic|reinforcing/.test(file)) expect(shown).toBeGreaterThan(0);
+		if (!/house-xbim|gherkin|geographic/.test(file)) expect(shown).toBeGreaterThan(0);
 	});
 });

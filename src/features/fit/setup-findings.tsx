@@ -1,8 +1,8 @@
 import { useState } from 'react';
 import type { Finding } from '#shared/fit/fit-schema.ts';
-import { VoidDialog } from '#src/features/survey/void-dialog.tsx';
 import { Button } from '#src/ui/button.tsx';
 import { FindingCard } from '#src/ui/finding-card.tsx';
+import { VoidDialog } from './void-dialog.tsx';
 
 interface SetupFindingsProps {
 	findings: readonly Finding[];

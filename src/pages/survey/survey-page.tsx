@@ -6,7 +6,7 @@ import type { SetupSummary, SurveySummary } from '#shared/survey/contract.ts';
 import { observationWords } from '#src/features/survey/observation-words.ts';
 import { SurveyPointTable } from '#src/features/survey/survey-point-table.tsx';
 import { setupWords, stageWords, surveyHeadline } from '#src/features/survey/survey-words.ts';
-import { UnvoidDialog } from '#src/features/survey/void-dialog.tsx';
+import { UnvoidDialog } from '#src/features/survey/unvoid-dialog.tsx';
 import { api } from '#src/lib/api.ts';
 import { count, counted } from '#src/lib/format.ts';
 import { useJob } from '#src/lib/job-progress.ts';

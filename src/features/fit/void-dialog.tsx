@@ -54,29 +54,6 @@ export function VoidDialog({ siteId, setup, afterRow, reason, hasAdoptedFit, onC
 	);
 }
 
-/** Counts a set-up's voided points again, with a reason. */
-export function UnvoidDialog({ siteId, setup, onClose }: Pick<VoidDialogProps, 'siteId' | 'setup' | 'onClose'>) {
-	const restoring = useMutation(api.survey.unvoidPoints.mutationOptions());
-	const refresh = useRefresh();
-	return (
-		<Dialog isOpen onClose={onClose} title={`Take back the voided points of set-up ${setup.name}?`}>
-			<p className="mt-0">Later fits and checks count them again. Those made before stay as they are.</p>
-			<Form
-				schema={fields.pick({ reason: true })}
-				values={{ reason: '' }}
-				onSubmit={async ({ reason }) => {
-					await restoring.mutateAsync({ siteId, setupId: setup.setupId, fromRow: 1, toRow: null, reason });
-					await refresh();
-					onClose();
-				}}
-			>
-				<LongTextField name="reason" label="Reason" hint="Kept in the record." />
-				<Submit beside={<Button onClick={onClose}>Leave them voided</Button>}>Take them back</Submit>
-			</Form>
-		</Dialog>
-	);
-}
-
 function useRefresh(): () => Promise<unknown> {
 	const queries = useQueryClient();
 	return () => Promise.all([api.fit.key(), api.survey.key(), api.site.key()].map((queryKey) => queries.invalidateQueries({ queryKey })));
