@@ -19,7 +19,7 @@ try {
 	}
 	if (configuration.mail.kind === 'fake') console.log(`Mail goes nowhere; it can be read at ${running.address}/mailbox`);
 	if (configuration.mail.kind === 'none') {
-		console.error('No mail can be sent, so nobody can be invited: set RESEND_API_KEY, or MAIL_URL, and MAIL_FROM.');
+		console.log('No mail can be sent, so nobody can be invited: set RESEND_API_KEY, or MAIL_URL, and MAIL_FROM.');
 	}
 	if (configuration.isCookieSecure && running.address.startsWith('http:')) {
 		console.error('Sign-in cookies travel by TLS only: put a proxy with TLS before this, or set COOKIE_SECURE=off.');
