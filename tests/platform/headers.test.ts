@@ -6,6 +6,8 @@ import { securityHeaders } from '../../server/app/headers.ts';
 async function headersWith(settings: { isSecure: boolean; isDevelopment: boolean }): Promise<Headers> {
 	const app = express();
 	app.use(securityHeaders(settings));
+	// An answer of ours: the library's own 404 page brings a policy of its own.
+	app.get('/', (_request, response) => void response.send('here'));
 	const server = app.listen(0, '127.0.0.1');
 	await new Promise((resolve) => server.once('listening', resolve));
 	const { headers } = await fetch(`http://127.0.0.1:${(server.address() as AddressInfo).port}/`);
