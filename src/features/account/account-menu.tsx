@@ -66,7 +66,11 @@ export function AccountMenu({ person, role, onSignedOut }: AccountMenuProps) {
 					<Segmented legend="Colours on this device" options={wishes} value={wish} onChange={chooseColourSet} />
 				</div>
 				<p className="m-0 mb-4">
-					<Link to="/account" onClick={closeMenu} className="inline-flex min-h-6 items-center pointer-coarse:min-h-12">
+					<Link
+						to="/account"
+						onClick={closeMenu}
+						className="inline-flex text-action underline underline-offset-3 min-h-6 items-center pointer-coarse:min-h-12"
+					>
 						Your account: sessions, password
 					</Link>
 				</p>

@@ -42,7 +42,11 @@ function MailText({ mail }: { mail: MailboxMail }) {
 				<p key={paragraph} className="m-0 mb-3 whitespace-pre-line break-words">
 					{paragraph.split(/(https?:\/\/\S+)/).map((part) =>
 						/^https?:\/\//.test(part) ? (
-							<a key={part} href={part} className="inline-flex min-h-6 items-center break-all pointer-coarse:min-h-12">
+							<a
+								key={part}
+								href={part}
+								className="inline-flex text-action underline underline-offset-3 min-h-6 items-center break-all pointer-coarse:min-h-12"
+							>
 								{part}
 							</a>
 						) : (
@@ -55,7 +59,7 @@ function MailText({ mail }: { mail: MailboxMail }) {
 				href={`/api/mailbox/${mail.keptId}`}
 				target="_blank"
 				rel="noreferrer"
-				className="inline-flex min-h-6 items-center pointer-coarse:min-h-12"
+				className="inline-flex text-action underline underline-offset-3 min-h-6 items-center pointer-coarse:min-h-12"
 			>
 				As a mail program shows it
 			</a>

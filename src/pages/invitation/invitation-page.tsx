@@ -35,7 +35,11 @@ function Invitation({ token }: { token: string }) {
 			<>
 				<Headline title="Invitation">This link does not hold</Headline>
 				<Notice kind="wrong" title={refusalOf(error).message}>
-					Ask whoever invited you to send it again: it takes one press. If you accepted it before, <Link to="/sign-in">sign in</Link>.
+					Ask whoever invited you to send it again: it takes one press. If you accepted it before,{' '}
+					<Link to="/sign-in" className="text-action underline underline-offset-3">
+						sign in
+					</Link>
+					.
 				</Notice>
 			</>
 		);

@@ -20,7 +20,10 @@ export default function ResetPage() {
 				<Headline title="New password">{token === '' ? 'A link to a new password' : 'Choose a new password'}</Headline>
 				{isDone ? (
 					<Notice kind="note" title="The password is set.">
-						You are signed out everywhere. <Link to="/sign-in">Sign in with it.</Link>
+						You are signed out everywhere.{' '}
+						<Link to="/sign-in" className="text-action underline underline-offset-3">
+							Sign in with it.
+						</Link>
 					</Notice>
 				) : token === '' ? (
 					<AskResetForm />
@@ -29,11 +32,14 @@ export default function ResetPage() {
 				)}
 			</main>
 			<footer className="mt-4 text-small">
-				<Link to="/sign-in" className="inline-flex min-h-6 items-center pointer-coarse:min-h-12">
+				<Link to="/sign-in" className="inline-flex text-action underline underline-offset-3 min-h-6 items-center pointer-coarse:min-h-12">
 					To the sign-in
 				</Link>
 				{token !== '' && !isDone && (
-					<Link to="/reset" className="ml-4 inline-flex min-h-6 items-center pointer-coarse:min-h-12">
+					<Link
+						to="/reset"
+						className="ml-4 inline-flex text-action underline underline-offset-3 min-h-6 items-center pointer-coarse:min-h-12"
+					>
 						Another link
 					</Link>
 				)}

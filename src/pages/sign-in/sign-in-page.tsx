@@ -27,7 +27,7 @@ export default function SignInPage() {
 				<SignInForm onSignedIn={() => navigate(back, { replace: true })} />
 			</main>
 			<footer className="mt-4 text-small text-second">
-				<Link to="/reset" className="inline-flex min-h-6 items-center pointer-coarse:min-h-12">
+				<Link to="/reset" className="inline-flex text-action underline underline-offset-3 min-h-6 items-center pointer-coarse:min-h-12">
 					Forgot your password?
 				</Link>
 				<p className="m-0 mt-2">No account? Whoever leads your site invites you.</p>
