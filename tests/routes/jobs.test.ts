@@ -169,6 +169,6 @@ describe('a job', () => {
 			elsewhere.api.job.follow({ siteId: elsewhere.siteId, jobId }),
 			elsewhere.api.job.get({ siteId, jobId }),
 		];
-		for (const answer of asked) await expect(answer).rejects.toMatchObject({ code: 'NOT_FOUND' });
+		await Promise.all(asked.map((answer) => expect(answer).rejects.toMatchObject({ code: 'NOT_FOUND' })));
 	});
 });
