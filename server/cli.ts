@@ -4,8 +4,9 @@ import { runCheckCommand } from './cli/check.ts';
 import { runCheckpoints } from './cli/checkpoints.ts';
 import { runFit } from './cli/fit.ts';
 import { runJudge } from './cli/judge.ts';
+import { runVerify } from './cli/verify.ts';
 
-/** JSON on standard output, or text as asked for (CSV); all else on standard error. 0 done · 2 the input is refused · 1 a defect of ours. */
+/** JSON on standard output, or text as asked for (CSV); all else on standard error. 0 done · 2 the input is refused · 3 a record is not genuine · 1 a defect of ours. */
 interface Outcome {
 	exitCode: number;
 	output: unknown;
@@ -18,6 +19,7 @@ const commands: Record<string, Command> = {
 	judge: async (args) => onText(args, runJudge),
 	check: (args) => runCheckCommand(args, (note) => console.error(note)),
 	checkpoints: (args) => runCheckpoints(args, (note) => console.error(note)),
+	verify: runVerify,
 };
 
 async function onText(args: readonly string[], run: (text: string) => Outcome): Promise<Outcome> {

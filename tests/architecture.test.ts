@@ -29,9 +29,10 @@ const AHEAD_OF_USE: Record<string, string> = {
 	'shared/flag/flag-schema.ts': 'flags through their life',
 	'shared/flag/may-act.ts': 'flags through their life',
 	'shared/flag/measured-again.ts': 'flags through their life',
-	'shared/check/rejudge.ts': 'stored figures judged by another sheet before it is issued',
 	'shared/fit/adjust-setups.ts': 'set-ups tied by common targets, adjusted together',
 	'shared/fit/start-setups.ts': 'set-ups tied by common targets, adjusted together',
+	'shared/record/seal-record.ts': 'the release of a pour',
+	'src/lib/strict-ed25519.ts': 'the page that verifies records',
 };
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */
