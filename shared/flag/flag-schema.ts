@@ -9,7 +9,8 @@ export const flagStates = ['open', 'answered', 'decided', 'put-right', 'closed',
 export const flagState = z.enum(flagStates);
 export type FlagState = z.infer<typeof flagState>;
 
-export const flagVerdict = z.enum(['outside', 'too-close-to-call', 'undecided']);
+export const flagVerdicts = ['outside', 'too-close-to-call', 'undecided'] as const;
+export const flagVerdict = z.enum(flagVerdicts);
 export type FlagVerdict = z.infer<typeof flagVerdict>;
 
 /** What the contractor answers. */
@@ -64,9 +65,11 @@ export const flagDecision = z.discriminatedUnion('kind', [
 export type FlagDecision = z.infer<typeof flagDecision>;
 
 /** Why a flag lapsed: each is a sentence on the flag. */
-export const lapseCause = z.enum(['check-withdrawn', 'element-gone', 'limits-changed']);
+export const lapseCauses = ['check-withdrawn', 'element-gone', 'limits-changed'] as const;
+export const lapseCause = z.enum(lapseCauses);
 export type LapseCause = z.infer<typeof lapseCause>;
 
 /** On what a flag was closed. `taken-as-measured`: too close to call, inside its limits by the deviation alone, taken so with a reason. */
-export const closingCause = z.enum(['check-within', 'concession', 'taken-as-measured']);
+export const closingCauses = ['check-within', 'concession', 'taken-as-measured'] as const;
+export const closingCause = z.enum(closingCauses);
 export type ClosingCause = z.infer<typeof closingCause>;

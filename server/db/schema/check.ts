@@ -55,6 +55,10 @@ export const checks = pgTable(
 		madeAt: at('made_at').notNull(),
 		publishedBy: uuid('published_by').references(() => users.id),
 		publishedAt: at('published_at'),
+		/** The contractors' deadline that was said before the press. */
+		answerBy: at('answer_by'),
+		withdrawnBy: uuid('withdrawn_by').references(() => users.id),
+		withdrawnAt: at('withdrawn_at'),
 		withdrawnReason: text('withdrawn_reason'),
 	},
 	(t) => [
@@ -75,6 +79,10 @@ export const checks = pgTable(
 		constraint(
 			'checks_result_whole',
 			sql`${t.state} not in ('trial', 'published', 'withdrawn') or (${t.summary} is not null and ${t.findings} is not null)`,
+		),
+		constraint(
+			'checks_published_says_who',
+			sql`${t.state} <> 'published' or (${t.publishedBy} is not null and ${t.publishedAt} is not null)`,
 		),
 		constraint('checks_withdrawn_says_why', sql`${t.state} <> 'withdrawn' or ${t.withdrawnReason} is not null`),
 	],
