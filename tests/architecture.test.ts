@@ -32,8 +32,6 @@ const AHEAD_OF_USE: Record<string, string> = {
 	'shared/flag/measured-again.ts': 'flags through their life',
 	'shared/fit/adjust-setups.ts': 'set-ups tied by common targets, adjusted together',
 	'shared/fit/start-setups.ts': 'set-ups tied by common targets, adjusted together',
-	'shared/record/seal-record.ts': 'the release of a pour',
-	'src/lib/strict-ed25519.ts': 'the page that verifies records',
 };
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */

@@ -7,8 +7,12 @@ import { diskFiles } from '../platform/disk-files.ts';
 import { type OpenMail, openMail } from '../platform/open-mail.ts';
 import type { JobRunner, Platform } from '../platform/platform.ts';
 import { openPostman, type Postman } from '../platform/postman.ts';
+import { publishKeys } from '../platform/publish-keys.ts';
 import { openQueue, type Queue } from '../platform/queue.ts';
+import { openRecordJournal } from '../platform/record-journal.ts';
+import { openRecordStore } from '../platform/record-store.ts';
 import { openSessions } from '../platform/session.ts';
+import { openSigningKeys } from '../platform/signing-keys.ts';
 import { openUploads } from '../platform/upload-server.ts';
 import { clientOf } from './client.ts';
 import type { Configuration } from './configuration.ts';
@@ -46,6 +50,8 @@ export async function startOn(
 	stop?: AbortSignal,
 ): Promise<RunningServer> {
 	const queue = openQueue(connection, runners);
+	const keys = await openSigningKeys(configuration.dataDir);
+	const journal = await openRecordJournal(join(configuration.dataDir, 'journal', 'records.jsonl'));
 	const mail = await openMail(configuration.mail, join(configuration.dataDir, 'mailbox'));
 	let address = '';
 	const platform: Platform = {
@@ -54,6 +60,7 @@ export async function startOn(
 		files: diskFiles(join(configuration.dataDir, 'files')),
 		uploadFolder: join(configuration.dataDir, 'uploads'),
 		jobs: queue.jobs,
+		records: openRecordStore(connection.db, keys.current, journal),
 		mail: { isOn: mail.service !== null, mailbox: mail.mailbox },
 		publicUrl: () => configuration.publicUrl ?? address,
 		now: () => new Date(),
@@ -67,6 +74,8 @@ export async function startOn(
 	const close = () => closeAll(server, closeClient, { postman, mail }, queue, connection);
 	try {
 		const uploads = openUploads({ platform, path: uploadsPath, largestBytes: configuration.largestUploadBytes });
+		await publishKeys(platform.db, keys, platform.now());
+		for (const sentence of [...journal.said, ...(await platform.records.compare())]) console.error(sentence);
 		await sessions.deleteExpired();
 		await uploads.sweep();
 		const client = await clientOf({ isDevelopment: configuration.isDevelopment, server });

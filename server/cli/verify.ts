@@ -2,7 +2,6 @@ import { readFile } from 'node:fs/promises';
 import { readPublicKeys, type TrustedKey } from '#shared/record/public-key.ts';
 import { readRecordFile } from '#shared/record/read-record-file.ts';
 import { verifyRecords } from '#shared/record/verify-records.ts';
-import { strictEd25519 } from '../platform/strict-ed25519.ts';
 import { type Answer, InputRefused } from './refusal.ts';
 
 /** `verify RECORD.json|CHAIN.json --key KEY.pem… [--head SHA256]`: code 3 where it is not genuine, 2 where it is no record or a key cannot be read. */
@@ -12,7 +11,7 @@ export async function runVerify(args: readonly string[]): Promise<Answer> {
 		const read = readRecordFile(await bytesOf(file));
 		if (read.kind === 'other') throw new InputRefused('bad-input', read.message, file);
 		const keys = await readKeys(keyFiles);
-		const verification = await verifyRecords(read, { keys, head, ed25519: strictEd25519 });
+		const verification = await verifyRecords(read, { keys, head });
 		return { exitCode: verification.genuine ? 0 : 3, output: verification };
 	} catch (error) {
 		if (error instanceof InputRefused) return error.answer;

@@ -2,6 +2,7 @@ import type { z } from 'zod';
 import type { Role } from '#shared/permissions.ts';
 import type { Db, Transaction } from '../db/database.ts';
 import type { Mailbox } from './mail.ts';
+import type { RecordStore } from './record-store.ts';
 
 /** What a command may use of the world. One value, made at the start and handed on; tests make their own. */
 export interface Platform {
@@ -12,6 +13,8 @@ export interface Platform {
 	/** Where uploads lie until a command takes them (`takeUpload`). */
 	uploadFolder: string;
 	jobs: JobQueue;
+	/** What was signed: sealed, chained, journalled. */
+	records: RecordStore;
 	/** Whether mail can be sent at all, and the local fake's mailbox where it stands in for a service. */
 	mail: { isOn: boolean; mailbox: Mailbox | null };
 	/** What links in mails begin with: from the configuration or our own socket, never from a request. */

@@ -4,13 +4,7 @@ import { bytesOfHex, type TrustedKey } from './public-key.ts';
 import type { RecordFile } from './read-record-file.ts';
 import type { DecisionBody, SealedRecord } from './sealed-record.ts';
 import { sha256OfJson } from './sha256.ts';
-
-/** Ed25519 as RFC 8032 has it, strictly: S ≥ L, points not in their one encoding, and keys of small order are refused. */
-export interface StrictEd25519 {
-	/** Why this point may not be a key, as a sentence; null where it may. */
-	whyNoKey: (point: Uint8Array) => string | null;
-	isSigned: (signed: { point: Uint8Array; message: Uint8Array; signature: Uint8Array }) => boolean;
-}
+import { type StrictEd25519, strictEd25519 } from './strict-ed25519.ts';
 
 /** What `verify` answers; the shape is the command line's contract. */
 export interface Verification {
@@ -31,7 +25,7 @@ interface VerifyOptions {
 	readonly keys: readonly TrustedKey[];
 	/** A head held from earlier, lower-case hexadecimal. */
 	readonly head?: string | null;
-	readonly ed25519: StrictEd25519;
+	readonly ed25519?: StrictEd25519;
 }
 
 /** Conformities agree to this: the exponential of another engine may differ in its last digits, a verdict may not. */
@@ -45,7 +39,7 @@ const mostReasons = 50;
  */
 export async function verifyRecords(
 	file: Exclude<RecordFile, { kind: 'other' }>,
-	{ keys, head = null, ed25519 }: VerifyOptions,
+	{ keys, head = null, ed25519 = strictEd25519 }: VerifyOptions,
 ): Promise<Verification> {
 	if (file.kind === 'broken') {
 		const nothing = { signedBy: null, signedAt: null, statement: null, previous: null, head: null };

@@ -1,8 +1,7 @@
 import { createPrivateKey, createPublicKey, sign, verify } from 'node:crypto';
 import { describe, expect, it } from 'vitest';
 import { bytesOfHex, hexOf, publicKeyPem, readPublicKeys } from '#shared/record/public-key.ts';
-import { strictEd25519 as inBrowser } from '#src/lib/strict-ed25519.ts';
-import { strictEd25519 as onServer } from '../../server/platform/strict-ed25519.ts';
+import { strictEd25519 as strict } from '#shared/record/strict-ed25519.ts';
 
 /** RFC 8032, 7.1: secret key, public key, message, signature. Node's own implementation must give the same, so no letter of them is ours. */
 const vectors = [
@@ -56,10 +55,7 @@ const noEncoding = [
 
 const pkcs8 = (secret: string) => Buffer.concat([Buffer.from('302e020100300506032b657004220420', 'hex'), Buffer.from(secret, 'hex')]);
 
-describe.each([
-	['on the server', onServer],
-	['in the browser', inBrowser],
-])('Ed25519 %s', (_, strict) => {
+describe('Ed25519', () => {
 	it.each(vectors)('takes the published signature by %s and no other', (secret, publicHex, messageHex, signatureHex) => {
 		const key = createPrivateKey({ key: pkcs8(secret), format: 'der', type: 'pkcs8' });
 		const message = bytesOfHex(messageHex);

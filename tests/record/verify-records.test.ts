@@ -8,9 +8,9 @@ import { publicKeyPem, readPublicKeys } from '#shared/record/public-key.ts';
 import { readRecordFile } from '#shared/record/read-record-file.ts';
 import { sealRecord } from '#shared/record/seal-record.ts';
 import type { DecisionBody, RecordedCheckpoint, SealedRecord } from '#shared/record/sealed-record.ts';
+import { strictEd25519 } from '#shared/record/strict-ed25519.ts';
 import { type Verification, verifyRecords } from '#shared/record/verify-records.ts';
 import { runVerify } from '../../server/cli/verify.ts';
-import { strictEd25519 } from '../../server/platform/strict-ed25519.ts';
 import { chainText, decisionBodyOf, sha256Hex, testChain, testSigner, withdrawalBodyOf } from './sample-records.ts';
 
 const signer = testSigner();
@@ -26,7 +26,7 @@ const keyFile = pathOf('key.pem', signer.pem);
 async function verified(text: string, { pem = signer.pem, head = null as string | null } = {}): Promise<Verification> {
 	const file = readRecordFile(new TextEncoder().encode(text));
 	if (file.kind === 'other') throw new Error(file.message);
-	return verifyRecords(file, { keys: await readPublicKeys(pem), head, ed25519: strictEd25519 });
+	return verifyRecords(file, { keys: await readPublicKeys(pem), head });
 }
 
 const recordText = (body = decisionBodyOf(1, null), by = signer): string => sealRecord(body, by).text;
