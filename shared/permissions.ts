@@ -8,6 +8,7 @@ const everybody: readonly Role[] = roles;
 /** `public`: without a session. `signed-in`: any person with a session. All others: a role on the site of the request. */
 export const permissions = {
 	'site.see': everybody,
+	'site.write': ['project-engineer'],
 	/** Whom one may name is the policy's: nobody but owner's representatives names those, a contractor's lead only its own people. */
 	'member.write': ['project-engineer', 'contractor', 'owners-representative'],
 	'company.write': ['project-engineer'],

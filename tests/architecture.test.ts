@@ -32,6 +32,7 @@ const AHEAD_OF_USE: Record<string, string> = {
 	'shared/flag/measured-again.ts': 'flags through their life',
 	'shared/fit/adjust-setups.ts': 'set-ups tied by common targets, adjusted together',
 	'shared/fit/start-setups.ts': 'set-ups tied by common targets, adjusted together',
+	'shared/site/working-time.ts': 'deadlines of flags and of hold points',
 };
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */

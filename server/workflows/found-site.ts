@@ -1,6 +1,7 @@
 import { starterSheet } from '#shared/tolerance/starter-sheet.ts';
-import { addSite, expectTimeZone } from '../features/site/add-site.ts';
+import { addSite } from '../features/site/add-site.ts';
 import { invite } from '../features/site/invite.ts';
+import { expectTimeZone } from '../features/site/settings.ts';
 import { issueSheet, sheetToIssue } from '../features/tolerance/issue-sheet.ts';
 import { signedInRoutes } from '../platform/guard.ts';
 

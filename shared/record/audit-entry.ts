@@ -8,6 +8,7 @@ export const auditKinds = [
 	'password-changed',
 	'sessions-ended',
 	'site-founded',
+	'site-settings-changed',
 	'member-added',
 	'member-invited',
 	'deputy-named',

@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
 import { roles } from '../permissions.ts';
 import { emailAddress, peopleContract } from './people-contract.ts';
+import { keptSettings, saveSettingsInput } from './site-settings.ts';
 
 export const role = z.enum(roles);
 
@@ -41,5 +42,8 @@ export const siteContract = {
 	/** The founder is site and project engineer of a new site, with a starter sheet issued. */
 	found: base.meta({ permission: 'signed-in' }).input(foundSiteInput).output(siteSummary),
 	get: base.meta({ permission: 'site.see' }).input(siteInput).output(siteDetail),
+	settings: base.meta({ permission: 'site.see' }).input(siteInput).output(keptSettings),
+	/** CONFLICT where somebody changed them since that version. */
+	saveSettings: base.meta({ permission: 'site.write' }).input(saveSettingsInput).output(keptSettings),
 	...peopleContract,
 };

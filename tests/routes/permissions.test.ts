@@ -26,6 +26,8 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'site.list': 'signed in',
 	'site.found': 'signed in',
 	'site.get': all,
+	'site.settings': all,
+	'site.saveSettings': [projectEngineer],
 	'site.people': all,
 	// Whom one may name is tested in people.test.ts.
 	'site.invite': [projectEngineer, contractor, ownersRepresentative],

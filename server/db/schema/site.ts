@@ -1,11 +1,18 @@
 import { sql } from 'drizzle-orm';
-import { boolean, check, foreignKey, index, pgEnum, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import { boolean, check, foreignKey, index, integer, jsonb, pgEnum, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
 import { roles } from '../../../shared/permissions.ts';
+import {
+	type CheckpointDensity,
+	defaultCalendar,
+	defaultCheckpointDensity,
+	type WorkingCalendar,
+} from '../../../shared/site/site-settings.ts';
 import { users } from './account.ts';
 import { at, id, siteId } from './columns.ts';
 
 export const roleEnum = pgEnum('role', roles);
 export const columnOrderEnum = pgEnum('column_order', ['PENZD', 'PNEZD']);
+export const decisionRuleEnum = pgEnum('decision_rule', ['simple', 'guarded']);
 
 export const sites = pgTable(
 	'sites',
@@ -19,6 +26,17 @@ export const sites = pgTable(
 		isFitCheckedBySecond: boolean('is_fit_checked_by_second').notNull(),
 		/** What was answered the last time an order of columns had to be asked. */
 		columnOrder: columnOrderEnum('column_order'),
+		/** Hours that deadlines count, in the site's zone. */
+		calendar: jsonb('calendar').$type<WorkingCalendar>().notNull().default(defaultCalendar),
+		/** What a new tolerance sheet begins with. */
+		defaultDecision: decisionRuleEnum('default_decision').notNull().default('guarded'),
+		checkpointDensity: jsonb('checkpoint_density').$type<CheckpointDensity>().notNull().default(defaultCheckpointDensity),
+		/** A concession holds only with the owner's representative's consent. */
+		needsOwnersConsent: boolean('needs_owners_consent').notNull().default(false),
+		/** Who signs, adopts or issues has a second factor. */
+		needsSecondFactor: boolean('needs_second_factor').notNull().default(false),
+		/** Counts changes of the settings: who changes an older one is told. */
+		settingsVersion: integer('settings_version').notNull().default(1),
 		createdAt: at('created_at').notNull(),
 	},
 	(t) => [check('sites_name_said', sql`length(${t.name}) between 1 and 200`)],

@@ -3,19 +3,9 @@ import type { Transaction } from '../../db/database.ts';
 import { buildings, companies, memberships, sites } from '../../db/schema/site.ts';
 import { audit } from '../../platform/audit.ts';
 import type { Member, Platform, SignedIn } from '../../platform/platform.ts';
-import { Refused } from '../../platform/refuse.ts';
 
 /** Who founds a site prepares its surveys and its model; an owner's representative is named by the owner's side. */
 const foundersRoles: readonly Role[] = ['site-engineer', 'project-engineer'];
-
-/** Refuses a time zone that this server's calendar does not know. */
-export function expectTimeZone(timeZone: string): void {
-	try {
-		new Intl.DateTimeFormat('en-GB', { timeZone });
-	} catch {
-		throw new Refused('bad-time-zone', 'Choose a time zone by region and city, like Europe/Zurich.', 'timeZone');
-	}
-}
 
 /** A new site with a first building and a first company, the founder on it; answers the founder as its member. */
 export async function addSite(
