@@ -79,6 +79,10 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'check.run': [siteEngineer],
 	'record.audit': [siteEngineer, projectEngineer, ownersRepresentative, observer],
 	'record.auditCsv': [siteEngineer, projectEngineer, ownersRepresentative, observer],
+	'record.keys': 'anybody',
+	'record.list': all,
+	'record.get': all,
+	'record.chain': [siteEngineer, projectEngineer, ownersRepresentative, observer],
 	'pour.list': all,
 	'pour.add': [projectEngineer],
 };
