@@ -68,6 +68,8 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'fit.list': all,
 	'fit.get': all,
 	'fit.make': [siteEngineer],
+	'fit.ties': all,
+	'fit.makeTogether': [siteEngineer],
 	'fit.adopt': [siteEngineer],
 	'fit.report': all,
 	'fit.confirm': [siteEngineer],
