@@ -23,6 +23,7 @@ const ENTRIES = /^(server\/(main|worker|cli)\.ts|server\/scripts\/[^/]+\.ts|src\
 
 /** Built and tested ahead of its first use: path → the issue that will use it. Empty before a release. */
 const AHEAD_OF_USE: Record<string, string> = {
+	'server/platform/notices.ts': 'what flags, checks and pours tell by mail',
 	'server/db/schema/flag.ts': 'flags through their life',
 	'shared/check/standing.ts': 'the state of a pour from all published checks',
 	'shared/flag/act-on-flag.ts': 'flags through their life',
@@ -30,6 +31,8 @@ const AHEAD_OF_USE: Record<string, string> = {
 	'shared/flag/flag-schema.ts': 'flags through their life',
 	'shared/flag/may-act.ts': 'flags through their life',
 	'shared/flag/measured-again.ts': 'flags through their life',
+	'shared/fit/adjust-setups.ts': 'set-ups tied by common targets, adjusted together',
+	'shared/fit/start-setups.ts': 'set-ups tied by common targets, adjusted together',
 	'shared/site/working-time.ts': 'deadlines of flags and of hold points',
 };
 

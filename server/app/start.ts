@@ -3,6 +3,7 @@ import { createServer, type Server } from 'node:http';
 import { join } from 'node:path';
 import { connectDatabase } from '../db/connect.ts';
 import type { Connection } from '../db/connection.ts';
+import { deliverNotices } from '../platform/deliver-notices.ts';
 import { diskFiles } from '../platform/disk-files.ts';
 import { type OpenMail, openMail } from '../platform/open-mail.ts';
 import type { JobRunner, Platform } from '../platform/platform.ts';
@@ -67,7 +68,8 @@ export async function startOn(
 		newId: randomUUID,
 	};
 	const sessions = openSessions({ db: platform.db, isSecure: configuration.isCookieSecure, now: platform.now });
-	const postman = openPostman({ db: platform.db, service: mail.service, now: platform.now });
+	const beforeLook = () => deliverNotices(platform);
+	const postman = openPostman({ db: platform.db, service: mail.service, beforeLook, now: platform.now });
 	const server = createServer({ requestTimeout: requestTimeoutMs });
 	let closeClient = async () => {};
 	let isReady = false;

@@ -1,4 +1,5 @@
-import { and, asc, eq, gt, isNull, lte, or } from 'drizzle-orm';
+import { and, asc, eq, gt, inArray, isNull, lte, ne, or, type SQL } from 'drizzle-orm';
+import type { Role } from '#shared/permissions.ts';
 import type { Handle } from '../db/database.ts';
 import { memberships } from '../db/schema/site.ts';
 import type { Member, SignedIn } from './platform.ts';
@@ -8,16 +9,26 @@ export async function memberOf(db: Handle, person: SignedIn, siteId: string, now
 	const rows = await db
 		.select({ role: memberships.role, companyId: memberships.companyId })
 		.from(memberships)
-		.where(
-			and(
-				eq(memberships.siteId, siteId),
-				eq(memberships.userId, person.userId),
-				lte(memberships.fromAt, now),
-				or(isNull(memberships.leftAt), gt(memberships.leftAt, now)),
-			),
-		)
+		.where(and(eq(memberships.siteId, siteId), eq(memberships.userId, person.userId), isOnSite(now)))
 		.orderBy(asc(memberships.role));
 	if (rows.length === 0) return null;
 	const companyIds = new Set(rows.flatMap(({ companyId }) => (companyId === null ? [] : [companyId])));
 	return { ...person, siteId, roles: [...new Set(rows.map(({ role }) => role))], companyIds: [...companyIds] };
+}
+
+/** Who holds one of these roles on the site at this time, deputies among them; of contractors those of the company where one is given. User ids, each once. */
+export async function peopleWith(
+	db: Handle,
+	{ siteId, roles, companyId, now }: { siteId: string; roles: readonly Role[]; companyId?: string; now: Date },
+): Promise<string[]> {
+	const ofCompany = companyId === undefined ? undefined : or(ne(memberships.role, 'contractor'), eq(memberships.companyId, companyId));
+	const rows = await db
+		.selectDistinct({ userId: memberships.userId })
+		.from(memberships)
+		.where(and(eq(memberships.siteId, siteId), inArray(memberships.role, [...roles]), isOnSite(now), ofCompany));
+	return rows.map(({ userId }) => userId);
+}
+
+function isOnSite(now: Date): SQL | undefined {
+	return and(lte(memberships.fromAt, now), or(isNull(memberships.leftAt), gt(memberships.leftAt, now)));
 }

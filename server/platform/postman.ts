@@ -19,16 +19,19 @@ export interface Postman {
 interface PostmanParts {
 	db: Db;
 	service: MailService | null;
+	/** Writes into the outbox what has come due meanwhile; before each look. */
+	beforeLook?: () => Promise<unknown>;
 	now: () => Date;
 }
 
 /** Sends what the outbox holds, one after the other. Without a service nothing is sent, and what waits goes on waiting. */
-export function openPostman({ db, service, now }: PostmanParts): Postman {
+export function openPostman({ db, service, beforeLook, now }: PostmanParts): Postman {
 	let isStopped = false;
 	let round: Promise<void> = Promise.resolve();
 	let timer: ReturnType<typeof setTimeout> | undefined;
 	const look = (mailService: MailService) => {
-		round = deliverDue({ db, service: mailService, now }, () => isStopped)
+		round = Promise.resolve(beforeLook?.())
+			.then(() => deliverDue({ db, service: mailService, now }, () => isStopped))
 			.then(() => undefined)
 			.catch((error: unknown) => {
 				if (!isStopped) console.error('The outbox could not be worked on:', error);

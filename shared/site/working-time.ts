@@ -94,6 +94,15 @@ export function nextWorkingTime(at: Date, calendar: WorkingCalendar, timeZone: s
 	}
 }
 
+/** The next beginning of a day's work strictly after the instant. */
+export function beginOfWorkAfter(at: Date, calendar: WorkingCalendar, timeZone: string): Date {
+	const today = wallDayOf(at.getTime(), timeZone);
+	for (let day = workingDayFrom(today, calendar); ; day = workingDayFrom(day + dayMs, calendar)) {
+		const { from } = hoursOn(day, calendar, timeZone);
+		if (from > at.getTime()) return new Date(from);
+	}
+}
+
 /**
  * The instant by which so many working hours have gone by; a fraction counts. What ends with the day's work ends that evening, not the next
  * morning. Throws a RangeError beyond 0 to 10 000 hours.

@@ -1,7 +1,14 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { defaultCalendar, minutesOf, type WorkingCalendar } from '#shared/site/site-settings.ts';
-import { addWorkingDays, addWorkingHours, isWorkingTime, nextWorkingTime, workingHoursBetween } from '#shared/site/working-time.ts';
+import {
+	addWorkingDays,
+	addWorkingHours,
+	beginOfWorkAfter,
+	isWorkingTime,
+	nextWorkingTime,
+	workingHoursBetween,
+} from '#shared/site/working-time.ts';
 
 const zurich = 'Europe/Zurich';
 const at = (iso: string) => new Date(iso);
@@ -25,6 +32,13 @@ describe('working time', () => {
 		expect(hoursOf('2027-03-27T12:00:00Z', '2027-03-29T12:00:00Z')).toBe(23);
 		expect(hoursOf('2026-10-24T12:00:00Z', '2026-10-26T12:00:00Z')).toBe(25);
 		expect(hoursOf('2026-10-17T12:00:00Z', '2026-10-19T12:00:00Z')).toBe(24);
+	});
+
+	it('begins anew strictly after an instant, on the next working day', () => {
+		// Tuesday 1 December 2026 begins at 07:00 in Zurich, 06:00Z.
+		expect(iso(beginOfWorkAfter(at('2026-12-01T05:59:59Z'), defaultCalendar, zurich))).toBe('2026-12-01T06:00:00.000Z');
+		expect(iso(beginOfWorkAfter(at('2026-12-01T06:00:00Z'), defaultCalendar, zurich))).toBe('2026-12-02T06:00:00.000Z');
+		expect(iso(beginOfWorkAfter(at('2026-12-04T12:00:00Z'), defaultCalendar, zurich))).toBe('2026-12-07T06:00:00.000Z');
 	});
 
 	it('is another zone’s time in another zone', () => {

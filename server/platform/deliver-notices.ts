@@ -1,0 +1,70 @@
+import { and, asc, eq, inArray, isNull, lte } from 'drizzle-orm';
+import { noticeUrgencies } from '#shared/mail/notice.ts';
+import type { Transaction } from '../db/database.ts';
+import { users } from '../db/schema/account.ts';
+import { notices } from '../db/schema/mail.ts';
+import { sites } from '../db/schema/site.ts';
+import { memberOf } from './membership.ts';
+import { noticeLetter } from './notice-letter.ts';
+import type { Platform } from './platform.ts';
+import { postMail } from './post-mail.ts';
+
+const mostInARound = 500;
+
+/**
+ * Turns what is due into letters in the outbox: one a person and site, whatever came together. Who has left the site meanwhile is told
+ * nothing more. Answers how many letters were written. In one transaction, so that a notice is mailed once though the server dies in between.
+ */
+export async function deliverNotices({
+	transaction,
+	publicUrl,
+	now,
+}: Pick<Platform, 'transaction' | 'publicUrl' | 'now'>): Promise<number> {
+	return transaction(async (tx) => {
+		const at = now();
+		const due = await tx
+			.select()
+			.from(notices)
+			.where(and(isNull(notices.endedAt), lte(notices.leavesAt, at)))
+			.orderBy(asc(notices.leavesAt))
+			.limit(mostInARound)
+			.for('update', { skipLocked: true });
+		let letters = 0;
+		for (const together of groupedByPerson(due)) letters += (await writeLetter(tx, together, publicUrl(), at)) ? 1 : 0;
+		return letters;
+	});
+}
+
+type Due = typeof notices.$inferSelect;
+
+function groupedByPerson(due: readonly Due[]): Due[][] {
+	const groups = new Map<string, Due[]>();
+	for (const notice of due) {
+		const key = `${notice.siteId} ${notice.userId}`;
+		const group = groups.get(key);
+		if (group === undefined) groups.set(key, [notice]);
+		else group.push(notice);
+	}
+	return [...groups.values()];
+}
+
+async function writeLetter(tx: Transaction, due: Due[], publicUrl: string, now: Date): Promise<boolean> {
+	const [{ siteId, userId }] = due as [Due];
+	const [person] = await tx.select({ name: users.name, email: users.email }).from(users).where(eq(users.id, userId));
+	const [site] = await tx.select({ name: sites.name }).from(sites).where(eq(sites.id, siteId));
+	const isMember = person !== undefined && (await memberOf(tx, { userId, ...person }, siteId, now)) !== null;
+	if (!isMember || site === undefined) {
+		await end(tx, due, 'left-the-site', now);
+		return false;
+	}
+	const isAlone = due.length === 1 && noticeUrgencies[due[0]!.kind] !== 'digest';
+	const letter = noticeLetter({ siteName: site.name, notices: due, isAlone, publicUrl });
+	await postMail(tx, { to: person.email, letter, now });
+	await end(tx, due, 'mailed', now);
+	return true;
+}
+
+async function end(tx: Transaction, due: readonly Due[], how: 'mailed' | 'left-the-site', now: Date): Promise<void> {
+	const ids = due.map(({ id }) => id);
+	await tx.update(notices).set({ endedAt: now, end: how }).where(inArray(notices.id, ids));
+}
