@@ -1,8 +1,9 @@
-import { and, asc, eq, inArray, isNull, lte } from 'drizzle-orm';
+import { and, asc, desc, eq, inArray, isNull, lte } from 'drizzle-orm';
 import { noticeUrgencies } from '#shared/mail/notice.ts';
 import type { Transaction } from '../db/database.ts';
 import { users } from '../db/schema/account.ts';
 import { notices } from '../db/schema/mail.ts';
+import { sealedRecords } from '../db/schema/record.ts';
 import { sites } from '../db/schema/site.ts';
 import { memberOf } from './membership.ts';
 import { noticeLetter } from './notice-letter.ts';
@@ -58,7 +59,7 @@ async function writeLetter(tx: Transaction, due: Due[], publicUrl: string, now: 
 		return false;
 	}
 	const isAlone = due.length === 1 && noticeUrgencies[due[0]!.kind] !== 'digest';
-	const letter = noticeLetter({ siteName: site.name, notices: due, isAlone, publicUrl });
+	const letter = noticeLetter({ siteName: site.name, notices: due, isAlone, head: await headOf(tx, siteId), publicUrl });
 	await postMail(tx, { to: person.email, letter, now });
 	await end(tx, due, 'mailed', now);
 	return true;
@@ -67,4 +68,15 @@ async function writeLetter(tx: Transaction, due: Due[], publicUrl: string, now: 
 async function end(tx: Transaction, due: readonly Due[], how: 'mailed' | 'left-the-site', now: Date): Promise<void> {
 	const ids = due.map(({ id }) => id);
 	await tx.update(notices).set({ endedAt: now, end: how }).where(inArray(notices.id, ids));
+}
+
+/** The newest record of the site's chain: whoever keeps it can prove later that nothing before it was changed. */
+async function headOf(tx: Transaction, siteId: string): Promise<{ sequence: number; sha256: string } | null> {
+	const [head] = await tx
+		.select({ sequence: sealedRecords.sequence, sha256: sealedRecords.sha256 })
+		.from(sealedRecords)
+		.where(eq(sealedRecords.siteId, siteId))
+		.orderBy(desc(sealedRecords.sequence))
+		.limit(1);
+	return head ?? null;
 }

@@ -13,13 +13,24 @@ interface NoticeLetterFacts {
 	notices: readonly LetterNotice[];
 	/** One matter of weight in a letter of its own: the sentence is the subject. */
 	isAlone: boolean;
+	/** The newest record of the site's chain; null before the first. */
+	head: { sequence: number; sha256: string } | null;
 	publicUrl: string;
 }
 
 /** What waits for a person on one site, each with the link to its very place. */
-export function noticeLetter({ siteName, notices, isAlone, publicUrl }: NoticeLetterFacts): Letter {
+export function noticeLetter({ siteName, notices, isAlone, head, publicUrl }: NoticeLetterFacts): Letter {
 	const urlOf = ({ path }: LetterNotice) => `${publicUrl}${path}`;
 	const [first] = notices;
+	const notes =
+		head === null
+			? []
+			: [
+					{
+						words: `The site’s chain of records ends with record ${head.sequence}, ${head.sha256}. Keep this mail: it proves later that nothing up to there was changed.`,
+						url: `${publicUrl}/verify`,
+					},
+				];
 	if (isAlone && first !== undefined) {
 		return {
 			subject: `${siteName}: ${first.sentence.replace(/\.$/, '')}`,
@@ -27,7 +38,7 @@ export function noticeLetter({ siteName, notices, isAlone, publicUrl }: NoticeLe
 			paragraphs: [],
 			...(first.rod === null ? {} : { items: [{ words: 'The figure:', url: urlOf(first), rod: first.rod }] }),
 			act: { word: 'See it there', url: urlOf(first) },
-			notes: [],
+			notes,
 		};
 	}
 	const count = notices.length === 1 ? 'one thing is new for you' : `${notices.length} things are new for you`;
@@ -40,6 +51,6 @@ export function noticeLetter({ siteName, notices, isAlone, publicUrl }: NoticeLe
 			url: urlOf(notice),
 			...(notice.rod === null ? {} : { rod: notice.rod }),
 		})),
-		notes: [],
+		notes,
 	};
 }

@@ -1,8 +1,9 @@
-import { randomUUID } from 'node:crypto';
+import { randomBytes, randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import type { NoticeKind } from '#shared/mail/notice.ts';
 import { mails, notices } from '../../server/db/schema/mail.ts';
+import { sealedRecords } from '../../server/db/schema/record.ts';
 import { memberships } from '../../server/db/schema/site.ts';
 import { deliverNotices } from '../../server/platform/deliver-notices.ts';
 import { peopleWith } from '../../server/platform/membership.ts';
@@ -76,6 +77,31 @@ describe('a notice', () => {
 		expect(mine.text).toMatch(/─+┼─+┼─+▶─* {2}allowed −10 to \+10: \+23 ±3 mm/);
 		expect(mine.html).toContain('A &lt;b&gt;bold&lt;/b&gt; firm.');
 		expect(mine.html).toContain('allowed −10 to +10: +23 ±3 mm');
+	});
+
+	it('brings the head of the site’s chain of records, the newest of them', async () => {
+		const record = (sequence: number, previous: string | null) => ({
+			id: randomUUID(),
+			siteId,
+			sequence,
+			sha256: randomBytes(32).toString('hex'),
+			previous,
+			act: 'released' as const,
+			pourId: randomUUID(),
+			holdPoint: 'before-pour' as const,
+			keySha256: 'b'.repeat(64),
+			signedBy: rob.userId,
+			signedAt: tuesday,
+			text: '{}',
+		});
+		const first = record(1, null);
+		const second = record(2, first.sha256);
+		for (const row of [first, second]) await server.platform.db.insert(sealedRecords).values(row);
+		await post([notice('hold', [ida.userId])]);
+		await deliver(tuesday);
+		const [mail] = await letters();
+		expect(mail!.text).toContain(`ends with record 2, ${second.sha256}.`);
+		expect(mail!.text).toContain('https://board.example/verify');
 	});
 
 	it('is told once, not to who acted, and not twice of the same thing in one act', async () => {
