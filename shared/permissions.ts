@@ -30,6 +30,8 @@ export const permissions = {
 	'check.write': ['site-engineer'],
 	'pour.see': everybody,
 	'pour.write': ['project-engineer'],
+	'record.see': everybody,
+	'record.chain': ['site-engineer', 'project-engineer', 'owners-representative', 'observer'],
 	'job.see': ['site-engineer', 'project-engineer', 'owners-representative', 'observer'],
 	'job.cancel': ['site-engineer', 'project-engineer'],
 } as const satisfies Record<string, readonly Role[]>;

@@ -31,8 +31,6 @@ const AHEAD_OF_USE: Record<string, string> = {
 	'shared/flag/flag-schema.ts': 'flags through their life',
 	'shared/flag/may-act.ts': 'flags through their life',
 	'shared/flag/measured-again.ts': 'flags through their life',
-	'shared/fit/adjust-setups.ts': 'set-ups tied by common targets, adjusted together',
-	'shared/fit/start-setups.ts': 'set-ups tied by common targets, adjusted together',
 	'shared/site/working-time.ts': 'deadlines of flags and of hold points',
 };
 

@@ -30,6 +30,8 @@ export interface CheckInputSetup {
 	readonly name: string;
 	/** Survey → design frame. */
 	readonly fit: FitResult;
+	/** Set-ups whose fits were made together with this one: the other's id, and the block of Q between this one's unknowns (rows) and its own (columns). */
+	readonly tiedTo?: readonly { readonly setupId: string; readonly covariance: readonly (readonly number[])[] }[];
 	/** What the set-up's points share and no residual shows. */
 	readonly commonMm: number;
 	/** Standard deviations along the survey axes for points that bring none; null: not known. */

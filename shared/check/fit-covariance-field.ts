@@ -1,4 +1,4 @@
-import { fitCovarianceBetween, fitInflation } from '../fit/carry-point.ts';
+import { fitCovarianceBetween, fitInflation, type TiedFit } from '../fit/carry-point.ts';
 import type { FitResult } from '../fit/fit-schema.ts';
 import type { Matrix3, Vector3 } from '../geometry/frame.ts';
 
@@ -71,4 +71,19 @@ export function fitCovarianceField(fit: FitResult): FitCovarianceField {
 			return Math.max(0, inflation * variance);
 		},
 	};
+}
+
+/**
+ * The covariance of Σ wᵢᵀ·yᵢ over places carried by one fit with Σ wⱼᵀ·yⱼ over places carried by another that was made together with it:
+ * wᵢᵀ·J_p·Q_ab·J_qᵀ·wⱼ, m². Both have the same variance factor, and count with σ̂₀ alike.
+ */
+export function covarianceOfSums(fit: FitResult, terms: readonly WeightedPlace[], tied: TiedFit, others: readonly WeightedPlace[]): number {
+	let sum = 0;
+	for (const { surveyPoint: p, weight: a } of terms) {
+		for (const { surveyPoint: q, weight: b } of others) {
+			const block = fitCovarianceBetween(fit, p, q, tied);
+			for (let i = 0; i < 3; i++) for (let j = 0; j < 3; j++) sum += a[i]! * block[i]![j]! * b[j]!;
+		}
+	}
+	return sum * fitInflation(fit) ** 2;
 }

@@ -1,85 +1,95 @@
-import { chiSquareQuantile } from '#shared/geometry/chi-square.ts';
 import { invertPositiveDefinite } from '#shared/geometry/cholesky.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
-import { toMatrix3 } from '#shared/geometry/rotation.ts';
 import { movePose } from './fit-pose.ts';
-import type { FitRefusal, FitResult } from './fit-schema.ts';
-import { carryWith, notTied, type SetupSightings, type StartedSetup, startSetups } from './start-setups.ts';
+import type { FitRefusal } from './fit-schema.ts';
+import { formSetupSystem, type KnownAt, type Standing } from './setup-equations.ts';
+import { type AdjustedSetups, describeSetups } from './setup-figures.ts';
+import { type KnownMark, notTied, type SetupSightings, type StartPlaces, startSetups } from './start-setups.ts';
 
-/** A mark known beforehand, control frame, metres, σ over zero. */
-export interface KnownMark {
-	mark: string;
-	control: Vector3;
-	sigma: Vector3;
-}
-
-/**
- * @param fits of each set-up, as computeFit gives them, but from all observations together: carry-point.ts works on them. Pairs hold the misfits of known marks
- * @param marks adjusted places and covariances of all marks, also of those that only tie set-ups together
- */
-export interface AdjustedSetups {
-	fits: { setup: string; fit: FitResult }[];
-	marks: { mark: string; place: Vector3; sigma: Vector3 }[];
-	redundancy: number;
-	varianceFactor: number | null;
-	chiSquare: FitResult['chiSquare'];
-}
-
-interface Standing extends Omit<StartedSetup, 'sightings'> {
-	/** Where its unknowns begin. */
-	at: number;
-	sightings: { mark: number; survey: Vector3; sigma: Vector3 }[];
-}
+/** More unknowns than this would keep everybody waiting: about 150 marks and twenty set-ups. */
+const mostUnknowns = 600;
+const mostSteps = 50;
 
 /**
  * Set-ups tied by common targets, adjusted together: a set-up with too little control of its own stands by marks that another one saw
  * (combined adjustment of observation equations, Mikhail & Gracie 1981; Ghilani & Wolf 2017). Unknowns are the pose of each set-up and the place of each mark;
  * observations are all sightings, in their own frames, and all known marks, so nothing is fixed that has an error. Scale is 1.
- * @returns `too-few-pairs` where a set-up is tied by fewer than the least marks, `bad-sigma` for a σ that is not over zero
+ * Marks that are neither known nor seen by two set-ups tell nothing and are left out. A mark held back in one set-up is so in all.
+ * @returns `too-few-pairs` where a set-up is tied by fewer than the least marks, `bad-sigma` for a σ that is not over zero,
+ * `bad-input` for too many unknowns, `no-solution` where the steps do not end
  */
 export function adjustSetups(
-	setups: readonly SetupSightings[],
-	known: readonly KnownMark[],
+	given: readonly SetupSightings[],
+	allKnown: readonly KnownMark[],
 	confidence = 0.95,
 ): { ok: true; adjusted: AdjustedSetups } | { ok: false; refusal: FitRefusal } {
-	if ([...setups.flatMap(({ sightings }) => sightings), ...known].some(({ sigma }) => !sigma.every((value) => value > 0))) {
+	const setups = usefulSightings(given, new Set(allKnown.map(({ mark }) => mark)));
+	const live = setups.map((setup) => ({ ...setup, sightings: setup.sightings.filter(({ isHeldBack }) => !isHeldBack) }));
+	const sighted = new Set(live.flatMap(({ sightings }) => sightings.map(({ mark }) => mark)));
+	const held = new Set(setups.flatMap(({ sightings }) => sightings.flatMap(({ mark, isHeldBack }) => (isHeldBack ? [mark] : []))));
+	const known = allKnown.filter(({ mark }) => sighted.has(mark));
+	const bad =
+		setups.flatMap(({ sightings }) => sightings).find(({ sigma }) => !sigma.every((value) => value > 0)) ??
+		allKnown.find(
+			({ mark, control, sigma }) => (sighted.has(mark) || held.has(mark)) && sigma.some((value, k) => control[k] !== null && !(value > 0)),
+		);
+	if (bad !== undefined) {
 		return {
 			ok: false,
 			refusal: {
 				code: 'bad-sigma',
-				message: 'Set-ups adjusted together need standard deviations over zero for every sighting and every known mark.',
+				message: `Set-ups adjusted together need standard deviations over zero for every sighting and every known mark; “${bad.mark}” has none.`,
+				where: bad.mark,
 			},
 		};
 	}
 	const centre = meanOf(known.map(({ control }) => control));
-	const places = new Map<string, number[]>(known.map(({ mark, control }) => [mark, control.map((value, k) => value - centre[k]!)]));
-	const started = startSetups(setups, places);
+	const centred = (control: KnownMark['control']): (number | null)[] =>
+		control.map((value, k) => (value === null ? null : value - centre[k]!));
+	const places: StartPlaces = new Map(known.map(({ mark, control }) => [mark, centred(control)]));
+	const started = startSetups(live, places);
 	if (!started.ok) return started;
 	const marks = [...places.keys()];
-	const place = marks.map((mark) => places.get(mark)!);
+	const place = marks.map((mark) => places.get(mark)!.map((value) => value ?? 0));
 	const markOf = new Map(marks.map((mark, i) => [mark, i]));
 	let size = 3 * marks.length;
 	const standings = started.standings.map(({ sightings, ...rest }): Standing => {
 		const at = size;
 		size += rest.unknowns.length;
-		return { ...rest, at, sightings: sightings.map(({ mark, survey, sigma }) => ({ mark: markOf.get(mark)!, survey, sigma })) };
+		return { ...rest, at, sightings: sightings.map((sighting) => ({ ...sighting, mark: markOf.get(sighting.mark)! })) };
 	});
-	const knownAt = known.map(({ mark, control, sigma }) => ({
-		mark: markOf.get(mark)!,
-		control: control.map((value, k) => value - centre[k]!),
-		sigma,
-	}));
+	const knownAt = known.map(({ mark, control, sigma }): KnownAt => ({ mark: markOf.get(mark)!, control: centred(control), sigma }));
 	if (size === 0) return notTied('There is nothing to adjust.');
-	let cofactor: Float64Array = new Float64Array(0);
-	let objective = 0;
-	for (let round = 0; round < 50; round++) {
-		const { normal, gradient, sum } = formSystem(size, place, standings, knownAt);
-		objective = sum;
-		cofactor = normal;
-		if (!invertPositiveDefinite(cofactor, size)) return notTied('The set-ups are not tied to one another and to the control well enough.');
-		const step = Array.from({ length: size }, (_, row) =>
-			gradient.reduce((total, value, column) => total + normal[row * size + column]! * value, 0),
-		);
+	if (size > mostUnknowns) return tooMany(size);
+	const end = iterate(size, place, standings, knownAt);
+	if (end === 'loose') return notTied('The set-ups are not tied to one another and to the control well enough.');
+	if (end === 'restless') return restless();
+	const heldBack = setups.map(({ name, sightings }) => ({ setup: name, sightings: sightings.filter(({ isHeldBack }) => isHeldBack) }));
+	const heldKnown = allKnown.filter(({ mark }) => held.has(mark));
+	return {
+		ok: true,
+		adjusted: describeSetups({ standings, place, marks, known: knownAt, centre, heldBack, heldKnown, confidence, ...end }),
+	};
+}
+
+/** @returns Q, the weighted sum of squares and the redundancy at the end; places and poses are moved there */
+function iterate(
+	size: number,
+	place: number[][],
+	standings: readonly Standing[],
+	known: readonly KnownAt[],
+): { cofactor: Float64Array; objective: number; redundancy: number } | 'loose' | 'restless' {
+	for (let round = 0; round < mostSteps; round++) {
+		const { normal, gradient, sum, rowCount, open } = formSetupSystem(size, place, standings, known);
+		if (!invertPositiveDefinite(normal, size)) return 'loose';
+		const step = Array.from({ length: size }, (_, row) => {
+			let total = 0;
+			for (let column = 0; column < size; column++) total += normal[row * size + column]! * gradient[column]!;
+			return total;
+		});
+		const largest = Math.max(...step.map(Math.abs));
+		if (!Number.isFinite(largest)) return 'restless';
+		if (largest < 1e-10) return { cofactor: normal, objective: sum, redundancy: rowCount - size + open };
 		place.forEach((at, i) => {
 			for (let k = 0; k < 3; k++) at[k]! += step[3 * i + k]!;
 		});
@@ -90,128 +100,41 @@ export function adjustSetups(
 			});
 			movePose(pose, change);
 		}
-		if (Math.max(...step.map(Math.abs)) < 1e-11) break;
 	}
-	objective = formSystem(size, place, standings, knownAt).sum;
-	const redundancy = 3 * (standings.reduce((sum, { sightings }) => sum + sightings.length, 0) + known.length) - size;
-	return { ok: true, adjusted: describe({ standings, place, marks, knownAt, centre, cofactor, objective, redundancy, confidence }) };
+	return 'restless';
 }
 
-/** Normal equations of all sightings and known marks at the present places and poses. */
-function formSystem(
-	size: number,
-	place: readonly number[][],
-	standings: readonly Standing[],
-	known: readonly { mark: number; control: number[]; sigma: Vector3 }[],
-): { normal: Float64Array; gradient: Float64Array; sum: number } {
-	const normal = new Float64Array(size * size);
-	const gradient = new Float64Array(size);
-	let sum = 0;
-	const add = (terms: readonly [number, number][], misclosure: number, sigma: number): void => {
-		const weight = 1 / (sigma * sigma);
-		sum += weight * misclosure * misclosure;
-		for (const [row, a] of terms) {
-			gradient[row]! += weight * a * misclosure;
-			for (const [column, b] of terms) normal[row * size + column]! += weight * (a * b);
-		}
-	};
-	for (const { mark, control, sigma } of known)
-		for (let k = 0; k < 3; k++) add([[3 * mark + k, 1]], control[k]! - place[mark]![k]!, sigma[k]!);
-	for (const { pose, origin, unknowns, at, sightings } of standings) {
-		const { rotation: r, shift } = pose;
-		for (const { mark, survey, sigma } of sightings) {
-			// The sighting in its own frame: x = Rᵀ·(place − shift) + origin. Turning R by ω moves it by −Rᵀ·(ω × d).
-			const d = [0, 1, 2].map((k) => place[mark]![k]! - shift[k]!) as [number, number, number];
-			for (let axis = 0; axis < 3; axis++) {
-				const [rx, ry, rz] = [r[axis]!, r[3 + axis]!, r[6 + axis]!];
-				const seen = rx * d[0] + ry * d[1] + rz * d[2];
-				const turns = [ry * d[2] - rz * d[1], rz * d[0] - rx * d[2], rx * d[1] - ry * d[0]];
-				const byUnknown = [-rx, -ry, -rz, ...turns];
-				const terms: [number, number][] = [rx, ry, rz].map((value, k) => [3 * mark + k, value]);
-				unknowns.forEach((unknown, i) => {
-					terms.push([at + i, byUnknown[unknown]!]);
-				});
-				add(terms, survey[axis]! - origin[axis]! - seen, sigma[axis]!);
-			}
-		}
+/** Without marks that only one set-up saw and nobody knows, and with every sighting of a held-back mark held back. */
+function usefulSightings(setups: readonly SetupSightings[], known: ReadonlySet<string>): SetupSightings[] {
+	const seenBy = new Map<string, number>();
+	const held = new Set<string>();
+	for (const { sightings } of setups) {
+		for (const mark of new Set(sightings.map((sighting) => sighting.mark))) seenBy.set(mark, (seenBy.get(mark) ?? 0) + 1);
+		for (const { mark, isHeldBack } of sightings) if (isHeldBack) held.add(mark);
 	}
-	return { normal, gradient, sum };
-}
-
-interface Solved {
-	standings: readonly Standing[];
-	place: readonly number[][];
-	marks: readonly string[];
-	knownAt: readonly { mark: number; control: number[]; sigma: Vector3 }[];
-	centre: Vector3;
-	cofactor: Float64Array;
-	objective: number;
-	redundancy: number;
-	confidence: number;
-}
-
-function describe({ standings, place, marks, knownAt, centre, cofactor, objective, redundancy, confidence }: Solved): AdjustedSetups {
-	const size = Math.sqrt(cofactor.length);
-	const varianceFactor = redundancy > 0 ? objective / redundancy : null;
-	const lower = redundancy > 0 ? chiSquareQuantile((1 - confidence) / 2, redundancy) : 0;
-	const upper = redundancy > 0 ? chiSquareQuantile((1 + confidence) / 2, redundancy) : 0;
-	const chiSquare = redundancy > 0 ? { statistic: objective, lower, upper, passes: objective >= lower && objective <= upper } : null;
-	const knownOf = new Map(knownAt.map((entry) => [entry.mark, entry]));
-	const fits = standings.map(({ name, fit, pose, origin, unknowns, at, sightings }) => {
-		const shift = [0, 1, 2].map((k) => pose.shift[k]! + centre[k]!) as [number, number, number];
-		const { rotation: r } = pose;
-		const pairs = sightings
-			.filter(({ mark }) => knownOf.has(mark))
-			.map(({ mark, survey }) => {
-				const carried = carryWith(pose, origin, survey);
-				const residual = carried.map((value, k) => value - knownOf.get(mark)!.control[k]!) as [number, number, number];
-				return {
-					name: marks[mark]!,
-					residual,
-					redundancy: null,
-					normalised: null,
-					critical: null,
-					smallestBlunder: null,
-					leaveOneOut: null,
-					heldBack: false,
-				};
-			});
-		const square = pairs.reduce((sum, { residual }) => sum + residual.reduce((total, value) => total + value * value, 0), 0);
-		const result: FitResult = {
-			fit,
-			scale: 1,
-			rotation: toMatrix3(r) as FitResult['rotation'],
-			translation: [0, 1, 2].map((k) => shift[k]! - (r[3 * k]! * origin[0] + r[3 * k + 1]! * origin[1] + r[3 * k + 2]! * origin[2])) as [
-				number,
-				number,
-				number,
-			],
-			origin: [...origin],
-			shift,
-			sigmaGiven: true,
-			scalesHeights: fit === 'free',
-			parameterCovariance: unknowns.map((_, i) => unknowns.map((__, j) => cofactor[(at + i) * size + at + j]!)),
-			rms: Math.sqrt(square / Math.max(pairs.length, 1)),
-			redundancy,
-			varianceFactor,
-			chiSquare,
-			pairs,
-			carried: [],
-			findings: [],
-		};
-		return { setup: name, fit: result };
-	});
-	const adjustedMarks = marks.map((mark, i) => ({
-		mark,
-		place: [0, 1, 2].map((k) => place[i]![k]! + centre[k]!) as unknown as Vector3,
-		sigma: [0, 1, 2].map((k) => Math.sqrt(cofactor[(3 * i + k) * (size + 1)]!)) as unknown as Vector3,
+	return setups.map((setup) => ({
+		...setup,
+		sightings: setup.sightings
+			.filter(({ mark }) => known.has(mark) || ((seenBy.get(mark) ?? 0) > 1 && !held.has(mark)))
+			.map((sighting) => ({ ...sighting, isHeldBack: held.has(sighting.mark) })),
 	}));
-	return { fits, marks: adjustedMarks, redundancy, varianceFactor, chiSquare };
 }
 
-function meanOf(points: readonly Vector3[]): Vector3 {
-	const first = points[0] ?? [0, 0, 0];
-	return [0, 1, 2].map(
-		(k) => first[k]! + points.reduce((sum, point) => sum + (point[k]! - first[k]!), 0) / Math.max(points.length, 1),
-	) as unknown as Vector3;
+function tooMany(size: number): { ok: false; refusal: FitRefusal } {
+	const message = `These set-ups have ${size} unknowns together, more than the ${mostUnknowns} that are adjusted at once. Set targets aside, or adjust fewer set-ups together.`;
+	return { ok: false, refusal: { code: 'bad-input', message } };
+}
+
+function restless(): { ok: false; refusal: FitRefusal } {
+	const message =
+		'The adjustment of these set-ups comes to no end: their targets contradict each other grossly. Fit each by itself first and set aside what is off.';
+	return { ok: false, refusal: { code: 'no-solution', message } };
+}
+
+function meanOf(points: readonly KnownMark['control'][]): Vector3 {
+	return [0, 1, 2].map((k) => {
+		const values = points.flatMap((point) => point[k] ?? []);
+		const first = values[0] ?? 0;
+		return first + values.reduce((sum, value) => sum + (value - first), 0) / Math.max(values.length, 1);
+	}) as unknown as Vector3;
 }

@@ -28,22 +28,31 @@ export function fitCovarianceAt(fit: FitResult, surveyPoint: Vector3): Matrix3 {
 	return fitCovarianceBetween(fit, surveyPoint, surveyPoint);
 }
 
+/** Another fit made together with the first one. @param covariance of its unknowns: rows those of the first fit, columns its own */
+export interface TiedFit {
+	fit: FitResult;
+	covariance: readonly (readonly number[])[];
+}
+
 /**
  * Covariance between two carried places p and q: J_p·Q·J_qᵀ, m², control frame. For anything derived from two places:
  * cov(p − q) = C(p,p) + C(q,q) − C(p,q) − C(q,p).
+ * @param tied where q was measured from another set-up of the same adjustment: its fit and the block of Q between both
  */
-export function fitCovarianceBetween(fit: FitResult, surveyPointP: Vector3, surveyPointQ: Vector3): Matrix3 {
-	const unknowns = fitUnknowns(fit.fit);
+export function fitCovarianceBetween(fit: FitResult, surveyPointP: Vector3, surveyPointQ: Vector3, tied?: TiedFit): Matrix3 {
+	const other = tied?.fit ?? fit;
+	const covariance = tied?.covariance ?? fit.parameterCovariance;
+	const [unknownsP, unknownsQ] = [fitUnknowns(fit.fit), fitUnknowns(other.fit)];
 	const p = designRows(...carriedDifference(fit, surveyPointP));
-	const q = designRows(...carriedDifference(fit, surveyPointQ));
+	const q = designRows(...carriedDifference(other, surveyPointQ));
 	const factor = covarianceScale(fit);
 	const rows = [0, 1, 2].map((row) =>
 		[0, 1, 2].map((column) => {
 			if (factor === null) return row === column ? Infinity : 0;
 			let sum = 0;
-			unknowns.forEach((a, i) => {
-				unknowns.forEach((b, j) => {
-					sum += p[7 * row + a]! * fit.parameterCovariance[i]![j]! * q[7 * column + b]!;
+			unknownsP.forEach((a, i) => {
+				unknownsQ.forEach((b, j) => {
+					sum += p[7 * row + a]! * covariance[i]![j]! * q[7 * column + b]!;
 				});
 			});
 			return factor * sum;

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
 import { findingSchema, fitInput, fitKind, fitRefusal, fitResult } from './fit-schema.ts';
+import { fitNetwork, networkFits, networkOutlook } from './network-schema.ts';
 
 /** in the fit · held back: checked against it, never in it · set aside: with a reason. */
 export const shelfNames = ['in-the-fit', 'held-back', 'set-aside'] as const;
@@ -104,6 +105,8 @@ export const fitSummary = z.object({
 	inputsSha256: z.string(),
 	/** False where the control set has a newer one since. */
 	isNewest: z.boolean(),
+	/** The fits of other set-ups that it was made together with, itself among them; null for a fit of its own. */
+	madeWith: networkFits.nullable(),
 });
 export type FitSummary = z.infer<typeof fitSummary>;
 
@@ -113,6 +116,8 @@ export const fitDetail = fitSummary.extend({
 	relabellings: z.array(relabelling),
 	result: fitResult,
 	pairs: pairsOfSetup,
+	/** What ties it to the others; null for a fit of its own. */
+	network: fitNetwork.nullable(),
 });
 export type FitDetail = z.infer<typeof fitDetail>;
 
@@ -154,7 +159,39 @@ export const fitContract = {
 			}),
 		)
 		.output(fitDetail),
-	/** Once; a newer adopted fit of the set-up supersedes it, nothing edits it. */
+	/** Which set-ups of a survey are tied through which targets. */
+	ties: base
+		.meta({ permission: 'fit.see' })
+		.input(siteInput.extend({ surveyId: z.uuid(), controlSetId: z.uuid() }))
+		.output(networkOutlook),
+	/** Set-ups of one survey adjusted together: a fit for each, all stored or none. */
+	makeTogether: base
+		.meta({ permission: 'fit.write' })
+		.errors({
+			NO_FIT: {
+				status: 422,
+				message: 'These set-ups cannot be adjusted together.',
+				data: fitRefusal,
+			},
+		})
+		.input(
+			siteInput.extend({
+				surveyId: z.uuid(),
+				controlSetId: z.uuid(),
+				setups: z
+					.array(
+						z.object({
+							setupId: z.uuid(),
+							shelves: z.array(shelving).max(500),
+							relabellings: z.array(relabelling).max(500).optional(),
+						}),
+					)
+					.min(2)
+					.max(50),
+			}),
+		)
+		.output(networkFits),
+	/** Once, with all fits that it was made together with; a newer adopted fit of a set-up supersedes its own, nothing edits it. */
 	adopt: base
 		.meta({ permission: 'fit.adopt' })
 		.errors({

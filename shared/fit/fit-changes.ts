@@ -4,6 +4,8 @@ import type { FitKind } from './fit-schema.ts';
 /** What went into a fit, as far as a person chose it. */
 export interface FitChoices {
 	kind: FitKind;
+	/** Made together with the fits of other set-ups. */
+	isTogether?: boolean;
 	knownScale: number | null;
 	controlNumber: number;
 	shelves: readonly Shelving[];
@@ -27,6 +29,8 @@ export function fitChanges(before: FitChoices, after: FitChoices): string[] {
 	const changes: string[] = [];
 	if (before.controlNumber !== after.controlNumber) changes.push(`Control ${before.controlNumber} → ${after.controlNumber}.`);
 	if (before.kind !== after.kind) changes.push(`Fit ${kindNames[before.kind]} → ${kindNames[after.kind]}.`);
+	if ((before.isTogether ?? false) !== (after.isTogether ?? false))
+		changes.push(after.isTogether ? 'Adjusted together with other set-ups.' : 'No longer adjusted together with other set-ups.');
 	if (before.knownScale !== after.knownScale) changes.push(`Known factor ${before.knownScale ?? 1} → ${after.knownScale ?? 1}.`);
 	const had = new Set(before.pairNames);
 	const has = new Set(after.pairNames);

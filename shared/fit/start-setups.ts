@@ -1,15 +1,37 @@
 import type { Vector3 } from '#shared/geometry/frame.ts';
 import { observationsOf } from './fit-observations.ts';
 import type { FitPose } from './fit-pose.ts';
-import type { FitInput, FitRefusal } from './fit-schema.ts';
+import type { FitInput, FitPair, FitRefusal } from './fit-schema.ts';
 import { fitUnknowns } from './least-pairs.ts';
 import { quickFit } from './solve-fit.ts';
 
-/** One standing of the instrument: what it saw, survey frame, metres, with standard deviations over zero. */
+/** all: whole · plan: its level is not used · level: its plan is not. The last two on levelled set-ups only. */
+export type SightingUse = 'all' | 'plan' | 'level';
+
+/**
+ * A mark as a set-up saw it, survey frame, metres, σ over zero.
+ * @param isHeldBack compared with the adjusted network, never in it
+ */
+export interface MarkSighting {
+	mark: string;
+	survey: Vector3;
+	sigma: Vector3;
+	use?: SightingUse;
+	isHeldBack?: boolean;
+}
+
+/** A mark known beforehand, control frame, metres, σ over zero; null along an axis that is not known (a benchmark's plan). */
+export interface KnownMark {
+	mark: string;
+	control: readonly [number | null, number | null, number | null];
+	sigma: Vector3;
+}
+
+/** One standing of the instrument and what it saw. */
 export interface SetupSightings {
 	name: string;
 	fit: 'levelled' | 'free';
-	sightings: readonly { mark: string; survey: Vector3; sigma: Vector3 }[];
+	sightings: readonly MarkSighting[];
 }
 
 /** A set-up with a pose to start from: place ≈ R·(survey − origin) + shift. */
@@ -19,45 +41,67 @@ export interface StartedSetup {
 	pose: FitPose;
 	origin: Vector3;
 	unknowns: readonly number[];
-	sightings: SetupSightings['sightings'];
+	sightings: readonly MarkSighting[];
 }
 
-/** Poses and tie marks to start from: set-ups with enough known marks first, then those that can stand on what these saw. */
+/** Where a mark is, as far as it is known yet; metres, control frame less its centre. */
+export type StartPlaces = Map<string, (number | null)[]>;
+
+/**
+ * Poses and tie marks to start from: set-ups with enough known marks first, then those that can stand on what these saw.
+ * @param places of the known marks; filled with those of all others
+ */
 export function startSetups(
 	setups: readonly SetupSightings[],
-	places: Map<string, number[]>,
+	places: StartPlaces,
 ): { ok: true; standings: StartedSetup[] } | { ok: false; refusal: FitRefusal } {
 	const waiting = new Set(setups);
 	const standings: StartedSetup[] = [];
 	for (let progress = true; progress && waiting.size > 0; ) {
 		progress = false;
 		for (const setup of waiting) {
-			const pairs: FitInput['pairs'] = setup.sightings
-				.filter(({ mark }) => places.has(mark))
-				.map(({ mark, survey }) => ({ name: mark, survey: [...survey], control: [...places.get(mark)!] as [number, number, number] }));
+			const pairs: FitInput['pairs'] = setup.sightings.flatMap((sighting) => startPair(setup.fit, sighting, places) ?? []);
 			const observations = observationsOf({ fit: setup.fit, pairs }, pairs);
 			const fit = pairs.length > 0 ? quickFit(observations) : null;
 			if (!fit) continue;
 			const pose = fit.pose;
 			for (let k = 0; k < 3; k++) pose.shift[k]! += observations.controlOrigin[k]!;
-			const standing = {
-				name: setup.name,
-				fit: setup.fit,
-				pose,
-				origin: observations.surveyOrigin,
-				unknowns: fitUnknowns(setup.fit),
-				sightings: setup.sightings,
-			};
-			for (const { mark, survey } of setup.sightings) if (!places.has(mark)) places.set(mark, carryWith(pose, standing.origin, survey));
-			standings.push(standing);
+			const origin = observations.surveyOrigin;
+			for (const { mark, survey } of setup.sightings) {
+				const carried = carryWith(pose, origin, survey);
+				const place = places.get(mark) ?? [null, null, null];
+				places.set(
+					mark,
+					place.map((value, k) => value ?? carried[k]!),
+				);
+			}
+			standings.push({ name: setup.name, fit: setup.fit, pose, origin, unknowns: fitUnknowns(setup.fit), sightings: setup.sightings });
 			waiting.delete(setup);
 			progress = true;
 		}
 	}
 	if (waiting.size === 0) return { ok: true, standings };
+	const names = [...waiting].map(({ name }) => `“${name}”`).join(', ');
 	return notTied(
-		`Set-up ${[...waiting].map(({ name }) => `"${name}"`).join(', ')} shares too few marks with the control and the other set-ups.`,
+		waiting.size === 1
+			? `Set-up ${names} shares too few marks with the control and the other set-ups.`
+			: `Set-ups ${names} share too few marks with the control and the other set-ups.`,
 	);
+}
+
+function startPair(fit: 'levelled' | 'free', { mark, survey, use = 'all' }: MarkSighting, places: StartPlaces): FitPair | null {
+	const place = places.get(mark);
+	if (place === undefined) return null;
+	const [east, north, height] = place as [number | null, number | null, number | null];
+	const isPlanKnown = east !== null && north !== null && use !== 'level';
+	const isHeightKnown = height !== null && use !== 'plan';
+	if (fit === 'free' && !(isPlanKnown && isHeightKnown)) return null;
+	if (!isPlanKnown && !isHeightKnown) return null;
+	return {
+		name: mark,
+		survey: [...survey],
+		control: [isPlanKnown ? east : null, isPlanKnown ? north : null, isHeightKnown ? height : null],
+	};
 }
 
 /** The refusal of set-ups that hang in the air. */

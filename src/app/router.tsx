@@ -40,6 +40,7 @@ export const routes: RouteObject[] = [
 			{ path: '/sign-in', lazy: page(() => import('#src/pages/sign-in/sign-in-page.tsx')) },
 			{ path: '/invitation', lazy: page(() => import('#src/pages/invitation/invitation-page.tsx')) },
 			{ path: '/reset', lazy: page(() => import('#src/pages/reset/reset-page.tsx')) },
+			{ path: '/verify', lazy: page(() => import('#src/pages/verify/verify-page.tsx')) },
 			{ path: '/mailbox', lazy: page(() => import('#src/pages/mailbox/mailbox-page.tsx')) },
 			{
 				element: <Gate />,
@@ -87,6 +88,11 @@ export const routes: RouteObject[] = [
 							sitePage('checks/:checkId', 'check', () => import('#src/pages/check/check-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), { path: 'check', word: 'Checks' }),
 							sitePage('pours', 'pours', () => import('#src/pages/pours/pours-page.tsx')),
+							sitePage('records', 'records', () => import('#src/pages/records/records-page.tsx')),
+							sitePage('records/:recordId', 'records', () => import('#src/pages/record/record-page.tsx'), {
+								path: 'records',
+								word: 'Records',
+							}),
 							besidePage('audit', () => import('#src/pages/audit/audit-page.tsx')),
 							besidePage('people', () => import('#src/pages/people/people-page.tsx')),
 							{ path: '*', lazy: page(() => import('#src/pages/not-found/not-found-page.tsx')) },

@@ -45,6 +45,8 @@ function data(over: Partial<FitReportData> = {}): FitReportData {
 	const at = new Date('2026-12-01T09:30:00Z');
 	return {
 		fit: {
+			madeWith: null,
+			network: null,
 			fitId: '00000000-0000-4000-8000-000000000001',
 			number: 14,
 			surveyId: '00000000-0000-4000-8000-000000000002',

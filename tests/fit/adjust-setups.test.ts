@@ -1,8 +1,8 @@
 import { describe, expect, it } from 'vitest';
-import { adjustSetups, type KnownMark } from '#shared/fit/adjust-setups.ts';
+import { adjustSetups } from '#shared/fit/adjust-setups.ts';
 import { carryPoint, fitCovarianceAt } from '#shared/fit/carry-point.ts';
 import { computeFit } from '#shared/fit/compute-fit.ts';
-import type { SetupSightings } from '#shared/fit/start-setups.ts';
+import type { KnownMark, SetupSightings } from '#shared/fit/start-setups.ts';
 import { turnAfter } from '#shared/geometry/rotation.ts';
 import { place, surveyScene, surveySigma, type Triple } from './survey-scene.ts';
 

@@ -99,3 +99,18 @@ describe('sealed records', () => {
 		expect(await textsOf(siteId)).toHaveLength(3);
 	});
 });
+
+describe('the published keys', () => {
+	it('are there for anybody, the one in use first', async () => {
+		const keys = await server.api().record.keys();
+		expect(keys).toEqual([
+			{
+				sha256: expect.any(String),
+				publicKeyPem: expect.stringContaining('BEGIN PUBLIC KEY'),
+				publishedAt: expect.any(Date),
+				retiredAt: null,
+			},
+		]);
+		expect((await readPublicKeys(keys[0]!.publicKeyPem))[0]?.sha256).toBe(keys[0]?.sha256);
+	});
+});

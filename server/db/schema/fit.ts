@@ -2,13 +2,37 @@ import { sql } from 'drizzle-orm';
 import { check, doublePrecision, foreignKey, integer, jsonb, pgEnum, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
 import type { PairsOfSetup, Relabelling, Shelving, SurveyorInCharge } from '../../../shared/fit/contract.ts';
 import { type FitResult, fitKinds } from '../../../shared/fit/fit-schema.ts';
+import type { FitNetwork } from '../../../shared/fit/network-schema.ts';
 import { users } from './account.ts';
 import { at, id, sha256, siteId } from './columns.ts';
 import { controlSets } from './control.ts';
-import { setups } from './survey.ts';
+import { setups, surveys } from './survey.ts';
 
 export const fitKindEnum = pgEnum('fit_kind', fitKinds);
 export const fitStateEnum = pgEnum('fit_state', ['made', 'adopted', 'superseded']);
+
+/** Set-ups of a survey that were adjusted together; never edited. */
+export const fitNetworks = pgTable(
+	'fit_networks',
+	{
+		id: id(),
+		siteId: siteId(),
+		surveyId: uuid('survey_id').notNull(),
+		network: jsonb('network').$type<FitNetwork>().notNull(),
+		inputsSha256: sha256('inputs_sha256').notNull(),
+		madeBy: uuid('made_by')
+			.notNull()
+			.references(() => users.id),
+		madeAt: at('made_at').notNull(),
+	},
+	(t) => [
+		foreignKey({
+			columns: [t.siteId, t.surveyId],
+			foreignColumns: [surveys.siteId, surveys.id],
+		}),
+		unique('fit_networks_site_id').on(t.siteId, t.id),
+	],
+);
 
 /** Never edited: adopted once, superseded by a newer one. */
 export const fits = pgTable(
@@ -18,6 +42,8 @@ export const fits = pgTable(
 		siteId: siteId(),
 		number: integer('number').notNull(),
 		setupId: uuid('setup_id').notNull(),
+		/** Made together with the fits of other set-ups; null for a fit of its own. */
+		networkId: uuid('network_id'),
 		controlSetId: uuid('control_set_id').notNull(),
 		kind: fitKindEnum('kind').notNull(),
 		knownScale: doublePrecision('known_scale'),
@@ -50,6 +76,10 @@ export const fits = pgTable(
 		foreignKey({
 			columns: [t.siteId, t.controlSetId],
 			foreignColumns: [controlSets.siteId, controlSets.id],
+		}),
+		foreignKey({
+			columns: [t.siteId, t.networkId],
+			foreignColumns: [fitNetworks.siteId, fitNetworks.id],
 		}),
 		unique('fits_site_id').on(t.siteId, t.id),
 		unique('fits_number').on(t.siteId, t.number),

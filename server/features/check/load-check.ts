@@ -1,12 +1,13 @@
 import { and, asc, eq } from 'drizzle-orm';
 import type { CheckInput } from '#shared/check/check-input.ts';
+import type { FitNetwork } from '#shared/fit/network-schema.ts';
 import { gridYawRad } from '#shared/model/grid-yaw.ts';
 import { matchMarks } from '#shared/survey/match-marks.ts';
 import type { Handle } from '../../db/database.ts';
 import { checkpointOf, elementOf, vectorOf } from '../../db/model-rows.ts';
 import { checkFits, type checks } from '../../db/schema/check.ts';
 import { controlPoints } from '../../db/schema/control.ts';
-import { fits } from '../../db/schema/fit.ts';
+import { fitNetworks, fits } from '../../db/schema/fit.ts';
 import { checkpoints, elements, models, revisions } from '../../db/schema/model.ts';
 import { buildings } from '../../db/schema/site.ts';
 import { setups, surveyPoints } from '../../db/schema/survey.ts';
@@ -31,21 +32,23 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 	);
 	const { sheet } = foundOne(await db.select({ sheet: sheets.sheet }).from(sheets).where(eq(sheets.id, check.sheetId)));
 	const carriedBy = await db
-		.select({ setup: setups, result: fits.result, controlSetId: fits.controlSetId, relabellings: fits.relabellings })
+		.select({ setup: setups, result: fits.result, controlSetId: fits.controlSetId, relabellings: fits.relabellings, network: fitNetworks })
 		.from(checkFits)
 		.innerJoin(setups, eq(setups.id, checkFits.setupId))
 		.innerJoin(fits, eq(fits.id, checkFits.fitId))
+		.leftJoin(fitNetworks, eq(fitNetworks.id, fits.networkId))
 		.where(eq(checkFits.checkId, check.id))
 		.orderBy(asc(setups.name));
 	const allSetups = await db.select().from(setups).where(eq(setups.surveyId, check.surveyId)).orderBy(asc(setups.name));
 	const rows = await db.select().from(surveyPoints).where(eq(surveyPoints.surveyId, check.surveyId)).orderBy(asc(surveyPoints.row));
 	const targets = new Map<string, ReadonlySet<string>>();
-	for (const { setup, controlSetId, relabellings } of carriedBy) {
+	for (const { setup, controlSetId, relabellings, network } of carriedBy) {
 		const names = rows.flatMap(({ setupId, name }) => (setupId === setup.id ? [name] : []));
 		const marks = await db.select({ name: controlPoints.name }).from(controlPoints).where(eq(controlPoints.controlSetId, controlSetId));
 		const matched = matchMarks(
 			names,
-			marks.map(({ name }) => name),
+			// Targets that tied set-ups together are control too.
+			[...new Set([...marks.map(({ name }) => name), ...(network?.network.ties.map(({ mark }) => mark) ?? [])])],
 		);
 		// What the fit took for a mark is control, however it is named.
 		targets.set(setup.id, new Set([...matched.keys(), ...relabellings.map(({ target }) => target)]));
@@ -81,10 +84,15 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 				sizesM,
 			})),
 			checkpoints: asked.map((row) => checkpointOf(row, foundOne([byId.get(row.elementId)].filter((one) => one !== undefined)))),
-			setups: carriedBy.map(({ setup, result }) => ({
+			setups: carriedBy.map(({ setup, result, network }) => ({
 				id: setup.id,
 				name: setup.name,
 				fit: result,
+				tiedTo: carriedBy.flatMap((other) =>
+					other.setup.id !== setup.id && network !== null && other.network?.id === network.id
+						? tieBetween(network.network, setup.id, other.setup.id)
+						: [],
+				),
 				commonMm: setup.commonMm,
 				pointSigmaM:
 					setup.pointSigmaPlanM === null || setup.pointSigmaHeightM === null
@@ -107,4 +115,13 @@ export async function loadCheck(db: Handle, check: typeof checks.$inferSelect): 
 		},
 		withoutFit,
 	};
+}
+
+/** The block of Q between two set-ups that were adjusted together, rows the first one's unknowns. */
+function tieBetween({ between }: FitNetwork, setupId: string, otherId: string): { setupId: string; covariance: number[][] }[] {
+	return between.flatMap(({ a, b, covariance }) => {
+		if (a === setupId && b === otherId) return [{ setupId: otherId, covariance }];
+		if (b !== setupId || a !== otherId) return [];
+		return [{ setupId: otherId, covariance: (covariance[0] ?? []).map((_, column) => covariance.map((row) => row[column]!)) }];
+	});
 }

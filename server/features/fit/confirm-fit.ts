@@ -30,10 +30,20 @@ export async function confirmFit(
 		const checked = await tx
 			.update(fits)
 			.set({ checkedBy: userId, checkedAt: platform.now(), checkedNote: note, ...saidSurveyor(surveyorInCharge) })
-			.where(and(eq(fits.id, fitId), eq(fits.state, 'adopted'), isNull(fits.checkedBy), ne(fits.adoptedBy, userId)))
-			.returning({ id: fits.id });
-		if (checked.length === 0) throw new Conflict(`Fit ${fit.number} is checked already. Look again.`);
-		await audit(tx, member, { kind: 'fit-checked', subjectId: fitId, data: { number: fit.number, setupId: fit.setupId, note } });
+			.where(
+				and(
+					eq(fits.siteId, siteId),
+					// Fits that were made together are checked together, as many of them as are still adopted.
+					fit.networkId === null ? eq(fits.id, fitId) : eq(fits.networkId, fit.networkId),
+					eq(fits.state, 'adopted'),
+					isNull(fits.checkedBy),
+					ne(fits.adoptedBy, userId),
+				),
+			)
+			.returning({ id: fits.id, number: fits.number, setupId: fits.setupId });
+		if (!checked.some(({ id }) => id === fitId)) throw new Conflict(`Fit ${fit.number} is checked already. Look again.`);
+		for (const { id, number, setupId } of checked)
+			await audit(tx, member, { kind: 'fit-checked', subjectId: id, data: { number, setupId, note } });
 	});
 	return fitOf(platform.db, siteId, fitId);
 }

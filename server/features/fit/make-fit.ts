@@ -1,7 +1,7 @@
 import type { InferContractRouterInputs } from '@orpc/contract';
 import { eq, max } from 'drizzle-orm';
 import { computeFit } from '#shared/fit/compute-fit.ts';
-import type { FitDetail, fitContract, PairsOfSetup, Shelving } from '#shared/fit/contract.ts';
+import type { FitDetail, fitContract } from '#shared/fit/contract.ts';
 import type { FitInput, FitRefusal } from '#shared/fit/fit-schema.ts';
 import { readFitInput } from '#shared/fit/read-fit-input.ts';
 import { shelvedInput } from '#shared/fit/shelved-input.ts';
@@ -10,9 +10,9 @@ import { lockSite } from '../../db/lock-site.ts';
 import { fits } from '../../db/schema/fit.ts';
 import { audit } from '../../platform/audit.ts';
 import type { Member, Platform } from '../../platform/platform.ts';
-import { Refused } from '../../platform/refuse.ts';
 import { fitOf } from './queries.ts';
 import { setupPairs } from './setup-pairs.ts';
+import { expectShelves, withoutLoose } from './stored-pairs.ts';
 
 type MakeFit = InferContractRouterInputs<typeof fitContract>['make'];
 
@@ -77,32 +77,6 @@ export async function makeFit(
 		await audit(tx, member, { kind: 'fit-made', subjectId: fitId, data: { number, setupId, controlSetId, kind, inputsSha256 } });
 	});
 	return { ok: true, fit: await fitOf(platform.db, siteId, fitId) };
-}
-
-/** What has no partner was offered for a match; the fit does not rest on it. */
-function withoutLoose({ loose: _, ...kept }: PairsOfSetup): PairsOfSetup {
-	return kept;
-}
-
-/** Every shelf names a pair, once; what does not lie in the fit, whole and as labelled, says why; exchanged labels name each other. */
-function expectShelves({ pairs }: PairsOfSetup, shelves: readonly Shelving[]): void {
-	const known = new Set(pairs.map(({ name }) => name));
-	const partners = new Map(shelves.map(({ name, exchangedWith }) => [name, exchangedWith ?? null]));
-	const seen = new Set<string>();
-	for (const [index, { name, shelf, reason, use = 'all', exchangedWith = null }] of shelves.entries()) {
-		const where = `shelves.${index}`;
-		if (!known.has(name)) throw new Refused('no-such-pair', `"${name}" is no pair of this set-up.`, where);
-		if (seen.has(name)) throw new Refused('shelved-twice', `"${name}" lies on two shelves.`, where);
-		if (shelf === 'set-aside' && reason === null) throw new Refused('no-reason', `Say why "${name}" is set aside.`, where);
-		if (use !== 'all' && reason === null) throw new Refused('no-reason', `Say why "${name}" is used in ${use} only.`, where);
-		if (exchangedWith !== null) {
-			if (reason === null) throw new Refused('no-reason', `Say why "${name}" is exchanged with "${exchangedWith}".`, where);
-			if (exchangedWith === name || partners.get(exchangedWith) !== name) {
-				throw new Refused('not-mutual', `"${name}" is exchanged with "${exchangedWith}", which does not say so.`, where);
-			}
-		}
-		seen.add(name);
-	}
 }
 
 /** A free fit needs all three coordinates of every control point; the engine's own refusal would name a path, not the mark. */

@@ -68,6 +68,30 @@ export function pairTargets(
 	};
 }
 
+/** A target that no control point is named like, repeats averaged; survey frame, metres. */
+export interface UnknownTarget {
+	name: string;
+	surveyM: Axes<number>;
+	sigmaM: Axes<number> | null;
+}
+
+/** The points coded as targets that mean no mark: they tie set-ups that both saw them. */
+export function unknownTargets(
+	measured: readonly SetupPoint[],
+	marks: readonly ControlMark[],
+	relabellings: readonly Relabelling[] = [],
+): UnknownTarget[] {
+	const points = relabelled(measured, relabellings);
+	const matches = matchMarks(
+		points.map(({ name }) => name),
+		marks.map(({ name }) => name),
+	);
+	const sights = new Map<string, SetupPoint[]>();
+	for (const point of points)
+		if (isTargetCode(point.code) && !matches.has(point.name)) sights.set(point.name, [...(sights.get(point.name) ?? []), point]);
+	return [...sights].map(([name, own]) => ({ name, ...meanSight(own) }));
+}
+
 /** Sights of whatever is a target: named like a mark, whose name it then bears, or coded as one. */
 function targetSights(points: readonly SetupPoint[], matches: ReturnType<typeof matchMarks>): TargetSight[] {
 	return points.flatMap(({ name, code, row, surveyM, sigmaM }) => {
@@ -108,13 +132,7 @@ interface Paired {
 }
 
 function pairOf(mark: ControlMark, sights: readonly SetupPoint[]): Paired {
-	const n = sights.length;
-	const first = sights[0]!.surveyM;
-	const survey = axes((k) => first[k] + sights.reduce((sum, { surveyM }) => sum + (surveyM[k] - first[k]), 0) / n);
-	const sigmas = sights.map(({ sigmaM }) => sigmaM);
-	const surveySigma = sigmas.every((sigma) => sigma !== null)
-		? axes((k) => Math.sqrt(sigmas.reduce((sum, sigma) => sum + sigma[k] ** 2, 0)) / n)
-		: null;
+	const { surveyM: survey, sigmaM: surveySigma } = meanSight(sights);
 	const given = axes((k) => (k < 2 ? mark.sigmaPlanM : mark.sigmaHeightM));
 	const isControlKnown = axes((k) => mark.designM[k] === null || given[k] !== null).every(Boolean);
 	// An axis that is not known is not in the fit, so any σ does there.
@@ -125,6 +143,19 @@ function pairOf(mark: ControlMark, sights: readonly SetupPoint[]): Paired {
 		note: repeatNote(mark.name, sights),
 		lacksSurveySigma: surveySigma === null,
 		lacksControlSigma: !isControlKnown,
+	};
+}
+
+/** The mean of repeats and its σ, √(Σσ²)/n; null where one of them has none. */
+function meanSight(sights: readonly SetupPoint[]): { surveyM: Axes<number>; sigmaM: Axes<number> | null } {
+	const n = sights.length;
+	const first = sights[0]!.surveyM;
+	const sigmas = sights.map(({ sigmaM }) => sigmaM);
+	return {
+		surveyM: axes((k) => first[k] + sights.reduce((sum, { surveyM }) => sum + (surveyM[k] - first[k]), 0) / n),
+		sigmaM: sigmas.every((sigma) => sigma !== null)
+			? axes((k) => Math.sqrt(sigmas.reduce((sum, sigma) => sum + sigma[k] ** 2, 0)) / n)
+			: null,
 	};
 }
 

@@ -2,10 +2,11 @@ import { and, asc, desc, eq, inArray, type SQL, sql } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/pg-core';
 import type { FitDetail, FitSummary } from '#shared/fit/contract.ts';
 import { type FitChoices, fitChanges } from '#shared/fit/fit-changes.ts';
+import type { NetworkFits } from '#shared/fit/network-schema.ts';
 import type { Handle } from '../../db/database.ts';
 import { users } from '../../db/schema/account.ts';
 import { controlSets } from '../../db/schema/control.ts';
-import { fits } from '../../db/schema/fit.ts';
+import { fitNetworks, fits } from '../../db/schema/fit.ts';
 import { sites } from '../../db/schema/site.ts';
 import { setups } from '../../db/schema/survey.ts';
 import { foundOne } from '../../platform/refuse.ts';
@@ -48,13 +49,34 @@ export async function fitsOf(db: Handle, siteId: string, setupId?: string): Prom
 export async function fitOf(db: Handle, siteId: string, fitId: string): Promise<FitDetail> {
 	const row = foundOne(await fitRows(db, and(eq(fits.siteId, siteId), eq(fits.id, fitId))));
 	const summary = foundOne(await summariesOf(db, [row]));
-	const { knownScale, shelves, relabellings, result, pairs } = row.fit;
-	return { ...summary, knownScale, shelves, relabellings, result, pairs };
+	const { knownScale, shelves, relabellings, result, pairs, networkId } = row.fit;
+	const [kept] = networkId === null ? [] : await db.select().from(fitNetworks).where(eq(fitNetworks.id, networkId));
+	return { ...summary, knownScale, shelves, relabellings, result, pairs, network: kept?.network ?? null };
 }
 
 async function summariesOf(db: Handle, rows: readonly FitRow[]): Promise<FitSummary[]> {
 	const changesOf = await changesBySetup(db, [...new Set(rows.map(({ fit }) => fit.setupId))]);
-	return rows.map((row) => summaryOf(row, changesOf.get(row.fit.id) ?? []));
+	const madeWith = await madeTogether(db, [...new Set(rows.flatMap(({ fit }) => fit.networkId ?? []))]);
+	return rows.map((row) => summaryOf(row, changesOf.get(row.fit.id) ?? [], madeWith.get(row.fit.networkId ?? '') ?? null));
+}
+
+/** The fits of each of these networks, by the network's id, set-ups in their order. */
+export async function madeTogether(db: Handle, networkIds: readonly string[]): Promise<Map<string, NetworkFits>> {
+	const found = new Map<string, NetworkFits>();
+	if (networkIds.length === 0) return found;
+	const rows = await db
+		.select({ networkId: fits.networkId, fitId: fits.id, number: fits.number, setupId: fits.setupId, setupName: setups.name })
+		.from(fits)
+		.innerJoin(setups, eq(setups.id, fits.setupId))
+		.where(inArray(fits.networkId, [...networkIds]))
+		.orderBy(asc(fits.number));
+	for (const { networkId, ...fit } of rows) {
+		if (networkId === null) continue;
+		const own = found.get(networkId) ?? { networkId, fits: [] };
+		own.fits.push(fit);
+		found.set(networkId, own);
+	}
+	return found;
 }
 
 /** What is other in each fit of these set-ups than in the one before it, by the fit's id. */
@@ -66,6 +88,7 @@ async function changesBySetup(db: Handle, setupIds: readonly string[]): Promise<
 			id: fits.id,
 			setupId: fits.setupId,
 			kind: fits.kind,
+			isTogether: sql<boolean>`${fits.networkId} is not null`,
 			knownScale: fits.knownScale,
 			controlNumber: controlSets.number,
 			shelves: fits.shelves,
@@ -88,7 +111,7 @@ async function changesBySetup(db: Handle, setupIds: readonly string[]): Promise<
 	return changes;
 }
 
-function summaryOf({ fit, ...row }: FitRow, changes: string[]): FitSummary {
+function summaryOf({ fit, ...row }: FitRow, changes: string[], madeWith: NetworkFits | null): FitSummary {
 	return {
 		...row,
 		fitId: fit.id,
@@ -107,6 +130,7 @@ function summaryOf({ fit, ...row }: FitRow, changes: string[]): FitSummary {
 		checkedNote: fit.checkedNote,
 		surveyorInCharge: fit.surveyorInCharge,
 		changes,
+		madeWith,
 		inputsSha256: fit.inputsSha256,
 	};
 }

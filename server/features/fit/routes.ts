@@ -4,6 +4,7 @@ import { confirmFit } from './confirm-fit.ts';
 import { fitReportPdf } from './fit-report.ts';
 import { fitReportData } from './fit-report-data.ts';
 import { makeFit } from './make-fit.ts';
+import { fitTies, makeTogether } from './make-together.ts';
 import { fitOf, fitsOf } from './queries.ts';
 import { setupPairs } from './setup-pairs.ts';
 
@@ -15,6 +16,12 @@ export const fitRoutes = {
 		const made = await makeFit(platform, member, input);
 		if (!made.ok) throw errors.NO_FIT({ message: made.refusal.message, data: made.refusal });
 		return made.fit;
+	}),
+	ties: siteRoutes.fit.ties.handler(({ input, context: { platform } }) => fitTies(platform.db, input)),
+	makeTogether: siteRoutes.fit.makeTogether.handler(async ({ input, context: { platform, member }, errors }) => {
+		const made = await makeTogether(platform, member, input);
+		if (!made.ok) throw errors.NO_FIT({ message: made.refusal.message, data: made.refusal });
+		return made.together;
 	}),
 	adopt: siteRoutes.fit.adopt.handler(async ({ input, context: { platform, member }, errors }) => {
 		const adopted = await adoptFit(platform, member, input);

@@ -5,7 +5,7 @@ import { vectorOf } from '../../db/model-rows.ts';
 import { controlPoints, controlSets } from '../../db/schema/control.ts';
 import { setups, surveyPoints, surveys } from '../../db/schema/survey.ts';
 import { foundOne, Refused } from '../../platform/refuse.ts';
-import { pairTargets } from './pair-targets.ts';
+import { pairTargets, type SetupPoint, type UnknownTarget, unknownTargets } from './pair-targets.ts';
 
 export interface SetupAndControl {
 	siteId: string;
@@ -17,7 +17,12 @@ export interface SetupAndControl {
 /** A set-up's pairs against a control set, with the hashes of the files that both came from. */
 export interface SetupPairs {
 	pairs: PairsOfSetup;
+	/** Targets that no control point is named like: they may tie this set-up to others. */
+	unknown: UnknownTarget[];
+	surveyId: string;
 	setupName: string;
+	levelling: 'levelled' | 'free';
+	bringsScale: boolean;
 	surveyFileSha256: string;
 	controlFileSha256: string;
 }
@@ -61,25 +66,28 @@ export async function setupPairs(db: Handle, { siteId, setupId, controlSetId, re
 	);
 	const { pointSigmaPlanM: plan, pointSigmaHeightM: height } = setup;
 	const setupSigmaM = plan === null || height === null ? null : ([plan, plan, height] as const);
-	const paired = pairTargets(
-		points.map(({ name, row, code, xM, yM, zM, sigmaM }) => ({
+	const sighted = points.map(
+		({ name, row, code, xM, yM, zM, sigmaM }): SetupPoint => ({
 			name,
 			row,
 			code,
 			surveyM: [xM, yM, zM],
 			sigmaM: sigmaM === null ? setupSigmaM : vectorOf(sigmaM),
-		})),
-		marks.map(({ name, designXM, designYM, designZM, sigmaPlanM, sigmaHeightM }) => ({
-			name,
-			designM: [designXM, designYM, designZM],
-			sigmaPlanM,
-			sigmaHeightM,
-		})),
-		relabellings,
+		}),
 	);
+	const known = marks.map(({ name, designXM, designYM, designZM, sigmaPlanM, sigmaHeightM }) => ({
+		name,
+		designM: [designXM, designYM, designZM] as const,
+		sigmaPlanM,
+		sigmaHeightM,
+	}));
 	return {
-		pairs: { setupId, controlSetId, ...paired },
+		pairs: { setupId, controlSetId, ...pairTargets(sighted, known, relabellings) },
+		unknown: unknownTargets(sighted, known, relabellings),
+		surveyId: survey.id,
 		setupName: setup.name,
+		levelling: setup.levelling,
+		bringsScale: setup.bringsScale,
 		surveyFileSha256: survey.fileSha256,
 		controlFileSha256: control.fileSha256,
 	};

@@ -1,7 +1,8 @@
 import { coverageFactor } from '../../fit/carry-point.ts';
 import type { Vector3 } from '../../geometry/frame.ts';
+import type { CheckInputSetup } from '../check-input.ts';
 import type { CheckedCheckpoint } from '../checked-checkpoint.ts';
-import type { WeightedPlace } from '../fit-covariance-field.ts';
+import { covarianceOfSums, type WeightedPlace } from '../fit-covariance-field.ts';
 import type { MeasuredDeviation } from '../measure-deviation.ts';
 import type { Observation, PreparedSetup } from '../observation.ts';
 
@@ -30,7 +31,7 @@ export interface DerivedFigure {
 /**
  * U of Σ wᵢᵀ·yᵢ, millimetres: the fit's covariance of the very sum (J_p·Q·J_qᵀ between the places, not as if independent), each point's own part once
  * for each observation, and the common part as one shift a set-up, which cancels where the weights of a set-up add up to nothing.
- * Set-ups count as independent of each other. Null where a part is not known. GUM (JCGM 100) 5.2.
+ * Set-ups count as independent of each other, but for those adjusted together, whose fits share what tied them. Null where a part is not known. GUM (JCGM 100) 5.2.
  */
 export function linearUncertaintyMm(terms: readonly DerivedTerm[]): number | null {
 	const bySetup = new Map<PreparedSetup, Map<Observation, [number, number, number]>>();
@@ -42,6 +43,7 @@ export function linearUncertaintyMm(terms: readonly DerivedTerm[]): number | nul
 	}
 	let variance = 0;
 	let factor = 0;
+	const summed: { setup: CheckInputSetup; places: WeightedPlace[] }[] = [];
 	for (const [{ setup, field }, observations] of bySetup) {
 		const k = coverageFactor(setup.fit);
 		if (!field.isKnown || k === null) return null;
@@ -57,6 +59,12 @@ export function linearUncertaintyMm(terms: readonly DerivedTerm[]): number | nul
 				for (let j = 0; j < 3; j++) variance += weight[i]! * own[i]![j]! * weight[j]! * 1e6;
 			}
 		}
+		for (const other of summed) {
+			const tie = setup.tiedTo?.find(({ setupId }) => setupId === other.setup.id);
+			if (tie !== undefined)
+				variance += 2e6 * covarianceOfSums(setup.fit, places, { fit: other.setup.fit, covariance: tie.covariance }, other.places);
+		}
+		summed.push({ setup, places });
 		variance += field.varianceOfSum(places) * 1e6 + setup.commonMm ** 2 * (together[0]! ** 2 + together[1]! ** 2 + together[2]! ** 2);
 	}
 	return factor * Math.sqrt(Math.max(0, variance));

@@ -17,7 +17,6 @@ const words: Record<Place, string> = {
 /** Why a place cannot be gone to yet. */
 const notYet: Partial<Record<Place, string>> = {
 	flags: 'Nothing is published yet',
-	records: 'Nothing is published yet',
 };
 
 /** A site's line as knots with their addresses: "Check" leads to the newest check where there is one. */

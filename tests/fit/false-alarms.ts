@@ -1,0 +1,24 @@
+/**
+ * How often a clean set raises a finding: `npx tsx tests/fit/false-alarms.ts SETS [sigma|none] [FROM]`. Sets of 4, 6, 10 and 40 pairs,
+ * levelled and free; what geometry alone says (weak-geometry, far-from-targets, no-redundancy) is no alarm. One line a cell.
+ */
+import { computeFit } from '#shared/fit/compute-fit.ts';
+import { surveyScene } from './survey-scene.ts';
+
+const [sets = '1000', sigma = 'sigma', first = '1'] = process.argv.slice(2);
+const geometry = ['weak-geometry', 'far-from-targets', 'no-redundancy'];
+for (const count of [4, 6, 10, 40]) {
+	for (const fit of ['levelled', 'free'] as const) {
+		const codes: Record<string, number> = {};
+		let alarms = 0;
+		for (let k = 0; k < Number(sets); k++) {
+			const { input } = surveyScene(1_000_000 + Number(first) + k, fit, count, { sigmas: sigma === 'sigma' });
+			const outcome = computeFit(input);
+			if (!outcome.ok) throw new Error(outcome.refusal.message);
+			const raised = outcome.result.findings.filter(({ code }) => !geometry.includes(code));
+			if (raised.length > 0) alarms++;
+			for (const { code } of raised) codes[code] = (codes[code] ?? 0) + 1;
+		}
+		console.log(JSON.stringify({ count, fit, sigma, sets: Number(sets), alarms, percent: (100 * alarms) / Number(sets), codes }));
+	}
+}
