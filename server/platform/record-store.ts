@@ -78,6 +78,7 @@ export function openRecordStore(db: Db, key: SigningKey, journal: RecordJournal)
 				act: body.act,
 				pourId: about.pourId,
 				holdPoint: about.holdPoint,
+				endsSha256: body.act === 'withdrawn' ? body.withdraws : body.supersedes,
 				keySha256: key.sha256,
 				signedBy: body.signer.userId,
 				signedAt,

@@ -32,6 +32,8 @@ export const recordedElement = z.strictObject({
 	storey: text,
 	/** Where it belongs to another company than the pour. */
 	company: text.nullable(),
+	/** Of its place, shape and checkpoints in the design: a later revision that leaves it alone gives the same. */
+	designSha256: sha256Text,
 });
 export type RecordedElement = z.infer<typeof recordedElement>;
 
@@ -155,8 +157,6 @@ export const shownPour = z.strictObject({
 		.max(100_000),
 	flags: z.array(recordedFlag).max(20_000),
 	checks: z.array(recordedCheck).max(500),
-	/** How the elements stood in the design: a later revision that changes none of them gives the same. */
-	designSha256: sha256Text,
 });
 export type ShownPour = z.infer<typeof shownPour>;
 

@@ -36,6 +36,8 @@ export const sealedRecords = pgTable(
 		/** What it is about, so that it can be listed without reading it. */
 		pourId: uuid('pour_id').notNull(),
 		holdPoint: text('hold_point').$type<'before-pour' | 'after-pour'>().notNull(),
+		/** The record that this one withdraws, or takes the place of. */
+		endsSha256: sha256('ends_sha256'),
 		keySha256: sha256('key_sha256').notNull(),
 		signedBy: uuid('signed_by')
 			.notNull()

@@ -8,7 +8,7 @@ import { pourElements, pours } from '../../db/schema/pour.ts';
 import { sealedRecords, signingKeys } from '../../db/schema/record.ts';
 import type { Member } from '../../platform/platform.ts';
 import { newestRecord } from '../../platform/record-store.ts';
-import { foundOne, Refused } from '../../platform/refuse.ts';
+import { foundOne } from '../../platform/refuse.ts';
 
 /** The keys of this server, the one in use first. */
 export async function publishedKeys(db: Handle): Promise<PublishedKey[]> {
@@ -51,13 +51,12 @@ export async function chainTextOf(db: Handle, member: Member): Promise<{ text: s
 		.from(sealedRecords)
 		.where(eq(sealedRecords.siteId, member.siteId))
 		.orderBy(asc(sealedRecords.sequence));
-	if (rows.length === 0) throw new Refused('no-records', 'Nothing is signed on this site yet, so there is no chain.');
 	return { text: `{"form":"${chainForm}","records":[${rows.map(({ text }) => text).join(',')}]}`, length: rows.length };
 }
 
 async function linesOf(db: Handle, member: Member): Promise<RecordLine[]> {
 	const rows = await db
-		.select({ ...columns, ended: endedHash })
+		.select({ ...columns, ended: sealedRecords.endsSha256 })
 		.from(sealedRecords)
 		.innerJoin(pours, eq(pours.id, sealedRecords.pourId))
 		.innerJoin(users, eq(users.id, sealedRecords.signedBy))
@@ -66,11 +65,6 @@ async function linesOf(db: Handle, member: Member): Promise<RecordLine[]> {
 	const endedBy = new Map(rows.flatMap(({ ended, sequence, act }) => (ended === null ? [] : [[ended, { sequence, act }] as const])));
 	return rows.map(({ ended: _, ...row }) => ({ ...row, endedBy: endedBy.get(row.sha256) ?? null }));
 }
-
-/** The hash of the record that this one withdraws or supersedes, out of its text. */
-const endedHash = sql<
-	string | null
->`coalesce(${sealedRecords.text}::jsonb -> 'body' ->> 'withdraws', ${sealedRecords.text}::jsonb -> 'body' ->> 'supersedes')`;
 
 function ownPour({ roles, companyIds }: Member): SQL | undefined {
 	if (seesEveryPour(roles)) return undefined;

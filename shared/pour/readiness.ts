@@ -1,0 +1,135 @@
+import { counted, nameList } from '../check/name-list.ts';
+import type { CheckpointStanding } from '../check/standing.ts';
+import type { FlagState } from '../flag/flag-schema.ts';
+import type { Requirement } from '../model/requirement.ts';
+import type { Characteristic } from '../tolerance/sheet-schema.ts';
+
+/** One checkpoint of the pour's elements as it stands for this hold point. */
+export interface PourCheckpoint {
+	readonly modelId: string;
+	readonly globalId: string;
+	readonly checkpointId: string;
+	readonly characteristic: Characteristic;
+	/** What people call its element. */
+	readonly mark: string;
+	readonly requirement: Requirement;
+	/** From all published checks of the point's stages; null where none asked for it. */
+	readonly standing: CheckpointStanding | null;
+	/** Its survey point was voided after the check. */
+	readonly isVoided: boolean;
+	/** The issued sheet gives it other limits than those it was judged by. */
+	readonly isLimitChanged: boolean;
+	/** The element stands elsewhere, or is shaped otherwise, in the newest revision than in the one checked. */
+	readonly isDesignMoved: boolean;
+}
+
+/** A flag that has not lapsed. */
+export interface PourFlag {
+	readonly modelId: string;
+	readonly globalId: string;
+	readonly kind: Characteristic;
+	readonly state: FlagState;
+}
+
+export interface ReadinessFacts {
+	readonly checkpoints: readonly PourCheckpoint[];
+	readonly flags: readonly PourFlag[];
+	/** Elements of the pour that the newest revision does not have any more. */
+	readonly goneMarks: readonly string[];
+	/** Another person than who adopts a fit checks it, on this site. */
+	readonly isFitCheckedBySecond: boolean;
+}
+
+/** `isGood`: it does not stand in the way. */
+export interface ReadinessSentence {
+	readonly text: string;
+	readonly isGood: boolean;
+}
+
+export interface Readiness {
+	readonly isReady: boolean;
+	readonly sentences: readonly ReadinessSentence[];
+}
+
+/** What one checkpoint comes to: `good` kinds let the pour go, the others stand in the way. */
+const kinds = {
+	'element-moved': {
+		isGood: false,
+		say: (n: string, marks: string) => `${n} on elements that the newest revision moves or reshapes (${marks}): check again.`,
+	},
+	'not-measured': {
+		isGood: false,
+		say: (n: string, marks: string) => `${n} not measured (${marks}): measure them, or leave them out with a reason.`,
+	},
+	'fit-superseded': {
+		isGood: false,
+		say: (n: string, marks: string) => `${n} measured on a fit that is adopted no more (${marks}): check again.`,
+	},
+	'fit-unchecked': { isGood: false, say: (n: string, marks: string) => `${n} on a fit that no second person has checked (${marks}).` },
+	voided: {
+		isGood: false,
+		say: (n: string, marks: string) => `${n} measured by a survey point that was voided since (${marks}): check again.`,
+	},
+	'limit-changed': {
+		isGood: false,
+		say: (n: string, marks: string) => `${n} with other limits by the issued sheet (${marks}): check again.`,
+	},
+	'no-rule': {
+		isGood: false,
+		say: (n: string, marks: string) => `${n} that no rule decides (${marks}): give them a limit, or leave them out with a reason.`,
+	},
+	outside: { isGood: false, say: (n: string, marks: string) => `${n} outside, their flags not closed (${marks}).` },
+	close: { isGood: false, say: (n: string, marks: string) => `${n} too close to call, their flags not closed (${marks}).` },
+	undecided: { isGood: false, say: (n: string, marks: string) => `${n} undecided: their uncertainty is not known (${marks}).` },
+	flagged: { isGood: false, say: (n: string, marks: string) => `${n} within, their flags not closed yet (${marks}).` },
+	within: { isGood: true, say: (n: string) => `${n} within, on adopted fits.` },
+	'flag-closed': { isGood: true, say: (n: string, marks: string) => `${n} outside or too close, their flags closed (${marks}).` },
+	'left-out': { isGood: true, say: (n: string, marks: string) => `${n} left out, each with its reason (${marks}).` },
+} as const;
+type Kind = keyof typeof kinds;
+
+/**
+ * Why a pour is ready or not, sentence by sentence: every required and sampled checkpoint is within, or its flag is closed; what is not
+ * measured or has no rule stands in the way unless it is left out with a reason; on checked, adopted fits.
+ */
+export function readinessOf(facts: ReadinessFacts): Readiness {
+	const byKind = new Map<Kind, PourCheckpoint[]>();
+	for (const checkpoint of facts.checkpoints) {
+		const kind = kindOf(checkpoint, facts);
+		byKind.set(kind, [...(byKind.get(kind) ?? []), checkpoint]);
+	}
+	const sentences = (Object.keys(kinds) as Kind[]).flatMap((kind): ReadinessSentence[] => {
+		const found = byKind.get(kind);
+		if (found === undefined) return [];
+		const marks = nameList([...new Set(found.map(({ mark }) => mark))]);
+		return [{ text: kinds[kind].say(counted(found.length, 'point'), marks), isGood: kinds[kind].isGood }];
+	});
+	if (facts.goneMarks.length > 0)
+		sentences.unshift({
+			text: `${counted(facts.goneMarks.length, 'element')} no longer in the newest revision (${nameList(facts.goneMarks)}).`,
+			isGood: false,
+		});
+	if (facts.checkpoints.length === 0)
+		sentences.unshift({ text: 'There is no point to measure on the elements of this pour.', isGood: false });
+	else if (facts.checkpoints.every(({ requirement }) => requirement === 'left-out'))
+		sentences.unshift({ text: 'Every point is left out, so nothing is known of this pour.', isGood: false });
+	return { isReady: sentences.every(({ isGood }) => isGood), sentences };
+}
+
+function kindOf(checkpoint: PourCheckpoint, { flags, isFitCheckedBySecond }: ReadinessFacts): Kind {
+	const { requirement, standing, modelId, globalId, characteristic } = checkpoint;
+	if (requirement === 'left-out') return 'left-out';
+	if (standing === null || standing.newest.deviation.deviationMm === null) return 'not-measured';
+	const { deviation, isFitAdopted, isFitChecked } = standing.newest;
+	if (checkpoint.isDesignMoved) return 'element-moved';
+	if (!isFitAdopted) return 'fit-superseded';
+	if (isFitCheckedBySecond && !isFitChecked) return 'fit-unchecked';
+	if (checkpoint.isVoided) return 'voided';
+	if (checkpoint.isLimitChanged) return 'limit-changed';
+	if (deviation.verdict === 'no-tolerance') return 'no-rule';
+	const own = flags.filter((flag) => flag.modelId === modelId && flag.globalId === globalId && flag.kind === characteristic);
+	const isOpen = own.some(({ state }) => state !== 'closed' && state !== 'lapsed');
+	if (deviation.verdict === 'within') return isOpen ? 'flagged' : 'within';
+	if (!isOpen && own.some(({ state }) => state === 'closed')) return 'flag-closed';
+	return deviation.verdict === 'outside' ? 'outside' : deviation.verdict === 'too-close-to-call' ? 'close' : 'undecided';
+}
