@@ -24,7 +24,8 @@ export const base = oc.$meta<{ permission?: Permission }>({}).errors({
 	},
 });
 
-export const siteInput = z.object({ siteId: z.uuid() });
+/** Strict, and so is all that extends it: what nobody asked for is refused. */
+export const siteInput = z.strictObject({ siteId: z.uuid() });
 
 /** A text a person typed: trimmed, no control characters. */
 export const plainText = (maximum: number) =>

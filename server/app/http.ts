@@ -84,7 +84,7 @@ function calls({ platform, sessions, router }: Pick<HttpParts, 'platform' | 'ses
 			platform,
 			signedIn: await recognise(sessions, request, response),
 			session: {
-				start: async (userId) => void response.append('set-cookie', await sessions.create(userId, origin)),
+				start: async (userId, opened) => void response.append('set-cookie', await sessions.create(userId, origin, opened)),
 				end: async () => void response.append('set-cookie', await sessions.end(request.headers.cookie)),
 				id: sessions.idOf(request.headers.cookie),
 			},

@@ -1,15 +1,17 @@
 import { implement, ORPCError, ValidationError } from '@orpc/server';
+import { z } from 'zod';
 import { siteInput } from '#shared/base-contract.ts';
 import { contract } from '#shared/contract.ts';
 import { mayWith, type Permission, type SitePermission } from '#shared/permissions.ts';
 import { memberOf } from './membership.ts';
 import type { Member, Platform, SignedIn } from './platform.ts';
 import { Conflict, Forbidden, NotFound, Refused } from './refuse.ts';
+import type { SessionOpening } from './session.ts';
 import type { Tries } from './tries.ts';
 
 /** The session of this request. What is set goes out with the answer as a cookie. */
 export interface SessionDoor {
-	start: (userId: string) => Promise<void>;
+	start: (userId: string, opened?: SessionOpening) => Promise<void>;
 	end: () => Promise<void>;
 	/** What stands in the table for it; null without one. */
 	id: string | null;
@@ -32,6 +34,8 @@ export interface RequestContext {
  */
 const answers = implement(contract).$context<RequestContext>();
 
+const siteNamed = z.object(siteInput.shape);
+
 /** For `public`: anybody. `signedIn` is null without a session. */
 export const openRoutes = answers.use(async ({ context, next, procedure }) => {
 	expectKind(procedure, 'public');
@@ -51,7 +55,8 @@ export const siteRoutes = answers.use(async ({ context, next, procedure, errors 
 	const permission = expectKind(procedure, 'site');
 	const { signedIn, platform } = context;
 	if (signedIn === null) throw errors.UNAUTHORIZED();
-	const site = siteInput.safeParse(input);
+	// What else the input holds is the contract's to judge, after the person was let in.
+	const site = siteNamed.safeParse(input);
 	const member: Member | null = site.success ? await memberOf(platform.db, signedIn, site.data.siteId, platform.now()) : null;
 	if (member === null) throw errors.NOT_FOUND();
 	if (!mayWith(member.roles, permission)) throw errors.FORBIDDEN();

@@ -80,6 +80,16 @@ export interface SignedIn {
 	email: string;
 	/** The network address of the request, for the audit trail; a job has none. */
 	address?: string;
+	/** What was proved in the session of the request; a job has none. */
+	proof?: SessionProof;
+}
+
+/** How well a session knows its person (`second-factor.ts` asks it). */
+export interface SessionProof {
+	/** Until when the person counts as just having proved who they are; null: not since the session began. */
+	freshUntil: Date | null;
+	/** A second factor was shown in this session. */
+	hasSecondFactor: boolean;
 }
 
 /** A person on the site of the request. */

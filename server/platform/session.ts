@@ -3,12 +3,12 @@ import { DrizzlePostgreSQLAdapter } from '@lucia-auth/adapter-drizzle';
 import { type Adapter, Lucia, TimeSpan, verifyRequestOrigin } from 'lucia';
 import type { Db } from '../db/database.ts';
 import { sessions, users } from '../db/schema/account.ts';
-import type { SignedIn } from './platform.ts';
+import type { SessionProof, SignedIn } from './platform.ts';
 
 /** The only file that knows the session library (docs/decisions/002). */
 export interface Sessions {
 	/** A new session; answers the cookie to set. */
-	create: (userId: string, from?: SessionOrigin) => Promise<string>;
+	create: (userId: string, from?: SessionOrigin, opened?: SessionOpening) => Promise<string>;
 	/** What stands in the table for this cookie header's session, by which a person tells it from the others; null without one. */
 	idOf: (cookieHeader: string | undefined) => string | null;
 	/** Who sends this cookie header, and a cookie to set where the session was prolonged. */
@@ -26,14 +26,23 @@ export interface SessionOrigin {
 	address: string | null;
 }
 
+/** How it was opened. */
+export interface SessionOpening {
+	/** A code of an app, a recovery code or a passkey was shown. */
+	hasSecondFactor: boolean;
+	/** On a device that others use too a session ends within half a day. */
+	isOwnDevice: boolean;
+}
+
 /** A session that is used lives on, up to this long after its start. */
 const longestMs = 90 * 24 * 3_600_000;
+const longestOnSharedMs = 12 * 3_600_000;
 
 declare module 'lucia' {
 	interface Register {
-		Lucia: Lucia<Record<never, never>, { name: string; email: string }>;
+		Lucia: Lucia<SessionProof, { name: string; email: string }>;
 		DatabaseUserAttributes: { name: string; email: string };
-		DatabaseSessionAttributes: SessionOrigin & { createdAt: Date };
+		DatabaseSessionAttributes: SessionOrigin & SessionProof & { createdAt: Date };
 	}
 }
 
@@ -42,6 +51,7 @@ export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean;
 	const lucia = new Lucia(hashingIds(new DrizzlePostgreSQLAdapter(db, sessions, users)), {
 		sessionExpiresIn: new TimeSpan(30, 'd'),
 		sessionCookie: { name: 'bb-session', attributes: { secure: isSecure, sameSite: 'lax', path: '/' } },
+		getSessionAttributes: ({ freshUntil, hasSecondFactor }) => ({ freshUntil, hasSecondFactor }),
 		getUserAttributes: ({ name, email }) => ({ name, email }),
 	});
 	const nobody = { signedIn: null, cookie: null };
@@ -54,12 +64,19 @@ export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean;
 		}
 	};
 	return {
-		create: async (userId, { userAgent, address } = { userAgent: null, address: null }) => {
-			// The start is part of the secret: who changes it changes the hash, and has no session.
-			const sessionId = `${now().getTime().toString(36)}.${randomBytes(32).toString('base64url')}`;
+		create: async (userId, { userAgent, address } = { userAgent: null, address: null }, opened) => {
+			// The start, and whose device it is, are part of the secret: who changes them changes the hash, and has no session.
+			const kind = opened?.isOwnDevice === false ? sharedMark : '';
+			const sessionId = `${now().getTime().toString(36)}${kind}.${randomBytes(32).toString('base64url')}`;
 			const session = await lucia.createSession(
 				userId,
-				{ userAgent: userAgent?.slice(0, 200) ?? null, address, createdAt: now() },
+				{
+					userAgent: userAgent?.slice(0, 200) ?? null,
+					address,
+					createdAt: now(),
+					freshUntil: null,
+					hasSecondFactor: opened?.hasSecondFactor ?? false,
+				},
 				{ sessionId },
 			);
 			return lucia.createSessionCookie(session.id).serialize();
@@ -69,11 +86,12 @@ export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean;
 			if (sessionId === null) return nobody;
 			const { user, session } = await lucia.validateSession(sessionId);
 			if (session === null) return nobody;
-			if (now().getTime() - Number.parseInt(sessionId, 36) > longestMs) {
+			if (now().getTime() - Number.parseInt(sessionId, 36) > longestOf(sessionId)) {
 				await lucia.invalidateSession(sessionId);
 				return nobody;
 			}
-			const signedIn = { userId: user.id, name: user.name, email: user.email };
+			const { freshUntil, hasSecondFactor } = session;
+			const signedIn = { userId: user.id, name: user.name, email: user.email, proof: { freshUntil, hasSecondFactor } };
 			return { signedIn, cookie: session.fresh ? lucia.createSessionCookie(sessionId).serialize() : null };
 		},
 		idOf: (cookieHeader) => {
@@ -88,6 +106,12 @@ export function openSessions({ db, isSecure, now }: { db: Db; isSecure: boolean;
 		endAll: (userId) => lucia.invalidateUserSessions(userId),
 		deleteExpired: () => lucia.deleteExpiredSessions(),
 	};
+}
+
+const sharedMark = '-shared';
+
+function longestOf(sessionId: string): number {
+	return sessionId.split('.', 1)[0]?.endsWith(sharedMark) ? longestOnSharedMs : longestMs;
 }
 
 function hashedId(sessionId: string): string {

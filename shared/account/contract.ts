@@ -1,14 +1,10 @@
 import { z } from 'zod';
 import { base } from '../base-contract.ts';
 import { emailAddress, secretToken } from '../site/people-contract.ts';
+import { factorsContract, secondFactorAsked } from './factors-contract.ts';
 import { newPassword } from './password-rule.ts';
-
-export const person = z.object({
-	userId: z.uuid(),
-	name: z.string(),
-	email: z.string(),
-});
-export type Person = z.infer<typeof person>;
+import { person } from './person.ts';
+import { preferences } from './preferences.ts';
 
 export const signInInput = z.object({
 	email: z.email('Write an e-mail address.').max(200),
@@ -44,6 +40,7 @@ export const accountContract = {
 				status: 429,
 				message: 'Too many tries. Wait a quarter of an hour, then try again.',
 			},
+			...secondFactorAsked,
 		})
 		.input(signInInput)
 		.output(person),
@@ -74,5 +71,8 @@ export const accountContract = {
 		.meta({ permission: 'signed-in' })
 		.input(z.object({ sessionId: z.string().nullable() }))
 		.output(z.object({ ended: z.number().int() })),
+	preferences: base.meta({ permission: 'signed-in' }).output(preferences),
+	savePreferences: base.meta({ permission: 'signed-in' }).input(preferences).output(preferences),
+	...factorsContract,
 	signOut: base.meta({ permission: 'signed-in' }).output(z.object({ signedOut: z.literal(true) })),
 };

@@ -1,6 +1,6 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import { useParams } from 'react-router-dom';
-import type { Person } from '#shared/account/contract.ts';
+import type { Person } from '#shared/account/person.ts';
 import { mayWith, type SitePermission } from '#shared/permissions.ts';
 import { api } from './api.ts';
 

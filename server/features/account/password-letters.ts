@@ -23,3 +23,23 @@ export function changedLetter(publicUrl: string): Letter {
 		notes: [{ words: 'It was not you? Ask for a new password at once:', url: `${publicUrl}/reset` }],
 	};
 }
+
+/** A code to sign in with; it stands in the subject too, so that a phone shows it without opening the mail. */
+export function codeLetter(code: string): Letter {
+	return {
+		subject: `${code} is your Batterboard code`,
+		headline: code,
+		paragraphs: ['Write it where you asked for it. It holds for ten minutes, for one use, in that browser alone.'],
+		notes: [{ words: 'You asked for none? Then do nothing, and give it to nobody.' }],
+	};
+}
+
+/** Told to the person whenever a second factor comes or goes. */
+export function factorLetter(publicUrl: string, what: string): Letter {
+	return {
+		subject: `${what} for Batterboard`,
+		headline: what,
+		paragraphs: ['It was done in your account, after your password, a code or a passkey was asked.'],
+		notes: [{ words: 'It was not you? Set a new password at once:', url: `${publicUrl}/reset` }],
+	};
+}

@@ -1,6 +1,6 @@
 import { and, eq, gt, isNull, lt, sql } from 'drizzle-orm';
 import type { Transaction } from '../../db/database.ts';
-import { passwordResets, sessions, users } from '../../db/schema/account.ts';
+import { passwordResets, sessions, signInSteps, users } from '../../db/schema/account.ts';
 import { audit } from '../../platform/audit.ts';
 import { hashPassword } from '../../platform/password.ts';
 import type { Platform } from '../../platform/platform.ts';
@@ -79,6 +79,7 @@ export async function resetPassword(
 		await endResetsOf(tx, found.userId, now);
 		await tx.update(users).set({ passwordHash }).where(eq(users.id, found.userId));
 		await tx.delete(sessions).where(eq(sessions.userId, found.userId));
+		await tx.delete(signInSteps).where(eq(signInSteps.userId, found.userId));
 		await audit(tx, { ...found, address }, { kind: 'password-reset', subjectId: found.userId, data: {} });
 		await postMail(tx, { to: found.email, letter: changedLetter(platform.publicUrl()), now });
 	});

@@ -1,4 +1,5 @@
 import { siteRoutes } from '../../platform/guard.ts';
+import { requireSecondFactor } from '../../platform/second-factor.ts';
 import { adoptFit } from './adopt-fit.ts';
 import { confirmFit } from './confirm-fit.ts';
 import { fitReportPdf } from './fit-report.ts';
@@ -24,6 +25,7 @@ export const fitRoutes = {
 		return made.together;
 	}),
 	adopt: siteRoutes.fit.adopt.handler(async ({ input, context: { platform, member }, errors }) => {
+		await requireSecondFactor(platform.db, member);
 		const adopted = await adoptFit(platform, member, input);
 		if (adopted === 'stale') throw errors.STALE();
 		return adopted;
@@ -33,5 +35,8 @@ export const fitRoutes = {
 		const bytes = await fitReportPdf(data);
 		return new File([bytes as Uint8Array<ArrayBuffer>], `fit-${data.fit.number}.pdf`, { type: 'application/pdf' });
 	}),
-	confirm: siteRoutes.fit.confirm.handler(({ input, context: { platform, member } }) => confirmFit(platform, member, input)),
+	confirm: siteRoutes.fit.confirm.handler(async ({ input, context: { platform, member } }) => {
+		await requireSecondFactor(platform.db, member);
+		return confirmFit(platform, member, input);
+	}),
 };

@@ -1,7 +1,7 @@
 import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useId } from 'react';
 import { Link } from 'react-router-dom';
-import type { Person } from '#shared/account/contract.ts';
+import type { Person } from '#shared/account/person.ts';
 import { api } from '#src/lib/api.ts';
 import { type ColourSetWish, chooseColourSet, useColourSet } from '#src/lib/colour-set.ts';
 import { Button } from '#src/ui/button.tsx';
