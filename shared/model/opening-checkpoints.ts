@@ -82,8 +82,10 @@ export function wallOpenings(mesh: SolidMesh, faces: readonly PlanarFace[], acro
 		const end = compassOf([wall.u[0] * sense, wall.u[1] * sense]).word.toLowerCase();
 		return `${metresInWords(Math.min(u - wall.uMin, wall.uMax - u))} from the wall's ${end} end`;
 	};
+	const eastward = wall.u[0] < -1e-3 || (Math.abs(wall.u[0]) <= 1e-3 && wall.u[1] < 0) ? scale(wall.u, -1) : wall.u;
 	for (const face of revealsOf(mesh, faces, across)) {
-		const plan = planOfFace(mesh, face);
+		// Heads and sills along the wall: laid out along the axes of the model, a thin turned one is narrower than it looks.
+		const plan = planOfFace(mesh, face, Math.abs(face.normal[2]) > LEVEL_NZ ? eastward : undefined);
 		const middle = middleOf(plan);
 		if (!middle) continue;
 		const place = placeOn(plan, middle.u, middle.v);
