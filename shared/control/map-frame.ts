@@ -59,10 +59,11 @@ const oddScale = 0.01;
 
 /**
  * Whether the scale contradicts the two units, as where a file in millimetres leaves out a scale of 0.001: what the file says (the standard
- * takes an absent scale as 1) and what the units would give. Null where they agree.
+ * takes an absent scale as 1) and what the units would give. Null where they agree, or a person chose which holds.
  */
 export function mapScaleFinding(conversion: MapConversion, metresPerUnit: number): Finding | null {
-	const { scale, mapUnitM } = conversion;
+	const { scale, mapUnitM, chosenScale } = conversion;
+	if (chosenScale !== undefined) return null;
 	const metreScale = (scale * mapUnitM) / metresPerUnit;
 	if (Math.abs(metreScale - 1) <= oddScale) return null;
 	const expected = metresPerUnit / mapUnitM;

@@ -4,6 +4,7 @@ import { lengthUnitM, unitInWords } from './ifc-units.ts';
 import type { MapConversion } from './model-schema.ts';
 import type { Part21Entity, Part21File } from './part21.ts';
 import { numberOf, refOf, refsOf, textOf } from './part21-value.ts';
+import type { MapScaleReading } from './reading-choices.ts';
 
 /** From the model's engineering coordinates to the map: IfcMapConversion, IfcRigidOperation, and the property sets that stand for it in IFC2x3. */
 
@@ -180,8 +181,29 @@ function fromPropertySets(file: Part21File, metresPerUnit: number): Read {
 	return { conversion, findings };
 }
 
-/** The file's map conversion, or null; findings where its parts contradict each other. metresPerUnit is the model's. */
-export function readMapConversion(file: Part21File, metresPerUnit: number): Read {
+/**
+ * The file's map conversion, or null; findings where its parts contradict each other. metresPerUnit is the model's. `chosen`: which reading
+ * of a scale that contradicts the units a person holds for right; it changes nothing where they agree.
+ */
+export function readMapConversion(file: Part21File, metresPerUnit: number, chosen: MapScaleReading | null = null): Read {
+	const { conversion, findings } = readAsWritten(file, metresPerUnit);
+	if (conversion === null || chosen === null || !findings.some(({ code }) => code === 'map-scale')) return { conversion, findings };
+	const scale = chosen === 'as-written' ? conversion.scale : metresPerUnit / conversion.mapUnitM;
+	const ratio = (scale * conversion.mapUnitM) / metresPerUnit;
+	return {
+		conversion: { ...conversion, scale, chosenScale: chosen },
+		findings: findings.map((finding) =>
+			finding.code === 'map-scale'
+				? {
+						...finding,
+						message: `${finding.message.replace(/ Choose the reading before map coordinates are used\.$/, '')} A person chose the scale ${chosen === 'as-written' ? 'as written' : 'by the units'}: 1 m in the model is ${figureInWords(ratio)} m on the map.`,
+					}
+				: finding,
+		),
+	};
+}
+
+function readAsWritten(file: Part21File, metresPerUnit: number): Read {
 	const numbers = file.ofType('IFCMAPCONVERSION', 'IFCMAPCONVERSIONSCALED', 'IFCRIGIDOPERATION');
 	const reads = numbers
 		.map((number) => file.entity(number))

@@ -85,11 +85,24 @@ function lengthUnitsOf(file: Part21File, assignment: number): { metresPerUnit: n
 	return found;
 }
 
+/** The sentence of a file that names no length unit, told where a person may choose one. */
+export const noLengthUnit =
+	'The file does not say its length unit (no LENGTHUNIT that can be followed to the metre in any IfcUnitAssignment). It is not guessed: choose the unit, or export the model again with units.';
+
+/** Units that a person may choose for a file that names none, metres per unit. */
+export const usualUnitsM: readonly number[] = [1, 0.01, 0.001, 0.3048, 0.0254, 1200 / 3937];
+
+const isSameUnit = (one: number, other: number): boolean => Math.abs(one / other - 1) <= 1e-9;
+
 /**
- * The file's length unit, metres per unit. Null with a reason where none can be read: it is never assumed.
- * Findings: several projects, two length units that contradict each other, a project without units.
+ * The file's length unit, metres per unit. Null with a reason where none can be read: it is never assumed. `chosenM`: a person's choice,
+ * which holds only where the file names no unit, or several with this among them.
+ * Findings: several projects, two length units that contradict each other, a project without units, a unit that a person chose.
  */
-export function readModelUnit(file: Part21File): { ok: true; unit: ModelUnit } | { ok: false; message: string } {
+export function readModelUnit(
+	file: Part21File,
+	chosenM: number | null = null,
+): { ok: true; unit: ModelUnit } | { ok: false; message: string } {
 	const findings: Finding[] = [];
 	const projects = file.ofType('IFCPROJECT');
 	const found: { metresPerUnit: number; name: string | null; from: string }[] = [];
@@ -120,21 +133,26 @@ export function readModelUnit(file: Part21File): { ok: true; unit: ModelUnit } |
 				),
 			);
 	}
+	if (found.length === 0 && chosenM !== null) {
+		findings.push(
+			modelFinding('unit-chosen', `The file does not say its length unit. It is read in ${unitInWords(chosenM)}, as a person chose.`, {
+				metresPerUnit: chosenM,
+			}),
+		);
+		return { ok: true, unit: { metresPerUnit: chosenM, words: unitInWords(chosenM), findings } };
+	}
 	const first = found[0];
-	if (!first)
-		return {
-			ok: false,
-			message:
-				'The file does not say its length unit (no LENGTHUNIT that can be followed to the metre in any IfcUnitAssignment). It is not guessed: export the model again with units.',
-		};
-	const others = found.filter((unit) => Math.abs(unit.metresPerUnit / first.metresPerUnit - 1) > 1e-9);
-	if (others.length > 0)
+	if (!first) return { ok: false, message: noLengthUnit };
+	const isContradictory = found.some((unit) => !isSameUnit(unit.metresPerUnit, first.metresPerUnit));
+	const chosen = isContradictory && chosenM !== null ? found.find((unit) => isSameUnit(unit.metresPerUnit, chosenM)) : undefined;
+	const used = (chosen ?? first).metresPerUnit;
+	if (isContradictory)
 		findings.push(
 			modelFinding(
 				'unit-contradiction',
-				`The file names more than one length unit: ${found.map((unit) => `${unitInWords(unit.metresPerUnit)} (in ${unit.from})`).join(', ')}. The first is used; check a known length before anything else.`,
-				{ readings: found.map((unit) => ({ metresPerUnit: unit.metresPerUnit, from: unit.from })) },
+				`The file names more than one length unit: ${found.map((unit) => `${unitInWords(unit.metresPerUnit)} (in ${unit.from})`).join(', ')}. ${chosen === undefined ? 'The first is used; check a known length before anything else.' : `It is read in ${unitInWords(used)}, as a person chose.`}`,
+				{ readings: found.map((unit) => ({ metresPerUnit: unit.metresPerUnit, from: unit.from })), used },
 			),
 		);
-	return { ok: true, unit: { metresPerUnit: first.metresPerUnit, words: unitInWords(first.metresPerUnit), findings } };
+	return { ok: true, unit: { metresPerUnit: used, words: unitInWords(used), findings } };
 }

@@ -4,6 +4,7 @@ import { type CheckpointDraft, faceDraft, levelDraft, metresInWords } from './ch
 import { compassOf } from './element-shape.ts';
 import { type FacePlan, isClear, nearestClear, placeOn, planOfFace, stations } from './face-plan.ts';
 import type { PlanarFace } from './planar-face.ts';
+import type { Spacing } from './reading-choices.ts';
 import { doubleAreaVector, type SolidMesh } from './solid-mesh.ts';
 
 export const LEVEL_NZ = 0.9986;
@@ -60,19 +61,19 @@ function whereOn(plan: FacePlan, u: number, v: number): string {
 	return `${metresInWords(fromU)} from its ${sideU} side, ${metresInWords(fromV)} from its ${sideV} side`;
 }
 
-/** Places on a coarse grid away from edges and openings: at most about 40, at least the one nearest the middle. */
-function gridPlaces(plan: FacePlan, areaM2: number): { u: number; v: number }[] {
+/** Places on a coarse grid away from edges and openings: at most about 40 (at the usual step), at least the one nearest the middle. */
+function gridPlaces(plan: FacePlan, areaM2: number, spacing: Spacing): { u: number; v: number }[] {
 	const width = plan.uMax - plan.uMin;
 	const height = plan.vMax - plan.vMin;
 	const inset = Math.min(0.5, Math.min(width, height) / 4);
 	const margin = Math.min(0.3, Math.max(0.02, inset * 0.6));
-	const spacing = Math.max(3, Math.sqrt(areaM2 / 30));
+	const stepM = spacing.levelSpacingM * Math.max(1, Math.sqrt(areaM2 / 270));
 	const places: { u: number; v: number }[] = [];
-	for (const v of stations(plan.vMin, plan.vMax, spacing, inset)) {
-		for (const u of stations(plan.uMin, plan.uMax, spacing, inset)) if (isClear(plan, u, v, margin)) places.push({ u, v });
+	for (const v of stations(plan.vMin, plan.vMax, stepM, inset)) {
+		for (const u of stations(plan.uMin, plan.uMax, stepM, inset)) if (isClear(plan, u, v, margin)) places.push({ u, v });
 	}
 	const middle = { u: (plan.uMin + plan.uMax) / 2, v: (plan.vMin + plan.vMax) / 2 };
-	const isNearMiddle = places.some((place) => Math.hypot(place.u - middle.u, place.v - middle.v) < 0.3 * spacing);
+	const isNearMiddle = places.some((place) => Math.hypot(place.u - middle.u, place.v - middle.v) < 0.3 * stepM);
 	if (!isNearMiddle) {
 		const clear =
 			nearestClear(plan, middle.u, middle.v, margin, Math.max(0.1, Math.max(width, height) / 40)) ??
@@ -83,19 +84,19 @@ function gridPlaces(plan: FacePlan, areaM2: number): { u: number; v: number }[] 
 }
 
 /** Levels on the top or soffit of a slab, roof or footing; faces along their own normal where it is too steep for a level. */
-export function spreadOverFace(mesh: SolidMesh, face: PlanarFace): CheckpointDraft[] {
+export function spreadOverFace(mesh: SolidMesh, face: PlanarFace, spacing: Spacing): CheckpointDraft[] {
 	const isLevel = Math.abs(face.normal[2]) > LEVEL_NZ;
 	const plan = planOfFace(mesh, face, isLevel ? longestEdge(mesh, face) : undefined);
 	const isUp = face.normal[2] > 0;
-	return gridPlaces(plan, face.areaM2).map(({ u, v }) => {
+	return gridPlaces(plan, face.areaM2, spacing).map(({ u, v }) => {
 		const place = placeOn(plan, u, v);
 		if (isLevel) return levelDraft(mesh, face, place[0], place[1], `${isUp ? 'Top' : 'Soffit'}, ${whereOn(plan, u, v)}`, isUp ? 'T' : 'U');
 		return faceDraft(face, place, `${isUp ? 'Upper' : 'Lower'} face, ${whereOn(plan, u, v)}`, isUp ? 'F' : 'G');
 	});
 }
 
-/** Faces on the outer standing edges of a slab, roof or footing, at half their height, each about 3 m. */
-export function edgeFaces(mesh: SolidMesh, faces: readonly PlanarFace[]): CheckpointDraft[] {
+/** Faces on the outer standing edges of a slab, roof or footing, at half their height, each half as far again as on other faces. */
+export function edgeFaces(mesh: SolidMesh, faces: readonly PlanarFace[], spacing: Spacing): CheckpointDraft[] {
 	const drafts: CheckpointDraft[] = [];
 	for (const face of faces.slice(0, 80)) {
 		if (!face.isOuter || !face.isProven || face.isCurved || Math.abs(face.normal[2]) > STANDING_NZ) continue;
@@ -103,7 +104,7 @@ export function edgeFaces(mesh: SolidMesh, faces: readonly PlanarFace[]): Checkp
 		const height = plan.vMax - plan.vMin;
 		if (height < 0.08 || plan.uMax - plan.uMin < 0.3) continue;
 		const compass = compassOf(face.normal);
-		for (const u of stations(plan.uMin, plan.uMax, 3, 0.5)) {
+		for (const u of stations(plan.uMin, plan.uMax, 1.5 * spacing.faceSpacingM, 0.5)) {
 			const v = (plan.vMin + plan.vMax) / 2;
 			if (!isClear(plan, u, v, Math.min(0.1, height / 4))) continue;
 			const isMiddle = Math.abs(u - (plan.uMin + plan.uMax) / 2) < 0.01;

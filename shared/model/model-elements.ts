@@ -3,6 +3,7 @@ import { checkpointIdMaker } from './checkpoint-id.ts';
 import { markElements } from './element-marks.ts';
 import type { Checkpoint, Element, GridAxis } from './model-schema.ts';
 import type { PlacedElement } from './place-checkpoints.ts';
+import { type PlacingChoice, usualPlacing } from './reading-choices.ts';
 
 /** An element with what its attributes and its shape gave, before marks and ids. */
 export type ElementDraft = {
@@ -16,10 +17,11 @@ export type ElementDraft = {
 	placed: PlacedElement | null;
 };
 
-/** Names the elements and their checkpoints: marks unique in the file (a checkpoint's is its element's, a point, a letter and a number), ids as in checkpoint-id.ts. The checkpoints come one by one and once: there may be half a million. */
+/** Names the elements and their checkpoints: marks unique in the file (a checkpoint's is its element's, a point, a letter and a number), ids as in checkpoint-id.ts. The checkpoints come one by one and once: there may be half a million. `kinds`: those that are wanted. */
 export function nameElements(
 	drafts: readonly ElementDraft[],
 	grid: readonly GridAxis[],
+	kinds: PlacingChoice['kinds'] = usualPlacing.kinds,
 ): { elements: Element[]; checkpoints: Iterable<Checkpoint> } {
 	const marks = markElements(
 		drafts.map((draft) => {
@@ -55,10 +57,14 @@ export function nameElements(
 			boxM: boxM && { min: [...boxM.min], max: [...boxM.max] },
 		};
 	});
-	return { elements, checkpoints: nameCheckpoints(drafts, marks) };
+	return { elements, checkpoints: nameCheckpoints(drafts, marks, kinds) };
 }
 
-function* nameCheckpoints(drafts: readonly ElementDraft[], marks: readonly { mark: string }[]): Generator<Checkpoint> {
+function* nameCheckpoints(
+	drafts: readonly ElementDraft[],
+	marks: readonly { mark: string }[],
+	kinds: PlacingChoice['kinds'],
+): Generator<Checkpoint> {
 	const makeId = checkpointIdMaker();
 	const uses = new Map<string, number>();
 	for (const [at, draft] of drafts.entries()) {
@@ -74,8 +80,11 @@ function* nameCheckpoints(drafts: readonly ElementDraft[], marks: readonly { mar
 		for (const checkpoint of draft.placed.drafts) {
 			const number = (counts.get(checkpoint.code) ?? 0) + 1;
 			counts.set(checkpoint.code, number);
+			// Ids and numbers are given to all: a kind that is not wanted changes nothing of the others.
+			const id = makeId(key, draft.boxM.min, checkpoint.characteristic, checkpoint.place, checkpoint.direction);
+			if (!kinds[checkpoint.characteristic]) continue;
 			yield {
-				id: makeId(key, draft.boxM.min, checkpoint.characteristic, checkpoint.place, checkpoint.direction),
+				id,
 				entityNumber: draft.entityNumber,
 				globalId: draft.globalId,
 				mark: `${mark}.${checkpoint.code}${totals.get(checkpoint.code) === 1 ? '' : number}`,

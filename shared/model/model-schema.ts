@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { findingSchema } from '../fit/fit-schema.ts';
 import { characteristic } from '../tolerance/sheet-schema.ts';
+import { mapScaleReading, readingChoices } from './reading-choices.ts';
 
 /** What reading an IFC file gives. Metres, design frame (the file's own engineering coordinates, Z up), double precision. */
 
@@ -61,6 +62,8 @@ export const mapConversion = z.object({
 	/** Metres per unit of the map coordinates. */
 	mapUnitM: z.number(),
 	crsName: z.string().nullable(),
+	/** Which reading of a contradictory scale a person chose; `scale` is already that. */
+	chosenScale: mapScaleReading.optional(),
 });
 export type MapConversion = z.infer<typeof mapConversion>;
 
@@ -92,5 +95,7 @@ export const modelReading = z.object({
 		}),
 	),
 	findings: z.array(findingSchema),
+	/** What people had said when the file was read; absent in readings of before that could be said. */
+	choices: readingChoices.optional(),
 });
 export type ModelReading = z.infer<typeof modelReading>;

@@ -7,6 +7,7 @@ import { type FacePlan, isClear, nearestClear, placeOn, planOfFace, stations } f
 import { LEVEL_NZ, STANDING_NZ } from './level-checkpoints.ts';
 import { firstHitM, isInsideMesh } from './mesh-ray.ts';
 import type { PlanarFace } from './planar-face.ts';
+import type { Spacing } from './reading-choices.ts';
 import { roundHoles } from './round-hole.ts';
 import type { SolidMesh } from './solid-mesh.ts';
 
@@ -102,10 +103,10 @@ export function wallOpenings(mesh: SolidMesh, faces: readonly PlanarFace[], acro
 }
 
 /**
- * Of a slab, roof or footing: the standing edges of its openings (the middle of each) and of its recesses (each 3 m), and the centres of
+ * Of a slab, roof or footing: the standing edges of its openings (the middle of each) and of its recesses (along them as on the outer edges), and the centres of
  * round openings in plan.
  */
-export function slabOpenings(mesh: SolidMesh, faces: readonly PlanarFace[]): CheckpointDraft[] {
+export function slabOpenings(mesh: SolidMesh, faces: readonly PlanarFace[], spacing: Spacing): CheckpointDraft[] {
 	const drafts: CheckpointDraft[] = [];
 	for (const face of revealsOf(mesh, faces, [0, 0, 1])) {
 		const plan = planOfFace(mesh, face);
@@ -116,7 +117,7 @@ export function slabOpenings(mesh: SolidMesh, faces: readonly PlanarFace[]): Che
 		const isOpening = far !== null && far <= WIDEST_OPENING_M;
 		const side = sideOf(face);
 		const height = plan.vMax - plan.vMin;
-		const along = isOpening ? [middle] : stations(plan.uMin, plan.uMax, 3, 0.5).map((u) => ({ u, v: middle.v }));
+		const along = isOpening ? [middle] : stations(plan.uMin, plan.uMax, 1.5 * spacing.faceSpacingM, 0.5).map((u) => ({ u, v: middle.v }));
 		for (const { u, v } of along) {
 			const at = placeOn(plan, u, v);
 			if (!isClear(plan, u, v, Math.min(0.1, height / 4)) || !isBare(mesh, face, at)) continue;

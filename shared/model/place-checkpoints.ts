@@ -4,6 +4,7 @@ import { compassOf, largestPair, type PrismAxis, prismAxes, sectionOf } from './
 import { edgeFaces, LEVEL_NZ, levelFace, longestEdge, planExtents, STANDING_NZ, spreadOverFace, treadLevels } from './level-checkpoints.ts';
 import { slabOpenings } from './opening-checkpoints.ts';
 import { extentAlong, type PlanarFace, planarFaces } from './planar-face.ts';
+import { type Spacing, usualPlacing } from './reading-choices.ts';
 import { beamCheckpoints, inclinedCheckpoints, wallCheckpoints } from './side-checkpoints.ts';
 import { type SolidMesh, weldMesh } from './solid-mesh.ts';
 import { boltCheckpoints, columnCheckpoints, columnFaces } from './upright-checkpoints.ts';
@@ -33,6 +34,7 @@ function slabCheckpoints(
 	faces: readonly PlanarFace[],
 	kind: 'slab' | 'footing',
 	axes: readonly PrismAxis[],
+	spacing: Spacing,
 ): PlacedElement {
 	const top = levelFace(faces, true);
 	const soffit = levelFace(faces, false);
@@ -47,7 +49,7 @@ function slabCheckpoints(
 	};
 	if (!top && isFlat && Math.abs(pair.first.normal[2]) <= LEVEL_NZ)
 		return inPieces(
-			[...spreadOverFace(mesh, pair.first), ...spreadOverFace(mesh, pair.second)],
+			[...spreadOverFace(mesh, pair.first, spacing), ...spreadOverFace(mesh, pair.second, spacing)],
 			sizesM,
 			kind,
 			'no place on its sides is clear of edges',
@@ -55,14 +57,14 @@ function slabCheckpoints(
 	// Wing walls and the like are written as slabs: their main faces stand, and are far larger than top and soffit.
 	const isStanding =
 		pair !== null && Math.abs(pair.first.normal[2]) < 0.26 && (!top || (kind === 'slab' && pair.second.areaM2 > 2 * top.areaM2));
-	if (isStanding) return { kind: kind === 'slab' ? 'wall' : kind, ...wallCheckpoints(mesh, faces) };
+	if (isStanding) return { kind: kind === 'slab' ? 'wall' : kind, ...wallCheckpoints(mesh, faces, spacing) };
 	const drafts: CheckpointDraft[] = [];
 	if (kind === 'footing') {
 		const axis = upward(axes, (candidate) => candidate.direction[2] > 0.9999);
 		if (axis && extents && extents.longerM <= 4) drafts.push(planDraft(axis.to, 'Its middle, on top', 'H'));
 	}
-	for (const face of [top, soffit]) if (face) drafts.push(...spreadOverFace(mesh, face));
-	drafts.push(...edgeFaces(mesh, faces), ...slabOpenings(mesh, faces));
+	for (const face of [top, soffit]) if (face) drafts.push(...spreadOverFace(mesh, face, spacing));
+	drafts.push(...edgeFaces(mesh, faces, spacing), ...slabOpenings(mesh, faces, spacing));
 	return inPieces(drafts, sizesM, kind, 'it has no flat outer top or soffit');
 }
 
@@ -121,12 +123,12 @@ function plateCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axes: r
 	return { kind: 'plate', drafts, sizesM, why: null };
 }
 
-function stairCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], isRamp: boolean): PlacedElement {
+function stairCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], isRamp: boolean, spacing: Spacing): PlacedElement {
 	const drafts = treadLevels(mesh, faces);
 	for (const face of faces.slice(0, 40)) {
 		if (!face.isOuter || !face.isProven || face.isCurved || face.areaM2 < 0.5) continue;
 		if (Math.abs(face.normal[2]) > LEVEL_NZ) continue;
-		if (face.normal[2] < -0.1 || (face.normal[2] > 0.1 && isRamp)) drafts.push(...spreadOverFace(mesh, face));
+		if (face.normal[2] < -0.1 || (face.normal[2] > 0.1 && isRamp)) drafts.push(...spreadOverFace(mesh, face, spacing));
 	}
 	const box = { length: null, height: mesh.max[2] - mesh.min[2], thickness: null };
 	return inPieces(drafts, box, 'stair', 'it has no flat treads or sides that its shape proves');
@@ -142,6 +144,7 @@ function byShape(
 	mesh: SolidMesh,
 	faces: readonly PlanarFace[],
 	axes: readonly PrismAxis[],
+	spacing: Spacing,
 ): PlacedElement {
 	const is = (...words: string[]): boolean => words.some((word) => className.startsWith(`Ifc${word}`));
 	const saysBolt = /bolt|anker|dowel|d[üu]bel|stud|rod/i.test(name);
@@ -149,33 +152,33 @@ function byShape(
 	const isSlender = longest !== null && longEnough(longest, mesh, faces);
 	if (is('MechanicalFastener', 'Fastener') || (is('DiscreteAccessory', 'BuildingElementProxy') && saysBolt && isSlender))
 		return { kind: 'bolt', ...boltCheckpoints(mesh, faces, longest) };
-	if (is('Stair', 'Ramp')) return stairCheckpoints(mesh, faces, is('Ramp'));
-	if (is('Wall')) return { kind: 'wall', ...wallCheckpoints(mesh, faces) };
+	if (is('Stair', 'Ramp')) return stairCheckpoints(mesh, faces, is('Ramp'), spacing);
+	if (is('Wall')) return { kind: 'wall', ...wallCheckpoints(mesh, faces, spacing) };
 	if (is('Column', 'Pile', 'DeepFoundation', 'CaissonFoundation')) {
 		const axis = upward(axes, isUpright);
 		const kind = is('Column') ? 'column' : 'pile';
-		if (axis) return { kind, ...columnCheckpoints(mesh, faces, axis) };
-		if (longest && isSlender) return { kind: 'member', ...inclinedCheckpoints(mesh, faces, longest) };
-		return columnByFaces(mesh, faces, kind);
+		if (axis) return { kind, ...columnCheckpoints(mesh, faces, axis, spacing) };
+		if (longest && isSlender) return { kind: 'member', ...inclinedCheckpoints(mesh, faces, longest, spacing) };
+		return columnByFaces(mesh, faces, kind, spacing);
 	}
-	if (is('Slab', 'Roof', 'Course', 'Pavement', 'Kerb')) return slabCheckpoints(mesh, faces, 'slab', axes);
-	if (is('Footing')) return slabCheckpoints(mesh, faces, 'footing', axes);
+	if (is('Slab', 'Roof', 'Course', 'Pavement', 'Kerb')) return slabCheckpoints(mesh, faces, 'slab', axes, spacing);
+	if (is('Footing')) return slabCheckpoints(mesh, faces, 'footing', axes, spacing);
 	if (is('Plate', 'DiscreteAccessory') && !(isSlender && is('Plate'))) return plateCheckpoints(mesh, faces, axes);
 	const main = largestPair(faces);
 	const isPlateLike = main !== null && isThin(mesh, faces, axes, main.distanceM);
 	if (longest && isSlender && !isPlateLike) {
 		const slope = Math.abs(longest.direction[2]);
-		if (slope > 0.966) return { kind: 'column', ...columnCheckpoints(mesh, faces, longest) };
-		if (slope < 0.05) return { kind: 'beam', ...beamCheckpoints(mesh, faces, longest) };
-		return { kind: 'member', ...inclinedCheckpoints(mesh, faces, longest) };
+		if (slope > 0.966) return { kind: 'column', ...columnCheckpoints(mesh, faces, longest, spacing) };
+		if (slope < 0.05) return { kind: 'beam', ...beamCheckpoints(mesh, faces, longest, spacing) };
+		return { kind: 'member', ...inclinedCheckpoints(mesh, faces, longest, spacing) };
 	}
 	if (is('Beam', 'Member') && !isPlateLike)
-		return { kind: 'beam', ...beamCheckpoints(mesh, faces, longest && Math.abs(longest.direction[2]) < 0.05 ? longest : null) };
+		return { kind: 'beam', ...beamCheckpoints(mesh, faces, longest && Math.abs(longest.direction[2]) < 0.05 ? longest : null, spacing) };
 	if (!main) return { kind: 'none', drafts: [], sizesM: NO_SIZES, why: 'it has no flat, opposite outer sides' };
 	if (Math.max(mesh.max[0] - mesh.min[0], mesh.max[1] - mesh.min[1], mesh.max[2] - mesh.min[2]) < 1)
 		return plateCheckpoints(mesh, faces, axes);
-	if (Math.abs(main.first.normal[2]) > 0.7) return slabCheckpoints(mesh, faces, 'slab', axes);
-	return { kind: 'wall', ...wallCheckpoints(mesh, faces) };
+	if (Math.abs(main.first.normal[2]) > 0.7) return slabCheckpoints(mesh, faces, 'slab', axes, spacing);
+	return { kind: 'wall', ...wallCheckpoints(mesh, faces, spacing) };
 }
 
 /** A plate whatever its class says: two extents at least eight times the third. */
@@ -187,11 +190,11 @@ function isThin(mesh: SolidMesh, faces: readonly PlanarFace[], axes: readonly Pr
 }
 
 /** A column without two equal ends (cut aslant, brackets, haunches): its flat sides, its top where that is level, and plan at the base where one level face stands for the section. */
-function columnByFaces(mesh: SolidMesh, faces: readonly PlanarFace[], kind: 'column' | 'pile'): PlacedElement {
+function columnByFaces(mesh: SolidMesh, faces: readonly PlanarFace[], kind: 'column' | 'pile', spacing: Spacing): PlacedElement {
 	const top = levelFace(faces, true);
 	const base = levelFace(faces, false);
 	const pair = largestPair(faces, (face) => Math.abs(face.normal[2]) < STANDING_NZ);
-	const sides = columnFaces(mesh, faces, [0, 0, 1]);
+	const sides = columnFaces(mesh, faces, [0, 0, 1], spacing);
 	const drafts: CheckpointDraft[] = [];
 	const isWholeSection = base !== null && base.areaM2 > 0.9 * (mesh.max[0] - mesh.min[0]) * (mesh.max[1] - mesh.min[1]);
 	if (isWholeSection) drafts.push(planDraft(base.centroid, 'At its base', 'A'));
@@ -210,26 +213,19 @@ function columnByFaces(mesh: SolidMesh, faces: readonly PlanarFace[], kind: 'col
  * Places the checkpoints of one element from its triangles (absolute coordinates, metres, design frame). Orientation is proven by the
  * enclosed volume or the support plane; where it is not, the answer has `why` and no checkpoint. Places in the answer are absolute.
  */
-export function placeCheckpoints(element: { class: string; name: string; xyzM: Float64Array; triangles: Uint32Array }): PlacedElement {
-	if (!STRUCTURAL.test(element.class))
-		return { kind: 'none', drafts: [], sizesM: NO_SIZES, why: `parts of class ${element.class} are not checked by points` };
+export function placeCheckpoints(
+	element: { class: string; name: string; xyzM: Float64Array; triangles: Uint32Array },
+	spacing: Spacing = usualPlacing,
+): PlacedElement {
+	if (!STRUCTURAL.test(element.class)) return withoutShape(`parts of class ${element.class} are not checked by points`);
 	if (element.triangles.length > 180_000)
-		return {
-			kind: 'none',
-			drafts: [],
-			sizesM: NO_SIZES,
-			why: `its body has ${element.triangles.length / 3} triangles: too finely shaped for flat faces`,
-		};
+		return withoutShape(`its body has ${element.triangles.length / 3} triangles: too finely shaped for flat faces`);
 	const mesh = weldMesh(element.xyzM, element.triangles);
-	if (!mesh) return { kind: 'none', drafts: [], sizesM: NO_SIZES, why: 'its body has no surface' };
+	if (!mesh) return withoutShape('its body has no surface');
 	const faces = planarFaces(mesh);
-	if (!faces)
-		return {
-			kind: 'none',
-			drafts: [],
-			sizesM: NO_SIZES,
-			why: 'its body is curved or twisted: it has no flat faces to place checkpoints on',
-		};
-	const placed = byShape(element.class, element.name, mesh, faces, prismAxes(mesh, faces));
+	if (!faces) return withoutShape('its body is curved or twisted: it has no flat faces to place checkpoints on');
+	const placed = byShape(element.class, element.name, mesh, faces, prismAxes(mesh, faces), spacing);
 	return { ...placed, drafts: placed.drafts.map((draft) => ({ ...draft, place: add(draft.place, mesh.originM) })) };
 }
+
+const withoutShape = (why: string): PlacedElement => ({ kind: 'none', drafts: [], sizesM: NO_SIZES, why });

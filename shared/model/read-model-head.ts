@@ -10,6 +10,8 @@ import { readModelUnit } from './ifc-units.ts';
 import type { ModelReading } from './model-schema.ts';
 import { openPart21, type Part21File } from './part21.ts';
 import { enumerationOf, numberOf, refOf, refsOf, textOf } from './part21-value.ts';
+import { gridOfPicked } from './picked-axes.ts';
+import { noChoices, type ReadingChoices } from './reading-choices.ts';
 
 /** All of a model file that stands in its attributes: everything but the meshes. */
 export type ModelHead = {
@@ -90,19 +92,22 @@ function fileFindings(file: Part21File, schema: SchemaName): Finding[] {
 }
 
 /** Reads everything but the meshes. Refused: what is no IFC file, is cut, is of an unknown schema, or does not say its length unit. */
-export function readModelHead(bytes: Uint8Array): { ok: true; head: ModelHead } | { ok: false; refusal: HeadRefusal } {
+export function readModelHead(
+	bytes: Uint8Array,
+	choices: Pick<ReadingChoices, 'metresPerUnit' | 'mapScale' | 'axes'> = noChoices,
+): { ok: true; head: ModelHead } | { ok: false; refusal: HeadRefusal } {
 	const opened = openPart21(bytes);
 	if (!opened.ok) return opened;
 	const { file } = opened;
 	const schema = readSchemaName(file);
 	if (!schema.ok) return { ok: false, refusal: { code: 'unknown-schema', message: schema.message } };
-	const unit = readModelUnit(file);
+	const unit = readModelUnit(file, choices.metresPerUnit);
 	if (!unit.ok) return { ok: false, refusal: { code: 'unknown-unit', message: unit.message } };
 	const { metresPerUnit } = unit.unit;
 	const grid = readGrids(file, metresPerUnit, angleUnitRad(file));
 	const placementOf = placementReader(file, grid.readGridPlacement);
 	const structure = readStructure(file, metresPerUnit, placementOf);
-	const map = readMapConversion(file, metresPerUnit);
+	const map = readMapConversion(file, metresPerUnit, choices.mapScale);
 	const findings = [...fileFindings(file, schema.schema), ...unit.unit.findings, ...map.findings];
 	for (const system of readWorldSystems(file, metresPerUnit))
 		findings.push(
@@ -125,7 +130,8 @@ export function readModelHead(bytes: Uint8Array): { ok: true; head: ModelHead } 
 				project: textOf(project?.args[2]) ?? textOf(project?.args[5]) ?? '',
 				mapConversion: map.conversion,
 				storeys: structure.storeys.map(({ name, elevationM }) => ({ name, elevationM })),
-				grid: grid.axes,
+				// A person's axes stand in for a grid that the file does not have.
+				grid: grid.axes.length > 0 ? grid.axes : gridOfPicked(choices.axes),
 			},
 			structure,
 			placementOf,

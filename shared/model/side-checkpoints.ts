@@ -6,9 +6,9 @@ import { type FacePlan, isClear, nearestClear, placeOn, planOfFace, stations } f
 import { LEVEL_NZ, levelFace, STANDING_NZ } from './level-checkpoints.ts';
 import { wallOpenings } from './opening-checkpoints.ts';
 import { extentAlong, type PlanarFace } from './planar-face.ts';
+import type { Spacing } from './reading-choices.ts';
 import type { SolidMesh } from './solid-mesh.ts';
 
-const SPACING_M = 2;
 const EDGE_M = 0.1;
 
 /** "4.3 m from its south end", or "" where the face has one station only. */
@@ -20,16 +20,23 @@ function alongInWords(plan: FacePlan, u: number): string {
 	return `, ${metresInWords(Math.min(fromStart, fromEnd))} from its ${compassOf([plan.u[0] * sense, plan.u[1] * sense]).word.toLowerCase()} end`;
 }
 
-/** Face checkpoints on a grid over a standing side: each about 2 m along, in rows 0.3 m from foot and head, so that none falls in an opening or near an edge; at least the place nearest the middle. */
-function sideGrid(mesh: SolidMesh, face: PlanarFace, name: string | null): CheckpointDraft[] {
+/** Heights of the rows up a side, metres from its foot: 0.3 m from foot and head, and between them where it is high. */
+function rowsUp(heightM: number, spacing: Spacing): number[] {
+	if (heightM < 1) return [heightM / 2];
+	if (spacing.faceSpacingM < 2) return stations(0, heightM, spacing.faceSpacingM, 0.3);
+	return heightM < 1.6 * spacing.faceSpacingM ? [0.3, heightM - 0.3] : [0.3, heightM / 2, heightM - 0.3];
+}
+
+/** Face checkpoints on a grid over a standing side: along it by the spacing, in rows 0.3 m from foot and head, so that none falls in an opening or near an edge; at least the place nearest the middle. */
+function sideGrid(mesh: SolidMesh, face: PlanarFace, name: string | null, spacing: Spacing): CheckpointDraft[] {
 	const plan = planOfFace(mesh, face);
 	const width = plan.uMax - plan.uMin;
 	const height = plan.vMax - plan.vMin;
 	if (width < 0.08 || height < 0.05) return [];
 	const compass = compassOf(face.normal);
 	const margin = Math.min(EDGE_M, width / 4, height / 4);
-	const rows = height < 1 ? [height / 2] : height < 3.2 ? [0.3, height - 0.3] : [0.3, height / 2, height - 0.3];
-	const columns = stations(plan.uMin, plan.uMax, SPACING_M, 0.3);
+	const rows = rowsUp(height, spacing);
+	const columns = stations(plan.uMin, plan.uMax, spacing.faceSpacingM, 0.3);
 	const places: { u: number; v: number }[] = [];
 	for (const u of columns) for (const row of rows) if (isClear(plan, u, plan.vMin + row, margin)) places.push({ u, v: plan.vMin + row });
 	if (places.length === 0) {
@@ -43,8 +50,8 @@ function sideGrid(mesh: SolidMesh, face: PlanarFace, name: string | null): Check
 	});
 }
 
-/** Levels along a long, nearly level face: each about 3 m, at half its width. */
-function levelsAlong(mesh: SolidMesh, face: PlanarFace, along: Vector3): CheckpointDraft[] {
+/** Levels along a long, nearly level face, by the spacing, at half its width. */
+function levelsAlong(mesh: SolidMesh, face: PlanarFace, along: Vector3, spacing: Spacing): CheckpointDraft[] {
 	// Always from west to east, or south to north, whichever of a wall's sides came first.
 	const isWestward = along[0] < -1e-3 || (Math.abs(along[0]) <= 1e-3 && along[1] < 0);
 	const plan = planOfFace(mesh, face, isWestward ? scale(along, -1) : along);
@@ -53,7 +60,8 @@ function levelsAlong(mesh: SolidMesh, face: PlanarFace, along: Vector3): Checkpo
 	const middle = (plan.vMin + plan.vMax) / 2;
 	const margin = Math.min(0.05, width / 4);
 	const places: { u: number; v: number }[] = [];
-	for (const u of stations(plan.uMin, plan.uMax, 3, 0.3)) if (isClear(plan, u, middle, margin)) places.push({ u, v: middle });
+	for (const u of stations(plan.uMin, plan.uMax, spacing.levelSpacingM, 0.3))
+		if (isClear(plan, u, middle, margin)) places.push({ u, v: middle });
 	if (places.length === 0) {
 		const clear = nearestClear(plan, (plan.uMin + plan.uMax) / 2, middle, margin);
 		if (clear) places.push(clear);
@@ -77,7 +85,7 @@ function baseLevel(mesh: SolidMesh, faces: readonly PlanarFace[], along: Vector3
 }
 
 /** Walls: faces on the two large sides on a grid, their free ends, and levels on top. The sides may lean. */
-export function wallCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[]): ShapeAnswer {
+export function wallCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], spacing: Spacing): ShapeAnswer {
 	const pair = largestPair(faces, (face) => Math.abs(face.normal[2]) < 0.9);
 	if (!pair)
 		return {
@@ -87,7 +95,7 @@ export function wallCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[]): 
 		};
 	const plan = planOfFace(mesh, pair.first);
 	const lengthAlong = extentAlong(mesh, plan.u);
-	const drafts = [...sideGrid(mesh, pair.first, null), ...sideGrid(mesh, pair.second, null)];
+	const drafts = [...sideGrid(mesh, pair.first, null, spacing), ...sideGrid(mesh, pair.second, null, spacing)];
 	for (const face of faces.slice(0, 60)) {
 		if (!face.isOuter || !face.isProven || face.isCurved || Math.abs(face.normal[2]) > STANDING_NZ) continue;
 		if (Math.abs(dot(face.normal, plan.u)) < 0.9) continue;
@@ -100,7 +108,7 @@ export function wallCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[]): 
 		drafts.push(faceDraft(face, place, `${compass.word} end, ${metresInWords(place[2] - mesh.min[2])} above its base`, compass.code));
 	}
 	const top = levelFace(faces, true);
-	if (top) drafts.push(...levelsAlong(mesh, top, plan.u));
+	if (top) drafts.push(...levelsAlong(mesh, top, plan.u, spacing));
 	drafts.push(...baseLevel(mesh, faces, plan.u), ...wallOpenings(mesh, faces, pair.first.normal, plan));
 	return {
 		drafts,
@@ -129,17 +137,19 @@ function sizesOfBeam(mesh: SolidMesh, faces: readonly PlanarFace[], axis: PrismA
 }
 
 /** Beams that lie nearly level: faces on the flat sides, levels on top and soffit; where no side is flat enough (steel profiles), plan at both ends of the axis. */
-export function beamCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axis: PrismAxis | null): ShapeAnswer {
+export function beamCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axis: PrismAxis | null, spacing: Spacing): ShapeAnswer {
 	const pair = largestPair(
 		faces,
 		(face) => Math.abs(face.normal[2]) < STANDING_NZ && (!axis || Math.abs(dot(face.normal, axis.direction)) < 0.1),
 	);
 	const along = axis?.direction ?? (pair ? planOfFace(mesh, pair.first).u : null);
-	const drafts: CheckpointDraft[] = pair ? [...sideGrid(mesh, pair.first, null), ...sideGrid(mesh, pair.second, null)] : [];
+	const drafts: CheckpointDraft[] = pair
+		? [...sideGrid(mesh, pair.first, null, spacing), ...sideGrid(mesh, pair.second, null, spacing)]
+		: [];
 	if (along) {
 		for (const isUp of [true, false]) {
 			const face = levelFace(faces, isUp);
-			if (face) drafts.push(...levelsAlong(mesh, face, along));
+			if (face) drafts.push(...levelsAlong(mesh, face, along, spacing));
 		}
 	}
 	if (axis && !drafts.some((draft) => draft.characteristic === 'face')) drafts.push(...endPlans(axis));
@@ -157,7 +167,7 @@ function endPlans(axis: PrismAxis): CheckpointDraft[] {
 }
 
 /** Members that are neither upright nor level (braces, raking beams): faces along the own normal at stations on every flat side, and plan at the ends of the axis. */
-export function inclinedCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axis: PrismAxis): ShapeAnswer {
+export function inclinedCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[], axis: PrismAxis, spacing: Spacing): ShapeAnswer {
 	const drafts: CheckpointDraft[] = endPlans(axis);
 	for (const face of faces.slice(0, 40)) {
 		if (!face.isOuter || !face.isProven || face.isCurved || Math.abs(dot(face.normal, axis.direction)) > 0.0175) continue;
@@ -167,7 +177,7 @@ export function inclinedCheckpoints(mesh: SolidMesh, faces: readonly PlanarFace[
 		const isUp = face.normal[2] > 0.1;
 		const isDown = face.normal[2] < -0.1;
 		const compass = compassOf(face.normal);
-		for (const u of stations(plan.uMin, plan.uMax, SPACING_M, 0.3)) {
+		for (const u of stations(plan.uMin, plan.uMax, spacing.faceSpacingM, 0.3)) {
 			const v = (plan.vMin + plan.vMax) / 2;
 			if (!isClear(plan, u, v, Math.min(EDGE_M, width / 4))) continue;
 			const far = u - plan.uMin;

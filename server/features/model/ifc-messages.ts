@@ -1,4 +1,5 @@
 import type { Checkpoint, Element, ModelReading } from '#shared/model/model-schema.ts';
+import type { ReadingChoices } from '#shared/model/reading-choices.ts';
 
 /** What the reader's child process and its parent say to each other. */
 
@@ -23,6 +24,7 @@ export type ReadIfcRequest = {
 	atPath: string;
 	/** Elements whose geometry is not asked for, with the reason. */
 	leaveOut: { entityNumber: number; why: string }[];
+	choices: ReadingChoices;
 };
 
 export type ReadIfcReply =

@@ -8,6 +8,7 @@ import type { ModelReading } from '#shared/model/model-schema.ts';
 import { refOf, textOf } from '#shared/model/part21-value.ts';
 import { type PlacedElement, placeCheckpoints } from '#shared/model/place-checkpoints.ts';
 import type { ModelHead } from '#shared/model/read-model-head.ts';
+import { type Spacing, usualPlacing } from '#shared/model/reading-choices.ts';
 import { dropBuriedPlateFaces } from './buried-plate-faces.ts';
 import type { pictureBuilder } from './glb-picture.ts';
 import type { IfcGeometry, RawMesh } from './ifc-geometry.ts';
@@ -63,6 +64,7 @@ export function readElements(
 	picture: ReturnType<typeof pictureBuilder>,
 	leaveOut: ReadonlyMap<number, string>,
 	before: (entityNumber: number, done: number, of: number) => void,
+	spacing: Spacing = usualPlacing,
 ): ElementsRead {
 	const { metresPerUnit } = head.reading;
 	const drafts: ElementDraft[] = [];
@@ -141,7 +143,7 @@ export function readElements(
 			);
 			return;
 		}
-		const placed = placeCheckpoints({ class: className, name, xyzM: mesh.xyzM, triangles: mesh.triangles });
+		const placed = placeCheckpoints({ class: className, name, xyzM: mesh.xyzM, triangles: mesh.triangles }, spacing);
 		draft.placed = isMany ? thinned(placed) : placed;
 		if (placed.drafts.length === 0) skip(placed.why ?? 'its shape offers no place for a checkpoint');
 	});

@@ -5,6 +5,7 @@ import { createRequire } from 'node:module';
 import { dirname, join } from 'node:path';
 import { fileURLToPath, pathToFileURL } from 'node:url';
 import type { Checkpoint, Element, ModelReading } from '#shared/model/model-schema.ts';
+import { noChoices, type ReadingChoices } from '#shared/model/reading-choices.ts';
 import type { ReadIfcCode, ReadIfcReply, ReadIfcRequest } from './ifc-messages.ts';
 
 export type IfcProgress = { doing: string; done: number; of: number };
@@ -18,6 +19,8 @@ export type ReadIfcOptions = {
 	memoryMb: number;
 	/** Processor time for one element (wall time where the system does not tell); the one it hangs on is left out and the reading begun again. */
 	elementTimeMs?: number;
+	/** What people said before the reading; nothing where absent. */
+	choices?: ReadingChoices;
 	signal?: AbortSignal | undefined;
 	onProgress?: ((progress: IfcProgress) => void) | undefined;
 };
@@ -187,7 +190,13 @@ const MOST_BREAKS = 8;
  * is left out (it stands in `skipped` with the reason) and the file is read again without it. Never throws for what is in the file.
  */
 export async function readIfcInChild(options: ReadIfcOptions): Promise<ReadIfcOutcome> {
-	const request: ReadIfcRequest = { path: options.path, glbPath: options.glbPath, atPath: `${options.glbPath}.at`, leaveOut: [] };
+	const request: ReadIfcRequest = {
+		path: options.path,
+		glbPath: options.glbPath,
+		atPath: `${options.glbPath}.at`,
+		leaveOut: [],
+		choices: options.choices ?? noChoices,
+	};
 	const endsAt = performance.now() + options.timeMs;
 	let hangs = 0;
 	let breaks = 0;

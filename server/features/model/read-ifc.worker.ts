@@ -39,7 +39,7 @@ async function read(request: ReadIfcRequest): Promise<void> {
 			message: 'The file is larger than 2 GB. Split the model by building or discipline.',
 		});
 	const bytes = new Uint8Array(readFileSync(request.path));
-	const opened = readModelHead(bytes);
+	const opened = readModelHead(bytes, request.choices);
 	if (!opened.ok) return send({ kind: 'refused', ...opened.refusal });
 	const { head } = opened;
 	lastTold = 0;
@@ -74,13 +74,14 @@ async function read(request: ReadIfcRequest): Promise<void> {
 			writeSync(at, currentBytes, 0, 8, 0);
 			tell('Working out shapes', done, of);
 		},
+		request.choices.placing,
 	);
 	closeSync(at);
 	lastTold = 0;
 	tell('Drawing the picture', 0, 1);
 	// First the picture, whose memory is then free, then the names.
 	const hasPicture = await picture.write(request.glbPath);
-	const named = nameElements(elements.drafts, head.reading.grid);
+	const named = nameElements(elements.drafts, head.reading.grid, request.choices.placing.kinds);
 	for (let from = 0; from < named.elements.length; from += PIECE)
 		await send({ kind: 'elements', elements: named.elements.slice(from, from + PIECE) });
 	let piece: Checkpoint[] = [];
@@ -92,7 +93,12 @@ async function read(request: ReadIfcRequest): Promise<void> {
 	if (piece.length > 0) await send({ kind: 'checkpoints', checkpoints: piece });
 	await send({
 		kind: 'result',
-		reading: { ...head.reading, skipped: elements.skipped, findings: [...head.findings, ...elements.findings] },
+		reading: {
+			...head.reading,
+			skipped: elements.skipped,
+			findings: [...head.findings, ...elements.findings],
+			choices: request.choices,
+		},
 		glbPath: request.glbPath,
 		hasPicture,
 	});
