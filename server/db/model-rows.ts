@@ -8,6 +8,7 @@ export function elementOf(row: typeof elements.$inferSelect): Element & Pick<Sto
 		elementId: row.id,
 		entityNumber: row.entityNumber,
 		globalId: row.globalId,
+		...(row.fileGlobalId !== null && { fileGlobalId: row.fileGlobalId }),
 		class: row.class,
 		name: row.name,
 		tag: row.tag,

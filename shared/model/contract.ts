@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
+import { choicesContract } from './choices-contract.ts';
 import { newMark } from './mark-rules.ts';
 import { checkpointSchema, elementSchema, modelReading } from './model-schema.ts';
 import { requirement } from './requirement.ts';
@@ -58,6 +59,7 @@ export const revisionDetail = revisionSummary.extend({
 		grid: true,
 		skipped: true,
 		findings: true,
+		choices: true,
 	}),
 });
 export type RevisionDetail = z.infer<typeof revisionDetail>;
@@ -66,6 +68,7 @@ const revisionInput = siteInput.extend({ revisionId: z.uuid() });
 const finiteVector = z.tuple([z.number(), z.number(), z.number()]);
 
 export const modelContract = {
+	...choicesContract,
 	list: base.meta({ permission: 'model.see' }).input(siteInput).output(z.array(modelSummary)),
 	/** An uploaded IFC file becomes the next revision of a model, or the first of a new one; a job reads it. */
 	read: base

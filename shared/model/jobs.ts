@@ -9,4 +9,12 @@ export const modelJobs = {
 			revisionId: z.uuid(),
 		}),
 	},
+	previewPlacing: {
+		name: 'model.preview-placing',
+		input: z.object({
+			jobId: z.uuid(),
+			siteId: z.uuid(),
+			previewId: z.uuid(),
+		}),
+	},
 };

@@ -1,14 +1,15 @@
 import type { Vector3 } from '../geometry/frame.ts';
+import { type CheckpointDensity, defaultCheckpointDensity } from '../site/site-settings.ts';
 import { checkpointIdMaker } from './checkpoint-id.ts';
 import { markElements } from './element-marks.ts';
 import type { Checkpoint, Element, GridAxis } from './model-schema.ts';
 import type { PlacedElement } from './place-checkpoints.ts';
-import { type PlacingChoice, usualPlacing } from './reading-choices.ts';
 
 /** An element with what its attributes and its shape gave, before marks and ids. */
 export type ElementDraft = {
 	entityNumber: number;
 	globalId: string;
+	fileGlobalId?: string;
 	class: string;
 	name: string;
 	tag: string;
@@ -21,7 +22,7 @@ export type ElementDraft = {
 export function nameElements(
 	drafts: readonly ElementDraft[],
 	grid: readonly GridAxis[],
-	kinds: PlacingChoice['kinds'] = usualPlacing.kinds,
+	kinds: CheckpointDensity['kinds'] = defaultCheckpointDensity.kinds,
 ): { elements: Element[]; checkpoints: Iterable<Checkpoint> } {
 	const marks = markElements(
 		drafts.map((draft) => {
@@ -43,10 +44,11 @@ export function nameElements(
 	);
 	const elements = drafts.map((draft, at): Element => {
 		const { mark, title } = marks[at]!;
-		const { entityNumber, globalId, class: className, name, tag, storey, boxM, placed } = draft;
+		const { entityNumber, globalId, fileGlobalId, class: className, name, tag, storey, boxM, placed } = draft;
 		return {
 			entityNumber,
 			globalId,
+			...(fileGlobalId !== undefined && { fileGlobalId }),
 			class: className,
 			name,
 			tag,
@@ -63,7 +65,7 @@ export function nameElements(
 function* nameCheckpoints(
 	drafts: readonly ElementDraft[],
 	marks: readonly { mark: string }[],
-	kinds: PlacingChoice['kinds'],
+	kinds: CheckpointDensity['kinds'],
 ): Generator<Checkpoint> {
 	const makeId = checkpointIdMaker();
 	const uses = new Map<string, number>();

@@ -10,7 +10,10 @@ const vector = z.tuple([z.number(), z.number(), z.number()]);
 export const elementSchema = z.object({
 	/** Entity number in the file: the inner key within one revision (GlobalIds may repeat or be missing). */
 	entityNumber: z.number().int(),
+	/** Known by it across revisions. */
 	globalId: z.string(),
+	/** The file's own, where the element is known under another. */
+	fileGlobalId: z.string().optional(),
 	/** IFC class as written in the schema: IfcColumn. A hint; shape decides. */
 	class: z.string(),
 	name: z.string(),

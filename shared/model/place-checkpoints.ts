@@ -1,10 +1,11 @@
+import { defaultCheckpointDensity } from '../site/site-settings.ts';
 import { add, dot } from './affine.ts';
 import { type CheckpointDraft, faceDraft, levelDraft, planDraft, type ShapeAnswer } from './checkpoint-draft.ts';
 import { compassOf, largestPair, type PrismAxis, prismAxes, sectionOf } from './element-shape.ts';
 import { edgeFaces, LEVEL_NZ, levelFace, longestEdge, planExtents, STANDING_NZ, spreadOverFace, treadLevels } from './level-checkpoints.ts';
 import { slabOpenings } from './opening-checkpoints.ts';
 import { extentAlong, type PlanarFace, planarFaces } from './planar-face.ts';
-import { type Spacing, usualPlacing } from './reading-choices.ts';
+import type { Spacing } from './reading-choices.ts';
 import { beamCheckpoints, inclinedCheckpoints, wallCheckpoints } from './side-checkpoints.ts';
 import { type SolidMesh, weldMesh } from './solid-mesh.ts';
 import { boltCheckpoints, columnCheckpoints, columnFaces } from './upright-checkpoints.ts';
@@ -215,7 +216,7 @@ function columnByFaces(mesh: SolidMesh, faces: readonly PlanarFace[], kind: 'col
  */
 export function placeCheckpoints(
 	element: { class: string; name: string; xyzM: Float64Array; triangles: Uint32Array },
-	spacing: Spacing = usualPlacing,
+	spacing: Spacing = defaultCheckpointDensity,
 ): PlacedElement {
 	if (!STRUCTURAL.test(element.class)) return withoutShape(`parts of class ${element.class} are not checked by points`);
 	if (element.triangles.length > 180_000)

@@ -32,7 +32,7 @@ const spacing = z.number().min(0.25, 'At least 0.25 m.').max(20, 'At most 20 m.'
 
 /** How closely checkpoints are placed on a new revision, and which kinds at all. */
 export const checkpointDensity = z.strictObject({
-	/** The widest step between neighbours, metres, on faces (walls, sides of beams, edges) and on levels (slabs, footings). */
+	/** The widest step between neighbours, metres, on faces (walls, columns, sides of beams; edges of slabs at half as much again) and on levels (slabs, footings, tops of walls). */
 	faceSpacingM: spacing,
 	levelSpacingM: spacing,
 	kinds: z
@@ -63,9 +63,9 @@ export type SiteSettings = z.infer<typeof siteSettings>;
 /** Monday to Friday, 07:00 to 17:00, no holidays (common practice; each site sets its own). */
 export const defaultCalendar: WorkingCalendar = { workingDays: [1, 2, 3, 4, 5], startsAt: '07:00', endsAt: '17:00', holidays: [] };
 
-/** Three metres between neighbours, every kind (own). */
+/** Two metres between neighbours on faces, three on levels, every kind (own). */
 export const defaultCheckpointDensity: CheckpointDensity = {
-	faceSpacingM: 3,
+	faceSpacingM: 2,
 	levelSpacingM: 3,
 	kinds: { plan: true, face: true, level: true },
 };

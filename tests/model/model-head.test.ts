@@ -59,6 +59,45 @@ describe('the length unit', () => {
 	});
 });
 
+describe('a chosen reading', () => {
+	const chosen = (data: string, metresPerUnit: number | null, mapScale: 'as-written' | 'by-units' | null = null) => {
+		const opened = readModelHead(file(data), { metresPerUnit, mapScale, axes: [] });
+		if (!opened.ok) throw new Error(opened.refusal.message);
+		return opened.head;
+	};
+	const two = `${project('#9,#10')}${metre}#10=IFCSIUNIT(*,.LENGTHUNIT.,.MILLI.,.METRE.);`;
+	it('of the unit holds where the file names it among others, or names none, and nowhere else', () => {
+		expect(chosen(two, 0.001).reading.metresPerUnit).toBe(0.001);
+		expect(chosen(two, 0.3048).reading.metresPerUnit).toBe(1);
+		expect(chosen(`${project('#9')}${metre}`, 0.001).reading.metresPerUnit).toBe(1);
+		const none = chosen("#1=IFCPROJECT('0',$,'Site',$,$,$,$,$,$);", 0.3048);
+		expect(none.reading).toMatchObject({ metresPerUnit: 0.3048, unit: 'foot' });
+		expect(none.findings.map(({ code }) => code)).toEqual(['unit-chosen']);
+	});
+	it('of the scale holds where that contradicts the units, and nowhere else', () => {
+		const map = (scale: string): string =>
+			`${project('#9')}${millimetre}#20=IFCMAPCONVERSION(#21,#22,458657.3,5438232.25,113.7,0.27,0.96,${scale});#22=IFCPROJECTEDCRS('EPSG:25832',$,$,$,$,$,#23);#23=IFCSIUNIT(*,.LENGTHUNIT.,$,.METRE.);`;
+		expect(chosen(map('$'), null, 'by-units').reading.mapConversion).toMatchObject({ scale: 0.001, chosenScale: 'by-units' });
+		expect(chosen(map('$'), null, 'as-written').reading.mapConversion).toMatchObject({ scale: 1, chosenScale: 'as-written' });
+		expect(chosen(map('0.0009996'), null, 'by-units').reading.mapConversion).toMatchObject({ scale: 0.0009996 });
+		expect(chosen(map('0.0009996'), null, 'by-units').reading.mapConversion).not.toHaveProperty('chosenScale');
+	});
+	it.each([
+		['0.00099962', '0.99962', '-380.0 ppm', '19.0 mm'],
+		['0.0010000002', '1.0000002', '0.2 ppm', '0.0 mm'],
+		['0.0010001234567', '1.0001235', '123.5 ppm', '6.2 mm'],
+	])('of a scale factor %s is told as %s', (scale, factor, ppm, mm) => {
+		const { findings } = chosen(
+			`${project('#9')}${millimetre}#20=IFCMAPCONVERSION(#21,#22,458657.3,5438232.25,113.7,1.,0.,${scale});#22=IFCPROJECTEDCRS('EPSG:25832',$,$,$,$,$,#23);#23=IFCSIUNIT(*,.LENGTHUNIT.,$,.METRE.);`,
+			null,
+		);
+		const { message } = findings.find(({ code }) => code === 'map-scale-factor')!;
+		expect(message).toContain(`a scale factor of ${factor} beyond`);
+		expect(message).toContain(`(${ppm})`);
+		expect(message).toContain(`${mm} at 50 m`);
+	});
+});
+
 describe('the map conversion', () => {
 	const map = (scale: string, mapUnit: string, model = millimetre): string =>
 		`${project('#9')}${model}#20=IFCMAPCONVERSION(#21,#22,458657.3,5438232.25,113.7,0.27,0.96,${scale});#22=IFCPROJECTEDCRS('EPSG:25832',$,$,$,$,$,${mapUnit});#23=IFCSIUNIT(*,.LENGTHUNIT.,$,.METRE.);`;

@@ -244,3 +244,30 @@ describe('bolts and plates', () => {
 		expect(placed.sizesM.thickness).toBeCloseTo(0.02, 9);
 	});
 });
+
+describe('the spacing', () => {
+	it('is the widest step between neighbours of a row, and what is usual is not changed by saying it', () => {
+		fc.assert(
+			fc.property(size(3, 20), size(2.4, 6), size(0.3, 6), (length, height, spacingM) => {
+				const wall = { class: 'IfcWall', name: '', ...box(length, 0.3, height) };
+				expect(placeCheckpoints(wall, { faceSpacingM: 2, levelSpacingM: 3 })).toEqual(placeCheckpoints(wall));
+				const { drafts } = placeCheckpoints(wall, { faceSpacingM: spacingM, levelSpacingM: spacingM });
+				const widest = (places: number[]): number =>
+					Math.max(
+						0,
+						...[...new Set(places.map((each) => each.toFixed(6)))]
+							.map(Number)
+							.sort((a, b) => a - b)
+							.map((each, k, all) => (k === 0 ? 0 : each - all[k - 1]!)),
+					);
+				const south = drafts.filter(({ direction }) => direction !== null && direction[1] < -0.99);
+				const tops = drafts.filter(({ code }) => code === 'T');
+				// At most 60 a row, whatever is wished.
+				const allowedM = Math.max(spacingM, length / 59) + 1e-6;
+				expect(widest(south.map(({ place: at }) => at[0]))).toBeLessThanOrEqual(allowedM);
+				expect(widest(tops.map(({ place: at }) => at[0]))).toBeLessThanOrEqual(allowedM);
+			}),
+			{ numRuns: 60 },
+		);
+	});
+});

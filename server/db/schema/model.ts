@@ -15,8 +15,10 @@ import {
 	unique,
 	uuid,
 } from 'drizzle-orm/pg-core';
+import type { PlacingPreview } from '../../../shared/model/choices-contract.ts';
 import type { RevisionDetail } from '../../../shared/model/contract.ts';
 import { requirements } from '../../../shared/model/requirement.ts';
+import type { CheckpointDensity } from '../../../shared/site/site-settings.ts';
 import { characteristics } from '../../../shared/tolerance/sheet-schema.ts';
 import { users } from './account.ts';
 import { at, id, metres, sha256, siteId } from './columns.ts';
@@ -88,6 +90,8 @@ export const elements = pgTable(
 		revisionId: uuid('revision_id').notNull(),
 		entityNumber: integer('entity_number').notNull(),
 		globalId: text('global_id').notNull(),
+		/** The file's own, where the element is known under another. */
+		fileGlobalId: text('file_global_id'),
 		class: text('class').notNull(),
 		name: text('name').notNull(),
 		tag: text('tag').notNull(),
@@ -224,3 +228,83 @@ export const addedCheckpoints = pgTable(
 		check('added_checkpoints_box_whole', sql`cardinality(${t.boxM}) = 6`),
 	],
 );
+
+export const readingSubjectEnum = pgEnum('reading_subject', ['unit', 'map-scale']);
+
+/** Which of two readings of a file's unit or map scale a person holds for right; later readings of the model go by it. */
+export const readingChosen = pgTable(
+	'reading_chosen',
+	{
+		siteId: siteId(),
+		modelId: uuid('model_id').notNull(),
+		subject: readingSubjectEnum('subject').notNull(),
+		/** Metres per unit, or which reading of the scale. */
+		choice: text('choice').notNull(),
+		reason: text('reason').notNull(),
+		chosenBy: uuid('chosen_by')
+			.notNull()
+			.references(() => users.id),
+		chosenAt: at('chosen_at').notNull(),
+	},
+	(t) => [
+		primaryKey({ columns: [t.modelId, t.subject] }),
+		foreignKey({ columns: [t.siteId, t.modelId], foreignColumns: [models.siteId, models.id] }),
+	],
+);
+
+/** Axes named through two picked points, of a building; where a model has none, of that model. Plan, design frame. */
+export const pickedAxes = pgTable(
+	'picked_axes',
+	{
+		id: id(),
+		siteId: siteId(),
+		modelId: uuid('model_id').notNull(),
+		buildingId: uuid('building_id'),
+		tag: text('tag').notNull(),
+		fromXM: metres('from_x_m').notNull(),
+		fromYM: metres('from_y_m').notNull(),
+		toXM: metres('to_x_m').notNull(),
+		toYM: metres('to_y_m').notNull(),
+		pickedBy: uuid('picked_by')
+			.notNull()
+			.references(() => users.id),
+		pickedAt: at('picked_at').notNull(),
+	},
+	(t) => [
+		foreignKey({ columns: [t.siteId, t.modelId], foreignColumns: [models.siteId, models.id] }),
+		foreignKey({ columns: [t.siteId, t.buildingId], foreignColumns: [buildings.siteId, buildings.id] }),
+		index('picked_axes_site').on(t.siteId),
+		check('picked_axes_tag', sql`char_length(${t.tag}) between 1 and 4`),
+	],
+);
+
+/** GlobalIds that a newer file gives to elements known under another: accepted by a person, so that names, pours and choices keep. */
+export const knownElements = pgTable(
+	'known_elements',
+	{
+		siteId: siteId(),
+		modelId: uuid('model_id').notNull(),
+		globalId: text('global_id').notNull(),
+		knownAs: text('known_as').notNull(),
+		acceptedBy: uuid('accepted_by')
+			.notNull()
+			.references(() => users.id),
+		acceptedAt: at('accepted_at').notNull(),
+	},
+	(t) => [
+		primaryKey({ columns: [t.modelId, t.globalId] }),
+		foreignKey({ columns: [t.siteId, t.modelId], foreignColumns: [models.siteId, models.id] }),
+	],
+);
+
+/** What another density would place on the site's newest revisions: the last one that was asked for. */
+export const placingPreviews = pgTable('placing_previews', {
+	id: id(),
+	siteId: siteId().references(() => sites.id),
+	askedBy: uuid('asked_by')
+		.notNull()
+		.references(() => users.id),
+	askedAt: at('asked_at').notNull(),
+	placing: jsonb('placing').$type<CheckpointDensity>().notNull(),
+	counted: jsonb('counted').$type<PlacingPreview['models']>(),
+});

@@ -1,15 +1,15 @@
 import type { Finding } from '#shared/fit/fit-schema.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
 import { differenceOf, scaleShift } from '#shared/model/affine.ts';
-import { counted, modelFinding } from '#shared/model/ifc-finding.ts';
 import type { ReadPlacement } from '#shared/model/ifc-placement.ts';
 import type { ElementDraft } from '#shared/model/model-elements.ts';
 import type { ModelReading } from '#shared/model/model-schema.ts';
 import { refOf, textOf } from '#shared/model/part21-value.ts';
 import { type PlacedElement, placeCheckpoints } from '#shared/model/place-checkpoints.ts';
 import type { ModelHead } from '#shared/model/read-model-head.ts';
-import { type Spacing, usualPlacing } from '#shared/model/reading-choices.ts';
+import { noChoices, type ReadingChoices } from '#shared/model/reading-choices.ts';
 import { dropBuriedPlateFaces } from './buried-plate-faces.ts';
+import { elementFindings, manyElements } from './element-findings.ts';
 import type { pictureBuilder } from './glb-picture.ts';
 import type { IfcGeometry, RawMesh } from './ifc-geometry.ts';
 
@@ -54,6 +54,12 @@ function thinned(placed: PlacedElement): PlacedElement {
 	return { ...placed, drafts: [...bySort.values()].map((group) => group[group.length >> 1]!) };
 }
 
+/** Only where the file holds the new GlobalId and no longer the one that it is known under: else that would stand for two. */
+function stillKnownAs(knownAs: ReadingChoices['knownAs'], inFile: readonly string[]): ReadonlyMap<string, string> {
+	const there = new Set(inFile);
+	return new Map(Object.entries(knownAs).filter(([own, known]) => there.has(own) && !there.has(known)));
+}
+
 /**
  * Goes through all elements. `before` is called with each entity number before the engine is asked for it (it may hang), 0 after;
  * `leaveOut`: elements not to ask for, and why. Throws BrokenEngine where the engine can no longer be used.
@@ -64,7 +70,7 @@ export function readElements(
 	picture: ReturnType<typeof pictureBuilder>,
 	leaveOut: ReadonlyMap<number, string>,
 	before: (entityNumber: number, done: number, of: number) => void,
-	spacing: Spacing = usualPlacing,
+	choices: Pick<ReadingChoices, 'placing' | 'knownAs'> = noChoices,
 ): ElementsRead {
 	const { metresPerUnit } = head.reading;
 	const drafts: ElementDraft[] = [];
@@ -74,6 +80,10 @@ export function readElements(
 	const byGlobalId = new Map<string, number>();
 	const of = geometry.elements.length;
 	const isMany = of > MANY_ELEMENTS;
+	const knownAs = stillKnownAs(
+		choices.knownAs,
+		geometry.elements.map(({ entityNumber }) => textOf(head.file.entity(entityNumber)?.args[0]) ?? ''),
+	);
 
 	const linearContradiction = (placementNumber: number, placement: ReadPlacement): number => {
 		if (placement.linearPlacement === null) return 0;
@@ -84,12 +94,14 @@ export function readElements(
 	geometry.elements.forEach(({ entityNumber, class: className }, done) => {
 		const entity = head.file.entity(entityNumber);
 		if (!entity) return;
-		const globalId = textOf(entity.args[0]) ?? '';
+		const fileGlobalId = textOf(entity.args[0]) ?? '';
+		const globalId = knownAs.get(fileGlobalId) ?? fileGlobalId;
 		byGlobalId.set(globalId, (byGlobalId.get(globalId) ?? 0) + 1);
 		const name = textOf(entity.args[2]) ?? '';
 		const draft: ElementDraft = {
 			entityNumber,
 			globalId,
+			...(globalId !== fileGlobalId && { fileGlobalId }),
 			class: className,
 			name,
 			tag: textOf(entity.args[7]) ?? '',
@@ -143,7 +155,7 @@ export function readElements(
 			);
 			return;
 		}
-		const placed = placeCheckpoints({ class: className, name, xyzM: mesh.xyzM, triangles: mesh.triangles }, spacing);
+		const placed = placeCheckpoints({ class: className, name, xyzM: mesh.xyzM, triangles: mesh.triangles }, choices.placing);
 		draft.placed = isMany ? thinned(placed) : placed;
 		if (placed.drafts.length === 0) skip(placed.why ?? 'its shape offers no place for a checkpoint');
 	});
@@ -165,70 +177,4 @@ export function readElements(
 		skipped,
 		findings: [...elementFindings(head, byGlobalId, withoutBody, contradicting, of), ...(isMany ? [manyElements(of)] : [])],
 	};
-}
-
-function manyElements(of: number): Finding {
-	return modelFinding(
-		'many-elements',
-		`The model has ${of} elements: one checkpoint of each sort was placed on each. Split the model to get them closer.`,
-		{ elements: of },
-	);
-}
-
-function elementFindings(
-	head: ModelHead,
-	byGlobalId: ReadonlyMap<string, number>,
-	withoutBody: readonly string[],
-	contradicting: readonly string[],
-	of: number,
-): Finding[] {
-	const findings: Finding[] = [];
-	const repeated = [...byGlobalId].filter(([globalId, count]) => globalId !== '' && count > 1);
-	if (repeated.length > 0)
-		findings.push(
-			modelFinding(
-				'repeated-global-id',
-				`${counted(repeated.length, 'GlobalId stands', 'GlobalIds stand')} for more than one element (${repeated[0]![0]} for ${repeated[0]![1]}). Such elements are told apart by their entity numbers, which the next revision may not keep.`,
-				{ count: repeated.length },
-				repeated.map(([globalId]) => globalId),
-			),
-		);
-	const missing = byGlobalId.get('') ?? 0;
-	if (missing > 0)
-		findings.push(
-			modelFinding(
-				'missing-global-id',
-				`${counted(missing, 'element has', 'elements have')} no GlobalId. Such elements are known by their entity numbers, which the next revision may not keep.`,
-				{ count: missing },
-			),
-		);
-	if (withoutBody.length > 0)
-		findings.push(
-			modelFinding(
-				'no-geometry',
-				`${withoutBody.length} of ${counted(of, 'element', 'elements')} ${withoutBody.length === 1 ? 'has' : 'have'} no geometry that can be used.`,
-				{ count: withoutBody.length, of },
-				withoutBody,
-			),
-		);
-	if (contradicting.length > 0)
-		findings.push(
-			modelFinding(
-				'linear-placement-contradiction',
-				`${counted(contradicting.length, 'element stands', 'elements stand')} along an alignment, and the position written beside that says another place. The picture follows the alignment; no checkpoints are placed there.`,
-				{ count: contradicting.length },
-				contradicting,
-			),
-		);
-	if (head.structure.cycles.size > 0)
-		findings.push(
-			modelFinding(
-				'structure-cycle',
-				`The spatial structure contains itself at ${[...head.structure.cycles]
-					.slice(0, 5)
-					.map((number) => `#${number}`)
-					.join(', ')}; elements there have no storey.`,
-			),
-		);
-	return findings;
 }

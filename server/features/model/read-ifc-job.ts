@@ -10,11 +10,11 @@ import { endOfAborted } from '../../platform/end-of-aborted.ts';
 import { runnerOf } from '../../platform/job-runner.ts';
 import type { JobContext, JobEnd, Platform } from '../../platform/platform.ts';
 import { readIfcInChild } from './read-ifc-in-child.ts';
+import { choicesFor } from './said-of-reading.ts';
 import { storeReading } from './store-reading.ts';
 
 /** What one file may cost; a file that asks for more is refused with that reason, and the server lives. */
-const timeMs = 300_000;
-const memoryMb = 1536;
+export const readingLimits = { timeMs: 300_000, memoryMb: 1536 } as const;
 
 const noElements = 'The file can be read, but holds no building elements. Export the model with its elements, then upload it again.';
 
@@ -39,7 +39,8 @@ async function readRevision(input: RevisionInput & { jobId: string }, { platform
 	const glbPath = join(platform.uploadFolder, `picture-${input.jobId}.glb`);
 	try {
 		const path = platform.files.pathOf(revision.fileSha256);
-		const outcome = await readIfcInChild({ path, glbPath, timeMs, memoryMb, signal, onProgress: report });
+		const choices = await choicesFor(platform.db, siteId, revision.modelId);
+		const outcome = await readIfcInChild({ path, glbPath, ...readingLimits, choices, signal, onProgress: report });
 		if (signal.aborted) return await endOfAborted(platform, signal, (tx) => endReading(tx, input, 'cancelled', null));
 		if (!outcome.ok) return await fail(platform, input, outcome.message);
 		const { reading } = outcome;

@@ -74,7 +74,7 @@ async function read(request: ReadIfcRequest): Promise<void> {
 			writeSync(at, currentBytes, 0, 8, 0);
 			tell('Working out shapes', done, of);
 		},
-		request.choices.placing,
+		request.choices,
 	);
 	closeSync(at);
 	lastTold = 0;

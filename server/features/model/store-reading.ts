@@ -45,6 +45,7 @@ export async function storeReading(
 			revisionId,
 			entityNumber: element.entityNumber,
 			globalId: element.globalId,
+			fileGlobalId: element.fileGlobalId ?? null,
 			class: element.class,
 			name: element.name,
 			tag: element.tag,
