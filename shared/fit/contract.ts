@@ -68,7 +68,7 @@ export const pairsOfSetup = z.object({
 		.optional(),
 	/** Targets taken for marks they are not named like. */
 	relabellings: z.array(relabelling).optional(),
-	/** What the repeats of its targets tell of the set-up itself: `moved-setup`. Absent where there is nothing to tell. */
+	/** What the repeats of its targets tell of the set-up itself: `moved-setup`; and its level run: `level-misclosure`, `level-open`. Absent where there is nothing to tell. */
 	findings: z.array(findingSchema).optional(),
 });
 export type PairsOfSetup = z.infer<typeof pairsOfSetup>;

@@ -44,8 +44,13 @@ export const setupObservation = z.object({
 	/** The first target sighted again at the end, less at the beginning. */
 	closingMm: maybe(0, 1000, 'mm'),
 	closingArcSeconds: maybe(0, 3600, '″'),
-	/** Of a level run there and back. */
+	/** Of a level run, from its starting benchmark over its points to the closing one (the same in a loop): read less known. */
 	levelMisclosureMm: maybe(-1000, 1000, 'mm'),
+	/** Benchmarks as named in the control; absent in records from before they were asked. */
+	levelStart: line(60).optional(),
+	levelClose: line(60).optional(),
+	/** The whole way that was levelled, there and back counted both. */
+	levelLengthKm: maybe(0.001, 1000, 'km').optional(),
 	remarks: line(200),
 });
 export type SetupObservation = z.infer<typeof setupObservation>;
@@ -73,5 +78,8 @@ export const blankSetupObservation: SetupObservation = {
 	closingMm: null,
 	closingArcSeconds: null,
 	levelMisclosureMm: null,
+	levelStart: '',
+	levelClose: '',
+	levelLengthKm: null,
 	remarks: '',
 };

@@ -34,6 +34,13 @@ export interface PointTable {
 export interface PointTableDemands {
 	/** Control may lack plan or height; a survey's points have all three. */
 	readonly mayLackCoordinates?: boolean;
+	/** A level run's file has heights alone; one that has any plan column has all three. */
+	readonly mayBeHeights?: boolean;
+}
+
+/** True where a file is read for heights alone, as a level run brings them. */
+export function hasHeightsAlone({ columns }: Pick<PointTableReading, 'columns'>): boolean {
+	return columns.height !== undefined && columns.easting === undefined && columns.northing === undefined;
 }
 
 const mostFaults = 500;
@@ -69,7 +76,8 @@ function refused(message: string): PointTable {
 export function readPointTable(bytes: Uint8Array, reading: PointTableReading, demands: PointTableDemands = {}): PointTable {
 	const why = whyNoTable(bytes);
 	if (why !== null) return refused(why);
-	const missing = ['name', ...(demands.mayLackCoordinates ? [] : coordinateFields)].filter(
+	const isRun = demands.mayBeHeights === true && hasHeightsAlone(reading);
+	const missing = ['name', ...(demands.mayLackCoordinates || isRun ? [] : coordinateFields)].filter(
 		(field) => reading.columns[field as PointField] === undefined,
 	);
 	if (missing.length > 0) return refused(`No column is named for ${missing.map((field) => fieldWords[field as PointField]).join(', ')}.`);
@@ -79,7 +87,7 @@ export function readPointTable(bytes: Uint8Array, reading: PointTableReading, de
 	const header = reading.hasHeader ? headerOf(text, reading) : [];
 	const columns = scanPoints(text, reading, reading.delimiter === ' ' ? 0 : header.length);
 	if (columns.isCut) return refused(`The file has more than ${pointTableLimits.rows.toLocaleString('en')} rows; at most so many are read.`);
-	return new RowReader(columns, reading, text.decode, demands, header).read();
+	return new RowReader(columns, reading, text.decode, isRun ? { mayLackCoordinates: true } : demands, header).read();
 }
 
 /** The cells of the first row that holds something. */

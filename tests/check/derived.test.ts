@@ -12,6 +12,7 @@ import {
 	aSetup,
 	aSheet,
 	at,
+	exactFit,
 	fitOf,
 	gaussian,
 	pairsOf,
@@ -227,4 +228,43 @@ describe('bolt distances', () => {
 
 it('nothing is derived without a rule that names it', () => {
 	expect(derive(column, () => [0, 0, 0], { id: 'all', match: {}, lowerMm: -1, upperMm: 1 })).toEqual([]);
+});
+
+it('counts what two set-ups adjusted together share in what is derived between them', () => {
+	const fit = { ...exactFit(), chiSquare: null, sigmaGiven: true };
+	const two = [at(60, 60, 0), at(61.2, 60.7, 0)].map((place, k) =>
+		aCheckpoint({ elementId: `b${k}`, place, characteristic: 'plan', direction: null, mark: `B-${k}`, id: `c${k}` }),
+	);
+	const points = two.map((c, k) => aPoint(c.place, { name: `B-${k}`, setupId: `s${k}` }));
+	const uncertainty = (share: number) => {
+		const setups = [0, 1].map((k) => ({
+			...aSetup({ id: `s${k}`, name: `s${k}`, fit, commonMm: 0, pointSigmaM: [1e-6, 1e-6, 1e-6] }),
+			tiedTo: [{ setupId: `s${1 - k}`, covariance: fit.parameterCovariance.map((row) => row.map((value) => share * value)) }],
+		}));
+		const { derived } = runCheck(
+			aCheck({
+				elements: two.map((c, k) => anElement({ id: c.elementId, class: 'IfcMechanicalFastener', mark: `B-${k}` })),
+				checkpoints: two,
+				points,
+				setups,
+				sheet: aSheet({ rules: [rule('bolt-distance')] }),
+			}),
+		);
+		return derived[0]!.uncertaintyMm!;
+	};
+	const [independent, half, same] = [uncertainty(0), uncertainty(0.5), uncertainty(1)];
+	// Variance falls in the straight line that −2·cov asks for.
+	expect(half ** 2).toBeCloseTo((independent ** 2 + same ** 2) / 2, 6);
+	expect(same).toBeLessThan(0.5 * independent);
+	// Shared wholly it is as if one set-up had measured both.
+	const one = runCheck(
+		aCheck({
+			elements: two.map((c, k) => anElement({ id: c.elementId, class: 'IfcMechanicalFastener', mark: `B-${k}` })),
+			checkpoints: two,
+			points: two.map((c, k) => aPoint(c.place, { name: `B-${k}` })),
+			setups: [aSetup({ fit, commonMm: 0, pointSigmaM: [1e-6, 1e-6, 1e-6] })],
+			sheet: aSheet({ rules: [rule('bolt-distance')] }),
+		}),
+	).derived[0]!.uncertaintyMm!;
+	expect(same).toBeCloseTo(one, 6);
 });

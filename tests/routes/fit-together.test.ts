@@ -3,7 +3,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { carryPoint, fitCovarianceAt } from '#shared/fit/carry-point.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { aSite } from '../builders/a-site.ts';
-import { aSetup, storeControl, storeSurvey } from '../builders/store-points.ts';
+import { aSetup, proposedReading, storeControl, storeSurvey } from '../builders/store-points.ts';
 import { openTestServer, type TestServer } from './harness.ts';
 
 let server: TestServer;
@@ -163,5 +163,44 @@ describe('set-ups adjusted together', () => {
 			() => other.surveyor.api.fit.makeTogether({ ...other.asked, setups: asked.setups }),
 		])
 			await expect(call()).rejects.toMatchObject({ code: 'NOT_FOUND' });
+	});
+});
+
+describe('a level run', () => {
+	const heights = 'name,height\nBM,3.0004\nS1,2.5\nS2,2.4\n';
+	const observation = {
+		targetHeightM: null,
+		closingMm: null,
+		closingArcSeconds: null,
+		levelMisclosureMm: 9,
+		levelStart: 'BM',
+		levelClose: 'BM',
+		levelLengthKm: 0.49,
+		remarks: '',
+	};
+
+	it('comes with heights alone and its loop, is judged, and is fitted in height', async () => {
+		const { surveyor, siteId } = await aSite(server);
+		const { controlSetId } = await storeControl(
+			server,
+			surveyor,
+			'name,e,n,h,sigma_plan,sigma_height\nBM,,,5,,0.001\nB2,1,1,1,0.001,0.001\n',
+		);
+		const reading = proposedReading(heights);
+		await expect(storeSurvey(server, surveyor, heights, { reading })).rejects.toMatchObject({
+			code: 'REFUSED',
+			data: { code: 'level-run-not-said' },
+		});
+		const setups = [aSetup({ observation, pointSigmaM: { plan: 0.001, height: 0.001 } })];
+		const { surveyId } = await storeSurvey(server, surveyor, heights, { reading, setups });
+		const survey = await surveyor.api.survey.get({ siteId, surveyId });
+		const { setupId } = survey.setups[0]!;
+		const { findings } = await surveyor.api.fit.pairs({ siteId, setupId, controlSetId });
+		expect(findings?.map(({ code }) => code)).toEqual(['level-misclosure']);
+		const asked = { siteId, setupId, controlSetId, knownScale: null, shelves: [] };
+		await expect(surveyor.api.fit.make({ ...asked, kind: 'levelled' })).rejects.toMatchObject({ code: 'NO_FIT' });
+		const made = await surveyor.api.fit.make({ ...asked, kind: 'height' });
+		expect(carryPoint(made.result, [0, 0, 2.5])[2]).toBeCloseTo(4.4996, 6);
+		expect((await surveyor.api.fit.adopt({ siteId, fitId: made.fitId, reason: 'One benchmark.' })).state).toBe('adopted');
 	});
 });

@@ -1,5 +1,7 @@
+import { levelRunOf, levelRunWords } from '#shared/survey/level-run.ts';
 import type { ReportBlock, ReportSection } from '../../platform/pdf/report-blocks.ts';
 import type { FitReportData } from './fit-report-data.ts';
+import { togetherBlocks } from './fit-report-together.ts';
 import { fixed, kindSentences, mmOf, momentIn, notStated, said, saidNumber, stageSentences } from './fit-report-words.ts';
 
 /** Sections 1 to 9 of a fit report: what was measured, by whom, with what and against what. Pure. */
@@ -78,10 +80,15 @@ function instrumentRows({ survey, setup }: FitReportData): [string, string][] {
 			'Closing sight to the first target',
 			`${saidNumber(own?.closingMm, 'mm', 1)}; ${own?.closingArcSeconds === null || own?.closingArcSeconds === undefined ? notStated : `${fixed(own.closingArcSeconds, 0)} arc seconds`}`,
 		],
-		['Level run misclosure', saidNumber(own?.levelMisclosureMm, 'mm', 1)],
+		['Level run', levelWords(own)],
 		['Remarks', [observation?.remarks, own?.remarks].filter(Boolean).join(' ') || notStated],
 		['Software', 'Batterboard; the engine’s mathematics are in its docs/fit.md'],
 	];
+}
+
+function levelWords(observation: FitReportData['setup']['observation']): string {
+	const run = levelRunOf(observation);
+	return run === null ? notStated : levelRunWords(run);
 }
 
 function answerWords(answer: string | undefined, note: string | undefined): string {
@@ -207,6 +214,7 @@ function methodBlocks({ fit, setup }: FitReportData): ReportBlock[] {
 		text(
 			'Closed form first (weighted centroids and the singular value decomposition: Arun 1987, Horn 1987, Umeyama 1991; levelled: its counterpart in plan), then, with standard deviations, the exact errors-in-variables minimum (Gauss-Helmert: Pope 1972). Reliability after Baarda 1968.',
 		),
+		...togetherBlocks(fit),
 		...exceptions(fit),
 	];
 }

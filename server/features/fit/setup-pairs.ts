@@ -1,5 +1,6 @@
 import { and, asc, eq, isNull } from 'drizzle-orm';
 import type { PairsOfSetup, Relabelling } from '#shared/fit/contract.ts';
+import { levelRunFindings } from '#shared/survey/level-run.ts';
 import type { Handle } from '../../db/database.ts';
 import { vectorOf } from '../../db/model-rows.ts';
 import { controlPoints, controlSets } from '../../db/schema/control.ts';
@@ -81,8 +82,10 @@ export async function setupPairs(db: Handle, { siteId, setupId, controlSetId, re
 		sigmaPlanM,
 		sigmaHeightM,
 	}));
+	const paired = pairTargets(sighted, known, relabellings);
+	const findings = [...(paired.findings ?? []), ...levelRunFindings(setup.observation)];
 	return {
-		pairs: { setupId, controlSetId, ...pairTargets(sighted, known, relabellings) },
+		pairs: { setupId, controlSetId, ...paired, ...(findings.length > 0 ? { findings } : {}) },
 		unknown: unknownTargets(sighted, known, relabellings),
 		surveyId: survey.id,
 		setupName: setup.name,

@@ -1,5 +1,5 @@
 import type { PointTableReading, RowFault } from '#shared/survey/point-table-schema.ts';
-import { readPointTable } from '#shared/survey/read-point-table.ts';
+import { hasHeightsAlone, readPointTable } from '#shared/survey/read-point-table.ts';
 
 /** A survey's points in columns, one slot a point: what a thread can hand over at once. Survey frame, metres. */
 export interface SurveyColumns {
@@ -24,9 +24,13 @@ export interface SurveyReading {
 	faultCount: number;
 }
 
-/** Survey points out of a point file, each with all three coordinates. The same name twice is a repeat, no fault. */
+/**
+ * Survey points out of a point file, each with all three coordinates; of a level run, which has heights alone, with 0 in plan: its height fit
+ * asks for none, and any other is refused for want of spread. The same name twice is a repeat, no fault.
+ */
 export function readSurvey(bytes: Uint8Array, reading: PointTableReading): SurveyReading {
-	const { rows, faults, faultCount, rowCount } = readPointTable(bytes, reading);
+	const { rows, faults, faultCount, rowCount } = readPointTable(bytes, reading, { mayBeHeights: true });
+	const isRun = hasHeightsAlone(reading);
 	const size = rows.length;
 	const points: SurveyColumns = {
 		row: new Int32Array(size),
@@ -40,8 +44,8 @@ export function readSurvey(bytes: Uint8Array, reading: PointTableReading): Surve
 	for (const [index, row] of rows.entries()) {
 		points.row[index] = row.row;
 		for (let axis = 0; axis < 3; axis++) {
-			points.xyzM[3 * index + axis] = row.xyzM[axis] ?? Number.NaN;
-			points.sigmaM[3 * index + axis] = row.sigmaM?.[axis] ?? Number.NaN;
+			points.xyzM[3 * index + axis] = row.xyzM[axis] ?? (isRun ? 0 : Number.NaN);
+			points.sigmaM[3 * index + axis] = row.sigmaM?.[isRun ? 2 : axis] ?? Number.NaN;
 		}
 		points.offsetMm[index] = row.offsetMm ?? 0;
 		points.name[index] = row.name;

@@ -3,6 +3,8 @@ import type { InferContractRouterInputs } from '@orpc/contract';
 import { eq, max } from 'drizzle-orm';
 import type { surveyContract } from '#shared/survey/contract.ts';
 import { surveyJobs } from '#shared/survey/jobs.ts';
+import { levelRunOf } from '#shared/survey/level-run.ts';
+import { hasHeightsAlone } from '#shared/survey/read-point-table.ts';
 import { pointTableLimits } from '#shared/survey/table-bytes.ts';
 import type { Transaction } from '../../db/database.ts';
 import { lockSite } from '../../db/lock-site.ts';
@@ -36,6 +38,14 @@ export async function storeSurvey(
 	const upload = await takeUpload(platform, member, uploadId);
 	if (upload.bytes > pointTableLimits.bytes) {
 		throw new Refused('too-large', `A point file has at most ${pointTableLimits.bytes / 1024 / 1024} MB; this one has more.`, 'uploadId');
+	}
+	const unsaid = hasHeightsAlone(reading) ? setupForms.find(({ observation }) => levelRunOf(observation) === null) : undefined;
+	if (unsaid !== undefined) {
+		throw new Refused(
+			'level-run-not-said',
+			`The file has heights alone, so set-up ${unsaid.name} is a level run. Say its starting and closing benchmark, its length and its misclosure, or name the columns of easting and northing.`,
+			'setups',
+		);
 	}
 	const names = setupForms.map(({ name }) => name);
 	const bytes = await readFile(upload.path);

@@ -7,6 +7,7 @@ import { FindingCures } from './finding-cures.tsx';
 import { FitFigures } from './fit-figures.tsx';
 import { FitPlan } from './fit-plan.tsx';
 import { Leftovers } from './leftovers.tsx';
+import { NetworkFit } from './network-fit.tsx';
 import { pairFigures } from './pair-figures.ts';
 import { PairTable } from './pair-table.tsx';
 import { SetupFindings } from './setup-findings.tsx';
@@ -15,12 +16,14 @@ import type { PlanExtent } from './uncertainty-field.ts';
 interface KeptFitProps {
 	fit: FitDetail;
 	timeZone: string;
+	/** Where a fit of another set-up is looked at. */
+	addressOf: (setupId: string, fitId: string) => string;
 	grid: readonly { tag: string; points: readonly (readonly [number, number])[] }[];
 	outline: PlanExtent | null;
 }
 
 /** A fit as it was kept: nothing in it can be changed. */
-export function KeptFit({ fit, timeZone, grid, outline }: KeptFitProps) {
+export function KeptFit({ fit, timeZone, addressOf, grid, outline }: KeptFitProps) {
 	const [chosenName, choose] = useAddressState('at');
 	const used = useMemo(() => curedPairs(fit.pairs.pairs, fit.kind, fit.shelves), [fit]);
 	const shown = useMemo(() => used.map(({ pair }) => pair), [used]);
@@ -30,6 +33,7 @@ export function KeptFit({ fit, timeZone, grid, outline }: KeptFitProps) {
 		<div className="grid gap-4 desk:grid-cols-[minmax(0,1fr)_minmax(0,34rem)]">
 			<div className="flex min-w-0 flex-col gap-3.5">
 				<Standing fit={fit} timeZone={timeZone} />
+				<NetworkFit fit={fit} addressOf={addressOf} />
 				<SetupFindings findings={fit.pairs.findings ?? []} voids={null} />
 				<FindingCures
 					findings={fit.result.findings}

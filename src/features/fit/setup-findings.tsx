@@ -34,7 +34,9 @@ export function SetupFindings({ findings, voids }: SetupFindingsProps) {
 					{message}
 				</p>
 			))}
-			<p className="m-0 mt-1">Whatever was measured after the instrument moved lies wrong, in this fit and in every check on it.</p>
+			{afterRow !== null && (
+				<p className="m-0 mt-1">Whatever was measured after the instrument moved lies wrong, in this fit and in every check on it.</p>
+			)}
 			{isAsking && voids !== null && afterRow !== null && (
 				<VoidDialog
 					siteId={voids.siteId}

@@ -48,7 +48,7 @@ export function SurveyObservationFields() {
 export function SetupObservationFields({ index, name }: { index: number; name: string }) {
 	const at = (field: string) => `setups.${index}.observation.${field}`;
 	return (
-		<Fold title={`How set-up ${name} was measured`} hint="Heights of instrument and target, closing difference.">
+		<Fold title={`How set-up ${name} was measured`} hint="Heights of instrument and target, closing difference, level run.">
 			<div className="grid gap-4 tablet:grid-cols-2">
 				<NumberField name={`setups.${index}.instrumentHeightM`} label="Instrument height" unit="m" isOptional />
 				<NumberField name={at('targetHeightM')} label="Target height" unit="m" isOptional />
@@ -60,9 +60,20 @@ export function SetupObservationFields({ index, name }: { index: number; name: s
 					unit="″"
 					isOptional
 				/>
-				<NumberField name={at('levelMisclosureMm')} label="Level run misclosure" unit="mm" isOptional />
 				<TextField name={at('remarks')} label="Remarks" />
 			</div>
+			<Part title="Level run">
+				<TextField name={at('levelStart')} label="Starting benchmark" hint="As the control list names it" />
+				<TextField name={at('levelClose')} label="Closing benchmark" hint="The same where it was a loop" />
+				<NumberField name={at('levelLengthKm')} label="Length levelled" hint="There and back counted both" unit="km" isOptional />
+				<NumberField
+					name={at('levelMisclosureMm')}
+					label="Misclosure"
+					hint="Judged against 10·√km mm (common practice)"
+					unit="mm"
+					isOptional
+				/>
+			</Part>
 		</Fold>
 	);
 }

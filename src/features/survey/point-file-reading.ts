@@ -1,5 +1,6 @@
 import type { PointTableInspection } from '#shared/survey/inspect-point-table.ts';
 import type { LengthUnit, PointField, PointTableReading } from '#shared/survey/point-table-schema.ts';
+import { hasHeightsAlone } from '#shared/survey/read-point-table.ts';
 
 /** What a person sees of each field, for the heads of columns. */
 export const fieldWords: Record<PointField, string> = {
@@ -59,7 +60,11 @@ export function readingOf(
 	mayLackCoordinates: boolean,
 ): { reading: PointTableReading } | { missing: string } {
 	if (inspection.needs.includes('order') && wish.order === null) return { missing: 'Say whether easting or northing comes first.' };
-	const needed: PointField[] = mayLackCoordinates ? ['name'] : ['name', 'easting', 'northing', 'height'];
+	const needed: PointField[] = mayLackCoordinates
+		? ['name']
+		: isLevelRun(inspection, wish)
+			? ['name', 'height']
+			: ['name', 'easting', 'northing', 'height'];
 	const lacking = needed.filter((field) => wish.columns[field] === undefined);
 	if (lacking.length > 0) return { missing: `Say which column is the ${lacking.map((field) => fieldWords[field]).join(', the ')}.` };
 	if (wish.unit === null) return { missing: 'Say the unit of the coordinates.' };
@@ -73,6 +78,12 @@ export function readingOf(
 			columns: wish.columns,
 		},
 	};
+}
+
+/** Heights alone, and no two columns of numbers left that could be plan. */
+function isLevelRun({ columns }: PointTableInspection, wish: ReadingWish): boolean {
+	const used = new Set(Object.values(wish.columns));
+	return hasHeightsAlone(wish) && columns.filter(({ index, isNumeric }) => isNumeric && !used.has(index)).length < 2;
 }
 
 const delimiterWords: Record<PointTableReading['delimiter'], string> = { ',': 'commas', ';': 'semicolons', '\t': 'tabs', ' ': 'blanks' };

@@ -89,7 +89,7 @@ function ReadWell({ file, bytes, inspection, wish, onWish, mayLackCoordinates, f
 	const asked = useMemo(() => readingOf(inspection, wish, mayLackCoordinates), [inspection, wish, mayLackCoordinates]);
 	const reading = 'reading' in asked ? asked.reading : null;
 	const table = useMemo(
-		() => (reading ? readPointTable(bytes, reading, { mayLackCoordinates }) : null),
+		() => (reading ? readPointTable(bytes, reading, { mayLackCoordinates, mayBeHeights: !mayLackCoordinates }) : null),
 		[bytes, mayLackCoordinates, reading],
 	);
 	const whole = useMemo(() => (table && table.faultCount === 0 ? (faultsOf?.(table) ?? []) : []), [table, faultsOf]);

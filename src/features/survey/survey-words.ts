@@ -1,4 +1,5 @@
 import type { SetupSummary, SurveySummary } from '#shared/survey/contract.ts';
+import { levelRunOf, levelRunWords } from '#shared/survey/level-run.ts';
 import type { Stage } from '#shared/tolerance/sheet-schema.ts';
 import { counted } from '#src/lib/format.ts';
 
@@ -15,6 +16,12 @@ export function setupWords({ levelling, bringsScale, pointSigmaM, commonMm }: Se
 		? `σ ${Number((pointSigmaM.plan * 1000).toFixed(2))} mm plan, ${Number((pointSigmaM.height * 1000).toFixed(2))} mm level where the file gives none`
 		: 'σ as the file gives them';
 	return `${levelling === 'levelled' ? 'levelled' : 'free'}, ${bringsScale ? 'brings its own scale' : 'scale not known'}, ${sigma}, common part ${commonMm} mm`;
+}
+
+/** A set-up's level run with its judgement; null where none was said. */
+export function levelWords({ observation }: Pick<SetupSummary, 'observation'>): { words: string; isOver: boolean } | null {
+	const run = levelRunOf(observation);
+	return run === null ? null : { words: levelRunWords(run), isOver: run.isWithin === false };
 }
 
 /** What a survey's set-ups still need: "set-up S2 has no adopted fit". */

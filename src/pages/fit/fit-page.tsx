@@ -9,6 +9,7 @@ import { FitHistory } from '#src/features/fit/fit-history.tsx';
 import { kindWords, standingWords } from '#src/features/fit/fit-words.ts';
 import { FitWorkbench } from '#src/features/fit/fit-workbench.tsx';
 import { KeptFit } from '#src/features/fit/kept-fit.tsx';
+import { AdoptTogether } from '#src/features/fit/network-fit.tsx';
 import { ReportButton } from '#src/features/fit/report-button.tsx';
 import { planExtentOf } from '#src/features/fit/uncertainty-field.ts';
 import { useAddressState } from '#src/lib/address-state.ts';
@@ -22,7 +23,7 @@ import { Strip } from '#src/ui/strip.tsx';
 export default function FitPage() {
 	const { siteId = '', surveyId = '', setupId = '' } = useParams();
 	const [controlWish] = useAddressState('control');
-	const [shownFitId] = useAddressState('fit', 'push');
+	const [wishedFitId] = useAddressState('fit', 'push');
 	const [{ data: site }, { data: survey }, { data: controlSets }, { data: fits }, { data: models }, { data: me }] = useSuspenseQueries({
 		queries: [
 			api.site.get.queryOptions({ input: { siteId } }),
@@ -37,6 +38,10 @@ export default function FitPage() {
 	const controlSet = controlSets.find((set) => set.controlSetId === controlWish) ?? controlSets[0];
 	const revision = models.flatMap((model) => model.revisions).find((candidate) => candidate.state === 'ready');
 	const adopted = fits.find((fit) => fit.state === 'adopted') ?? null;
+	// A fit that was made together with others has nothing to be moved here, so it is shown as it was kept unless the pairs are asked for.
+	const newest = fits.find((fit) => fit.controlSetId === controlSet?.controlSetId);
+	const ownPairs = 'pairs';
+	const shownFitId = wishedFitId === ownPairs ? null : (wishedFitId ?? (newest?.madeWith ? newest.fitId : null));
 	const strip = setup && (
 		<Strip
 			items={[
@@ -75,6 +80,7 @@ export default function FitPage() {
 	const actsOn = (fit: FitSummary) => (
 		<>
 			<ReportButton siteId={siteId} fit={fit} />
+			<AdoptTogether siteId={siteId} fit={fit} mayAdopt={mayAdopt} />
 			{me && <CheckFit siteId={siteId} fit={fit} userId={me.userId} mayAdopt={mayAdopt} />}
 		</>
 	);
@@ -86,7 +92,8 @@ export default function FitPage() {
 					{...about}
 					fitId={shownFitId}
 					timeZone={site.timeZone}
-					back={`/sites/${siteId}/surveys/${surveyId}/setups/${setupId}`}
+					back={`?fit=${ownPairs}`}
+					addressOf={(id, fitId) => `/sites/${siteId}/surveys/${surveyId}/setups/${id}?fit=${fitId}`}
 					actsOn={actsOn}
 				/>
 			) : (
@@ -146,10 +153,11 @@ interface KeptProps extends AboutSetup {
 	fitId: string;
 	timeZone: string;
 	back: string;
+	addressOf: (setupId: string, fitId: string) => string;
 	actsOn: (fit: FitSummary) => ReactNode;
 }
 
-function Kept({ siteId, setup, revisionId, fitId, timeZone, back, actsOn }: KeptProps) {
+function Kept({ siteId, setup, revisionId, fitId, timeZone, back, addressOf, actsOn }: KeptProps) {
 	const { data: fit } = useSuspenseQuery(api.fit.get.queryOptions({ input: { siteId, fitId } }));
 	const { grid, outline } = useModelOutline(siteId, revisionId);
 	return (
@@ -165,7 +173,7 @@ function Kept({ siteId, setup, revisionId, fitId, timeZone, back, actsOn }: Kept
 			>
 				{`Fit ${fit.number} of set-up ${setup.name}, ${fit.state === 'made' ? 'not adopted' : fit.state}: ${kindWords[fit.kind]}`}
 			</Headline>
-			<KeptFit fit={fit} timeZone={timeZone} grid={grid} outline={outline} />
+			<KeptFit fit={fit} timeZone={timeZone} addressOf={addressOf} grid={grid} outline={outline} />
 		</>
 	);
 }

@@ -3,9 +3,10 @@ import { useState } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import { mayWith } from '#shared/permissions.ts';
 import type { SetupSummary, SurveySummary } from '#shared/survey/contract.ts';
+import { SetupsTogether } from '#src/features/fit/setups-together.tsx';
 import { observationWords } from '#src/features/survey/observation-words.ts';
 import { SurveyPointTable } from '#src/features/survey/survey-point-table.tsx';
-import { setupWords, stageWords, surveyHeadline } from '#src/features/survey/survey-words.ts';
+import { levelWords, setupWords, stageWords, surveyHeadline } from '#src/features/survey/survey-words.ts';
 import { UnvoidDialog } from '#src/features/survey/unvoid-dialog.tsx';
 import { api } from '#src/lib/api.ts';
 import { count, counted } from '#src/lib/format.ts';
@@ -21,11 +22,12 @@ const shownPoints = 20_000;
 /** One survey: how it was made, its set-ups and their fits, its points. */
 export default function SurveyPage() {
 	const { siteId = '', surveyId = '' } = useParams();
-	const [{ data: site }, { data: survey }, { data: measured }] = useSuspenseQueries({
+	const [{ data: site }, { data: survey }, { data: measured }, { data: controlSets }] = useSuspenseQueries({
 		queries: [
 			api.site.get.queryOptions({ input: { siteId } }),
 			api.survey.get.queryOptions({ input: { siteId, surveyId } }),
 			api.survey.points.queryOptions({ input: { siteId, surveyId, offset: 0, limit: shownPoints } }),
+			api.control.list.queryOptions({ input: { siteId } }),
 		],
 	});
 	const mayCheck = mayWith(site.roles, 'check.write');
@@ -74,6 +76,7 @@ export default function SurveyPage() {
 									{counted(setup.targetCount, 'target')} in the newest control, {count(setup.pointCount)} points
 								</span>
 								<span className="block text-second">{setupWords(setup)}</span>
+								<LevelRunLine setup={setup} />
 							</span>
 							<ButtonLink weight={setup.adoptedFitId ? 'quiet' : 'act'} to={`/sites/${siteId}/surveys/${surveyId}/setups/${setup.setupId}`}>
 								{setup.adoptedFitId ? 'See its fit' : 'Fit it'}
@@ -81,6 +84,15 @@ export default function SurveyPage() {
 						</li>
 					))}
 				</ul>
+				{survey.state === 'ready' && survey.setups.length > 1 && controlSets[0] && (
+					<SetupsTogether
+						siteId={siteId}
+						surveyId={surveyId}
+						controlSetId={controlSets[0].controlSetId}
+						mayFit={mayWith(site.roles, 'fit.write')}
+						addressOf={(setupId, fitId) => `/sites/${siteId}/surveys/${surveyId}/setups/${setupId}?fit=${fitId}`}
+					/>
+				)}
 				<HowMeasured survey={survey} />
 				<section aria-label="Points" className="flex flex-col gap-3">
 					<h2 className="m-0 text-h2 font-strong">
@@ -98,6 +110,11 @@ export default function SurveyPage() {
 			</div>
 		</>
 	);
+}
+
+function LevelRunLine({ setup }: { setup: SetupSummary }) {
+	const run = levelWords(setup);
+	return run && <span className={`block ${run.isOver ? 'font-strong' : 'text-second'}`}>{run.words}.</span>;
 }
 
 /** The observation record, folded; what was left blank is said. */
