@@ -18,7 +18,7 @@ export function togetherBlocks({ network, madeWith, setupId }: FitReportData['fi
 			columns: [
 				{ head: 'Target', share: 0.18 },
 				{ head: 'Known', share: 0.14 },
-				{ head: 'Seen from', share: 0.26 },
+				{ head: 'Seen by', share: 0.26 },
 				{ head: 'E', share: 0.1, align: 'right' },
 				{ head: 'N', share: 0.1, align: 'right' },
 				{ head: 'H', share: 0.1, align: 'right' },

@@ -45,7 +45,7 @@ export function NetworkFit({ fit: { network, madeWith, setupId, result }, addres
 						</caption>
 						<thead className="border-b border-ink text-small text-second">
 							<tr>
-								{['Tie', 'Seen from', 'East, mm', 'North, mm', 'Level, mm', 'Over its σ'].map((head, index) => (
+								{['Tie', 'Seen by', 'East, mm', 'North, mm', 'Level, mm', 'Over its σ'].map((head, index) => (
 									<th key={head} scope="col" className={`px-3 py-2 font-medium ${index < 2 ? 'text-left' : 'text-right'}`}>
 										{head}
 									</th>
