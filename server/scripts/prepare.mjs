@@ -5,10 +5,12 @@ import { createHash } from 'node:crypto';
 import { existsSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { dirname, join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
+import { alone } from './alone.mjs';
 
 /** The checkout. */
 export const root = resolve(dirname(fileURLToPath(import.meta.url)), '../..');
 
+const lock = join(root, '.tmp/prepare.lock');
 const buildStamp = join(root, 'dist/.bb-src');
 /** What goes into the built files. */
 const sources = ['shared', 'server', 'src', 'public', 'index.html', 'vite.config.ts', 'package-lock.json'];
@@ -22,9 +24,13 @@ if (major < 20 || (major === 20 && minor < 19)) {
 /** Installs what the lock file says, where it is not there yet. Exits with a sentence where that fails. */
 export function install() {
 	if (isInstalled()) return;
-	console.error('Installing packages …');
-	// Development packages too: they build the client. NODE_ENV=production would leave them out.
-	if (!runNpm(['ci', '--include=dev', '--no-audit', '--no-fund'])) stop('The packages could not be installed. See the lines above.');
+	const isDone = alone(lock, () => {
+		if (isInstalled()) return true;
+		console.error('Installing packages …');
+		// Development packages too: they build the client. NODE_ENV=production would leave them out.
+		return runNpm(['ci', '--include=dev', '--no-audit', '--no-fund']);
+	});
+	if (!isDone) stop('The packages could not be installed. See the lines above.');
 }
 
 /** npm writes down at the end of an install what it has put there: the same versions as locked need no second install. */
@@ -42,18 +48,26 @@ function isInstalled() {
 
 /** Builds client and server, where a source changed since. False where that fails; the lines above say why. */
 export function build() {
+	const wanted = hashOfSources();
+	if (stampOf(buildStamp) === wanted) return true;
+	// Two commands started at once on a fresh checkout would write the same files under each other's feet.
+	return alone(lock, () => {
+		if (stampOf(buildStamp) === wanted) return true;
+		console.error('Building …');
+		rmSync(buildStamp, { force: true });
+		for (const mode of [[], ['--mode', 'server']]) {
+			if (!runNode([join(root, 'node_modules/vite/bin/vite.js'), 'build', '--logLevel', 'warn', ...mode])) return false;
+		}
+		mkdirSync(dirname(buildStamp), { recursive: true });
+		writeFileSync(buildStamp, wanted);
+		return true;
+	});
+}
+
+function hashOfSources() {
 	const hash = createHash('sha256');
 	for (const file of sources.flatMap(filesUnder)) hash.update(`${file}\0`).update(readFileSync(join(root, file)));
-	const wanted = hash.digest('hex');
-	if (stampOf(buildStamp) === wanted) return true;
-	console.error('Building …');
-	rmSync(buildStamp, { force: true });
-	for (const mode of [[], ['--mode', 'server']]) {
-		if (!runNode([join(root, 'node_modules/vite/bin/vite.js'), 'build', '--logLevel', 'warn', ...mode])) return false;
-	}
-	mkdirSync(dirname(buildStamp), { recursive: true });
-	writeFileSync(buildStamp, wanted);
-	return true;
+	return hash.digest('hex');
 }
 
 /** Installed and built, or ended with a sentence. */
