@@ -12,6 +12,7 @@ const serverPrograms = {
 	'read-ifc.worker': 'server/features/model/read-ifc.worker.ts',
 	'read-points.worker': 'server/features/survey/read-points.worker.ts',
 	'compute-check.worker': 'server/features/check/compute-check.worker.ts',
+	'copy-photo.worker': 'server/features/flag/copy-photo.worker.ts',
 	measure: 'server/scripts/measure.ts',
 };
 

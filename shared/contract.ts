@@ -2,6 +2,7 @@ import { accountContract } from './account/contract.ts';
 import { checkContract } from './check/contract.ts';
 import { controlContract } from './control/contract.ts';
 import { fitContract } from './fit/contract.ts';
+import { flagContract } from './flag/contract.ts';
 import { jobContract } from './job/contract.ts';
 import { mailContract } from './mail/contract.ts';
 import { modelContract } from './model/contract.ts';
@@ -23,6 +24,7 @@ export const contract = {
 	fit: fitContract,
 	tolerance: toleranceContract,
 	check: checkContract,
+	flag: flagContract,
 	pour: pourContract,
 	record: recordContract,
 };

@@ -26,14 +26,6 @@ const AHEAD_OF_USE: Record<string, string> = {
 	'server/platform/notices.ts': 'what flags, checks and pours tell by mail',
 	'shared/pour/readiness.ts': 'the release of a pour',
 	'shared/pour/what-touches.ts': 'the release of a pour',
-	'server/db/schema/flag.ts': 'flags through their life',
-	'shared/check/standing.ts': 'the state of a pour from all published checks',
-	'shared/flag/act-on-flag.ts': 'flags through their life',
-	'shared/flag/flag-life.ts': 'flags through their life',
-	'shared/flag/flag-schema.ts': 'flags through their life',
-	'shared/flag/may-act.ts': 'flags through their life',
-	'shared/flag/measured-again.ts': 'flags through their life',
-	'shared/site/working-time.ts': 'deadlines of flags and of hold points',
 };
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */

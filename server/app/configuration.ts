@@ -1,6 +1,7 @@
 import { resolve } from 'node:path';
 import { z } from 'zod';
 import type { MailSetting } from '../platform/mail.ts';
+import type { PhotoSetting } from '../platform/photo-store.ts';
 
 /** What the environment says, read once. A wrong value stops the start with a sentence. */
 export interface Configuration {
@@ -17,6 +18,7 @@ export interface Configuration {
 	/** Fill an empty database with the invented demo site. */
 	isDemoWished: boolean;
 	mail: MailSetting;
+	photos: PhotoSetting;
 	/** What links in mails begin with; null: the address we listen on. */
 	publicUrl: string | null;
 	/** The client by Vite's middleware instead of the built files. */
@@ -45,6 +47,13 @@ const variables = {
 	COOKIE_SECURE: { schema: onOff.optional(), says: 'on or off' },
 	TRUST_PROXY_HOPS: { schema: whole(0, 10).default(0), says: 'a number of proxies, 0 to 10' },
 	MAX_UPLOAD_MB: { schema: whole(1, 4000).default(400), says: 'megabytes, 1 to 4000' },
+	FILES_URL: {
+		schema: z
+			.string()
+			.regex(/^s3:\/\/[a-z0-9][a-z0-9.-]{1,61}[a-z0-9](\?endpoint=https?:\/\/\S+)?$/)
+			.optional(),
+		says: 'a bucket for photos, like s3://site-photos or s3://site-photos?endpoint=http://127.0.0.1:9000',
+	},
 	RESEND_API_KEY: { schema: z.string().min(8).optional(), says: 'a key of the mail service' },
 	MAIL_URL: {
 		schema: z
@@ -92,9 +101,16 @@ export function readConfiguration(environment: Record<string, string | undefined
 		largestUploadBytes: read('MAX_UPLOAD_MB') * 1_000_000,
 		isDemoWished,
 		mail: mailSetting({ apiKey: read('RESEND_API_KEY'), url: read('MAIL_URL'), from: read('MAIL_FROM'), isDemoWished }),
+		photos: photoSetting(read('FILES_URL')),
 		publicUrl: read('PUBLIC_URL') ?? null,
 		isDevelopment: programArguments.includes('--dev'),
 	};
+}
+
+function photoSetting(url: string | undefined): PhotoSetting {
+	if (url === undefined) return { kind: 'disk' };
+	const [bucket = '', endpoint] = url.slice('s3://'.length).split('?endpoint=');
+	return { kind: 's3', bucket, endpoint: endpoint ?? null };
 }
 
 interface MailVariables {

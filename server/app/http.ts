@@ -4,6 +4,7 @@ import { BodyLimitPlugin, CompressionPlugin, RPCHandler } from '@orpc/server/nod
 import { sql } from 'drizzle-orm';
 import express, { type Express, type Request, type RequestHandler, type Response } from 'express';
 import type { RequestContext } from '../platform/guard.ts';
+import { photoPath } from '../platform/photo-addresses.ts';
 import type { Platform, SignedIn } from '../platform/platform.ts';
 import { isOwnOrigin, type Sessions } from '../platform/session.ts';
 import { countTries } from '../platform/tries.ts';
@@ -11,6 +12,7 @@ import type { UploadServer } from '../platform/upload-server.ts';
 import { errorPage, notFoundPage } from './error-page.ts';
 import { securityHeaders } from './headers.ts';
 import { mailAsHtml } from './mail-as-html.ts';
+import { photoAsImage } from './photo-as-image.ts';
 import type { router } from './router.ts';
 
 export const uploadsPath = '/api/uploads';
@@ -46,6 +48,7 @@ export function httpApp({ platform, sessions, uploads, router, client, isReady, 
 	});
 	app.use('/rpc', calls({ platform, sessions, router }));
 	app.get('/api/mailbox/:keptId', mailAsHtml(platform));
+	app.get(`${photoPath}/:token`, photoAsImage(platform));
 	app.use(['/rpc', '/api'], notFoundPage);
 	app.use(client);
 	app.use(notFoundPage);

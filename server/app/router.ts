@@ -4,6 +4,7 @@ import { accountRoutes } from '../features/account/routes.ts';
 import { checkRoutes } from '../features/check/routes.ts';
 import { controlRoutes } from '../features/control/routes.ts';
 import { fitRoutes } from '../features/fit/routes.ts';
+import { flagRoutes } from '../features/flag/routes.ts';
 import { jobRoutes } from '../features/job/routes.ts';
 import { mailRoutes } from '../features/mail/routes.ts';
 import { modelRoutes } from '../features/model/routes.ts';
@@ -15,8 +16,10 @@ import { toleranceRoutes } from '../features/tolerance/routes.ts';
 import type { RequestContext } from '../platform/guard.ts';
 import { acceptInvitationRoute } from '../workflows/accept-invitation.ts';
 import { foundSiteRoute } from '../workflows/found-site.ts';
+import { publishCheckRoute, publishPlanRoute } from '../workflows/publish-check.ts';
 import { storeControlRoute } from '../workflows/store-control.ts';
 import { storeSurveyRoute } from '../workflows/store-survey.ts';
+import { withdrawCheckRoute } from '../workflows/withdraw-check.ts';
 
 /** All routes of the contract: one that is missing does not compile. */
 export const router = {
@@ -29,7 +32,8 @@ export const router = {
 	survey: { ...surveyRoutes, store: storeSurveyRoute },
 	fit: fitRoutes,
 	tolerance: toleranceRoutes,
-	check: checkRoutes,
+	check: { ...checkRoutes, publishPlan: publishPlanRoute, publish: publishCheckRoute, withdraw: withdrawCheckRoute },
+	flag: flagRoutes,
 	pour: pourRoutes,
 	record: recordRoutes,
 } satisfies Router<typeof contract, RequestContext>;

@@ -6,6 +6,8 @@ import type { Connection } from '../db/connection.ts';
 import { deliverNotices } from '../platform/deliver-notices.ts';
 import { diskFiles } from '../platform/disk-files.ts';
 import { type OpenMail, openMail } from '../platform/open-mail.ts';
+import { photoAddresses } from '../platform/photo-addresses.ts';
+import { photoStoreOf } from '../platform/photo-store.ts';
 import type { JobRunner, Platform } from '../platform/platform.ts';
 import { openPostman, type Postman } from '../platform/postman.ts';
 import { publishKeys } from '../platform/publish-keys.ts';
@@ -55,16 +57,20 @@ export async function startOn(
 	const journal = await openRecordJournal(join(configuration.dataDir, 'journal', 'records.jsonl'));
 	const mail = await openMail(configuration.mail, join(configuration.dataDir, 'mailbox'));
 	let address = '';
+	const files = diskFiles(join(configuration.dataDir, 'files'));
+	const now = () => new Date();
 	const platform: Platform = {
 		db: connection.db,
 		transaction: queue.transaction,
-		files: diskFiles(join(configuration.dataDir, 'files')),
+		files,
+		photos: photoStoreOf(configuration.photos, files),
+		photoAddresses: photoAddresses(now),
 		uploadFolder: join(configuration.dataDir, 'uploads'),
 		jobs: queue.jobs,
 		records: openRecordStore(connection.db, keys.current, journal),
 		mail: { isOn: mail.service !== null, mailbox: mail.mailbox },
 		publicUrl: () => configuration.publicUrl ?? address,
-		now: () => new Date(),
+		now,
 		newId: randomUUID,
 	};
 	const sessions = openSessions({ db: platform.db, isSecure: configuration.isCookieSecure, now: platform.now });

@@ -3,6 +3,7 @@ import type { Role } from '#shared/permissions.ts';
 import type { Db, Transaction } from '../db/database.ts';
 import type { Mailbox } from './mail.ts';
 import type { RecordStore } from './record-store.ts';
+import type { PhotoAddresses } from './photo-addresses.ts';
 
 /** What a command may use of the world. One value, made at the start and handed on; tests make their own. */
 export interface Platform {
@@ -10,6 +11,9 @@ export interface Platform {
 	/** Commits when `work` resolves, else rolls back. No file, mail or hashing inside. */
 	transaction: <T>(work: (tx: Transaction) => Promise<T>) => Promise<T>;
 	files: FileStore;
+	/** Photos, by their SHA-256: with the other files, or in a bucket. */
+	photos: PhotoStore;
+	photoAddresses: PhotoAddresses;
 	/** Where uploads lie until a command takes them (`takeUpload`). */
 	uploadFolder: string;
 	jobs: JobQueue;
@@ -33,6 +37,9 @@ export interface FileStore {
 	pathOf: (sha256: string) => string;
 	read: (sha256: string) => Promise<Uint8Array>;
 }
+
+/** What photos need of a store: no path, since a bucket has none. */
+export type PhotoStore = Pick<FileStore, 'keep' | 'read'>;
 
 export interface KeptFile {
 	sha256: string;

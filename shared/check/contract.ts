@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { base, siteInput } from '../base-contract.ts';
+import { base, plainText, siteInput } from '../base-contract.ts';
 import { findingSchema } from '../fit/fit-schema.ts';
 import { decisionRule, stage } from '../tolerance/sheet-schema.ts';
 import { checkSummary, deviationSchema } from './check-schema.ts';
@@ -80,6 +80,28 @@ export const checkDetail = checkHead.extend({
 });
 export type CheckDetail = z.infer<typeof checkDetail>;
 
+/** What publishing would do, said before the press. */
+export const publishPlan = z.object({
+	/** Raised or opened again, by whose pour it is; null: in no pour, so with the engineers. */
+	companies: z.array(z.object({ companyId: z.uuid().nullable(), name: z.string().nullable(), flags: z.number().int() })),
+	/** Too close to call or undecided: to the engineers first, without a clock. */
+	toEngineers: z.number().int(),
+	closes: z.number().int(),
+	/** Elements gone or limits changed. */
+	lapses: z.number().int(),
+	/** The deadline that the site's calendar gives. */
+	answerBy: z.date(),
+	/** Look for one cause before flagging each. */
+	commonShift: z.array(findingSchema),
+	/** Set-ups whose fit a second person has not checked. */
+	uncheckedSetups: z.array(z.string()),
+	/** Why it cannot be published now; null: it can. */
+	refusal: z.string().nullable(),
+	/** Names this plan: what is published is what was shown, or it is refused. */
+	planSha256: z.string(),
+});
+export type PublishPlan = z.infer<typeof publishPlan>;
+
 const checkInput = siteInput.extend({ checkId: z.uuid() });
 
 export const checkContract = {
@@ -98,4 +120,15 @@ export const checkContract = {
 			}),
 		)
 		.output(z.object({ checkId: z.uuid(), jobId: z.uuid() })),
+	publishPlan: base.meta({ permission: 'check.publish' }).input(checkInput).output(publishPlan),
+	/** From now on it counts: its flags are raised, and the contractors concerned are told. */
+	publish: base
+		.meta({ permission: 'check.publish' })
+		.input(checkInput.extend({ answerBy: z.date(), planSha256: z.string() }))
+		.output(z.object({ raised: z.number().int() })),
+	/** Its flags lapse, and each person who had one is told once. */
+	withdraw: base
+		.meta({ permission: 'check.publish' })
+		.input(checkInput.extend({ reason: plainText(500) }))
+		.output(z.object({ lapsed: z.number().int() })),
 };

@@ -52,6 +52,7 @@ export async function openTestServer(
 		largestUploadBytes: 5_000_000,
 		isDemoWished: false,
 		mail: { kind: 'fake' },
+		photos: { kind: 'disk' },
 		publicUrl: null,
 		isDevelopment: false,
 		...settings,

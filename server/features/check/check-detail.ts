@@ -2,6 +2,7 @@ import { and, asc, eq, inArray } from 'drizzle-orm';
 import type { CheckDetail, CheckElement } from '#shared/check/contract.ts';
 import type { Finding } from '#shared/fit/fit-schema.ts';
 import type { Handle } from '../../db/database.ts';
+import { deviationOf } from '../../db/deviation-rows.ts';
 import { checkpointOf } from '../../db/model-rows.ts';
 import { type checks, deviations } from '../../db/schema/check.ts';
 import { checkpoints, elements, revisions } from '../../db/schema/model.ts';
@@ -10,7 +11,6 @@ import type { Member } from '../../platform/platform.ts';
 import { foundOne } from '../../platform/refuse.ts';
 import { narrowedTo } from './policy.ts';
 import { checkHeadOf, ownElement } from './queries.ts';
-import { deviationOf } from './store-deviations.ts';
 
 /**
  * A check with its deviations in checkpoint order and the elements they stand on. Who is only a contractor gets the elements of its own

@@ -1,0 +1,72 @@
+import { and, eq, max } from 'drizzle-orm';
+import type { Transaction } from '../../db/database.ts';
+import { insertRows } from '../../db/insert-rows.ts';
+import { flags } from '../../db/schema/flag.ts';
+import { storableText } from '../../db/storable-text.ts';
+import { auditEach } from '../../platform/audit.ts';
+import type { Member, Platform } from '../../platform/platform.ts';
+import { Conflict } from '../../platform/refuse.ts';
+import { columnsOf, type FlagRow } from './flag-rows.ts';
+import type { FlagChanges } from './plan-flag-changes.ts';
+
+/** Writes what a check that was published or withdrawn does to the flags, with an audit entry each. The site is locked by the caller. */
+export async function applyFlagChanges(
+	tx: Transaction,
+	{ newId, now }: Pick<Platform, 'newId' | 'now'>,
+	member: Member,
+	{ raised, changed }: FlagChanges,
+): Promise<void> {
+	const { siteId } = member;
+	const changedAt = now();
+	for (const { row, after, words } of changed) {
+		const { companyId: _, ...columns } = columnsOf(after);
+		const updated = await tx
+			.update(flags)
+			.set({ ...columns, lapsedWords: words === null ? row.lapsedWords : storableText(words), version: row.version + 1, changedAt })
+			.where(and(eq(flags.siteId, siteId), eq(flags.id, row.id), eq(flags.version, row.version)))
+			.returning({ id: flags.id });
+		if (updated.length === 0) throw new Conflict(`Flag ${row.number} was changed a moment ago. Look again.`);
+	}
+	const [highest] = await tx
+		.select({ number: max(flags.number) })
+		.from(flags)
+		.where(eq(flags.siteId, siteId));
+	const first = (highest?.number ?? 0) + 1;
+	const rows = raised.map(({ standing, life, mark, title }, index): FlagRow => {
+		const { modelId, globalId, kind, checkId } = standing;
+		return {
+			...columnsOf(life),
+			id: newId(),
+			siteId,
+			number: first + index,
+			modelId,
+			globalId,
+			kind,
+			mark,
+			title,
+			raisedCheckId: checkId,
+			raisedAt: changedAt,
+			lapsedWords: null,
+			version: 1,
+			changedAt,
+		};
+	});
+	await insertRows(tx, flags, rows);
+	await auditEach(
+		tx,
+		member,
+		[
+			...changed.map(({ row, act, after, words }) => ({
+				kind: act.kind === 'lapse' ? ('flag-lapsed' as const) : ('flag-measured-again' as const),
+				subjectId: row.id,
+				data: { number: row.number, before: row.state, after: after.state, act, ...(words === null ? {} : { words }) },
+			})),
+			...rows.map(({ id, number, mark, kind, verdict, worstMm, isWith, answerBy, checkId }) => ({
+				kind: 'flag-raised' as const,
+				subjectId: id,
+				data: { number, mark, kind, verdict, worstMm, isWith, answerBy, checkId },
+			})),
+		],
+		changedAt,
+	);
+}
