@@ -2,8 +2,8 @@ import type { z } from 'zod';
 import type { Role } from '#shared/permissions.ts';
 import type { Db, Transaction } from '../db/database.ts';
 import type { Mailbox } from './mail.ts';
-import type { RecordStore } from './record-store.ts';
 import type { PhotoAddresses } from './photo-addresses.ts';
+import type { RecordStore } from './record-store.ts';
 
 /** What a command may use of the world. One value, made at the start and handed on; tests make their own. */
 export interface Platform {

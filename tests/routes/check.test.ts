@@ -186,6 +186,9 @@ describe('a check', { timeout: 180_000 }, () => {
 		const { surveyId } = await measured(site, site.checkpoints);
 		const { checkId, check } = await run(site, surveyId);
 		const asked = { siteId, checkId };
+		await expect(contractor.api.check.get(asked)).rejects.toMatchObject({ code: 'NOT_FOUND' });
+		const { planSha256 } = await site.surveyor.api.check.publishPlan(asked);
+		await site.surveyor.api.check.publish({ ...asked, answerBy: new Date(Date.now() + 86_400_000), planSha256 });
 		expect(await contractor.api.check.get(asked)).toMatchObject({ deviations: [], elements: [], summary: { within: 0 } });
 		const storeyOf = (ifcClass: string) => check.elements.find((element) => element.class === ifcClass)!.storey;
 		const kind = (ifcClass: string) => ({ storey: storeyOf(ifcClass), class: ifcClass });

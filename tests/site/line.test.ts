@@ -1,7 +1,15 @@
 import { describe, expect, it } from 'vitest';
 import { type LineFacts, lineOf } from '../../server/features/site/line.ts';
 
-const nothing: LineFacts = { models: [], markCount: null, surveyCount: 0, isNewestSurveyFitted: false, newestCheck: null, pours: [] };
+const nothing: LineFacts = {
+	models: [],
+	markCount: null,
+	surveyCount: 0,
+	isNewestSurveyFitted: false,
+	newestCheck: null,
+	flags: { open: 0, closed: 0 },
+	pours: [],
+};
 const summary = { within: 61, outside: 4, 'too-close-to-call': 2, undecided: 0, 'not-measured': 3, 'no-tolerance': 0 };
 const check = { checkId: 'c', number: 3, state: 'trial' as const, summary, restsOnNewest: true };
 // A Monday; the site's clock is two hours ahead in summer.
@@ -30,6 +38,12 @@ describe('the line', () => {
 			{ state: 'failed', number: 2 },
 		];
 		expect(knot({ models: two }, 'model')).toBe('half 2 models');
+	});
+
+	it('counts the flags that are still to be settled', () => {
+		expect(knot({}, 'flags')).toBe('open');
+		expect(knot({ flags: { open: 6, closed: 2 } }, 'flags')).toBe('half 6 open');
+		expect(knot({ flags: { open: 0, closed: 2 } }, 'flags')).toBe('solid all closed');
 	});
 
 	it('counts marks and surveys', () => {

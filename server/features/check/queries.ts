@@ -55,13 +55,18 @@ export type CheckRow = Awaited<ReturnType<typeof checkRows>>[number];
 
 /** The site's checks, newest first, counted as far as the member sees. */
 export async function checksOf(db: Handle, member: Member): Promise<CheckHead[]> {
-	return headsOf(db, member, await checkRows(db, eq(checks.siteId, member.siteId)));
+	return headsOf(db, member, await checkRows(db, seenBy(member)));
 }
 
-/** One check of the site with its row; NOT_FOUND for another site's. */
+/** One check of the site with its row; NOT_FOUND for another site's, and for a contractor while it is not published. */
 export async function checkHeadOf(db: Handle, member: Member, checkId: string): Promise<{ head: CheckHead; row: CheckRow }> {
-	const row = foundOne(await checkRows(db, and(eq(checks.siteId, member.siteId), eq(checks.id, checkId))));
+	const row = foundOne(await checkRows(db, and(seenBy(member), eq(checks.id, checkId))));
 	return { head: foundOne(await headsOf(db, member, [row])), row };
+}
+
+/** The site's checks; for who is only a contractor those that are published. */
+function seenBy(member: Member): SQL | undefined {
+	return and(eq(checks.siteId, member.siteId), narrowedTo(member) === null ? undefined : eq(checks.state, 'published'));
 }
 
 async function headsOf(db: Handle, member: Member, rows: readonly CheckRow[]): Promise<CheckHead[]> {

@@ -19,6 +19,8 @@ export interface LineFacts {
 		/** Everything it rests on is still the newest. */
 		restsOnNewest: boolean;
 	} | null;
+	/** Those the member may see that have not lapsed: still to be settled, and closed. */
+	flags: { open: number; closed: number };
 	/** Those the member may see. */
 	pours: { state: 'planned' | 'concreting' | 'cast' | 'cast-in-part'; plannedAt: Date | null }[];
 }
@@ -34,7 +36,7 @@ export function lineOf(facts: LineFacts, now: Date, timeZone: string): Line {
 			{ knot: 'control', ...controlKnot(facts.markCount) },
 			{ knot: 'surveys', ...surveyKnot(facts) },
 			{ knot: 'check', ...checkKnot(newestCheck) },
-			{ knot: 'flags', state: 'open', figure: '' },
+			{ knot: 'flags', ...flagKnot(facts.flags) },
 			{ knot: 'pours', ...pourKnot(facts.pours, now, timeZone) },
 			{ knot: 'records', state: 'open', figure: '' },
 		],
@@ -66,6 +68,11 @@ function checkKnot(check: LineFacts['newestCheck']): Knot {
 	if (check.state === 'computing') return { state, figure: 'computing' };
 	if (check.summary === null) return { state, figure: `no. ${check.number}` };
 	return { state, figure: check.summary.outside > 0 ? `${check.summary.outside} outside` : `${check.summary.within} within` };
+}
+
+function flagKnot({ open, closed }: LineFacts['flags']): Knot {
+	if (open + closed === 0) return { state: 'open', figure: '' };
+	return open === 0 ? { state: 'solid', figure: 'all closed' } : { state: 'half', figure: `${open} open` };
 }
 
 function pourKnot(pours: LineFacts['pours'], now: Date, timeZone: string): Knot {

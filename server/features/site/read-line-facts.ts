@@ -1,9 +1,11 @@
-import { and, asc, count, desc, eq, inArray, isNull, max } from 'drizzle-orm';
+import { and, asc, count, desc, eq, inArray, isNull, max, ne } from 'drizzle-orm';
+import { maySeeFlag } from '#shared/flag/may-act.ts';
 import { seesEveryPour } from '#shared/pour/pour-sight.ts';
 import type { Handle } from '../../db/database.ts';
 import { checkFits, checks } from '../../db/schema/check.ts';
 import { controlPoints, controlSets } from '../../db/schema/control.ts';
 import { fits } from '../../db/schema/fit.ts';
+import { flags } from '../../db/schema/flag.ts';
 import { models, revisions } from '../../db/schema/model.ts';
 import { pours } from '../../db/schema/pour.ts';
 import { setups, surveys } from '../../db/schema/survey.ts';
@@ -20,6 +22,7 @@ export async function readLineFacts(db: Handle, member: Member): Promise<LineFac
 		markCount: newestControlSetId === null ? null : await markCount(db, newestControlSetId),
 		...(await surveyFacts(db, siteId)),
 		newestCheck: await newestCheck(db, member, newestControlSetId),
+		flags: await flagsSeen(db, member),
 		pours: await poursSeen(db, member),
 	};
 }
@@ -70,7 +73,9 @@ async function newestCheck(db: Handle, { siteId, roles }: Member, newestControlS
 		.from(checks)
 		.innerJoin(revisions, eq(revisions.id, checks.revisionId))
 		.innerJoin(sheets, eq(sheets.id, checks.sheetId))
-		.where(and(eq(checks.siteId, siteId), inArray(checks.state, ['computing', 'trial', 'published'])))
+		.where(
+			and(eq(checks.siteId, siteId), inArray(checks.state, seesEveryPour(roles) ? ['computing', 'trial', 'published'] : ['published'])),
+		)
 		.orderBy(desc(checks.number))
 		.limit(1);
 	if (row === undefined) return null;
@@ -96,6 +101,15 @@ async function newestReadyNumber(db: Handle, modelId: string): Promise<number | 
 		.from(revisions)
 		.where(and(eq(revisions.modelId, modelId), eq(revisions.state, 'ready')));
 	return row?.number ?? null;
+}
+
+async function flagsSeen(db: Handle, member: Member): Promise<LineFacts['flags']> {
+	const rows = await db
+		.select({ state: flags.state, companyId: flags.companyId })
+		.from(flags)
+		.where(and(eq(flags.siteId, member.siteId), ne(flags.state, 'lapsed')));
+	const seen = rows.filter((row) => maySeeFlag(member, row));
+	return { open: seen.filter(({ state }) => state !== 'closed').length, closed: seen.filter(({ state }) => state === 'closed').length };
 }
 
 async function poursSeen(db: Handle, member: Member): Promise<LineFacts['pours']> {
