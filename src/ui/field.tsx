@@ -61,7 +61,7 @@ function useField(name: string) {
 }
 
 interface TextFieldProps extends FieldProps {
-	type?: 'text' | 'email' | 'password' | 'date' | 'search';
+	type?: 'text' | 'email' | 'password' | 'date' | 'datetime-local' | 'search';
 	autoComplete?: HTMLInputAutoCompleteAttribute;
 	/** Coordinates and codes. */
 	isMono?: boolean;

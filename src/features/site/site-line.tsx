@@ -14,17 +14,11 @@ const words: Record<Place, string> = {
 	records: 'Records',
 };
 
-/** Why a place cannot be gone to yet. */
-const notYet: Partial<Record<Place, string>> = {
-	flags: 'Nothing is published yet',
-};
-
 /** A site's line as knots with their addresses: "Check" leads to the newest check where there is one. */
 export function knotsOf(siteId: string, line: SiteLineState): LineKnot[] {
 	return line.knots.map(({ knot, state, figure }) => {
-		const whyNot = notYet[knot];
 		const path = knot === 'check' && line.newestCheckId !== null ? `checks/${line.newestCheckId}` : knot;
-		return { key: knot, word: words[knot], figure, state, to: whyNot ? null : `/sites/${siteId}/${path}`, ...(whyNot && { whyNot }) };
+		return { key: knot, word: words[knot], figure, state, to: `/sites/${siteId}/${path}` };
 	});
 }
 

@@ -27,6 +27,7 @@ import { CheckFilters } from './check-filters.tsx';
 import { CheckStrip } from './check-strip.tsx';
 import { CheckViewer } from './check-viewer.tsx';
 import { NothingShown } from './nothing-shown.tsx';
+import { PublishActs } from './publish-acts.tsx';
 import { StaleNotice } from './stale-notice.tsx';
 import { useCheckView } from './use-check-view.ts';
 import { usePoursOf } from './use-pours-of.ts';
@@ -161,9 +162,12 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			<CheckStrip check={check} />
 			<Headline
 				acts={
-					<Button onClick={() => csv.mutate()} isBusy={csv.isPending}>
-						Download CSV
-					</Button>
+					<>
+						<Button onClick={() => csv.mutate()} isBusy={csv.isPending}>
+							Download CSV
+						</Button>
+						<PublishActs check={check} siteId={siteId} />
+					</>
 				}
 			>
 				{headline}
