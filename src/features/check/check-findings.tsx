@@ -5,6 +5,8 @@ import { counted } from '#src/lib/format.ts';
 interface CheckFindingsProps {
 	findings: CheckDetail['findings'];
 	unmatchedPoints: CheckDetail['unmatchedPoints'];
+	/** What persons left out before the check, with their reasons. */
+	leftOut: NonNullable<CheckDetail['leftOut']>;
 	setupNameOf: (setupId: string) => string | null;
 }
 
@@ -12,16 +14,19 @@ interface CheckFindingsProps {
 const mostListed = 40;
 
 /** What a surveyor would say of the whole: the first finding in the line, all of them behind it. */
-export const CheckFindings = memo(function CheckFindings({ findings, unmatchedPoints, setupNameOf }: CheckFindingsProps) {
+export const CheckFindings = memo(function CheckFindings({ findings, unmatchedPoints, leftOut, setupNameOf }: CheckFindingsProps) {
 	const total = findings.length + (unmatchedPoints.length > 0 ? 1 : 0);
-	if (total === 0) return null;
+	const leftOutCount = leftOut.reduce((sum, { count }) => sum + count, 0);
+	const leftOutWords = `${counted(leftOutCount, 'checkpoint')} ${leftOutCount === 1 ? 'was' : 'were'} left out of this check by persons.`;
+	if (total === 0 && leftOutCount === 0) return null;
 	const unmatchedWords = `${counted(unmatchedPoints.length, 'point')} of the survey met no checkpoint.`;
-	const first = findings[0]?.message ?? unmatchedWords;
+	const first = findings[0]?.message ?? (unmatchedPoints.length > 0 ? unmatchedWords : leftOutWords);
 	return (
 		<details className="sheet group min-w-0 border-l-[7px] border-l-ink px-4 [&[open]>summary]:border-b [&[open]>summary]:border-b-hair">
 			<summary className="flex min-h-9.5 list-none items-center gap-3 py-1 pointer-coarse:min-h-12 [&::-webkit-details-marker]:hidden">
 				<span className="line-clamp-2 min-w-0 flex-1 leading-tight group-open:invisible">
-					<b>{counted(total, 'finding')}.</b> {first}
+					{total > 0 && <b>{counted(total, 'finding')}.</b>} {first}
+					{total > 0 && leftOutCount > 0 && <span className="text-second"> {leftOutWords}</span>}
 				</span>
 				<span className="shrink-0 text-action underline underline-offset-3">
 					<span className="group-open:hidden">Read</span>
@@ -47,6 +52,18 @@ export const CheckFindings = memo(function CheckFindings({ findings, unmatchedPo
 								</li>
 							))}
 							{unmatchedPoints.length > mostListed && <li>and {counted(unmatchedPoints.length - mostListed, 'more')}.</li>}
+						</ul>
+					</li>
+				)}
+				{leftOutCount > 0 && (
+					<li className="py-1">
+						{leftOutWords}
+						<ul className="m-0 list-none p-0 text-small text-second">
+							{leftOut.map(({ reason, by, count }) => (
+								<li key={`${by} ${reason}`}>
+									<span className="font-mono text-ink">{count}</span>: {reason} ({by})
+								</li>
+							))}
 						</ul>
 					</li>
 				)}

@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react';
 import type { RevisionDetail } from '#shared/model/contract.ts';
 import { FindingCard } from '#src/ui/finding-card.tsx';
 
@@ -19,14 +20,14 @@ const readingWords: Readonly<Record<string, string>> = {
 };
 
 /** What was found in the file: the sentence, and beneath it each reading with its figures, where there are two. */
-export function ModelFindings({ findings }: { findings: readonly Finding[] }) {
+export function ModelFindings({ findings, actsOf }: { findings: readonly Finding[]; actsOf?: (finding: Finding) => ReactNode }) {
 	if (findings.length === 0) return null;
 	return (
 		<section aria-label="What was found in the file" className="flex flex-col gap-3">
 			{findings.map((finding) => {
 				const readings = readingsOf(finding.evidence);
 				return (
-					<FindingCard key={finding.code + finding.message} title={finding.message}>
+					<FindingCard key={finding.code + finding.message} title={finding.message} acts={actsOf?.(finding)}>
 						{readings.length > 0 && (
 							<dl className="m-0 grid grid-cols-[auto_1fr] gap-x-4 gap-y-1">
 								{readings.map(([name, value]) => (

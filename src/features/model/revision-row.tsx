@@ -1,6 +1,8 @@
 import { useQueryClient } from '@tanstack/react-query';
+import type { ReactNode } from 'react';
 import { Link } from 'react-router-dom';
 import type { RevisionSummary } from '#shared/model/contract.ts';
+import { noLengthUnit } from '#shared/model/ifc-units.ts';
 import { api } from '#src/lib/api.ts';
 import { bytes, counted, isoMoment } from '#src/lib/format.ts';
 import { useJob } from '#src/lib/job-progress.ts';
@@ -14,10 +16,12 @@ interface RevisionRowProps {
 	timeZone: string;
 	/** The job of a reading may be looked at; a contractor sees the state alone. */
 	mayFollow: boolean;
+	/** What helps where the file names no length unit. */
+	act?: ReactNode;
 }
 
 /** One revision: read and ready, being read, or refused with its reason. */
-export function RevisionRow({ siteId, revision, isNewest, timeZone, mayFollow }: RevisionRowProps) {
+export function RevisionRow({ siteId, revision, isNewest, timeZone, mayFollow, act }: RevisionRowProps) {
 	const about = `${revision.fileName}, ${bytes(revision.fileBytes)}, ${isoMoment(revision.uploadedAt, timeZone)}, ${revision.uploadedBy}`;
 	if (revision.state === 'reading')
 		return mayFollow && revision.jobId ? (
@@ -32,6 +36,7 @@ export function RevisionRow({ siteId, revision, isNewest, timeZone, mayFollow }:
 			<Notice
 				kind={revision.state === 'failed' ? 'wrong' : 'note'}
 				title={`Revision ${revision.number} was ${revision.state === 'failed' ? 'not read' : 'stopped'}`}
+				act={revision.reason === noLengthUnit && act}
 			>
 				{revision.reason} {about}
 			</Notice>

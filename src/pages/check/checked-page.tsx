@@ -40,6 +40,8 @@ const viewerSide = 'h-[max(20rem,calc(100dvh-10.5rem))] min-h-0 min-w-0 tablet:h
 const cardSide =
 	'min-h-0 min-w-0 overflow-auto max-tablet:fixed max-tablet:inset-x-2 max-tablet:bottom-[5.25rem] max-tablet:z-10 max-tablet:max-h-[46dvh] max-tablet:rounded-corner max-tablet:shadow-lift';
 
+const noneLeftOut: NonNullable<CheckDetail['leftOut']> = [];
+
 type PhoneView = 'table' | 'plan' | 'model';
 
 /** A check that has its figures: strip, headline, wide rod, chips, then table and picture side by side with the chosen deviation. */
@@ -114,7 +116,7 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 	);
 
 	const isEmpty = check.deviations.every((row) => row.verdict === 'not-measured' || row.verdict === 'no-tolerance');
-	const hasFindings = check.findings.length > 0 || check.unmatchedPoints.length > 0;
+	const hasFindings = check.findings.length > 0 || check.unmatchedPoints.length > 0 || check.leftOut !== undefined;
 	const filters = <CheckFilters check={check} pours={pours} view={view} />;
 	const isTableShown = !isPhone || phoneView === 'table';
 	const viewer = (
@@ -182,7 +184,12 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			{hasFindings && (
 				<div className="mt-2 flex items-start gap-2 max-cabin:flex-wrap">
 					<div className="min-w-0 flex-1 basis-80">
-						<CheckFindings findings={check.findings} unmatchedPoints={check.unmatchedPoints} setupNameOf={setupNameOf} />
+						<CheckFindings
+							findings={check.findings}
+							unmatchedPoints={check.unmatchedPoints}
+							leftOut={check.leftOut ?? noneLeftOut}
+							setupNameOf={setupNameOf}
+						/>
 					</div>
 					{!isPhone && filters}
 				</div>

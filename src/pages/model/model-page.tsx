@@ -1,10 +1,14 @@
-import { useSuspenseQueries } from '@tanstack/react-query';
+import { useMutation, useQuery, useQueryClient, useSuspenseQueries } from '@tanstack/react-query';
 import { useNavigate, useParams } from 'react-router-dom';
+import { unitInWords, usualUnitsM } from '#shared/model/ifc-units.ts';
 import { mayWith } from '#shared/permissions.ts';
+import { ChooseReading, unitOption } from '#src/features/model/choose-reading.tsx';
 import { ModelUpload } from '#src/features/model/model-upload.tsx';
+import { PlacingPreview } from '#src/features/model/placing-preview.tsx';
 import { RevisionRow } from '#src/features/model/revision-row.tsx';
-import { api } from '#src/lib/api.ts';
+import { api, client } from '#src/lib/api.ts';
 import { counted } from '#src/lib/format.ts';
+import { Button } from '#src/ui/button.tsx';
 import { Headline } from '#src/ui/headline.tsx';
 import { Notice } from '#src/ui/notice.tsx';
 import { Strip } from '#src/ui/strip.tsx';
@@ -55,6 +59,7 @@ export default function ModelPage() {
 									isNewest={revision === model.revisions.find(({ state }) => state === 'ready')}
 									timeZone={site.timeZone}
 									mayFollow={mayFollow}
+									act={mayWrite && revision === model.revisions[0] && <UnitOfUnsaid siteId={siteId} modelId={model.modelId} />}
 								/>
 							))}
 						</section>
@@ -73,8 +78,33 @@ export default function ModelPage() {
 					) : (
 						<p className="m-0 text-second">Models are brought by the project engineer.</p>
 					)}
+					{mayWrite && models.length > 0 && (
+						<div className="mt-4">
+							<PlacingPreview siteId={siteId} />
+						</div>
+					)}
 				</section>
 			</div>
+		</>
+	);
+}
+
+/** Where a file names no length unit: choose it, then read again. */
+function UnitOfUnsaid({ siteId, modelId }: { siteId: string; modelId: string }) {
+	const queries = useQueryClient();
+	const said = useQuery(api.model.saidOfReading.queryOptions({ input: { siteId, modelId } })).data;
+	const again = useMutation({
+		mutationFn: () => client.model.readAgain({ siteId, modelId }),
+		onSuccess: () => queries.invalidateQueries({ queryKey: api.model.key() }),
+	});
+	return (
+		<>
+			<ChooseReading siteId={siteId} modelId={modelId} options={usualUnitsM.map(unitOption)} />
+			{said?.unit && (
+				<Button weight="act" isBusy={again.isPending} onClick={() => again.mutate()}>
+					Read it in {unitInWords(said.unit.metresPerUnit)}
+				</Button>
+			)}
 		</>
 	);
 }

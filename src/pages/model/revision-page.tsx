@@ -1,11 +1,13 @@
 import { useSuspenseQueries } from '@tanstack/react-query';
-import { useMemo, useRef, useState } from 'react';
+import { type ReactNode, useMemo, useRef, useState } from 'react';
 import { Link, useParams } from 'react-router-dom';
+import { z } from 'zod';
 import { mapScaleFinding } from '#shared/control/map-frame.ts';
 import type { RevisionDetail } from '#shared/model/contract.ts';
 import { AddCheckpointForm } from '#src/features/model/add-checkpoint-form.tsx';
 import { CheckpointTable } from '#src/features/model/checkpoint-table.tsx';
 import { ChooseBar } from '#src/features/model/choose-bar.tsx';
+import { ChooseReading, scaleOptions, unitOption } from '#src/features/model/choose-reading.tsx';
 import { ElementProperties } from '#src/features/model/element-properties.tsx';
 import { ElementTable } from '#src/features/model/element-table.tsx';
 import { FieldList } from '#src/features/model/field-list.tsx';
@@ -13,7 +15,9 @@ import { Georeference } from '#src/features/model/georeference.tsx';
 import { ModelFindings } from '#src/features/model/model-findings.tsx';
 import { placeToAddress, reasonsWithout, storeyOf, treeOf } from '#src/features/model/model-place.ts';
 import { ModelTree } from '#src/features/model/model-tree.tsx';
+import { NameAxisForm } from '#src/features/model/name-axis-form.tsx';
 import { NameBar } from '#src/features/model/name-bar.tsx';
+import { SaidOfReading } from '#src/features/model/said-of-reading.tsx';
 import { WithoutCheckpoints } from '#src/features/model/without-checkpoints.tsx';
 import { api } from '#src/lib/api.ts';
 import { counted } from '#src/lib/format.ts';
@@ -44,7 +48,9 @@ export default function RevisionPage() {
 	const { reading } = revision;
 	const newest = models.find(({ modelId }) => modelId === revision.modelId)?.revisions.find(({ state }) => state === 'ready');
 	const isNewest = newest?.revisionId === revisionId;
-	const [mayChoose, mayName] = [useMay('checkpoint.write'), useMay('mark.write') && isNewest];
+	const [mayChoose, mayName, mayRead] = [useMay('checkpoint.write'), useMay('mark.write') && isNewest, useMay('model.write')];
+	// Where the file brings a grid, marks are made of that.
+	const mayNameAxes = mayName && reading.grid.length <= (reading.choices?.axes.length ?? 0);
 
 	const {
 		isCheckpoints,
@@ -70,7 +76,17 @@ export default function RevisionPage() {
 		setTyped,
 		type,
 	} = useRevisionView(elements, checkpoints);
-	const [isPlacing, setPlacing] = useState(false);
+	const [pickFor, setPickFor] = useState<'checkpoint' | 'axis' | null>(null);
+	const [axisFrom, setAxisFrom] = useState<PickedOnModel | null>(null);
+	const pickingFor = (what: 'checkpoint' | 'axis'): void => {
+		setAxisFrom(null);
+		setPickFor(pickFor === what ? null : what);
+		if (pickFor !== what) setView('model');
+	};
+	const onPicked = (place: PickedOnModel): void => {
+		if (pickFor === 'axis' && axisFrom === null) setAxisFrom(place);
+		else setPicked(place);
+	};
 	const [picked, setPicked] = useState<PickedOnModel | null>(null);
 	const commands = useRef<ViewCommands | null>(null);
 	const tree = useMemo(() => treeOf(elements, reading.storeys), [elements, reading.storeys]);
@@ -116,8 +132,13 @@ export default function RevisionPage() {
 			</Headline>
 			<Georeference reading={reading} />
 			<div className="mt-3 mb-4">
-				<ModelFindings findings={reading.findings} />
+				<ModelFindings findings={reading.findings} actsOf={(finding) => mayRead && isNewest && readingActs(siteId, revision, finding)} />
 			</div>
+			{isNewest && (
+				<div className="mb-4">
+					<SaidOfReading siteId={siteId} modelId={revision.modelId} revisionId={revisionId} />
+				</div>
+			)}
 			<div className="mb-3 flex flex-wrap items-end gap-2.5">
 				<Segmented
 					legend="List"
@@ -207,25 +228,27 @@ export default function RevisionPage() {
 								chosenElement={chosenElement}
 								mode={view === 'model' ? 'model' : 'plan'}
 								onMode={(next) => setView(next === 'model' || isPhone ? next : null)}
-								isPlacing={isPlacing}
+								isPlacing={pickFor !== null}
 								commands={commands}
 								onChoose={chooseCheckpoint}
 								onElement={onEntity}
-								onPlace={setPicked}
+								onPlace={onPicked}
 							/>
 						</div>
 					)}
-					{mayChoose && isNewest && (!isPhone || shownOnPhone !== 'list') && (
-						<div className="flex flex-wrap gap-2">
-							<PressChip
-								onPress={() => {
-									setPlacing(!isPlacing);
-									if (!isPlacing) setView('model');
-								}}
-								title="Press a face of the model: a checkpoint of your own"
-							>
-								{isPlacing ? 'Stop placing' : 'Place a checkpoint'}
-							</PressChip>
+					{(mayChoose || mayNameAxes) && isNewest && (!isPhone || shownOnPhone !== 'list') && (
+						<div className="flex flex-wrap items-center gap-2">
+							{mayChoose && (
+								<PressChip onPress={() => pickingFor('checkpoint')} title="Press a face of the model: a checkpoint of your own">
+									{pickFor === 'checkpoint' ? 'Stop placing' : 'Place a checkpoint'}
+								</PressChip>
+							)}
+							{mayNameAxes && (
+								<PressChip onPress={() => pickingFor('axis')} title="Press two points of the model: an axis through both">
+									{pickFor === 'axis' ? 'Stop picking' : 'Name an axis'}
+								</PressChip>
+							)}
+							{pickFor === 'axis' && <span role="status">{axisFrom === null ? 'The first point' : 'The second point'}</span>}
 						</div>
 					)}
 					{chosenElement ? (
@@ -253,7 +276,23 @@ export default function RevisionPage() {
 			<div className="mt-6">
 				<WithoutCheckpoints reasons={reasons} onElement={chooseOnlyElement} />
 			</div>
-			{picked && pickedElement && (
+			{picked && pickFor === 'axis' && axisFrom && (
+				<NameAxisForm
+					siteId={siteId}
+					modelId={revision.modelId}
+					from={[axisFrom.place[0], axisFrom.place[1]]}
+					to={[picked.place[0], picked.place[1]]}
+					onNamed={() => {
+						setPicked(null);
+						setAxisFrom(null);
+					}}
+					onClose={() => {
+						setPicked(null);
+						setAxisFrom(null);
+					}}
+				/>
+			)}
+			{picked && pickedElement && pickFor !== 'axis' && (
 				<AddCheckpointForm
 					siteId={siteId}
 					revisionId={revisionId}
@@ -262,7 +301,7 @@ export default function RevisionPage() {
 					normal={picked.normal}
 					onAdded={(id) => {
 						setPicked(null);
-						setPlacing(false);
+						setPickFor(null);
 						setShow('checkpoints');
 						chooseCheckpoint(id);
 					}}
@@ -271,6 +310,19 @@ export default function RevisionPage() {
 			)}
 		</>
 	);
+}
+
+/** What may be chosen where a finding holds two readings against each other. */
+function readingActs(
+	siteId: string,
+	{ modelId }: RevisionDetail,
+	{ code, evidence }: RevisionDetail['reading']['findings'][number],
+): ReactNode {
+	if (code === 'map-scale') return <ChooseReading siteId={siteId} modelId={modelId} options={scaleOptions} />;
+	if (code !== 'unit-contradiction') return null;
+	const readings = z.array(z.object({ metresPerUnit: z.number() })).safeParse(evidence.readings);
+	const units = [...new Set(readings.data?.map(({ metresPerUnit }) => metresPerUnit) ?? [])];
+	return <ChooseReading siteId={siteId} modelId={modelId} options={units.map(unitOption)} />;
 }
 
 function headlineOf(elementCount: number, without: number, checkpointCount: number, leftOut: number): string {
