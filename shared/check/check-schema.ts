@@ -62,7 +62,7 @@ export const derivedResultSchema = z.object({
 	characteristic: z.enum(derivedCharacteristics),
 	/** In words: "leans along north over 2.4 m". */
 	label: z.string(),
-	/** plumb: the top over the bottom along an axis; section: + is thick; flatness: the greatest gap, or the band about the plane; bolt-distance: + is too far apart. */
+	/** plumb: the top over the bottom along an axis; section: + is thick; flatness: the greatest gap, or the band about the plane; bolt-distance: + is too far apart; group-shift: east or north; group-turn: anticlockwise, at the farthest mark; projection: + stands out too far. */
 	deviationMm: z.number(),
 	/** U with the covariance between the places; null where a part is not known. */
 	uncertaintyMm: z.number().nullable(),

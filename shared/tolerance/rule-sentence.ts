@@ -18,6 +18,9 @@ const characteristicWords: Readonly<Record<NonNullable<RuleMatch['characteristic
 	flatness: ', flatness under a straightedge',
 	'flatness-best-fit': ', flatness about the best-fit plane',
 	'bolt-distance': ', distances within a group',
+	'group-shift': ', shift of a group',
+	'group-turn': ', turn of a group at its farthest mark',
+	projection: ', projection over the concrete',
 };
 
 const sizeWords = { length: 'long', height: 'high', thickness: 'thick' } as const;

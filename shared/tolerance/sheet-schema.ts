@@ -5,7 +5,16 @@ import { z } from 'zod';
 export const characteristics = ['plan', 'level', 'face'] as const;
 export const characteristic = z.enum(characteristics);
 export type Characteristic = z.infer<typeof characteristic>;
-export const derivedCharacteristics = ['plumb', 'section', 'flatness', 'flatness-best-fit', 'bolt-distance'] as const;
+export const derivedCharacteristics = [
+	'plumb',
+	'section',
+	'flatness',
+	'flatness-best-fit',
+	'bolt-distance',
+	'group-shift',
+	'group-turn',
+	'projection',
+] as const;
 
 export const stages = ['before-pour', 'as-cast-shored', 'as-cast', 'later'] as const;
 export const stage = z.enum(stages);

@@ -226,6 +226,63 @@ describe('bolt distances', () => {
 	}, 60_000);
 });
 
+describe('bolt groups', () => {
+	const places = [at(3, 3, 0.2), at(3.4, 3, 0.2), at(3.4, 3.4, 0.2), at(3, 3.4, 0.2)];
+	const bolts = places.map((place, k) =>
+		aCheckpoint({ elementId: `b${k}`, characteristic: 'plan', direction: null, place, mark: `BC2-G-${k + 1}.P` }),
+	);
+	const elements = places.map((_, k) => anElement({ id: `b${k}`, class: 'IfcMechanicalFastener', mark: `BC2-G-${k + 1}` }));
+	const turned =
+		(turn: number, east: number, north: number) =>
+		(c: CheckInputCheckpoint): Vector3 => {
+			const [ce, cn] = at(3.2, 3.2, 0);
+			const [e, n] = [c.place[0] - ce, c.place[1] - cn];
+			return [east + (Math.cos(turn) - 1) * e - Math.sin(turn) * n, north + Math.sin(turn) * e + (Math.cos(turn) - 1) * n, 0];
+		};
+	it('tell shift and turn of the whole apart', () => {
+		const move = turned(0.01, 0.007, -0.004);
+		const shifts = derive(bolts, move, rule('group-shift', { lowerMm: -5, upperMm: 5 }), { elements });
+		expect(shifts.map(({ label }) => label)).toEqual(['BC2-G, 4 marks, shift east', 'BC2-G, 4 marks, shift north']);
+		expect(shifts[0]!.deviationMm).toBeCloseTo(7, 4);
+		expect(shifts[1]!.deviationMm).toBeCloseTo(-4, 4);
+		const [turn, ...others] = derive(bolts, move, rule('group-turn', { lowerMm: -5, upperMm: 5 }), { elements });
+		expect(others).toEqual([]);
+		expect(turn!.deviationMm).toBeCloseTo(Math.sin(0.01) * 200 * Math.SQRT2, 3);
+		expect(turn!.label).toBe('BC2-G, 4 marks, turn at 283 mm');
+	});
+	it('know the common part in the shift, and none of it in the turn', () => {
+		const setups = [aSetup({ commonMm: 50, pointSigmaM: [0.001, 0.001, 0.001] })];
+		const [shift] = derive(bolts, () => [0, 0, 0], rule('group-shift'), { elements, setups });
+		expect(shift!.uncertaintyMm).toBeGreaterThan(100);
+		const [turn] = derive(bolts, () => [0, 0, 0], rule('group-turn'), { elements, setups });
+		// Four shots of 1 mm on equal arms: σ of the turn at an arm is 1/√4 mm; the fit's own turn over 0.3 m adds next to nothing.
+		expect(turn!.uncertaintyMm).toBeCloseTo(1, 1);
+	});
+	it('are no groups where marks lie far apart', () => {
+		const far = bolts.map((bolt, k) => ({ ...bolt, place: at(3 * k, 0, 0.2) }));
+		expect(derive(far, () => [0, 0, 0], rule('group-shift'), { elements })).toEqual([]);
+	});
+	it('stand out of the nearest concrete below them, whatever the instrument’s height', () => {
+		const top = aCheckpoint({ elementId: 'b0', characteristic: 'level', direction: null, place: places[0]!, mark: 'BC2-G-1.T' });
+		const slab = (e: number, mark: string) =>
+			aCheckpoint({ elementId: 'slab', characteristic: 'level', direction: null, place: at(e, 3, 0), mark });
+		const projection: ToleranceRule = {
+			id: 'p',
+			match: { characteristic: 'projection', class: 'IfcMechanicalFastener' },
+			lowerMm: -5,
+			upperMm: 10,
+		};
+		const results = derive([top, slab(3.5, 'S1.T1'), slab(4.2, 'S1.T2')], (_c, k) => [0, 0, [0.006, -0.003, 0.02][k]!], projection, {
+			elements: [...elements, anElement({ id: 'slab', class: 'IfcSlab', mark: 'S1' })],
+			setups: [aSetup({ commonMm: 50, pointSigmaM: [0.001, 0.001, 0.001] })],
+		});
+		expect(results).toHaveLength(1);
+		expect(results[0]!.deviationMm).toBeCloseTo(9, 4);
+		expect(results[0]!.label).toBe('BC2-G-1, projection of 200 mm over S1.T1');
+		expect(results[0]!.uncertaintyMm).toBeCloseTo(2 * Math.SQRT2, 1);
+	});
+});
+
 it('nothing is derived without a rule that names it', () => {
 	expect(derive(column, () => [0, 0, 0], { id: 'all', match: {}, lowerMm: -1, upperMm: 1 })).toEqual([]);
 });

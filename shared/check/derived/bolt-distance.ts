@@ -3,7 +3,7 @@ import { pointNameKey } from '../../survey/point-name.ts';
 import type { DerivedFigure, MeasuredCheckpoint } from './linear-uncertainty.ts';
 
 /** Bolts further apart belong to no one group, metres; more than so many are no bolt group. */
-const groupSpanM = 1.5;
+export const groupSpanM = 1.5;
 const mostInGroup = 24;
 
 /** "BC2-G-3" → the key of "BC2-G": marks of a group differ in their last part. */
@@ -13,20 +13,27 @@ function groupKey(mark: string): string | null {
 	return cut > 0 ? key.slice(0, cut) : null;
 }
 
-/**
- * Distances within groups of marks in plan, as built less design, + is too far apart. A group is marks that differ in their last part alone and lie within
- * 1.5 m. What shifts or turns the whole group, fit and common part among them, changes no distance.
- */
-export function boltDistanceFigures(entries: readonly (MeasuredCheckpoint & { readonly elementMark: string })[]): DerivedFigure[] {
-	const groups = new Map<string, (MeasuredCheckpoint & { readonly elementMark: string })[]>();
+/** A measured checkpoint with its element's mark. */
+export type MarkedEntry = MeasuredCheckpoint & { readonly elementMark: string };
+
+/** Marks in plan that differ in their last part alone, two at least and at most 24. */
+export function markGroups(entries: readonly MarkedEntry[]): MarkedEntry[][] {
+	const groups = new Map<string, MarkedEntry[]>();
 	for (const entry of entries) {
 		if (entry.measured.offsetMm === null) continue;
 		const key = groupKey(entry.elementMark) ?? groupKey(entry.checkpoint.mark);
 		if (key !== null) groups.set(key, [...(groups.get(key) ?? []), entry]);
 	}
+	return [...groups.values()].filter((group) => group.length >= 2 && group.length <= mostInGroup);
+}
+
+/**
+ * Distances within groups of marks in plan, as built less design, + is too far apart. A group is marks that differ in their last part alone and lie within
+ * 1.5 m. What shifts or turns the whole group, fit and common part among them, changes no distance.
+ */
+export function boltDistanceFigures(entries: readonly MarkedEntry[]): DerivedFigure[] {
 	const figures: DerivedFigure[] = [];
-	for (const group of groups.values()) {
-		if (group.length < 2 || group.length > mostInGroup) continue;
+	for (const group of markGroups(entries)) {
 		for (let i = 1; i < group.length; i++) {
 			for (let j = 0; j < i; j++) {
 				const [p, q] = [group[j]!, group[i]!];

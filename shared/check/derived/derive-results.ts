@@ -5,7 +5,8 @@ import type { CheckInput, CheckInputElement } from '../check-input.ts';
 import type { DerivedResult } from '../check-schema.ts';
 import type { CheckedCheckpoint } from '../checked-checkpoint.ts';
 import { judge } from '../verdict.ts';
-import { boltDistanceFigures } from './bolt-distance.ts';
+import { boltDistanceFigures, type MarkedEntry } from './bolt-distance.ts';
+import { groupShiftFigures, groupTurnFigures, projectionFigures } from './bolt-group.ts';
 import { bestFitFigures, straightedgeFigures } from './flatness.ts';
 import { type DerivedFigure, linearUncertaintyMm, type MeasuredCheckpoint } from './linear-uncertainty.ts';
 import { plumbFigures } from './plumb.ts';
@@ -14,7 +15,7 @@ import { sectionFigures } from './section.ts';
 type Kind = DerivedResult['characteristic'];
 
 /**
- * Plumb, section, flatness and bolt distances, wherever the sheet has a rule for them. Their uncertainty has the covariance between the places
+ * Plumb, section, flatness and what bolt groups give, wherever the sheet has a rule for them. Their uncertainty has the covariance between the places
  * (DOMAIN.md: anything derived from two places uses J_p·Q·J_qᵀ), so that what fit and set-up share cancels where it does.
  */
 export function deriveResults(input: CheckInput, checked: readonly CheckedCheckpoint[]): DerivedResult[] {
@@ -43,14 +44,16 @@ export function deriveResults(input: CheckInput, checked: readonly CheckedCheckp
 		}).rule;
 	const results: DerivedResult[] = [];
 	for (const kind of kinds) {
-		if (kind === 'bolt-distance') {
-			const marked = [...byElement].flatMap(([elementId, entries]) => {
-				const element = elements.get(elementId)!;
-				if (ruleOf(element, kind) === null) return [];
-				const marks = entries.filter(({ measured }) => measured.offsetMm !== null);
-				return marks.map((entry) => ({ ...entry, elementMark: marks.length > 1 ? entry.checkpoint.mark : element.mark }));
+		if (isOfGroup(kind)) {
+			const hasRule = (elementId: string): boolean => ruleOf(elements.get(elementId)!, kind) !== null;
+			const marked = [...byElement].flatMap(([elementId, entries]): MarkedEntry[] => {
+				if (!hasRule(elementId)) return [];
+				const { mark } = elements.get(elementId)!;
+				const isAlone = entries.filter(({ measured }) => measured.offsetMm !== null).length <= 1;
+				return entries.map((entry) => ({ ...entry, elementMark: isAlone ? mark : entry.checkpoint.mark }));
 			});
-			for (const figure of boltDistanceFigures(marked)) {
+			const others = kind === 'projection' ? [...byElement].flatMap(([elementId, entries]) => (hasRule(elementId) ? [] : entries)) : [];
+			for (const figure of groupFigures(kind, marked, others)) {
 				const element = elements.get(figure.elementId)!;
 				results.push(judged(figure, kind, ruleOf(element, kind)!, element, input));
 			}
@@ -66,6 +69,23 @@ export function deriveResults(input: CheckInput, checked: readonly CheckedCheckp
 	return results;
 }
 
+const groupKinds = ['bolt-distance', 'group-shift', 'group-turn', 'projection'] as const;
+type GroupKind = (typeof groupKinds)[number];
+const isOfGroup = (kind: Kind): kind is GroupKind => groupKinds.some((one) => one === kind);
+
+function groupFigures(kind: GroupKind, marked: readonly MarkedEntry[], others: readonly MeasuredCheckpoint[]): DerivedFigure[] {
+	switch (kind) {
+		case 'bolt-distance':
+			return boltDistanceFigures(marked);
+		case 'group-shift':
+			return groupShiftFigures(marked);
+		case 'group-turn':
+			return groupTurnFigures(marked);
+		case 'projection':
+			return projectionFigures(marked, others);
+	}
+}
+
 function isMeasured(entry: CheckedCheckpoint): entry is MeasuredCheckpoint {
 	return entry.observation !== null && entry.measured !== null;
 }
@@ -74,7 +94,7 @@ function isMeasured(entry: CheckedCheckpoint): entry is MeasuredCheckpoint {
 const usualStraightedgeM = 4;
 
 function figuresOf(
-	kind: Exclude<Kind, 'bolt-distance'>,
+	kind: Exclude<Kind, GroupKind>,
 	elementId: string,
 	entries: readonly MeasuredCheckpoint[],
 	rule: ToleranceRule,
