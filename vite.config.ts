@@ -11,6 +11,7 @@ const serverPrograms = {
 	cli: 'server/cli.ts',
 	'read-ifc.worker': 'server/features/model/read-ifc.worker.ts',
 	'read-points.worker': 'server/features/survey/read-points.worker.ts',
+	'fit-report.worker': 'server/features/fit/fit-report.worker.ts',
 	'compute-check.worker': 'server/features/check/compute-check.worker.ts',
 	'copy-photo.worker': 'server/features/flag/copy-photo.worker.ts',
 	measure: 'server/scripts/measure.ts',

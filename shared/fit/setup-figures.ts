@@ -111,7 +111,8 @@ export function describeSetups(solved: Solved): AdjustedSetups {
 			shift,
 			sigmaGiven: true,
 			parameterCovariance: blockOf(cofactor, size, { at, unknowns }, { at, unknowns }),
-			rms: Math.sqrt(square / Math.max(standing.sightings.length, 1)),
+			// Against the control, as of any fit; against what all say where the set-up saw no control.
+			rms: pairs.length > 0 ? rmsOf(pairs) : Math.sqrt(square / Math.max(standing.sightings.length, 1)),
 			redundancy,
 			varianceFactor,
 			chiSquare,
@@ -140,6 +141,11 @@ export function describeSetups(solved: Solved): AdjustedSetups {
 		varianceFactor,
 		chiSquare,
 	};
+}
+
+function rmsOf(pairs: readonly FitPairResult[]): number {
+	const square = pairs.reduce((sum, { residual }) => sum + residual.reduce<number>((total, value) => total + (value ?? 0) ** 2, 0), 0);
+	return Math.sqrt(square / pairs.length);
 }
 
 type Unknowns = Pick<Standing, 'at' | 'unknowns'>;

@@ -1,6 +1,7 @@
 /**
- * How often a clean set raises a finding: `npx tsx tests/fit/false-alarms.ts SETS [sigma|none] [FROM]`. Sets of 4, 6, 10 and 40 pairs,
+ * How often a clean set raises a finding: `npx tsx tests/fit/false-alarms.ts SETS [sigma|none|even] [FROM]`. Sets of 4, 6, 10 and 40 pairs,
  * levelled and free; what geometry alone says (weak-geometry, far-from-targets, no-redundancy) is no alarm. One line a cell.
+ * none: without σ, and heights twice as coarse as plan; even: without σ, and all axes alike, as a fit without σ takes them to be.
  */
 import { computeFit } from '#shared/fit/compute-fit.ts';
 import { surveyScene } from './survey-scene.ts';
@@ -12,7 +13,7 @@ for (const count of [4, 6, 10, 40]) {
 		const codes: Record<string, number> = {};
 		let alarms = 0;
 		for (let k = 0; k < Number(sets); k++) {
-			const { input } = surveyScene(1_000_000 + Number(first) + k, fit, count, { sigmas: sigma === 'sigma' });
+			const { input } = surveyScene(1_000_000 + Number(first) + k, fit, count, { sigmas: sigma === 'sigma', isEven: sigma === 'even' });
 			const outcome = computeFit(input);
 			if (!outcome.ok) throw new Error(outcome.refusal.message);
 			const raised = outcome.result.findings.filter(({ code }) => !geometry.includes(code));

@@ -178,6 +178,7 @@ describe('the joint minimum', () => {
 			carryPoint(fit, [3, 4, 5]).forEach((value, k) => {
 				expect(Math.abs(value - carryPoint(single.result, [3, 4, 5])[k]!)).toBeLessThan(1e-7);
 			});
+			expect(Math.abs(fit.rms - single.result.rms)).toBeLessThan(1e-7);
 			expect(fit.pairs.map(({ name }) => name).sort()).toEqual(marks.map(({ mark }) => mark).sort());
 			for (const pair of fit.pairs) {
 				const other = single.result.pairs.find(({ name }) => name === pair.name)!;

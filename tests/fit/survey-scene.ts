@@ -19,8 +19,13 @@ export interface Scene {
 	normal: () => number;
 }
 
-/** @param spread metres across; @param noise factor on the σ */
-export function surveyScene(seed: number, fit: FitKind, count: number, { spread = 30, noise = 1, sigmas = true } = {}): Scene {
+/** @param spread metres across; @param noise factor on the σ; @param isEven all axes as coarse as plan */
+export function surveyScene(
+	seed: number,
+	fit: FitKind,
+	count: number,
+	{ spread = 30, noise = 1, sigmas = true, isEven = false } = {},
+): Scene {
 	const random = seededRandom(seed);
 	const normal = (): number => Array.from({ length: 12 }, random).reduce((sum, value) => sum + value, -6);
 	const rotation = Float64Array.of(1, 0, 0, 0, 1, 0, 0, 0, 1);
@@ -38,7 +43,7 @@ export function surveyScene(seed: number, fit: FitKind, count: number, { spread 
 		return sigmas ? { ...own, surveySigma, controlSigma } : own;
 	});
 	function shake(point: Triple, sigma: Triple): Triple {
-		return point.map((value, k) => value + noise * sigma[k]! * normal()) as Triple;
+		return point.map((value, k) => value + noise * sigma[isEven ? 0 : k]! * normal()) as Triple;
 	}
 	return { input: { fit, pairs }, trueSurvey, trueControl, rotation, random, normal };
 }

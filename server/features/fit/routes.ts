@@ -1,9 +1,9 @@
 import { siteRoutes } from '../../platform/guard.ts';
+import { runInThread } from '../../platform/run-in-thread.ts';
 import { requireSecondFactor } from '../../platform/second-factor.ts';
 import { adoptFit } from './adopt-fit.ts';
 import { confirmFit } from './confirm-fit.ts';
-import { fitReportPdf } from './fit-report.ts';
-import { fitReportData } from './fit-report-data.ts';
+import { type FitReportData, fitReportData } from './fit-report-data.ts';
 import { makeFit } from './make-fit.ts';
 import { fitTies, makeTogether } from './make-together.ts';
 import { fitOf, fitsOf } from './queries.ts';
@@ -32,7 +32,8 @@ export const fitRoutes = {
 	}),
 	report: siteRoutes.fit.report.handler(async ({ input, context: { platform, member } }) => {
 		const data = await fitReportData(platform.db, member.siteId, input.fitId, platform.now());
-		const bytes = await fitReportPdf(data);
+		const worker = { file: './fit-report.worker.ts', from: import.meta.url };
+		const bytes = await runInThread<FitReportData, Uint8Array>(worker, data);
 		return new File([bytes as Uint8Array<ArrayBuffer>], `fit-${data.fit.number}.pdf`, { type: 'application/pdf' });
 	}),
 	confirm: siteRoutes.fit.confirm.handler(async ({ input, context: { platform, member } }) => {
