@@ -46,7 +46,9 @@ for (let draw = 0; draw < draws; draw++) {
 	});
 	// The variance factor's test would widen one draw in forty; what is asked here is the plain U.
 	const setups = [aSetup({ fit: { ...fit, chiSquare: null, sigmaGiven: true }, commonMm, pointSigmaM })];
-	for (const { checkpointId, deviationMm, expandedUncertaintyMm: uncertaintyMm } of runCheck(aCheck({ checkpoints: places, points, setups })).deviations) {
+	for (const { checkpointId, deviationMm, expandedUncertaintyMm: uncertaintyMm } of runCheck(
+		aCheck({ checkpoints: places, points, setups }),
+	).deviations) {
 		const own = within.get(checkpointId)!;
 		if (deviationMm === null || uncertaintyMm === null) throw new Error(`${checkpointId} was not measured`);
 		if (Math.abs(deviationMm) <= 0.98 * uncertaintyMm) own.at95++;
