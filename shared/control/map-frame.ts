@@ -54,8 +54,8 @@ export function partialMapToDesign(
 	return [plan?.[0] ?? null, plan?.[1] ?? null, height === null ? null : (height - frame.originM[2]) / frame.scale];
 }
 
-/** Further from 1 than any grid/ground factor on land. */
-const oddScale = 0.01;
+/** Further from 1 than any grid/ground factor on land; the reading of a model asks from there on too. */
+const oddScale = 0.002;
 
 /**
  * Whether the scale contradicts the two units, as where a file in millimetres leaves out a scale of 0.001: what the file says (the standard

@@ -49,7 +49,8 @@ export async function uploadFile(wish: UploadWish): Promise<string> {
 			endpoint: '/api/uploads',
 			chunkSize: chunkBytes,
 			retryDelays: retryDelaysMs,
-			metadata: { siteId, fileName: file.name },
+			// "filename" is the name that tus servers look for.
+			metadata: { siteId, filename: file.name },
 			fingerprint: async () => fingerprintOf(wish),
 			removeFingerprintOnSuccess: true,
 			onProgress: (sent, whole) => onProgress?.(sent, whole),
