@@ -15,9 +15,14 @@ export async function sheetsOf(db: Handle, siteId: string): Promise<SheetSummary
 }
 
 /** One sheet of the site with its rules; NOT_FOUND for another site's. */
-export async function sheetOf(db: Handle, siteId: string, sheetId: string): Promise<SheetSummary & { sheet: ToleranceSheet }> {
+export async function sheetOf(
+	db: Handle,
+	siteId: string,
+	sheetId: string,
+): Promise<SheetSummary & { sheet: ToleranceSheet; contentSha256: string; issueReason: string | null }> {
 	const found = foundOne(await rowsOf(db).where(and(eq(sheets.siteId, siteId), eq(sheets.id, sheetId))));
-	return { ...summaryOf(found), sheet: found.row.sheet };
+	const { sheet, contentSha256, issueReason } = found.row;
+	return { ...summaryOf(found), sheet, contentSha256, issueReason };
 }
 
 function summaryOf({ row, issuedBy }: { row: typeof sheets.$inferSelect; issuedBy: string | null }): SheetSummary {

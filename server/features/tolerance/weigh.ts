@@ -1,0 +1,75 @@
+import { and, asc, desc, eq } from 'drizzle-orm';
+import { standingOf } from '#shared/check/standing.ts';
+import { type WeighedCheckpoint, weighSheet } from '#shared/check/weigh-sheet.ts';
+import { gridYawRad } from '#shared/model/grid-yaw.ts';
+import { seesEveryPour } from '#shared/pour/pour-sight.ts';
+import type { SheetWeight } from '#shared/tolerance/contract.ts';
+import type { ToleranceSheet } from '#shared/tolerance/sheet-schema.ts';
+import type { Handle } from '../../db/database.ts';
+import { elementOf } from '../../db/model-rows.ts';
+import { readMeasurements } from '../../db/read-measurements.ts';
+import { checks } from '../../db/schema/check.ts';
+import { checkpoints, elements, models, revisions } from '../../db/schema/model.ts';
+import { buildings } from '../../db/schema/site.ts';
+import type { Member } from '../../platform/platform.ts';
+
+const mostListed = 200;
+
+/**
+ * What a sheet would decide on the newest revisions, and which verdicts of all published checks and of the newest trial it would change. Who is only a
+ * contractor is told the counts, not what was measured of others' work.
+ */
+export async function sheetWeightOf(db: Handle, member: Member, sheet: ToleranceSheet): Promise<SheetWeight> {
+	const { siteId } = member;
+	const [trial] = await db
+		.select({ id: checks.id })
+		.from(checks)
+		.where(and(eq(checks.siteId, siteId), eq(checks.state, 'trial')))
+		.orderBy(desc(checks.number))
+		.limit(1);
+	const measured = await readMeasurements(db, { siteId, ...(trial && { withCheckId: trial.id }) });
+	const standings = new Map(standingOf(measured).map((one) => [`${one.modelId}\n${one.checkpointId}`, one.newest]));
+	const weights: ReturnType<typeof weighSheet>[] = [];
+	const newest = await db
+		.selectDistinctOn([revisions.modelId], { revision: revisions, building: buildings.name })
+		.from(revisions)
+		.innerJoin(models, eq(models.id, revisions.modelId))
+		.leftJoin(buildings, eq(buildings.id, models.buildingId))
+		.where(and(eq(revisions.siteId, siteId), eq(revisions.state, 'ready')))
+		.orderBy(revisions.modelId, desc(revisions.number));
+	for (const { revision, building } of newest) {
+		const rows = await db
+			.select({ checkpoint: checkpoints, element: elements })
+			.from(checkpoints)
+			.innerJoin(elements, eq(elements.id, checkpoints.elementId))
+			.where(eq(checkpoints.revisionId, revision.id))
+			.orderBy(asc(checkpoints.position));
+		const weighed = rows.map(({ checkpoint, element }): WeighedCheckpoint => {
+			const standing = standings.get(`${revision.modelId}\n${checkpoint.id}`);
+			const { class: className, storey, tag, mark, sizesM } = elementOf(element);
+			return {
+				checkpointId: checkpoint.id,
+				mark: element.title || mark,
+				label: checkpoint.label,
+				subject: { class: className, characteristic: checkpoint.characteristic, storey, building, tag, mark, sizesM },
+				deviation: standing?.deviation ?? null,
+				stage: standing?.stage ?? 'as-cast',
+			};
+		});
+		weights.push(weighSheet(sheet, weighed, gridYawRad(revision.reading?.grid ?? []) ?? 0));
+	}
+	const undecided = weights.flatMap((weight) => weight.undecided);
+	const changes = seesEveryPour(member.roles) ? weights.flatMap((weight) => weight.changes) : [];
+	return {
+		decides: sheet.rules.map((_, index) => weights.reduce((sum, { decides }) => sum + (decides[index] ?? 0), 0)),
+		undecidedCount: undecided.length,
+		undecided: undecided.slice(0, mostListed).map((one) => ({ ...one })),
+		changeCount: changes.length,
+		changes: changes.slice(0, mostListed).map(({ wasMm, isMm, ...rest }) => ({
+			...rest,
+			wasMm: wasMm === null ? null : [wasMm[0], wasMm[1]],
+			isMm: isMm === null ? null : [isMm[0], isMm[1]],
+		})),
+		faults: weights.flatMap((weight) => weight.faults).map((fault) => ({ ...fault })),
+	};
+}
