@@ -176,6 +176,17 @@ describe('the check page', () => {
 		expect(within(folded as HTMLElement).getByText('1 point of the survey met no checkpoint.')).toBeTruthy();
 	});
 
+	it('says what persons left out, how much, why and who, with findings and without', async () => {
+		const leftOut = [
+			{ reason: 'Behind the form', by: 'Jo Marsh', count: 3 },
+			{ reason: 'Cast against rock', by: 'Ana Reyes', count: 1 },
+		];
+		await show(aCheck({ findings: [], unmatchedPoints: [], leftOut }));
+		expect(screen.getAllByText('4 checkpoints were left out of this check by persons.', { exact: false }).length).toBeGreaterThan(0);
+		expect(screen.getByText(': Behind the form (Jo Marsh)', { exact: false }).textContent).toBe('3: Behind the form (Jo Marsh)');
+		expect(screen.queryByText('0 findings', { exact: false })).toBeNull();
+	});
+
 	it('shows how far the computing is instead of half the figures, and why there is no result', async () => {
 		await show(aCheck({ state: 'computing', jobId: checkId, deviations: [], elements: [] }));
 		expect(screen.getByRole('heading', { level: 1 }).textContent).toBe('Check 3 is being computed');
