@@ -59,8 +59,12 @@ export function FlagTable({ siteId, flags, chosen, onChoose, timeZone, now, empt
 				head: 'Flag',
 				isRowHead: true,
 				cell: (flag) => (
-					<Link to={`/sites/${siteId}/flags/${flag.flagId}`} className="flex items-center gap-2.5 text-ink no-underline hover:underline">
-						<Glyph kind={flag.verdict === 'outside' ? (flag.kind === 'plan' ? 'plan' : 'proud') : 'close'} />
+					<Link
+						to={`/sites/${siteId}/flags/${flag.flagId}`}
+						className="flex w-0 min-w-full items-center gap-2.5 text-ink no-underline hover:underline"
+					>
+						{/* Which way an element is off is its points' to say: a wedge here could point the wrong way. */}
+						<span className="w-4.5 shrink-0">{flag.verdict !== 'outside' && <Glyph kind="close" />}</span>
 						<span className="min-w-0 leading-tight">
 							<span className="block truncate font-strong">{flagTitle(flag)}</span>
 							<span className="block truncate text-small text-second">

@@ -1,5 +1,6 @@
 import { useQuery, useQueryClient } from '@tanstack/react-query';
 import { useState } from 'react';
+import { useFormContext } from 'react-hook-form';
 import { z } from 'zod';
 import type { CheckDetail, PublishPlan } from '#shared/check/contract.ts';
 import { ReasonDialog } from '#src/features/fit/reason-dialog.tsx';
@@ -132,15 +133,20 @@ function PublishForm({ plan, input, onClose, onDone }: PublishFormProps) {
 					beside={<Button onClick={onClose}>Not yet</Button>}
 					next="Contractors see the check of their pours from now on, and are told by mail."
 				>
-					{publishWords(plan)}
+					<PublishWords plan={plan} />
 				</Submit>
 			</Form>
 		</div>
 	);
 }
 
-/** "Publish: 6 flags to Fennick Forms". */
-function publishWords({ companies }: PublishPlan): string {
+/** "Publish: 6 flags to Fennick Forms, answer by Fri 5 Dec 17:00", by the deadline that stands in the field. */
+function PublishWords({ plan: { companies } }: { plan: PublishPlan }) {
+	const { timeZone } = useSite();
+	const now = useNow();
+	const typed = new Date(String(useFormContext().watch('answerBy')));
 	const said = companies.filter(({ name }) => name !== null).map(({ name, flags }) => `${counted(flags, 'flag')} to ${name}`);
-	return said.length === 0 ? 'Publish: no flag' : `Publish: ${said.join(', ')}`;
+	if (said.length === 0) return 'Publish: no flag to a contractor';
+	const deadline = Number.isNaN(typed.getTime()) ? '' : `, answer by ${moment(typed, timeZone, now)}`;
+	return `Publish: ${said.join(', ')}${deadline}`;
 }
