@@ -56,6 +56,11 @@ async function pagesOf(page: Page): Promise<[string, string][]> {
 	return [
 		['sites', '/sites'],
 		['board', site],
+		['people', `${site}/people`],
+		['record of acts', `${site}/audit`],
+		['settings', `${site}/settings`],
+		['account', '/account'],
+		['mailbox', '/mailbox'],
 		['model', `${site}/model`],
 		['revision', revision],
 		['control', `${site}/control`],

@@ -97,6 +97,7 @@ export const routes: RouteObject[] = [
 								word: 'Records',
 							}),
 							besidePage('audit', () => import('#src/pages/audit/audit-page.tsx')),
+							besidePage('settings', () => import('#src/pages/settings/settings-page.tsx')),
 							besidePage('people', () => import('#src/pages/people/people-page.tsx')),
 							{ path: '*', lazy: page(() => import('#src/pages/not-found/not-found-page.tsx')) },
 						],

@@ -5,6 +5,7 @@ import type { Transaction } from '../../db/database.ts';
 import { sheets } from '../../db/schema/tolerance.ts';
 import { audit } from '../../platform/audit.ts';
 import type { Member } from '../../platform/platform.ts';
+import { requireSecondFactor } from '../../platform/second-factor.ts';
 
 /** A sheet with the hash of its canonical text, made before the transaction. */
 export interface SheetToIssue {
@@ -21,6 +22,7 @@ export async function sheetToIssue(sheetId: string, sheet: ToleranceSheet): Prom
 /** Issues a sheet as the site's next revision; the one issued before is superseded, never edited. */
 export async function issueSheet(tx: Transaction, member: Member, toIssue: SheetToIssue, issueReason: string, now: Date): Promise<void> {
 	const { siteId } = member;
+	await requireSecondFactor(tx, member);
 	await tx
 		.update(sheets)
 		.set({ state: 'superseded' })

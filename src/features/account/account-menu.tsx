@@ -71,7 +71,7 @@ export function AccountMenu({ person, role, onSignedOut }: AccountMenuProps) {
 						onClick={closeMenu}
 						className="inline-flex text-action underline underline-offset-3 min-h-6 items-center pointer-coarse:min-h-12"
 					>
-						Your account: sessions, password
+						Your account: sessions, sign-in, units
 					</Link>
 				</p>
 				<Button onClick={() => signOut.mutate({})} isBusy={signOut.isPending}>

@@ -1,24 +1,34 @@
-import { useMutation, useQueryClient } from '@tanstack/react-query';
+import { useMutation } from '@tanstack/react-query';
 import { signInInput } from '#shared/account/contract.ts';
 import { api } from '#src/lib/api.ts';
 import { TextField } from '#src/ui/field.tsx';
 import { Form, Submit } from '#src/ui/form.tsx';
+import { stepTokenOf } from './second-factor-asked.ts';
+import { useCameIn } from './use-came-in.ts';
 
-/** E-mail address and password; tells the rest of the program who came in. */
-export function SignInForm({ onSignedIn }: { onSignedIn: () => void }) {
-	const queries = useQueryClient();
-	const signIn = useMutation(
-		api.account.signIn.mutationOptions({
-			onSuccess: (person) => {
-				// What another person saw on this device is forgotten first.
-				queries.clear();
-				queries.setQueryData(api.account.me.queryKey(), person);
-				onSignedIn();
-			},
-		}),
-	);
+interface SignInFormProps {
+	onSignedIn: () => void;
+	/** The password was right, and a second code is asked. */
+	onSecond: (stepToken: string) => void;
+}
+
+/** E-mail address and password. */
+export function SignInForm({ onSignedIn, onSecond }: SignInFormProps) {
+	const signIn = useMutation(api.account.signIn.mutationOptions({ onSuccess: useCameIn(onSignedIn) }));
 	return (
-		<Form schema={signInInput} values={{ email: '', password: '' }} onSubmit={signIn.mutateAsync}>
+		<Form
+			schema={signInInput}
+			values={{ email: '', password: '' }}
+			onSubmit={async (values) => {
+				try {
+					await signIn.mutateAsync(values);
+				} catch (error) {
+					const stepToken = stepTokenOf(error);
+					if (stepToken === null) throw error;
+					onSecond(stepToken);
+				}
+			}}
+		>
 			<TextField name="email" type="email" label="E-mail address" autoComplete="username" />
 			<TextField name="password" type="password" label="Password" autoComplete="current-password" />
 			<Submit>Sign in</Submit>

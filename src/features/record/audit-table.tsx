@@ -15,8 +15,25 @@ interface AuditTableProps {
 /** Who did what, as what, when: the newest first. */
 export function AuditTable({ entries, timeZone, roleWords, chosenId, onChoose }: AuditTableProps) {
 	const columns: Column<AuditLine>[] = [
-		{ key: 'at', head: 'When', cell: ({ at }) => <span className="whitespace-nowrap">{isoMoment(at, timeZone)}</span>, widthPx: 150 },
-		{ key: 'kind', head: 'Act', isRowHead: true, cell: ({ kind }) => kindWords(kind) },
+		{
+			key: 'at',
+			head: 'When',
+			cell: ({ at }) => <span className="whitespace-nowrap">{isoMoment(at, timeZone)}</span>,
+			widthPx: 150,
+			onlyFrom: 'tablet',
+		},
+		{
+			key: 'kind',
+			head: 'Act',
+			isRowHead: true,
+			// On a phone there is no room for a column of times: they stand above the words.
+			cell: ({ at, kind }) => (
+				<>
+					<span className="block text-small leading-tight font-normal text-second tablet:hidden">{isoMoment(at, timeZone)}</span>
+					{kindWords(kind)}
+				</>
+			),
+		},
 		{ key: 'who', head: 'Who', cell: ({ who }) => who?.name ?? 'whoever had the link' },
 		{ key: 'as', head: 'As', cell: ({ roles }) => roleWords(roles), onlyFrom: 'cabin' },
 		{ key: 'what', head: 'Details', cell: ({ data }) => <span className="line-clamp-1">{detailWords(data)}</span>, onlyFrom: 'desk' },

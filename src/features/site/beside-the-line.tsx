@@ -6,6 +6,7 @@ export function BesideTheLine({ siteId }: { siteId: string }) {
 	const mayAudit = useMay('audit.see');
 	const places = [
 		{ path: 'people', word: 'People', what: 'who is on the site, in which role, for which firm' },
+		{ path: 'settings', word: 'Site settings', what: 'working days, who agrees to what, checkpoints' },
 		...(mayAudit ? [{ path: 'audit', word: 'Record of acts', what: 'who did what, as what, and when' }] : []),
 	];
 	return (

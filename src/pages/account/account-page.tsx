@@ -1,10 +1,12 @@
 import { ChangePasswordForm } from '#src/features/account/change-password-form.tsx';
+import { PreferencesForm } from '#src/features/account/preferences-form.tsx';
+import { SecondFactors } from '#src/features/account/second-factors.tsx';
 import { SessionList } from '#src/features/account/session-list.tsx';
 import { useMe } from '#src/lib/session.ts';
 import { Headline } from '#src/ui/headline.tsx';
 import { Strip } from '#src/ui/strip.tsx';
 
-/** One's own account: where one is signed in, and the password. */
+/** One's own account: where one is signed in, what is asked at sign-in, and how one reads the product. */
 export default function AccountPage() {
 	const me = useMe();
 	return (
@@ -16,6 +18,18 @@ export default function AccountPage() {
 					Where you are signed in
 				</h2>
 				<SessionList />
+			</section>
+			<section aria-labelledby="factors" className="mb-8">
+				<h2 id="factors" className="m-0 mb-2 text-h2 font-strong">
+					Besides the password
+				</h2>
+				<SecondFactors />
+			</section>
+			<section aria-labelledby="preferences" className="mb-8">
+				<h2 id="preferences" className="m-0 mb-2 text-h2 font-strong">
+					How you read it
+				</h2>
+				<PreferencesForm />
 			</section>
 			<section aria-labelledby="password">
 				<h2 id="password" className="m-0 mb-2 text-h2 font-strong">

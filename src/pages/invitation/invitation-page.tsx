@@ -1,7 +1,7 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { Link, useLocation, useNavigate, useSearchParams } from 'react-router-dom';
 import { NewPersonForm } from '#src/features/account/new-person-form.tsx';
-import { SignInForm } from '#src/features/account/sign-in-form.tsx';
+import { SignInWays } from '#src/features/account/sign-in-ways.tsx';
 import { InvitationCard } from '#src/features/site/invitation-card.tsx';
 import { api } from '#src/lib/api.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
@@ -77,7 +77,7 @@ function Accept({ token, isKnown, isSignedIn }: { token: string; isKnown: boolea
 		return (
 			<>
 				<p className="m-0 mb-3">This address has an account here. Sign in with it, then accept.</p>
-				<SignInForm onSignedIn={() => undefined} />
+				<SignInWays onSignedIn={() => undefined} />
 			</>
 		);
 	}

@@ -1,6 +1,6 @@
 import { useQuery } from '@tanstack/react-query';
 import { Link, Navigate, useNavigate, useSearchParams } from 'react-router-dom';
-import { SignInForm } from '#src/features/account/sign-in-form.tsx';
+import { SignInWays } from '#src/features/account/sign-in-ways.tsx';
 import { api } from '#src/lib/api.ts';
 import { Headline } from '#src/ui/headline.tsx';
 import { Mark } from '#src/ui/mark.tsx';
@@ -24,7 +24,7 @@ export default function SignInPage() {
 				<p className="m-0 mb-5 text-second">
 					{back === '/sites' ? 'Sign in to see your sites.' : 'Sign in; you will be brought to the page you asked for.'}
 				</p>
-				<SignInForm onSignedIn={() => navigate(back, { replace: true })} />
+				<SignInWays onSignedIn={() => navigate(back, { replace: true })} />
 			</main>
 			<footer className="mt-4 text-small text-second">
 				<Link to="/reset" className="inline-flex text-action underline underline-offset-3 min-h-6 items-center pointer-coarse:min-h-12">
