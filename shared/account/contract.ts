@@ -6,7 +6,7 @@ import { newPassword } from './password-rule.ts';
 import { person } from './person.ts';
 import { preferences } from './preferences.ts';
 
-export const signInInput = z.object({
+export const signInInput = z.strictObject({
 	email: z.email('Write an e-mail address.').max(200),
 	password: z.string().min(1, 'Write your password.').max(200),
 });
@@ -48,7 +48,7 @@ export const accountContract = {
 	askReset: base
 		.meta({ permission: 'public' })
 		.errors(tooMany)
-		.input(z.object({ email: emailAddress }))
+		.input(z.strictObject({ email: emailAddress }))
 		.output(done),
 	/** By the mailed link: a new password; every session of the person ends. */
 	resetPassword: base
@@ -57,19 +57,19 @@ export const accountContract = {
 			...tooMany,
 			NOT_FOUND: { status: 404, message: 'This link does not hold: it was used, a newer one was sent, or its half hour is over.' },
 		})
-		.input(z.object({ token: secretToken, password: newPassword }))
+		.input(z.strictObject({ token: secretToken, password: newPassword }))
 		.output(done),
 	/** The other sessions end. */
 	changePassword: base
 		.meta({ permission: 'signed-in' })
 		.errors({ ...tooMany, WRONG: { status: 422, message: 'This is not your password.' } })
-		.input(z.object({ current: z.string().min(1, 'Write your password.').max(200), password: newPassword }))
+		.input(z.strictObject({ current: z.string().min(1, 'Write your password.').max(200), password: newPassword }))
 		.output(done),
 	sessions: base.meta({ permission: 'signed-in' }).output(z.array(ownSession)),
 	/** One of one's own; null: all but this one. */
 	endSessions: base
 		.meta({ permission: 'signed-in' })
-		.input(z.object({ sessionId: z.string().nullable() }))
+		.input(z.strictObject({ sessionId: z.string().nullable() }))
 		.output(z.object({ ended: z.number().int() })),
 	preferences: base.meta({ permission: 'signed-in' }).output(preferences),
 	savePreferences: base.meta({ permission: 'signed-in' }).input(preferences).output(preferences),

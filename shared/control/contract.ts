@@ -58,7 +58,7 @@ export const controlContract = {
 				reading: pointTableReading,
 				/** Where the file gives no σ; null: none is known. */
 				defaultSigmaM: z
-					.object({
+					.strictObject({
 						plan: z.number().positive().max(10),
 						height: z.number().positive().max(10),
 					})

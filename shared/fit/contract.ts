@@ -13,7 +13,7 @@ export const pairUses = ['all', 'plan', 'level'] as const;
 export const pairUse = z.enum(pairUses);
 export type PairUse = z.infer<typeof pairUse>;
 
-export const shelving = z.object({
+export const shelving = z.strictObject({
 	name: z.string().max(60),
 	shelf,
 	/** Why it does not lie in the fit, whole and as it was labelled. */
@@ -26,7 +26,7 @@ export const shelving = z.object({
 export type Shelving = z.infer<typeof shelving>;
 
 /** A target that was found to be a mark though it is named otherwise, or not at all. */
-export const relabelling = z.object({
+export const relabelling = z.strictObject({
 	target: z.string().min(1).max(60),
 	mark: z.string().min(1).max(60),
 	reason: plainText(300),
@@ -36,7 +36,7 @@ export type Relabelling = z.infer<typeof relabelling>;
 const vector = z.tuple([z.number(), z.number(), z.number()]);
 
 /** Who answers for the survey, as printed; every part may be blank. */
-export const surveyorInCharge = z.object({
+export const surveyorInCharge = z.strictObject({
 	name: z.string().trim().max(80),
 	licence: z.string().trim().max(60),
 	jurisdiction: z.string().trim().max(80),
@@ -180,7 +180,7 @@ export const fitContract = {
 				controlSetId: z.uuid(),
 				setups: z
 					.array(
-						z.object({
+						z.strictObject({
 							setupId: z.uuid(),
 							shelves: z.array(shelving).max(500),
 							relabellings: z.array(relabelling).max(500).optional(),

@@ -76,7 +76,7 @@ export const modelContract = {
 		.input(
 			siteInput.extend({
 				uploadId: z.string().min(8).max(80),
-				model: z.union([z.object({ modelId: z.uuid() }), z.object({ newName: plainText(60) })]),
+				model: z.union([z.strictObject({ modelId: z.uuid() }), z.strictObject({ newName: plainText(60) })]),
 			}),
 		)
 		.output(z.object({ revisionId: z.uuid(), jobId: z.uuid() })),
@@ -103,7 +103,7 @@ export const modelContract = {
 		.input(
 			revisionInput.extend({
 				marks: z
-					.array(z.object({ elementId: z.uuid(), mark: newMark }))
+					.array(z.strictObject({ elementId: z.uuid(), mark: newMark }))
 					.min(1)
 					.max(2000),
 			}),

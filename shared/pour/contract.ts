@@ -12,7 +12,7 @@ export const pourSummary = z.object({
 });
 export type PourSummary = z.infer<typeof pourSummary>;
 
-export const pourForm = z.object({
+export const pourForm = z.strictObject({
 	number: plainText(12),
 	name: plainText(60),
 	companyId: z.uuid(),
@@ -20,7 +20,7 @@ export const pourForm = z.object({
 	/** The model whose elements are concreted together, and which: whole storeys' classes. */
 	modelId: z.uuid(),
 	elements: z
-		.array(z.object({ storey: z.string().max(200), class: z.string().max(60) }))
+		.array(z.strictObject({ storey: z.string().max(200), class: z.string().max(60) }))
 		.min(1, 'Choose at least one kind of element.')
 		.max(200),
 });

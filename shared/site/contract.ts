@@ -35,7 +35,11 @@ export const siteDetail = siteSummary.extend({
 });
 
 /** The owner's contact is invited as the first owner's representative, who names all later ones. */
-export const foundSiteInput = z.object({ name: plainText(80), timeZone: plainText(60), ownersContact: emailAddress.nullable().optional() });
+export const foundSiteInput = z.strictObject({
+	name: plainText(80),
+	timeZone: plainText(60),
+	ownersContact: emailAddress.nullable().optional(),
+});
 
 export const siteContract = {
 	list: base.meta({ permission: 'signed-in' }).output(z.array(siteSummary)),

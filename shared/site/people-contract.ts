@@ -69,10 +69,10 @@ export const inviteInput = siteInput.extend({
 });
 export const giveRoleInput = siteInput.extend({ userId: z.uuid(), role, companyId: z.uuid().nullable(), isLead: z.boolean() });
 export const nameDeputyInput = siteInput.extend({ email: emailAddress, role, fromAt: z.date(), untilAt: z.date() });
-export const acceptInput = z.object({
+export const acceptInput = z.strictObject({
 	token: secretToken,
 	/** Asked only of a person who is new here. */
-	newPerson: z.object({ name: plainText(80), password: newPassword }).nullable(),
+	newPerson: z.strictObject({ name: plainText(80), password: newPassword }).nullable(),
 });
 
 /** What a link opens, before anything is accepted. */
@@ -142,7 +142,7 @@ export const peopleContract = {
 		.meta({ permission: 'company.write' })
 		.input(siteInput.extend({ companyId: z.uuid(), name: plainText(80) }))
 		.output(done),
-	openInvitation: byLink.input(z.object({ token: secretToken })).output(openInvitation),
+	openInvitation: byLink.input(z.strictObject({ token: secretToken })).output(openInvitation),
 	acceptInvitation: byLink.input(acceptInput).output(z.object({ siteId: z.uuid() })),
-	declineInvitation: byLink.input(z.object({ token: secretToken })).output(done),
+	declineInvitation: byLink.input(z.strictObject({ token: secretToken })).output(done),
 };

@@ -13,7 +13,7 @@ export const setupInput = z.object({
 	bringsScale: z.boolean(),
 	/** For points that bring none; null: not known. */
 	pointSigmaM: z
-		.object({
+		.strictObject({
 			plan: z.number().positive().max(10),
 			height: z.number().positive().max(10),
 		})
@@ -127,8 +127,8 @@ export const surveyContract = {
 		.input(
 			siteInput.extend({
 				uploadId: z.string().min(8).max(80),
-				survey: surveyForm,
-				setups: z.array(setupInput).min(1).max(50),
+				survey: surveyForm.strict(),
+				setups: z.array(setupInput.strict()).min(1).max(50),
 				reading: pointTableReading,
 			}),
 		)

@@ -17,7 +17,7 @@ export type Answer = z.infer<typeof answer>;
 /** in-instrument: set at the instrument · afterwards: applied to the distances later · not-applied. Once only, or the distances are wrong by it twice. */
 export const ppmPlaces = ['', 'in-instrument', 'afterwards', 'not-applied'] as const;
 
-export const surveyObservation = z.object({
+export const surveyObservation = z.strictObject({
 	certificate: line(60),
 	/** "2026-03-01" or ''. */
 	calibratedOn: z.union([z.literal(''), z.iso.date('Write the date as 2026-12-01.')]),
@@ -39,7 +39,7 @@ export const surveyObservation = z.object({
 });
 export type SurveyObservation = z.infer<typeof surveyObservation>;
 
-export const setupObservation = z.object({
+export const setupObservation = z.strictObject({
 	targetHeightM: maybe(-10, 10, 'm'),
 	/** The first target sighted again at the end, less at the beginning. */
 	closingMm: maybe(0, 1000, 'mm'),

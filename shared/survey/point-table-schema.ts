@@ -24,7 +24,7 @@ export const pointFields = [
 export const pointField = z.enum(pointFields);
 export type PointField = z.infer<typeof pointField>;
 
-export const pointTableReading = z.object({
+export const pointTableReading = z.strictObject({
 	encoding: z.enum(['utf-8', 'utf-16le', 'utf-16be', 'windows-1252']),
 	delimiter: z.enum([',', ';', '\t', ' ']),
 	decimalMark: z.enum(['.', ',']),

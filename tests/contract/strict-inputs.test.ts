@@ -34,7 +34,7 @@ describe('the inputs of the contract', () => {
 		const loose = inputsOf(contract)
 			.flatMap(([path, schema]) => looseIn(schema, path))
 			.filter((path) => !readByNobody.test(path));
-		expect(loose.join("\n")).toBe("");
+		expect(loose.join('\n')).toBe('');
 	});
 
 	it('are looked into: a loose object within an array within a union would be found', () => {

@@ -15,7 +15,7 @@ export function PasskeyPress({ onSignedIn }: { onSignedIn: () => void }) {
 	return (
 		<div className="flex flex-col gap-2">
 			<Button isBusy={open.isPending} onClick={() => open.mutate()}>
-				Sign in with a passkey
+				With a passkey
 			</Button>
 			{open.error !== null && (
 				<p role="alert" className="m-0">
