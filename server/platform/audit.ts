@@ -26,7 +26,7 @@ export async function audit(tx: Transaction, actor: Member | SignedIn | Nobody, 
 		roles: [...(member?.roles ?? [])],
 		kind: entry.kind,
 		subjectId: entry.subjectId,
-		data: entry.data,
+		data: { ...entry.data, ...inStead(member) },
 		address: actor.address ?? null,
 		at: sql`now()`,
 	});
@@ -41,9 +41,14 @@ export async function auditEach(tx: Transaction, member: Member, entries: readon
 		roles: [...member.roles],
 		kind,
 		subjectId,
-		data,
+		data: { ...data, ...inStead(member) },
 		address: member.address ?? null,
 		at: now,
 	}));
 	await insertRows(tx, auditEntries, rows);
+
+/** A deputy's act says in whose stead, by role. */
+function inStead(member: Member | null): { asDeputyOf?: string[] } {
+	const held = member?.asDeputyOf ?? [];
+	return held.length === 0 ? {} : { asDeputyOf: held.map(({ role, name }) => `${name} (${role})`) };
 }

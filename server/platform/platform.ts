@@ -104,4 +104,6 @@ export interface Member extends SignedIn {
 	siteId: string;
 	roles: readonly Role[];
 	companyIds: readonly string[];
+	/** Roles held as somebody's deputy; absent: none. */
+	asDeputyOf?: readonly { role: Role; name: string }[];
 }

@@ -174,7 +174,8 @@ async function ask(path: string, caller: string, input: unknown = { siteId }): P
 	});
 	if (answer.ok) return 'let in';
 	const { json } = await answer.json();
-	return json.code === 'BAD_REQUEST' ? 'let in' : json.code;
+	// REFUSED is the command's own word: the guard had let the caller in.
+	return json.code === 'BAD_REQUEST' || json.code === 'REFUSED' ? 'let in' : json.code;
 }
 
 describe('every route of the contract', () => {
