@@ -46,6 +46,7 @@ export async function auditEach(tx: Transaction, member: Member, entries: readon
 		at: now,
 	}));
 	await insertRows(tx, auditEntries, rows);
+}
 
 /** A deputy's act says in whose stead, by role. */
 function inStead(member: Member | null): { asDeputyOf?: string[] } {
