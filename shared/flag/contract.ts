@@ -94,7 +94,7 @@ export type FlagDetail = z.infer<typeof flagDetail>;
 
 /** The flags an act is on, each with the version its doer saw. */
 const targets = z
-	.array(z.object({ flagId: z.uuid(), version: z.number().int() }))
+	.array(z.strictObject({ flagId: z.uuid(), version: z.number().int() }))
 	.min(1, 'Choose a flag first.')
 	.max(1000);
 const acted = z.object({ changed: z.number().int() });

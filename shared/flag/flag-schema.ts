@@ -15,15 +15,15 @@ export type FlagVerdict = z.infer<typeof flagVerdict>;
 
 /** What the contractor answers. */
 export const flagAnswer = z.discriminatedUnion('kind', [
-	z.object({
+	z.strictObject({
 		kind: z.literal('put-right'),
 		means: z.enum(['rework', 'repair']),
 		how: plainText(1000),
 		/** By when, the hour at the site. */
 		by: z.date(),
 	}),
-	z.object({ kind: z.literal('concession'), why: plainText(1000) }),
-	z.object({
+	z.strictObject({ kind: z.literal('concession'), why: plainText(1000) }),
+	z.strictObject({
 		kind: z.literal('contest'),
 		why: plainText(1000),
 		/** A survey of the contractor's own, fitted and checked like any other; shown beside, never in its place. */
@@ -36,7 +36,7 @@ export type FlagAnswer = z.infer<typeof flagAnswer>;
  * What a concession is limited to (ISO 9000, 3.12.5: within specified limits, for a limited quantity, period and use). The value is a length, mm:
  * no deviation of the element of this kind may be farther from the design, either way.
  */
-export const concessionLimits = z.object({
+export const concessionLimits = z.strictObject({
 	upToMm: z.number().positive('Say up to how many millimetres.').max(10_000),
 	extent: plainText(300),
 	/** How many elements or places. */
@@ -49,18 +49,18 @@ export type ConcessionLimits = z.infer<typeof concessionLimits>;
 
 /** What the project engineer decides, in the words of ISO 9000 (rework 3.12.8, repair 3.12.9, concession 3.12.5, scrap 3.12.10). */
 export const flagDecision = z.discriminatedUnion('kind', [
-	z.object({ kind: z.literal('rework'), reason: plainText(1000), by: z.date().nullable() }),
-	z.object({ kind: z.literal('repair'), reason: plainText(1000), by: z.date().nullable() }),
-	z.object({ kind: z.literal('concession'), reason: plainText(1000), conditions: plainText(1000).nullable(), limits: concessionLimits }),
-	z.object({ kind: z.literal('reject-and-replace'), reason: plainText(1000), by: z.date().nullable() }),
-	z.object({
+	z.strictObject({ kind: z.literal('rework'), reason: plainText(1000), by: z.date().nullable() }),
+	z.strictObject({ kind: z.literal('repair'), reason: plainText(1000), by: z.date().nullable() }),
+	z.strictObject({ kind: z.literal('concession'), reason: plainText(1000), conditions: plainText(1000).nullable(), limits: concessionLimits }),
+	z.strictObject({ kind: z.literal('reject-and-replace'), reason: plainText(1000), by: z.date().nullable() }),
+	z.strictObject({
 		kind: z.literal('survey-again'),
 		reason: plainText(1000),
 		/** The σ at which the survey could tell, mm; null: not said. */
 		sigmaMm: z.number().positive().max(1000).nullable(),
 	}),
 	/** Too close to call or undecided: the deviation counts as it was found, without its uncertainty. */
-	z.object({ kind: z.literal('taken-as-measured'), reason: plainText(1000) }),
+	z.strictObject({ kind: z.literal('taken-as-measured'), reason: plainText(1000) }),
 ]);
 export type FlagDecision = z.infer<typeof flagDecision>;
 

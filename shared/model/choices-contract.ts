@@ -59,8 +59,8 @@ export const choicesContract = {
 		.input(
 			modelInput.extend({
 				choice: z.union([
-					z.object({ subject: z.literal('unit'), metresPerUnit: z.number().positive().max(1e4).nullable() }),
-					z.object({ subject: z.literal('map-scale'), reading: mapScaleReading.nullable() }),
+					z.strictObject({ subject: z.literal('unit'), metresPerUnit: z.number().positive().max(1e4).nullable() }),
+					z.strictObject({ subject: z.literal('map-scale'), reading: mapScaleReading.nullable() }),
 				]),
 				reason: plainText(400),
 			}),
