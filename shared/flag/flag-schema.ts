@@ -51,7 +51,12 @@ export type ConcessionLimits = z.infer<typeof concessionLimits>;
 export const flagDecision = z.discriminatedUnion('kind', [
 	z.strictObject({ kind: z.literal('rework'), reason: plainText(1000), by: z.date().nullable() }),
 	z.strictObject({ kind: z.literal('repair'), reason: plainText(1000), by: z.date().nullable() }),
-	z.strictObject({ kind: z.literal('concession'), reason: plainText(1000), conditions: plainText(1000).nullable(), limits: concessionLimits }),
+	z.strictObject({
+		kind: z.literal('concession'),
+		reason: plainText(1000),
+		conditions: plainText(1000).nullable(),
+		limits: concessionLimits,
+	}),
 	z.strictObject({ kind: z.literal('reject-and-replace'), reason: plainText(1000), by: z.date().nullable() }),
 	z.strictObject({
 		kind: z.literal('survey-again'),
