@@ -5,6 +5,8 @@ import { api } from '#src/lib/api.ts';
 import { counted, isoMoment } from '#src/lib/format.ts';
 import { Headline } from '#src/ui/headline.tsx';
 import { Strip } from '#src/ui/strip.tsx';
+import { SheetActs } from './sheet-acts.tsx';
+import { SheetWeighed } from './sheet-weighed.tsx';
 
 /** A tolerance sheet, rule by rule in words: the first that fits decides. */
 export default function SheetPage() {
@@ -18,10 +20,14 @@ export default function SheetPage() {
 				items={[
 					`revision ${sheet.revision}`,
 					sheet.state,
+					sheet.issueReason && `“${sheet.issueReason}”`,
 					sheet.issuedBy && sheet.issuedAt && `issued by ${sheet.issuedBy}, ${isoMoment(sheet.issuedAt, site.timeZone)}`,
 				]}
 			/>
-			<Headline title={sheet.name}>{`${sheet.name}: ${counted(sheet.ruleCount, 'rule')}, ${sheet.decision}`}</Headline>
+			<Headline
+				title={sheet.name}
+				acts={<SheetActs siteId={siteId} sheet={sheet} />}
+			>{`${sheet.name}: ${counted(sheet.ruleCount, 'rule')}, ${sheet.decision}`}</Headline>
 			<p className="mt-0 max-w-[75ch]">
 				{sheet.decision === 'guarded'
 					? 'Guarded (JCGM 106, k = 2): within means all of the deviation ± U lies inside its limits, outside means all of it lies beyond one; anything else is too close to call.'
@@ -41,6 +47,7 @@ export default function SheetPage() {
 					</li>
 				))}
 			</ol>
+			<SheetWeighed siteId={siteId} sheet={sheet.sheet} />
 			<p className="max-w-[75ch] text-second">Check against your contract documents; the engineer of record decides.</p>
 		</>
 	);
