@@ -41,19 +41,21 @@ describe('an invitation', () => {
 			roles: ['contractor'],
 		});
 
-		const answer = await server.fetch('/rpc/site/acceptInvitation', {
-			method: 'POST',
-			headers: { 'content-type': 'application/json' },
-			// Fields nobody asked for change nothing.
-			body: JSON.stringify({
-				json: {
-					token,
-					newPerson: { name: 'Nora New', password, role: 'project-engineer', email: 'x@example.com' },
-					roles: ['observer'],
-					siteId: otherSiteId,
-				},
-			}),
-		});
+		const accept = (json: object) =>
+			server.fetch('/rpc/site/acceptInvitation', {
+				method: 'POST',
+				headers: { 'content-type': 'application/json' },
+				body: JSON.stringify({ json }),
+			});
+		const newPerson = { name: 'Nora New', password };
+		// Fields nobody asked for are refused, and the link stays whole.
+		for (const more of [
+			{ newPerson: { ...newPerson, role: 'project-engineer' } },
+			{ newPerson, roles: ['observer'] },
+			{ newPerson, siteId: otherSiteId },
+		])
+			expect((await accept({ token, ...more })).status).toBe(400);
+		const answer = await accept({ token, newPerson });
 		expect(answer.status).toBe(200);
 		const mine = server.api(cookieOf(answer.headers.get('set-cookie') ?? ''));
 		expect(await mine.account.me()).toMatchObject({ name: 'Nora New', email });
