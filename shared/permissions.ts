@@ -39,6 +39,13 @@ export const permissions = {
 	'flag.comment': ['site-engineer', 'project-engineer', 'contractor', 'owners-representative'],
 	'pour.see': everybody,
 	'pour.write': ['project-engineer'],
+	/** Call a hold point, concreting from–to, notice of a witness point: whose pour it is, the policy says. */
+	'pour.call': ['contractor'],
+	'pour.submit': ['project-engineer'],
+	'pour.release': ['owners-representative'],
+	/** Say whether one came to a witness point. */
+	'pour.witness': ['site-engineer', 'project-engineer', 'owners-representative'],
+	'pour.meet': ['project-engineer', 'contractor'],
 	'record.see': everybody,
 	'record.chain': ['site-engineer', 'project-engineer', 'owners-representative', 'observer'],
 	'job.see': ['site-engineer', 'project-engineer', 'owners-representative', 'observer'],

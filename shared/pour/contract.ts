@@ -1,5 +1,9 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
+import { sha256Text, shownPour } from '../record/sealed-record.ts';
+import { holdPointKinds, holdPointStates, pourStates } from './pour-life.ts';
+
+export const holdPointKind = z.enum(holdPointKinds);
 
 export const pourSummary = z.object({
 	pourId: z.uuid(),
@@ -9,6 +13,10 @@ export const pourSummary = z.object({
 	companyName: z.string(),
 	plannedAt: z.date().nullable(),
 	elementCount: z.number().int(),
+	state: z.enum(pourStates),
+	before: z.enum(holdPointStates),
+	after: z.enum(holdPointStates),
+	isHeld: z.boolean(),
 });
 export type PourSummary = z.infer<typeof pourSummary>;
 
@@ -25,6 +33,88 @@ export const pourForm = z.strictObject({
 		.max(200),
 });
 
+export const pourCondition = z.object({
+	conditionId: z.uuid(),
+	text: z.string(),
+	owner: z.string(),
+	proof: z.string(),
+	dueAt: z.date().nullable(),
+	isMet: z.boolean(),
+	metBy: z.string().nullable(),
+	metAt: z.date().nullable(),
+	metWords: z.string().nullable(),
+});
+export type PourCondition = z.infer<typeof pourCondition>;
+
+export const holdPointDetail = z.object({
+	kind: holdPointKind,
+	state: z.enum(holdPointStates),
+	list: z.array(z.object({ question: z.string(), answer: z.string().nullable() })),
+	readyFrom: z.date().nullable(),
+	calledBy: z.string().nullable(),
+	calledAt: z.date().nullable(),
+	submittedBy: z.string().nullable(),
+	submittedAt: z.date().nullable(),
+	statement: z.string().nullable(),
+	signedBy: z.string().nullable(),
+	signedAt: z.date().nullable(),
+	recordId: z.uuid().nullable(),
+	conditions: z.array(pourCondition),
+});
+export type HoldPointDetail = z.infer<typeof holdPointDetail>;
+
+export const pourDetail = pourSummary.extend({
+	concretingFrom: z.date().nullable(),
+	concretingTo: z.date().nullable(),
+	partOf: z.object({ pourId: z.uuid(), number: z.string() }).nullable(),
+	points: z.object({ 'before-pour': holdPointDetail, 'after-pour': holdPointDetail }),
+	/** "Hold: do not pour", while it stands. */
+	hold: z
+		.object({
+			reasons: z.array(z.string()),
+			raisedAt: z.date(),
+			seen: z.array(z.object({ name: z.string(), at: z.date() })),
+			isSeenByYou: z.boolean(),
+		})
+		.nullable(),
+	witnessPoints: z.array(
+		z.object({
+			witnessId: z.uuid(),
+			what: z.string(),
+			at: z.date(),
+			noticeBy: z.string(),
+			hasCome: z.boolean().nullable(),
+			note: z.string().nullable(),
+			saidBy: z.string().nullable(),
+		}),
+	),
+});
+export type PourDetail = z.infer<typeof pourDetail>;
+
+export const shownHoldPoint = z.object({
+	shown: shownPour,
+	/** Goes with the request to sign: what is signed is what was shown. */
+	shownSha256: sha256Text,
+	readiness: z.array(z.object({ text: z.string(), isGood: z.boolean() })),
+	/** Of a released pour: what touches it since; none: it stands. */
+	touches: z.array(z.string()),
+	/** Why you cannot sign it; null where you can. Null too for who signs nothing. */
+	whyNotSign: z.string().nullable(),
+});
+export type ShownHoldPoint = z.infer<typeof shownHoldPoint>;
+
+const pourInput = siteInput.extend({ pourId: z.uuid() });
+const pointInput = pourInput.extend({ point: holdPointKind });
+
+export const statementText = plainText(2000);
+export const conditionForm = z.object({
+	text: plainText(300),
+	owner: plainText(80),
+	dueAt: z.date().nullable(),
+	/** What shows that it was done. */
+	proof: plainText(200),
+});
+
 export const pourContract = {
 	/** By planned hour. A contractor sees those of its company. */
 	list: base.meta({ permission: 'pour.see' }).input(siteInput).output(z.array(pourSummary)),
@@ -32,4 +122,64 @@ export const pourContract = {
 		.meta({ permission: 'pour.write' })
 		.input(siteInput.extend({ pour: pourForm }))
 		.output(pourSummary),
+	get: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourDetail),
+	/** All that is signed at a hold point, as it stands now. */
+	shown: base.meta({ permission: 'pour.see' }).input(pointInput).output(shownHoldPoint),
+	/** The questions of a hold-point list, while it is not submitted; answers of questions that stay are kept. */
+	setList: base
+		.meta({ permission: 'pour.write' })
+		.input(pointInput.extend({ questions: z.array(plainText(200)).max(50) }))
+		.output(pourDetail),
+	/** "Ready from Thu 06:30", with the list answered. */
+	call: base
+		.meta({ permission: 'pour.call' })
+		.input(pointInput.extend({ readyFrom: z.date(), answers: z.array(z.string().trim().max(300)).max(50) }))
+		.output(pourDetail),
+	submit: base.meta({ permission: 'pour.submit' }).input(pointInput).output(pourDetail),
+	/** Signs. With conditions it is released with those. Makes the sealed record. */
+	release: base
+		.meta({ permission: 'pour.release' })
+		.input(pointInput.extend({ statement: statementText, shownSha256: sha256Text, conditions: z.array(conditionForm).max(50) }))
+		.output(z.object({ recordId: z.uuid(), sequence: z.number().int(), head: sha256Text })),
+	askMore: base
+		.meta({ permission: 'pour.release' })
+		.input(pointInput.extend({ statement: statementText }))
+		.output(pourDetail),
+	/** Signs that it is refused. Makes a sealed record. */
+	refuse: base
+		.meta({ permission: 'pour.release' })
+		.input(pointInput.extend({ statement: statementText, shownSha256: sha256Text }))
+		.output(z.object({ recordId: z.uuid(), sequence: z.number().int(), head: sha256Text })),
+	/** Takes a release back, as a record of its own; before the concrete it holds the pour. */
+	withdraw: base
+		.meta({ permission: 'pour.release' })
+		.input(pointInput.extend({ statement: statementText }))
+		.output(z.object({ recordId: z.uuid(), sequence: z.number().int(), head: sha256Text })),
+	beginConcreting: base
+		.meta({ permission: 'pour.call' })
+		.input(pourInput.extend({ at: z.date() }))
+		.output(pourDetail),
+	/** Cast whole, or in part: what was not cast goes to a pour of its own, with new hold points. */
+	endConcreting: base
+		.meta({ permission: 'pour.call' })
+		.input(
+			pourInput.extend({
+				at: z.date(),
+				notCast: z.array(z.object({ modelId: z.uuid(), globalId: z.string().max(100) })).max(20_000),
+			}),
+		)
+		.output(z.object({ pour: pourDetail, restPourId: z.uuid().nullable() })),
+	seeHold: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourDetail),
+	giveNotice: base
+		.meta({ permission: 'pour.call' })
+		.input(pourInput.extend({ what: plainText(200), at: z.date() }))
+		.output(pourDetail),
+	sayWitness: base
+		.meta({ permission: 'pour.witness' })
+		.input(pourInput.extend({ witnessId: z.uuid(), hasCome: z.boolean(), note: plainText(300).nullable() }))
+		.output(pourDetail),
+	meetCondition: base
+		.meta({ permission: 'pour.meet' })
+		.input(pourInput.extend({ conditionId: z.uuid(), words: plainText(300) }))
+		.output(pourDetail),
 };

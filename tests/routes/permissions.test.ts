@@ -133,6 +133,21 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'record.chain': [siteEngineer, projectEngineer, ownersRepresentative, observer],
 	'pour.list': all,
 	'pour.add': [projectEngineer],
+	'pour.get': all,
+	'pour.shown': all,
+	'pour.setList': [projectEngineer],
+	'pour.call': [contractor],
+	'pour.submit': [projectEngineer],
+	'pour.release': [ownersRepresentative],
+	'pour.askMore': [ownersRepresentative],
+	'pour.refuse': [ownersRepresentative],
+	'pour.withdraw': [ownersRepresentative],
+	'pour.beginConcreting': [contractor],
+	'pour.endConcreting': [contractor],
+	'pour.seeHold': all,
+	'pour.giveNotice': [contractor],
+	'pour.sayWitness': [siteEngineer, projectEngineer, ownersRepresentative],
+	'pour.meetCondition': [projectEngineer, contractor],
 };
 
 function pathsOf(node: object, path: string[] = []): string[] {
