@@ -23,9 +23,6 @@ const ENTRIES = /^(server\/(main|worker|cli)\.ts|server\/scripts\/[^/]+\.ts|src\
 
 /** Built and tested ahead of its first use: path → the issue that will use it. Empty before a release. */
 const AHEAD_OF_USE: Record<string, string> = {
-	'server/platform/notices.ts': 'what flags, checks and pours tell by mail',
-	'shared/pour/readiness.ts': 'the release of a pour',
-	'shared/pour/what-touches.ts': 'the release of a pour',
 };
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */

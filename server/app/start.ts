@@ -23,6 +23,7 @@ import { demoOn } from './demo.ts';
 import { httpApp, uploadsPath } from './http.ts';
 import { jobRunners } from './jobs.ts';
 import { router } from './router.ts';
+import { watchHolds } from './watch-holds.ts';
 
 /** One request may take this long to arrive: a model over a site's mobile network. An upload that is cut goes on where it was. */
 const requestTimeoutMs = 30 * 60_000;
@@ -77,9 +78,10 @@ export async function startOn(
 	const beforeLook = () => deliverNotices(platform);
 	const postman = openPostman({ db: platform.db, service: mail.service, beforeLook, now: platform.now });
 	const server = createServer({ requestTimeout: requestTimeoutMs });
+	const holds = watchHolds(platform);
 	let closeClient = async () => {};
 	let isReady = false;
-	const close = () => closeAll(server, closeClient, { postman, mail }, queue, connection);
+	const close = () => holds.stop().then(() => closeAll(server, closeClient, { postman, mail }, queue, connection));
 	try {
 		const uploads = openUploads({ platform, path: uploadsPath, largestBytes: configuration.largestUploadBytes });
 		await publishKeys(platform.db, keys, platform.now());

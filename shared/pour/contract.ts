@@ -89,7 +89,9 @@ export const pourDetail = pourSummary.extend({
 		}),
 	),
 });
-export type PourDetail = z.infer<typeof pourDetail>;
+/** By name, so that the API's own type stays short enough for the compiler to write down. */
+export interface PourDetail extends z.infer<typeof pourDetail> {}
+const pourAnswer: z.ZodType<PourDetail> = pourDetail;
 
 export const shownHoldPoint = z.object({
 	shown: shownPour,
@@ -101,7 +103,8 @@ export const shownHoldPoint = z.object({
 	/** Why you cannot sign it; null where you can. Null too for who signs nothing. */
 	whyNotSign: z.string().nullable(),
 });
-export type ShownHoldPoint = z.infer<typeof shownHoldPoint>;
+export interface ShownHoldPoint extends z.infer<typeof shownHoldPoint> {}
+const shownAnswer: z.ZodType<ShownHoldPoint> = shownHoldPoint;
 
 const pourInput = siteInput.extend({ pourId: z.uuid() });
 const pointInput = pourInput.extend({ point: holdPointKind });
@@ -122,20 +125,20 @@ export const pourContract = {
 		.meta({ permission: 'pour.write' })
 		.input(siteInput.extend({ pour: pourForm }))
 		.output(pourSummary),
-	get: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourDetail),
+	get: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourAnswer),
 	/** All that is signed at a hold point, as it stands now. */
-	shown: base.meta({ permission: 'pour.see' }).input(pointInput).output(shownHoldPoint),
+	shown: base.meta({ permission: 'pour.see' }).input(pointInput).output(shownAnswer),
 	/** The questions of a hold-point list, while it is not submitted; answers of questions that stay are kept. */
 	setList: base
 		.meta({ permission: 'pour.write' })
 		.input(pointInput.extend({ questions: z.array(plainText(200)).max(50) }))
-		.output(pourDetail),
+		.output(pourAnswer),
 	/** "Ready from Thu 06:30", with the list answered. */
 	call: base
 		.meta({ permission: 'pour.call' })
 		.input(pointInput.extend({ readyFrom: z.date(), answers: z.array(z.string().trim().max(300)).max(50) }))
-		.output(pourDetail),
-	submit: base.meta({ permission: 'pour.submit' }).input(pointInput).output(pourDetail),
+		.output(pourAnswer),
+	submit: base.meta({ permission: 'pour.submit' }).input(pointInput).output(pourAnswer),
 	/** Signs. With conditions it is released with those. Makes the sealed record. */
 	release: base
 		.meta({ permission: 'pour.release' })
@@ -144,7 +147,7 @@ export const pourContract = {
 	askMore: base
 		.meta({ permission: 'pour.release' })
 		.input(pointInput.extend({ statement: statementText }))
-		.output(pourDetail),
+		.output(pourAnswer),
 	/** Signs that it is refused. Makes a sealed record. */
 	refuse: base
 		.meta({ permission: 'pour.release' })
@@ -158,7 +161,7 @@ export const pourContract = {
 	beginConcreting: base
 		.meta({ permission: 'pour.call' })
 		.input(pourInput.extend({ at: z.date() }))
-		.output(pourDetail),
+		.output(pourAnswer),
 	/** Cast whole, or in part: what was not cast goes to a pour of its own, with new hold points. */
 	endConcreting: base
 		.meta({ permission: 'pour.call' })
@@ -168,18 +171,18 @@ export const pourContract = {
 				notCast: z.array(z.object({ modelId: z.uuid(), globalId: z.string().max(100) })).max(20_000),
 			}),
 		)
-		.output(z.object({ pour: pourDetail, restPourId: z.uuid().nullable() })),
-	seeHold: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourDetail),
+		.output(z.object({ pour: pourAnswer, restPourId: z.uuid().nullable() })),
+	seeHold: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourAnswer),
 	giveNotice: base
 		.meta({ permission: 'pour.call' })
 		.input(pourInput.extend({ what: plainText(200), at: z.date() }))
-		.output(pourDetail),
+		.output(pourAnswer),
 	sayWitness: base
 		.meta({ permission: 'pour.witness' })
 		.input(pourInput.extend({ witnessId: z.uuid(), hasCome: z.boolean(), note: plainText(300).nullable() }))
-		.output(pourDetail),
+		.output(pourAnswer),
 	meetCondition: base
 		.meta({ permission: 'pour.meet' })
 		.input(pourInput.extend({ conditionId: z.uuid(), words: plainText(300) }))
-		.output(pourDetail),
+		.output(pourAnswer),
 };

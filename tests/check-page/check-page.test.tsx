@@ -36,7 +36,19 @@ async function show(check: CheckDetail, search = '', roles: ('site-engineer' | '
 		line: { knots: [], newestCheckId: checkId, isTaut: true },
 	});
 	queries.setQueryData(api.pour.list.queryKey({ input: { siteId } }), [
-		{ pourId, number: '7', name: 'Columns', companyId: pourId, companyName: 'Fennick Forms', plannedAt: null, elementCount: 3 },
+		{
+			pourId,
+			number: '7',
+			name: 'Columns',
+			companyId: pourId,
+			companyName: 'Fennick Forms',
+			plannedAt: null,
+			elementCount: 3,
+			state: 'planned',
+			before: 'open',
+			after: 'open',
+			isHeld: false,
+		},
 	]);
 	const element = (
 		<KeysProvider>
