@@ -22,8 +22,7 @@ const NOUNS = ['account', 'check', 'control', 'fit', 'flag', 'job', 'mail', 'mod
 const ENTRIES = /^(server\/(main|worker|cli)\.ts|server\/scripts\/[^/]+\.ts|src\/main\.tsx|.+\.worker\.ts)$/;
 
 /** Built and tested ahead of its first use: path → the issue that will use it. Empty before a release. */
-const AHEAD_OF_USE: Record<string, string> = {
-};
+const AHEAD_OF_USE: Record<string, string> = {};
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */
 const PURE_PACKAGES = ['zod', '@orpc/contract', 'ml-matrix', '@noble/curves'];

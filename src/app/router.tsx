@@ -91,6 +91,7 @@ export const routes: RouteObject[] = [
 							sitePage('flags/:flagId', 'flags', () => import('#src/pages/flag/flag-page.tsx'), { path: 'flags', word: 'Flags' }),
 							sitePage('shoot-list', 'flags', () => import('#src/pages/shoot-list/shoot-list-page.tsx'), { path: 'flags', word: 'Flags' }),
 							sitePage('pours', 'pours', () => import('#src/pages/pours/pours-page.tsx')),
+							sitePage('pours/:pourId', 'pours', () => import('#src/pages/pour/pour-page.tsx'), { path: 'pours', word: 'Pours' }),
 							sitePage('records', 'records', () => import('#src/pages/records/records-page.tsx')),
 							sitePage('records/:recordId', 'records', () => import('#src/pages/record/record-page.tsx'), {
 								path: 'records',

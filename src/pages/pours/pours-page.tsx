@@ -4,6 +4,7 @@ import { Link, useParams } from 'react-router-dom';
 import type { StoredElement } from '#shared/model/contract.ts';
 import { mayWith } from '#shared/permissions.ts';
 import { PourForm } from '#src/features/pour/pour-form.tsx';
+import { pourWord } from '#src/features/pour/pour-words.ts';
 import { api } from '#src/lib/api.ts';
 import { counted, moment } from '#src/lib/format.ts';
 import { Button } from '#src/ui/button.tsx';
@@ -51,13 +52,17 @@ export default function PoursPage() {
 					<li key={pour.pourId} className="flex flex-wrap items-center gap-x-6 gap-y-1 border-b border-hair py-3">
 						<b className="min-w-44">{pour.plannedAt ? moment(pour.plannedAt, site.timeZone, new Date()) : 'not planned'}</b>
 						<span className="min-w-0 flex-1 basis-64">
-							<b className="block">
+							<Link
+								to={`/sites/${siteId}/pours/${pour.pourId}`}
+								className="flex min-h-8 items-center font-strong text-ink underline-offset-3 pointer-coarse:min-h-12"
+							>
 								Pour {pour.number}, {pour.name}
-							</b>
+							</Link>
 							<span className="text-second">
 								{pour.companyName}, {counted(pour.elementCount, 'element')}
 							</span>
 						</span>
+						<b className="min-w-40">{pourWord(pour)}</b>
 						{checkId && (
 							<Link
 								to={`/sites/${siteId}/checks/${checkId}?pour=${pour.pourId}`}
