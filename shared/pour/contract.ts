@@ -18,7 +18,8 @@ export const pourSummary = z.object({
 	after: z.enum(holdPointStates),
 	isHeld: z.boolean(),
 });
-export type PourSummary = z.infer<typeof pourSummary>;
+export interface PourSummary extends z.infer<typeof pourSummary> {}
+const summaryAnswer: z.ZodType<PourSummary> = pourSummary;
 
 export const pourForm = z.strictObject({
 	number: plainText(12),
@@ -120,11 +121,11 @@ export const conditionForm = z.object({
 
 export const pourContract = {
 	/** By planned hour. A contractor sees those of its company. */
-	list: base.meta({ permission: 'pour.see' }).input(siteInput).output(z.array(pourSummary)),
+	list: base.meta({ permission: 'pour.see' }).input(siteInput).output(z.array(summaryAnswer)),
 	add: base
 		.meta({ permission: 'pour.write' })
 		.input(siteInput.extend({ pour: pourForm }))
-		.output(pourSummary),
+		.output(summaryAnswer),
 	get: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourAnswer),
 	/** All that is signed at a hold point, as it stands now. */
 	shown: base.meta({ permission: 'pour.see' }).input(pointInput).output(shownAnswer),

@@ -44,7 +44,9 @@ export const recordLine = z.object({
 	/** The later record that withdraws it or takes its place, by its number; null while it holds. */
 	endedBy: z.object({ sequence: z.number().int(), act: z.enum([...decisionActs, 'withdrawn']) }).nullable(),
 });
-export type RecordLine = z.infer<typeof recordLine>;
+export interface RecordLine extends z.infer<typeof recordLine> {}
+const lineAnswer: z.ZodType<RecordLine> = recordLine;
+const wholeRecord: z.ZodType<RecordLine & { text: string }> = recordLine.extend({ text: z.string() });
 
 export const publishedKey = z.object({
 	sha256: z.string(),
@@ -61,12 +63,12 @@ export const recordContract = {
 	list: base
 		.meta({ permission: 'record.see' })
 		.input(siteInput)
-		.output(z.object({ head: z.string().nullable(), length: z.number().int(), records: z.array(recordLine) })),
+		.output(z.object({ head: z.string().nullable(), length: z.number().int(), records: z.array(lineAnswer) })),
 	/** One record, with its text exactly as it was sealed. */
 	get: base
 		.meta({ permission: 'record.see' })
 		.input(siteInput.extend({ recordId: z.uuid() }))
-		.output(recordLine.extend({ text: z.string() })),
+		.output(wholeRecord),
 	/** The site's whole chain as a file, for those who see all of the site. */
 	chain: base.meta({ permission: 'record.chain' }).input(siteInput).output(z.instanceof(Blob)),
 	/** The newest first, so many at a time; `olderThan` is the last entry one has. */
