@@ -37,7 +37,7 @@ export function CallForm({ siteId, pourId, point, onCalled }: CallFormProps) {
 				onCalled();
 			}}
 		>
-			<TextField name="readyFrom" label="Ready from" hint="As 2026-12-04T06:30" isMono />
+			<TextField name="readyFrom" label="Ready from then on" hint="As 2026-12-04T06:30" isMono />
 			{point.list.map(({ question }, index) => (
 				<TextField key={question} name={`answers.${index}.answer`} label={question} />
 			))}
