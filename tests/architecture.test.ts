@@ -25,7 +25,7 @@ const ENTRIES = /^(server\/(main|worker|cli)\.ts|server\/scripts\/[^/]+\.ts|src\
 const AHEAD_OF_USE: Record<string, string> = {};
 
 /** What `shared/` may take from npm: no I/O, runs alike in the browser, the server and a worker. */
-const PURE_PACKAGES = ['zod', '@orpc/contract', 'ml-matrix', '@noble/curves'];
+const PURE_PACKAGES = ['zod', '@orpc/contract', 'ml-matrix', '@noble/curves', '@noble/hashes'];
 
 /** `mayImport` names folders; `$1` is what the first group of `files` matched: the feature's own noun, the page's own folder. */
 interface Layer {

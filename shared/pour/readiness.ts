@@ -13,6 +13,8 @@ export interface PourCheckpoint {
 	/** What people call its element. */
 	readonly mark: string;
 	readonly requirement: Requirement;
+	/** The concrete itself makes it, so that this hold point, before the pour, does not ask for it. */
+	readonly isAfterConcrete: boolean;
 	/** From all published checks of the point's stages; null where none asked for it. */
 	readonly standing: CheckpointStanding | null;
 	/** Its survey point was voided after the check. */
@@ -85,18 +87,26 @@ const kinds = {
 	within: { isGood: true, say: (n: string) => `${n} within, on adopted fits.` },
 	'flag-closed': { isGood: true, say: (n: string, marks: string) => `${n} outside or too close, their flags closed (${marks}).` },
 	'left-out': { isGood: true, say: (n: string, marks: string) => `${n} left out, each with its reason (${marks}).` },
+	'after-concrete': {
+		isGood: true,
+		say: (n: string, marks: string) => `${n} not asked for here: the concrete's own tops are measured after it (${marks}).`,
+	},
 } as const;
 type Kind = keyof typeof kinds;
 
 /**
  * Why a pour is ready or not, sentence by sentence: every required and sampled checkpoint is within, or its flag is closed; what is not
- * measured or has no rule stands in the way unless it is left out with a reason; on checked, adopted fits.
+ * measured or has no rule stands in the way unless it is left out with a reason; on checked, adopted fits. What the concrete itself makes is
+ * not asked for before it.
  */
 export function readinessOf(facts: ReadinessFacts): Readiness {
+	const flagsOf = flagsByPlace(facts.flags);
 	const byKind = new Map<Kind, PourCheckpoint[]>();
 	for (const checkpoint of facts.checkpoints) {
-		const kind = kindOf(checkpoint, facts);
-		byKind.set(kind, [...(byKind.get(kind) ?? []), checkpoint]);
+		const kind = kindOf(checkpoint, flagsOf.get(placeKey(checkpoint, checkpoint.characteristic)) ?? [], facts.isFitCheckedBySecond);
+		const found = byKind.get(kind);
+		if (found === undefined) byKind.set(kind, [checkpoint]);
+		else found.push(checkpoint);
 	}
 	const sentences = (Object.keys(kinds) as Kind[]).flatMap((kind): ReadinessSentence[] => {
 		const found = byKind.get(kind);
@@ -109,15 +119,38 @@ export function readinessOf(facts: ReadinessFacts): Readiness {
 			text: `${counted(facts.goneMarks.length, 'element')} no longer in the newest revision (${nameList(facts.goneMarks)}).`,
 			isGood: false,
 		});
+	const asked = facts.checkpoints.filter(({ isAfterConcrete }) => !isAfterConcrete);
 	if (facts.checkpoints.length === 0)
 		sentences.unshift({ text: 'There is no point to measure on the elements of this pour.', isGood: false });
-	else if (facts.checkpoints.every(({ requirement }) => requirement === 'left-out'))
+	else if (asked.length === 0)
+		sentences.unshift({
+			text: 'Nothing of it can be measured before the concrete: this hold point rests on its list alone.',
+			isGood: true,
+		});
+	else if (asked.every(({ requirement }) => requirement === 'left-out'))
 		sentences.unshift({ text: 'Every point is left out, so nothing is known of this pour.', isGood: false });
 	return { isReady: sentences.every(({ isGood }) => isGood), sentences };
 }
 
-function kindOf(checkpoint: PourCheckpoint, { flags, isFitCheckedBySecond }: ReadinessFacts): Kind {
-	const { requirement, standing, modelId, globalId, characteristic } = checkpoint;
+function placeKey({ modelId, globalId }: { modelId: string; globalId: string }, kind: Characteristic): string {
+	return `${modelId} ${globalId} ${kind}`;
+}
+
+function flagsByPlace(flags: readonly PourFlag[]): Map<string, PourFlag[]> {
+	const byPlace = new Map<string, PourFlag[]>();
+	for (const flag of flags) {
+		const key = placeKey(flag, flag.kind);
+		const found = byPlace.get(key);
+		if (found === undefined) byPlace.set(key, [flag]);
+		else found.push(flag);
+	}
+	return byPlace;
+}
+
+/** `own`: the flags of the checkpoint's element and kind. */
+function kindOf(checkpoint: PourCheckpoint, own: readonly PourFlag[], isFitCheckedBySecond: boolean): Kind {
+	const { requirement, standing } = checkpoint;
+	if (checkpoint.isAfterConcrete) return 'after-concrete';
 	if (requirement === 'left-out') return 'left-out';
 	if (standing === null || standing.newest.deviation.deviationMm === null) return 'not-measured';
 	const { deviation, isFitAdopted, isFitChecked } = standing.newest;
@@ -127,7 +160,6 @@ function kindOf(checkpoint: PourCheckpoint, { flags, isFitCheckedBySecond }: Rea
 	if (checkpoint.isVoided) return 'voided';
 	if (checkpoint.isLimitChanged) return 'limit-changed';
 	if (deviation.verdict === 'no-tolerance') return 'no-rule';
-	const own = flags.filter((flag) => flag.modelId === modelId && flag.globalId === globalId && flag.kind === characteristic);
 	const isOpen = own.some(({ state }) => state !== 'closed' && state !== 'lapsed');
 	if (deviation.verdict === 'within') return isOpen ? 'flagged' : 'within';
 	if (!isOpen && own.some(({ state }) => state === 'closed')) return 'flag-closed';

@@ -155,6 +155,11 @@ export const shownPour = z.strictObject({
 	leftOut: z
 		.array(z.strictObject({ modelId: z.uuid(), checkpointId: text, globalId: text, label: text, reason: text, by: text }))
 		.max(100_000),
+	/** What the concrete itself makes and this hold point, before it, does not ask for; absent where there is none. */
+	afterConcrete: z
+		.array(z.strictObject({ modelId: z.uuid(), checkpointId: text, globalId: text, label: text }))
+		.max(100_000)
+		.optional(),
 	flags: z.array(recordedFlag).max(20_000),
 	checks: z.array(recordedCheck).max(500),
 });

@@ -1,5 +1,6 @@
 import { and, eq, inArray, isNotNull, ne } from 'drizzle-orm';
 import { type CheckpointStanding, standingOf } from '#shared/check/standing.ts';
+import { isAfterTheConcrete } from '#shared/pour/after-the-concrete.ts';
 import type { HoldPointKind } from '#shared/pour/pour-life.ts';
 import { type PourCheckpoint, type Readiness, readinessOf } from '#shared/pour/readiness.ts';
 import { canonicalJson } from '#shared/record/canonical-json.ts';
@@ -72,6 +73,7 @@ export async function loadShown(db: Handle, siteId: string, pourId: string, kind
 			characteristic: row.characteristic,
 			mark: mark || title,
 			requirement: choice?.requirement ?? 'required',
+			isAfterConcrete: isAfterTheConcrete({ ...row, elementClass: designed.element.class }, kind),
 			standing,
 			isVoided: standing !== null && changes.isVoided(standing),
 			isLimitChanged: standing !== null && changes.isLimitChanged(standing),
@@ -87,7 +89,9 @@ export async function loadShown(db: Handle, siteId: string, pourId: string, kind
 		isFitCheckedBySecond,
 	});
 	const labelOf = new Map(own.map(({ model, row }) => [`${model.modelId} ${row.id}`, row]));
-	const counted = facts.filter(({ requirement }) => requirement !== 'left-out');
+	const asked = facts.filter(({ isAfterConcrete }) => !isAfterConcrete);
+	const afterConcrete = facts.filter(({ isAfterConcrete }) => isAfterConcrete);
+	const counted = asked.filter(({ requirement }) => requirement !== 'left-out');
 	const companyNames = await companyNamesOf(db, siteId);
 	const shown: ShownPour = {
 		pour: {
@@ -124,7 +128,15 @@ export async function loadShown(db: Handle, siteId: string, pourId: string, kind
 			}),
 		),
 		checkpoints: counted.map((fact) => recordedCheckpoint(fact, labelOf.get(`${fact.modelId} ${fact.checkpointId}`), inputs)),
-		leftOut: facts
+		...(afterConcrete.length > 0 && {
+			afterConcrete: afterConcrete.map(({ modelId, checkpointId, globalId, mark }) => ({
+				modelId,
+				checkpointId,
+				globalId,
+				label: `${mark}: ${labelOf.get(`${modelId} ${checkpointId}`)?.label ?? ''}`,
+			})),
+		}),
+		leftOut: asked
 			.filter(({ requirement }) => requirement === 'left-out')
 			.map(({ modelId, checkpointId, globalId, leftOutReason, leftOutBy, mark }) => ({
 				modelId,

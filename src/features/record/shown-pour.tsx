@@ -41,6 +41,11 @@ export function ShownPourView({ shown, at }: ShownPourProps) {
 					<Sentences sentences={flags.filter(({ concession }) => concession === null).map(({ mark, outcome }) => `${mark}: ${outcome}`)} />
 				</Part>
 			)}
+			{shown.afterConcrete !== undefined && (
+				<Part title={`${counted(shown.afterConcrete.length, 'point')} measured after the concrete`}>
+					<Sentences sentences={shown.afterConcrete.map(({ label }) => label)} />
+				</Part>
+			)}
 			{leftOut.length > 0 && (
 				<Part title={`${counted(leftOut.length, 'point')} left out`}>
 					<Sentences sentences={leftOutSentences(leftOut)} />
