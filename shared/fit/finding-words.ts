@@ -87,7 +87,7 @@ export function swapFinding(base: FitTrial, names: readonly string[], [a, b]: re
 	return {
 		code: 'swapped-labels',
 		pairs: [names[a]!, names[b]!],
-		message: `"${names[a]}" and "${names[b]}" look exchanged: with their labels changed over all pairs agree.`,
+		message: `“${names[a]}” and “${names[b]}” look exchanged: with their labels changed over all pairs agree.`,
 		evidence: { exchanged: [names[a], names[b]], agreeing: base.observations.count },
 	};
 }
@@ -124,7 +124,7 @@ export function accusationFindings(
 		findings.push({
 			code: 'target-height',
 			pairs: heights.map(({ pair }) => names[pair]!),
-			message: `${list(heights.map(({ pair, metres }) => `"${names[pair]}" is ${millimetres(metres[2])} too ${metres[2] > 0 ? 'high' : 'low'}`))}, and fits in plan: check the target height.`,
+			message: `${list(heights.map(({ pair, metres }) => `“${names[pair]}” is ${millimetres(metres[2])} too ${metres[2] > 0 ? 'high' : 'low'}`))}, and fits in plan: check the target height.`,
 			evidence: { misfits: misfitsOf(names, heights) },
 		});
 	}
@@ -132,7 +132,7 @@ export function accusationFindings(
 		findings.push({
 			code: 'one-axis',
 			pairs: axes.map(({ pair }) => names[pair]!),
-			message: `${list(axes.map(({ pair, axis, metres }) => `"${names[pair]}" is off by ${millimetres(metres[axis!]!)} in ${axisNames[axis!]}`))} alone: check that number for a slip of the pen.`,
+			message: `${list(axes.map(({ pair, axis, metres }) => `“${names[pair]}” is off by ${millimetres(metres[axis!]!)} in ${axisNames[axis!]}`))} alone: check that number for a slip of the pen.`,
 			evidence: { misfits: misfitsOf(names, axes) },
 		});
 	}
@@ -141,7 +141,7 @@ export function accusationFindings(
 		findings.push({
 			code: 'blunder',
 			pairs: left.map(({ pair }) => names[pair]!),
-			message: `${list(left.map(({ pair, metres }) => `"${names[pair]}" is off by ${millimetres(Math.hypot(...metres))}`))} from where the other ${base.observations.count - best.accused.length} pairs, which agree, put ${left.length === 1 ? 'it' : 'them'}: set aside or measure again.`,
+			message: `${list(left.map(({ pair, metres }) => `“${names[pair]}” is off by ${millimetres(Math.hypot(...metres))}`))} from where the other ${base.observations.count - best.accused.length} pairs, which agree, put ${left.length === 1 ? 'it' : 'them'}: set aside or measure again.`,
 			evidence: { misfits: misfitsOf(names, left), agreeing: base.observations.count - best.accused.length },
 		});
 	}
@@ -167,13 +167,15 @@ function doubtfulFinding(names: readonly string[], best: Explanation, rivals: re
 	const stories = [best, ...rivals];
 	const codes = new Set(stories.map(codeOf));
 	const [only] = codes;
-	const code = codes.size === 1 && only !== undefined ? only : 'blunder';
+	// An effect accuses nobody, so the finding bears its name where it tells the residuals best.
+	const code = best.effects.length > 0 ? codeOf(best) : codes.size === 1 && only !== undefined ? only : 'blunder';
 	const words = stories.slice(0, 4).map((story) => storyWords(names, story));
 	return {
 		code,
 		pairs: [],
 		message: `The pairs contradict each other, and several causes are as likely: ${words.join('; or ')}. Measure again before setting anything aside.`,
 		evidence: {
+			...(best.effects[0] ? effectEvidence(best.effects[0]) : {}),
 			alternatives: stories.map((story) => ({
 				code: codeOf(story),
 				pairs: story.swapped ? story.swapped.map((pair) => names[pair]) : story.accused.map(({ pair }) => names[pair]),
@@ -190,10 +192,16 @@ function codeOf({ effects, swapped, accused }: Explanation): EffectCode | 'swapp
 	return accused.every(({ axis }) => axis === 0 || axis === 1) ? 'one-axis' : 'blunder';
 }
 
+const effectNames: Record<EffectCode, string> = {
+	'grid-scale': 'a grid scale',
+	'not-plumb': 'an instrument that was not plumb',
+	'distance-constant': 'a constant on all distances',
+};
+
 function storyWords(names: readonly string[], story: Explanation): string {
-	if (story.effects[0]) return story.effects[0].code;
-	if (story.swapped) return `${list(story.swapped.map((pair) => `"${names[pair]}"`))} exchanged`;
-	return `${list(story.accused.map(({ pair }) => `"${names[pair]}"`))} off`;
+	if (story.effects[0]) return effectNames[story.effects[0].code];
+	if (story.swapped) return `${list(story.swapped.map((pair) => `“${names[pair]}”`))} exchanged`;
+	return `${list(story.accused.map(({ pair }) => `“${names[pair]}”`))} off`;
 }
 
 function misfitsOf(names: readonly string[], accused: Explanation['accused']): unknown[] {

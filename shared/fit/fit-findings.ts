@@ -3,10 +3,11 @@ import { AS_GOOD, contradicts, type Explanation, explanations } from './explanat
 import { accusationFindings, contradictionFinding, effectFinding, mirroredFinding, swapFinding, unitFinding } from './finding-words.ts';
 import type { FitObservations } from './fit-observations.ts';
 import type { Finding, FitInput } from './fit-schema.ts';
-import { type FitTrial, misfitScore, testFit } from './fit-trial.ts';
+import { type FitTrial, misfitScore, testFit, tryFit } from './fit-trial.ts';
 import { geometryFindings } from './geometry-findings.ts';
 import { axisMistakes, unitRatios } from './gross-mistakes.ts';
 import { systematicEffects } from './systematic-effects.ts';
+import { standing, withOtherHeights } from './unequal-axes.ts';
 
 /**
  * What a surveyor should know before trusting the fit. Proposals: the numbers of the fit stay as they are. The most telling cause comes alone:
@@ -21,7 +22,17 @@ export function fitFindings(input: FitInput, names: readonly string[], observati
 	if (ratios.length > 0) return [...findings, unitFinding(ratios)];
 	const mistakes = axisMistakes(base);
 	if (mistakes.length > 0) return [...findings, mirroredFinding(mistakes)];
-	return [...findings, ...(contradicts(base) ? contradictionFindings(base, names, input) : effectFindings(base, input))];
+	const raised = judge(base, names, input);
+	if (raised.length === 0 || observations.sigmaGiven || input.fit === 'height') return [...findings, ...raised];
+	const others = withOtherHeights(observations).map((other) => {
+		const trial = tryFit(other);
+		return trial === null ? [] : judge(trial, names, input);
+	});
+	return [...findings, ...standing(raised, others)];
+}
+
+function judge(base: FitTrial, names: readonly string[], input: FitInput): Finding[] {
+	return contradicts(base) ? contradictionFindings(base, names, input) : effectFindings(base, input);
 }
 
 /** The residuals agree: a systematic effect may still be plain in them together. */

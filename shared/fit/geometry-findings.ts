@@ -105,7 +105,7 @@ function farFromTargets(input: FitInput, observations: FitObservations): Finding
 		.filter(({ metres: away }) => away > FAR * furthest);
 	if (far.length === 0) return null;
 	const most = far.reduce((a, b) => (b.metres > a.metres ? b : a));
-	const names = far.length === 1 ? `"${most.name}" lies` : `${far.length} points lie, the furthest "${most.name}",`;
+	const names = far.length === 1 ? `“${most.name}” lies` : `${far.length} points lie, the furthest “${most.name}”,`;
 	return {
 		code: 'far-from-targets',
 		pairs: [],

@@ -85,7 +85,7 @@ function readPair(value: unknown, where: string, kind: FitInput['fit']): FitPair
 function refuseTwice(named: readonly { name: string }[], list: string): void {
 	const seen = new Set<string>();
 	named.forEach(({ name }, i) => {
-		if (seen.has(name)) throw new Refused('duplicate-name', `The name "${name}" stands twice.`, `${list}[${i}].name`);
+		if (seen.has(name)) throw new Refused('duplicate-name', `The name “${name}” stands twice.`, `${list}[${i}].name`);
 		seen.add(name);
 	});
 }
@@ -99,26 +99,26 @@ function refuseSigmas(pairs: readonly FitPair[]): void {
 		if (!pair.surveySigma || !pair.controlSigma) {
 			throw new Refused(
 				'bad-sigma',
-				`Standard deviations must be given on both sides and for all pairs, or for none; "${pair.name}" lacks some.`,
+				`Standard deviations must be given on both sides and for all pairs, or for none; “${pair.name}” lacks some.`,
 				where,
 			);
 		}
 		if (pair.weight !== undefined)
-			throw new Refused('bad-sigma', `"${pair.name}" has a weight and standard deviations; only one of them may be given.`, where);
+			throw new Refused('bad-sigma', `“${pair.name}” has a weight and standard deviations; only one of them may be given.`, where);
 		for (let k = 0; k < 3; k++) {
 			const surveySigma = pair.surveySigma[k]!;
 			const controlSigma = pair.controlSigma[k]!;
 			if (surveySigma === 0 && controlSigma === 0) {
 				throw new Refused(
 					'bad-sigma',
-					`"${pair.name}" has a standard deviation of zero on both sides of an axis.`,
+					`“${pair.name}” has a standard deviation of zero on both sides of an axis.`,
 					`${where}.controlSigma[${k}]`,
 				);
 			}
 			if (Math.max(surveySigma, controlSigma) < LEAST_SIGMA) {
 				throw new Refused(
 					'bad-sigma',
-					`A standard deviation of "${pair.name}" is too small to compute with.`,
+					`A standard deviation of “${pair.name}” is too small to compute with.`,
 					`${where}.controlSigma[${k}]`,
 				);
 			}

@@ -29,10 +29,11 @@ export interface SystematicEffect {
 	notable: boolean;
 }
 
-/** Each effect is tested at half the family level: three of them and the residuals stay under 0.5 % together. */
-const EFFECT_LEVEL = 0.0005;
+/** A constant is tested at half the family level, scale and tilt at the whole: all three and the residuals stay under 0.5 % together. */
+const CONSTANT_LEVEL = 0.0005;
 /** "More than three of its σ" for a scale, at the level of a single residual. */
 const SCALE_LEVEL = 0.001;
+export const TILT_LEVEL = 0.001;
 const LEAST_SCALE = 50e-6;
 /** Ten seconds of arc. */
 const LEAST_TILT = (10 / 3600) * (Math.PI / 180);
@@ -52,7 +53,7 @@ export function systematicEffects(trial: FitTrial, station: Vector3 | undefined)
 	return effects.filter((effect) => effect !== null).sort((a, b) => a.significance - b.significance || b.drop - a.drop);
 }
 
-const LEVEL: Record<EffectCode, number> = { 'grid-scale': SCALE_LEVEL, 'not-plumb': EFFECT_LEVEL, 'distance-constant': EFFECT_LEVEL };
+const LEVEL: Record<EffectCode, number> = { 'grid-scale': SCALE_LEVEL, 'not-plumb': TILT_LEVEL, 'distance-constant': CONSTANT_LEVEL };
 const LEAST: Record<EffectCode, number> = { 'grid-scale': LEAST_SCALE, 'not-plumb': LEAST_TILT, 'distance-constant': LEAST_CONSTANT };
 
 function evaluate(trial: FitTrial, code: EffectCode, columns: Float64Array[], station?: Vector3): SystematicEffect | null {
@@ -83,7 +84,7 @@ function scaleColumn({ observations, adjustment }: FitTrial): Float64Array {
 	return column;
 }
 
-function tiltColumns({ adjustment }: FitTrial): Float64Array[] {
+export function tiltColumns({ adjustment }: FitTrial): Float64Array[] {
 	const { adjusted } = adjustment.equations;
 	const aboutEast = new Float64Array(adjusted.length);
 	const aboutNorth = new Float64Array(adjusted.length);

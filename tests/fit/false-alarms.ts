@@ -1,14 +1,14 @@
 /**
- * How often a clean set raises a finding: `npx tsx tests/fit/false-alarms.ts SETS [sigma|none|even] [FROM]`. Sets of 4, 6, 10 and 40 pairs,
+ * How often a clean set raises a finding: `npx tsx tests/fit/false-alarms.ts SETS [sigma|none|even] [FROM] [COUNTS]`. Sets of 4, 6, 10 and 40 pairs,
  * levelled and free; what geometry alone says (weak-geometry, far-from-targets, no-redundancy) is no alarm. One line a cell.
  * none: without σ, and heights twice as coarse as plan; even: without σ, and all axes alike, as a fit without σ takes them to be.
  */
 import { computeFit } from '#shared/fit/compute-fit.ts';
 import { surveyScene } from './survey-scene.ts';
 
-const [sets = '1000', sigma = 'sigma', first = '1'] = process.argv.slice(2);
+const [sets = '1000', sigma = 'sigma', first = '1', counts = '4,6,10,40'] = process.argv.slice(2);
 const geometry = ['weak-geometry', 'far-from-targets', 'no-redundancy'];
-for (const count of [4, 6, 10, 40]) {
+for (const count of counts.split(',').map(Number)) {
 	for (const fit of ['levelled', 'free'] as const) {
 		const codes: Record<string, number> = {};
 		let alarms = 0;

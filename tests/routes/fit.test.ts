@@ -81,7 +81,7 @@ describe('pairs', () => {
 		expect(found.pairs.map(({ name }) => name)).toEqual(['T 2', 'T1', 'T3']);
 		expect(found.pairs.some(({ surveySigma, controlSigma }) => surveySigma !== undefined || controlSigma !== undefined)).toBe(false);
 		expect(found.sigmaNote).toMatch(/control list gives none for T 2.*neither the survey nor its set-up gives one for T 2, T1, T3/);
-		expect(found.notes).toEqual([expect.stringContaining('"t-2" was taken for control point "T 2"')]);
+		expect(found.notes).toEqual([expect.stringContaining('“t-2” was taken for control point “T 2”')]);
 		expect(found.targetsWithoutControl).toEqual(['T9']);
 	});
 });
@@ -154,7 +154,7 @@ describe('fits', () => {
 		const bench = await tied('name,e,n,h\nT1,0,0,0\nT2,9,0,0\nT3,0,9,0\nBM,,,1\n', 'name,x,y,z\nT1,0,0,0\nT2,9,0,0\nT3,0,9,0\nBM,4,4,1\n');
 		await expect(bench.surveyor.api.fit.make({ ...bench.input, ...plainFit, kind: 'free' })).rejects.toMatchObject({
 			code: 'NO_FIT',
-			message: expect.stringContaining('"BM" has no plan position'),
+			message: expect.stringContaining('“BM” has no plan position'),
 		});
 		for (const [shelves, code] of [
 			[[{ name: 'XX', shelf: 'held-back' as const, reason: null }], 'no-such-pair'],

@@ -32,7 +32,7 @@ function projectRows({ fit, siteName, survey, timeZone, printedAt }: FitReportDa
 	return [
 		['Project', siteName],
 		['Report', `Fit ${fit.number}, ${fit.state === 'made' ? 'made, not adopted' : fit.state}`],
-		['Covers', `survey ${survey.number} "${survey.name}", set-up ${fit.setupName}; the pours that rest on it name it in their own records`],
+		['Covers', `survey ${survey.number} “${survey.name}”, set-up ${fit.setupName}; the pours that rest on it name it in their own records`],
 		['Surveyed on', survey.surveyedOn],
 		['Computed', momentIn(fit.madeAt, timeZone)],
 		['Printed', momentIn(printedAt, timeZone)],
@@ -139,7 +139,7 @@ function controlTable({ fit, control, timeZone }: FitReportData): ReportBlock {
 	const used = new Set(fit.result.pairs.map(({ name }) => name));
 	return {
 		kind: 'table',
-		caption: `Control ${control.number} "${control.name}", marks of this set-up; metres, standard deviations in mm`,
+		caption: `Control ${control.number} “${control.name}”, marks of this set-up; metres, standard deviations in mm`,
 		columns: [
 			{ head: 'Mark', share: 0.1 },
 			{ head: 'E', share: 0.12, align: 'right' },

@@ -87,7 +87,7 @@ function partialInFree({ fit, pairs }: FitInput): FitRefusal | null {
 	const lacking = partial.control[2] === null ? 'no level' : 'no plan position';
 	return {
 		code: 'bad-input',
-		message: `"${partial.name}" has ${lacking}; a free fit needs all three coordinates. Set it aside.`,
+		message: `“${partial.name}” has ${lacking}; a free fit needs all three coordinates. Set it aside.`,
 		where: partial.name,
 	};
 }

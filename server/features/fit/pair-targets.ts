@@ -179,7 +179,7 @@ function isZeroOnBothSides({ surveySigma, controlSigma, control }: FitPair): boo
 
 function looseNotes(matches: ReturnType<typeof matchMarks>): string[] {
 	return [...matches].flatMap(([name, { mark, isLoose }]) =>
-		isLoose ? [`Target "${name}" was taken for control point "${mark}": they differ only in how they are written.`] : [],
+		isLoose ? [`Target “${name}” was taken for control point “${mark}”: they differ only in how they are written.`] : [],
 	);
 }
 

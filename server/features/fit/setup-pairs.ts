@@ -101,9 +101,9 @@ function expectRelabellings(relabellings: readonly Relabelling[], targets: reado
 	for (const [index, { target, mark }] of relabellings.entries()) {
 		const where = `relabellings.${index}`;
 		const earlier = relabellings.slice(0, index);
-		if (!targets.includes(target)) throw new Refused('no-such-target', `"${target}" is no point of this set-up.`, where);
-		if (!marks.includes(mark)) throw new Refused('no-such-mark', `"${mark}" is no control point in use.`, where);
-		if (earlier.some((one) => one.target === target)) throw new Refused('target-twice', `"${target}" is taken for two marks.`, where);
-		if (earlier.some((one) => one.mark === mark)) throw new Refused('mark-twice', `Two targets are taken for "${mark}".`, where);
+		if (!targets.includes(target)) throw new Refused('no-such-target', `“${target}” is no point of this set-up.`, where);
+		if (!marks.includes(mark)) throw new Refused('no-such-mark', `“${mark}” is no control point in use.`, where);
+		if (earlier.some((one) => one.target === target)) throw new Refused('target-twice', `“${target}” is taken for two marks.`, where);
+		if (earlier.some((one) => one.mark === mark)) throw new Refused('mark-twice', `Two targets are taken for “${mark}”.`, where);
 	}
 }

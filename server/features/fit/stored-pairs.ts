@@ -13,14 +13,14 @@ export function expectShelves({ pairs }: PairsOfSetup, shelves: readonly Shelvin
 	const seen = new Set<string>();
 	for (const [index, { name, shelf, reason, use = 'all', exchangedWith = null }] of shelves.entries()) {
 		const where = `shelves.${index}`;
-		if (!known.has(name)) throw new Refused('no-such-pair', `"${name}" is no pair of this set-up.`, where);
-		if (seen.has(name)) throw new Refused('shelved-twice', `"${name}" lies on two shelves.`, where);
-		if (shelf === 'set-aside' && reason === null) throw new Refused('no-reason', `Say why "${name}" is set aside.`, where);
-		if (use !== 'all' && reason === null) throw new Refused('no-reason', `Say why "${name}" is used in ${use} only.`, where);
+		if (!known.has(name)) throw new Refused('no-such-pair', `“${name}” is no pair of this set-up.`, where);
+		if (seen.has(name)) throw new Refused('shelved-twice', `“${name}” lies on two shelves.`, where);
+		if (shelf === 'set-aside' && reason === null) throw new Refused('no-reason', `Say why “${name}” is set aside.`, where);
+		if (use !== 'all' && reason === null) throw new Refused('no-reason', `Say why “${name}” is used in ${use} only.`, where);
 		if (exchangedWith !== null) {
-			if (reason === null) throw new Refused('no-reason', `Say why "${name}" is exchanged with "${exchangedWith}".`, where);
+			if (reason === null) throw new Refused('no-reason', `Say why “${name}” is exchanged with “${exchangedWith}”.`, where);
 			if (exchangedWith === name || partners.get(exchangedWith) !== name) {
-				throw new Refused('not-mutual', `"${name}" is exchanged with "${exchangedWith}", which does not say so.`, where);
+				throw new Refused('not-mutual', `“${name}” is exchanged with “${exchangedWith}”, which does not say so.`, where);
 			}
 		}
 		seen.add(name);
