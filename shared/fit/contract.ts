@@ -66,6 +66,8 @@ export const pairsOfSetup = z.object({
 			control: z.array(z.object({ name: z.string(), point: vector })),
 		})
 		.optional(),
+	/** All that is or could be a target, as named in the file: what can be given another label. */
+	targets: z.array(z.string()).optional(),
 	/** Targets taken for marks they are not named like. */
 	relabellings: z.array(relabelling).optional(),
 	/** What the repeats of its targets tell of the set-up itself: `moved-setup`; and its level run: `level-misclosure`, `level-open`. Absent where there is nothing to tell. */

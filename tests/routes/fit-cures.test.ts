@@ -92,13 +92,16 @@ describe('cures', () => {
 		expect(bare.pairs).toEqual([]);
 		expect(bare.loose?.targets.map(({ name }) => name)).toEqual(['101', '102', '103', '104', '105', '106']);
 		expect(bare.loose?.control.map(({ name }) => name)).toEqual(Object.keys(places));
+		expect(bare.targets).toEqual(['101', '102', '103', '104', '105', '106']);
 		const relabellings = Object.keys(places).map((mark, i) => ({ target: `${101 + i}`, mark, reason: 'By mutual distances.' }));
 		const found = await surveyor.api.fit.pairs({ ...input, relabellings });
 		expect(found.pairs.map(({ name }) => name)).toEqual(Object.keys(places));
 		expect(found.loose).toEqual({ targets: [], control: [] });
+		expect(found.targets).toEqual(bare.targets);
 		const made = await surveyor.api.fit.make({ ...input, ...levelled, shelves: [], relabellings });
 		expect(made.result.rms).toBeLessThan(1e-6);
 		expect(made.relabellings).toEqual(relabellings);
+		expect(made.pairs).not.toHaveProperty('targets');
 		const fewer = await surveyor.api.fit.make({ ...input, ...levelled, shelves: [], relabellings: relabellings.slice(0, 5) });
 		expect(fewer.inputsSha256).not.toBe(made.inputsSha256);
 		expect(fewer.changes).toEqual(['T6 no longer paired.', 'Target 106 no longer taken for T6.']);

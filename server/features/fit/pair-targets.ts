@@ -63,6 +63,7 @@ export function pairTargets(
 					: [{ name, point: [east, north, height] as Axes<number> }],
 			),
 		},
+		targets: targetNames(measured, marks, relabellings),
 		...(relabellings.length > 0 ? { relabellings: [...relabellings] } : {}),
 		...(findings.length > 0 ? { findings } : {}),
 	};
@@ -110,6 +111,19 @@ function relabelled(points: readonly SetupPoint[], relabellings: readonly Relabe
 		if (mark !== undefined) return { ...point, name: mark };
 		return taken.has(point.name) ? { ...point, name: `${point.name} (as labelled)` } : point;
 	});
+}
+
+/** Names of the file that mean a mark, are coded as targets, were given a label, or could be targets for want of coded ones. */
+function targetNames(measured: readonly SetupPoint[], marks: readonly ControlMark[], relabellings: readonly Relabelling[]): string[] {
+	const matches = matchMarks(
+		measured.map(({ name }) => name),
+		marks.map(({ name }) => name),
+	);
+	const given = new Set(relabellings.map(({ target }) => target));
+	const unmatched = measured.filter(({ name }) => !matches.has(name));
+	const could = new Set(looseTargets(unmatched).map(({ name }) => name));
+	const isTarget = ({ name, code }: SetupPoint) => matches.has(name) || isTargetCode(code) || given.has(name) || could.has(name);
+	return [...new Set(measured.filter(isTarget).map(({ name }) => name))];
 }
 
 /** More uncoded points than this are detail, and no match is looked for among them. */

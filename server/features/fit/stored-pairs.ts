@@ -1,8 +1,8 @@
 import type { PairsOfSetup, Shelving } from '#shared/fit/contract.ts';
 import { Refused } from '../../platform/refuse.ts';
 
-/** What has no partner was offered for a match; the fit does not rest on it. */
-export function withoutLoose({ loose: _, ...kept }: PairsOfSetup): PairsOfSetup {
+/** What has no partner was offered for a match, and targets for other labels; the fit does not rest on either. */
+export function withoutLoose({ loose: _, targets: __, ...kept }: PairsOfSetup): PairsOfSetup {
 	return kept;
 }
 

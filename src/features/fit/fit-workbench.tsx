@@ -1,4 +1,4 @@
-import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
+import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { type ReactNode, useCallback, useDeferredValue, useMemo, useState } from 'react';
 import { computeFit } from '#shared/fit/compute-fit.ts';
 import type { FitDetail, FitSummary, PairsOfSetup, SurveyorInCharge } from '#shared/fit/contract.ts';
@@ -17,16 +17,19 @@ import { StandDialog } from './fit-dialogs.tsx';
 import { FitFigures } from './fit-figures.tsx';
 import { FitPlan } from './fit-plan.tsx';
 import { fitHeadline, kindsFor, kindWords, refusalTitle } from './fit-words.ts';
+import { HoldBackProposal } from './hold-back-proposal.tsx';
 import { KindAndScale } from './kind-and-scale.tsx';
 import { Leftovers } from './leftovers.tsx';
 import { pairFigures } from './pair-figures.ts';
 import { PairTable, shelfWords } from './pair-table.tsx';
 import { ReasonDialog } from './reason-dialog.tsx';
+import { RelabelDialog } from './relabel-dialog.tsx';
 import { SetupFindings } from './setup-findings.tsx';
 import { type PairPlace, useShelves } from './shelves-state.ts';
 import type { PlanExtent } from './uncertainty-field.ts';
 import { UnnamedProposal } from './unnamed-proposal.tsx';
 import { useFitSearch } from './use-fit-search.ts';
+import { useRelabelledPairs } from './use-relabelled-pairs.ts';
 
 interface FitWorkbenchProps {
 	siteId: string;
@@ -42,7 +45,7 @@ interface FitWorkbenchProps {
 	acts?: ReactNode;
 }
 
-type Asked = { what: 'adopt' } | { what: 'place'; name: string; place: PairPlace };
+type Asked = { what: 'adopt' } | { what: 'relabel' } | { what: 'place'; name: string; place: PairPlace };
 
 /** Pairs on three shelves with the figures at once: the engine runs here, and the server computes again what is kept. */
 export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid, outline, mayAdopt, acts }: FitWorkbenchProps) {
@@ -78,7 +81,8 @@ export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid
 			controlSetId: pairs.controlSetId,
 			kind,
 			knownScale,
-			shelves: [...shelves],
+			// A mark whose target was given another label has no pair any more.
+			shelves: shelves.filter(({ name }) => pairs.pairs.some((pair) => pair.name === name)),
 			...(relabellings.length > 0 ? { relabellings: [...relabellings] } : {}),
 		});
 		await adopt.mutateAsync({ siteId, fitId: made.fitId, reason, surveyorInCharge });
@@ -144,6 +148,15 @@ export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid
 							isSearching={isSearching}
 						/>
 					)}
+					{fit && answer && !isSearching && (
+						<HoldBackProposal
+							input={input}
+							fit={fit}
+							findings={findings}
+							outline={outline}
+							onHold={mayAdopt ? (name, reason) => put([name], { shelf: 'held-back', use: 'all' }, reason) : null}
+						/>
+					)}
 					<PairTable
 						pairs={pairs.pairs}
 						figures={figures}
@@ -153,7 +166,11 @@ export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid
 						onChoose={choose}
 						onMove={mayAdopt ? move : null}
 					/>
-					<Leftovers pairs={pairs} leftOut={used.flatMap(({ pair, isLeftOut }) => (isLeftOut ? [pair.name] : []))} />
+					<Leftovers
+						pairs={pairs}
+						leftOut={used.flatMap(({ pair, isLeftOut }) => (isLeftOut ? [pair.name] : []))}
+						onRelabel={mayAdopt ? { ask: () => setAsked({ what: 'relabel' }), put: relabel } : null}
+					/>
 					<KindAndScale kinds={kinds} kind={kind} onKind={setKind} knownScale={knownScale} onKnownScale={setKnownScale} />
 				</div>
 				<div className="flex min-w-0 flex-col gap-3.5">
@@ -185,6 +202,17 @@ export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid
 					{(make.error ?? adopt.error) && <p role="alert">{refusalOf(make.error ?? adopt.error).message}</p>}
 				</StandDialog>
 			)}
+			{asked?.what === 'relabel' && (
+				<RelabelDialog
+					pairs={pairs}
+					relabellings={relabellings}
+					onSay={(next) => {
+						relabel(next);
+						setAsked(null);
+					}}
+					onClose={() => setAsked(null)}
+				/>
+			)}
 			{asked?.what === 'place' && (
 				<ReasonDialog
 					title={`${placeWords(asked.place)}: ${asked.name}`}
@@ -207,21 +235,6 @@ export function FitWorkbench({ siteId, setup, pairs: named, start, adopted, grid
 			)}
 		</>
 	);
-}
-
-/** The pairs once targets are taken for marks they are not named like; those before stay until they are there. */
-function useRelabelledPairs(
-	siteId: string,
-	named: PairsOfSetup,
-	relabellings: readonly { target: string; mark: string; reason: string }[],
-) {
-	const { setupId, controlSetId } = named;
-	const { data } = useQuery({
-		...api.fit.pairs.queryOptions({ input: { siteId, setupId, controlSetId, relabellings: [...relabellings] } }),
-		enabled: relabellings.length > 0,
-		placeholderData: (before) => before ?? named,
-	});
-	return relabellings.length === 0 ? named : (data ?? named);
 }
 
 function placeWords({ shelf, use }: PairPlace): string {

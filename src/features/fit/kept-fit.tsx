@@ -53,7 +53,7 @@ export function KeptFit({ fit, timeZone, addressOf, grid, outline }: KeptFitProp
 					onChoose={choose}
 					onMove={null}
 				/>
-				<Leftovers pairs={fit.pairs} leftOut={used.flatMap(({ pair, isLeftOut }) => (isLeftOut ? [pair.name] : []))} />
+				<Leftovers pairs={fit.pairs} leftOut={used.flatMap(({ pair, isLeftOut }) => (isLeftOut ? [pair.name] : []))} onRelabel={null} />
 			</div>
 			<div className="flex min-w-0 flex-col gap-3.5">
 				<div className="sheet overflow-hidden">
