@@ -20,6 +20,7 @@ export interface ChangedVerdict {
 	readonly checkpointId: string;
 	readonly mark: string;
 	readonly label: string;
+	readonly characteristic: Deviation['characteristic'];
 	readonly deviationMm: number;
 	readonly wasMm: readonly [number | null, number | null] | null;
 	readonly isMm: readonly [number | null, number | null] | null;
@@ -38,7 +39,7 @@ export interface WeighedSheet {
 	/** How many checkpoints each rule decides, in the sheet's order. */
 	readonly decides: readonly number[];
 	/** Those that no rule decides. */
-	readonly undecided: readonly Pick<WeighedCheckpoint, 'checkpointId' | 'mark' | 'label'>[];
+	readonly undecided: readonly WeighedCheckpoint[];
 	readonly changes: readonly ChangedVerdict[];
 	/** One for each rule and kind of fault, with the first element it shows at. */
 	readonly faults: readonly RuleFault[];
@@ -69,7 +70,7 @@ export function weighSheet(sheet: ToleranceSheet, checkpoints: readonly WeighedC
 	}
 	return {
 		decides,
-		undecided: undecided.map(({ checkpointId, mark, label }) => ({ checkpointId, mark, label })),
+		undecided,
 		changes,
 		faults: [...faults.values()],
 	};
@@ -88,6 +89,7 @@ function changeOf(
 		checkpointId,
 		mark,
 		label,
+		characteristic: deviation.characteristic,
 		deviationMm: deviation.deviationMm,
 		wasMm: deviation.limitsMm,
 		isMm: limitsMm,

@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
-import { type ToleranceSheet, toleranceSheet } from './sheet-schema.ts';
+import { characteristic, type ToleranceSheet, toleranceSheet } from './sheet-schema.ts';
 
 /** By its name alone, so that the type of all routes stays short enough to be written out. */
 const wholeSheet: z.ZodType<ToleranceSheet, ToleranceSheet> = toleranceSheet;
@@ -13,19 +13,26 @@ export const sheetWeight = z.object({
 	/** Checkpoints each rule decides, in the sheet's order. */
 	decides: z.array(z.number().int()),
 	undecidedCount: z.number().int(),
-	/** The first of those that no rule decides. */
-	undecided: z.array(z.object({ checkpointId: z.string(), mark: z.string(), label: z.string() })),
+	/** Those that no rule decides, by class and characteristic, with the first marks of each. */
+	undecided: z.array(z.object({ class: z.string(), characteristic, count: z.number().int(), marks: z.array(z.string()) })),
 	changeCount: z.number().int(),
+	/** The verdicts it would change, by what becomes what, with the first of each. */
 	changes: z.array(
 		z.object({
-			checkpointId: z.string(),
-			mark: z.string(),
-			label: z.string(),
-			deviationMm: z.number(),
-			wasMm: limitsPair,
-			isMm: limitsPair,
 			was: verdictWord,
 			is: verdictWord,
+			count: z.number().int(),
+			first: z.array(
+				z.object({
+					checkpointId: z.string(),
+					mark: z.string(),
+					label: z.string(),
+					characteristic,
+					deviationMm: z.number(),
+					wasMm: limitsPair,
+					isMm: limitsPair,
+				}),
+			),
 		}),
 	),
 	faults: z.array(z.object({ ruleIndex: z.number().int(), mark: z.string(), fault: z.enum(['crossed', 'length', 'height', 'thickness']) })),

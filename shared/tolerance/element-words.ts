@@ -1,33 +1,35 @@
 /** What people on a site call the elements of an IFC class, in the plural. */
-const pluralByClass: Readonly<Record<string, string>> = {
-	ifcbeam: 'Beams',
-	ifcbuildingelementproxy: 'Other elements',
-	ifccolumn: 'Columns',
-	ifccurtainwall: 'Curtain walls',
-	ifcdiscreteaccessory: 'Embedded parts',
-	ifcdoor: 'Doors',
-	ifcelementassembly: 'Assemblies',
-	ifcfastener: 'Fasteners',
-	ifcfooting: 'Footings',
-	ifcmechanicalfastener: 'Anchor bolts',
-	ifcmember: 'Members',
-	ifcopeningelement: 'Openings',
-	ifcpile: 'Piles',
-	ifcplate: 'Plates',
-	ifcrailing: 'Railings',
-	ifcramp: 'Ramps',
-	ifcreinforcingbar: 'Bars',
-	ifcroof: 'Roofs',
-	ifcslab: 'Slabs',
-	ifcstair: 'Stairs',
-	ifcstairflight: 'Flights',
-	ifctendon: 'Tendons',
-	ifcwall: 'Walls',
-	ifcwallstandardcase: 'Walls',
-	ifcwindow: 'Windows',
+export const pluralByClass: Readonly<Record<string, string>> = {
+	IfcBeam: 'Beams',
+	IfcBuildingElementProxy: 'Other elements',
+	IfcColumn: 'Columns',
+	IfcCurtainWall: 'Curtain walls',
+	IfcDiscreteAccessory: 'Embedded parts',
+	IfcDoor: 'Doors',
+	IfcElementAssembly: 'Assemblies',
+	IfcFastener: 'Fasteners',
+	IfcFooting: 'Footings',
+	IfcMechanicalFastener: 'Anchor bolts',
+	IfcMember: 'Members',
+	IfcOpeningElement: 'Openings',
+	IfcPile: 'Piles',
+	IfcPlate: 'Plates',
+	IfcRailing: 'Railings',
+	IfcRamp: 'Ramps',
+	IfcReinforcingBar: 'Bars',
+	IfcRoof: 'Roofs',
+	IfcSlab: 'Slabs',
+	IfcStair: 'Stairs',
+	IfcStairFlight: 'Flights',
+	IfcTendon: 'Tendons',
+	IfcWall: 'Walls',
+	IfcWallStandardCase: 'Walls',
+	IfcWindow: 'Windows',
 };
+
+const pluralByKey = new Map(Object.entries(pluralByClass).map(([className, plural]) => [className.toLowerCase(), plural]));
 
 /** "IfcColumn" → "Columns"; a class without a word of its own stays as written. */
 export function classInWords(className: string): string {
-	return pluralByClass[className.toLowerCase()] ?? className;
+	return pluralByKey.get(className.toLowerCase()) ?? className;
 }

@@ -86,7 +86,11 @@ export const routes: RouteObject[] = [
 							}),
 							sitePage('check', 'check', () => import('#src/pages/checks/checks-page.tsx')),
 							sitePage('checks/:checkId', 'check', () => import('#src/pages/check/check-page.tsx'), { path: 'check', word: 'Checks' }),
-							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), { path: 'check', word: 'Checks' }),
+							sitePage('sheets', 'check', () => import('#src/pages/sheets/sheets-page.tsx'), { path: 'check', word: 'Checks' }),
+							sitePage('sheets/:sheetId', 'check', () => import('#src/pages/sheet/sheet-page.tsx'), {
+								path: 'sheets',
+								word: 'Tolerance sheets',
+							}),
 							sitePage('flags', 'flags', () => import('#src/pages/flags/flags-page.tsx')),
 							sitePage('flags/:flagId', 'flags', () => import('#src/pages/flag/flag-page.tsx'), { path: 'flags', word: 'Flags' }),
 							sitePage('shoot-list', 'flags', () => import('#src/pages/shoot-list/shoot-list-page.tsx'), { path: 'flags', word: 'Flags' }),

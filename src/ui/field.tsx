@@ -1,7 +1,8 @@
 import { type HTMLInputAutoCompleteAttribute, type ReactNode, useId } from 'react';
 import { get, useFormContext } from 'react-hook-form';
 
-const inputClass =
+/** The look of an input, for one that is none of the fields below. */
+export const inputClass =
 	'block min-h-11 w-full rounded-corner border-[1.5px] border-field bg-sheet px-3 py-1.5 text-body text-ink placeholder:text-second aria-invalid:border-2 aria-invalid:border-ink pointer-coarse:min-h-12';
 
 interface FieldFrameProps {

@@ -60,7 +60,7 @@ describe('a tolerance sheet', () => {
 			engineer.api.tolerance.saveDraft({ siteId, sheetId: null, seenSha256: null, sheet: { ...plainSheet, rules } });
 		await expect(save([plainSheet.rules[0]!, { id: 'x', match: {}, lowerMm: 5, upperMm: -5 }])).rejects.toMatchObject({
 			message: expect.stringMatching(/^Rule 2: its lower limit \(5 mm\) is above its upper one \(-5 mm\)/),
-			data: { code: 'limits-crossed', where: 'rules.1.lower.number' },
+			data: { code: 'limits-crossed', where: 'rules.1.lower.first.value' },
 		});
 		await expect(save([plainSheet.rules[0]!, plainSheet.rules[0]!])).rejects.toMatchObject({ data: { code: 'rule-twice' } });
 		expect(await engineer.api.tolerance.list({ siteId })).toEqual([]);

@@ -19,7 +19,7 @@ function expectSound(sheet: ToleranceSheet): void {
 		throw new Refused(
 			'limits-crossed',
 			`Rule ${crossed + 1}: its lower limit (${lowerMm} mm) is above its upper one (${upperMm} mm). Nothing was stored.`,
-			`rules.${crossed}.lower.number`,
+			`rules.${crossed}.lower.first.value`,
 		);
 	}
 	const ids = sheet.rules.map(({ id }) => id);

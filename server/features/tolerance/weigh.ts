@@ -4,7 +4,7 @@ import { type WeighedCheckpoint, weighSheet } from '#shared/check/weigh-sheet.ts
 import { gridYawRad } from '#shared/model/grid-yaw.ts';
 import { seesEveryPour } from '#shared/pour/pour-sight.ts';
 import type { SheetWeight } from '#shared/tolerance/contract.ts';
-import type { ToleranceSheet } from '#shared/tolerance/sheet-schema.ts';
+import { characteristic, type ToleranceSheet } from '#shared/tolerance/sheet-schema.ts';
 import type { Handle } from '../../db/database.ts';
 import { elementOf } from '../../db/model-rows.ts';
 import { readMeasurements } from '../../db/read-measurements.ts';
@@ -13,7 +13,8 @@ import { checkpoints, elements, models, revisions } from '../../db/schema/model.
 import { buildings } from '../../db/schema/site.ts';
 import type { Member } from '../../platform/platform.ts';
 
-const mostListed = 200;
+const mostListed = 40;
+const mostMarks = 8;
 
 /**
  * What a sheet would decide on the newest revisions, and which verdicts of all published checks and of the newest trial it would change. Who is only a
@@ -63,13 +64,35 @@ export async function sheetWeightOf(db: Handle, member: Member, sheet: Tolerance
 	return {
 		decides: sheet.rules.map((_, index) => weights.reduce((sum, { decides }) => sum + (decides[index] ?? 0), 0)),
 		undecidedCount: undecided.length,
-		undecided: undecided.slice(0, mostListed).map((one) => ({ ...one })),
+		undecided: grouped(undecided, ({ subject }) => `${subject.class}\n${subject.characteristic}`).map((group) => ({
+			class: group[0]!.subject.class,
+			characteristic: characteristic.parse(group[0]!.subject.characteristic),
+			count: group.length,
+			marks: [...new Set(group.map(({ mark }) => mark))].slice(0, mostMarks),
+		})),
 		changeCount: changes.length,
-		changes: changes.slice(0, mostListed).map(({ wasMm, isMm, ...rest }) => ({
-			...rest,
-			wasMm: wasMm === null ? null : [wasMm[0], wasMm[1]],
-			isMm: isMm === null ? null : [isMm[0], isMm[1]],
+		changes: grouped(changes, ({ was, is }) => `${was}\n${is}`).map((group) => ({
+			was: group[0]!.was,
+			is: group[0]!.is,
+			count: group.length,
+			first: group.slice(0, mostListed).map(({ was: _was, is: _is, wasMm, isMm, ...rest }) => ({
+				...rest,
+				wasMm: wasMm === null ? null : [wasMm[0], wasMm[1]],
+				isMm: isMm === null ? null : [isMm[0], isMm[1]],
+			})),
 		})),
 		faults: weights.flatMap((weight) => weight.faults).map((fault) => ({ ...fault })),
 	};
+}
+
+/** In groups of one key, the largest first; within a group in the order given. */
+function grouped<T>(all: readonly T[], keyOf: (one: T) => string): T[][] {
+	const groups = new Map<string, T[]>();
+	for (const one of all) {
+		const key = keyOf(one);
+		const group = groups.get(key);
+		if (group === undefined) groups.set(key, [one]);
+		else group.push(one);
+	}
+	return [...groups.values()].sort((a, b) => b.length - a.length);
 }

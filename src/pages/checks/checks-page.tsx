@@ -1,4 +1,5 @@
 import { useQueryClient, useSuspenseQueries } from '@tanstack/react-query';
+import { Link } from 'react-router-dom';
 import type { CheckHead } from '#shared/check/contract.ts';
 import { CheckList } from '#src/features/check/check-list.tsx';
 import { useAddressState } from '#src/lib/address-state.ts';
@@ -35,7 +36,15 @@ export default function ChecksPage() {
 	const isRunning = mayCheck && (askedSurvey !== null || checks.length === 0);
 	return (
 		<>
-			<Strip items={[counted(checks.length, 'check'), checks[0] !== undefined && checks[0].state === 'trial' && 'the newest is a trial']} />
+			<Strip
+				items={[
+					counted(checks.length, 'check'),
+					checks[0] !== undefined && checks[0].state === 'trial' && 'the newest is a trial',
+					<Link key="sheets" to={`/sites/${siteId}/sheets`}>
+						tolerance sheets
+					</Link>,
+				]}
+			/>
 			<Headline
 				title="Checks"
 				acts={

@@ -51,8 +51,8 @@ export function missingForCheck(given: {
 	if (given.sheets.every((sheet) => sheet.state !== 'issued')) {
 		missing.push({
 			sentence: 'No tolerance sheet is issued: nobody has said how far off is too far.',
-			path: '',
-			word: 'To the board',
+			path: 'sheets',
+			word: 'To the tolerance sheets',
 			isBar: true,
 		});
 	}

@@ -9,11 +9,12 @@ import { refusalOf } from '#src/lib/api-error.ts';
 import { useMay } from '#src/lib/session.ts';
 import { Button } from '#src/ui/button.tsx';
 import { Notice } from '#src/ui/notice.tsx';
+import { SheetWeighed } from './sheet-weighed.tsx';
 
 type WholeSheet = SheetSummary & { sheet: ToleranceSheet; contentSha256: string };
 
 /** A project engineer begins a draft from a sheet, issues it with a reason, or throws the draft away. */
-export function SheetActs({ siteId, sheet }: { siteId: string; sheet: WholeSheet }) {
+export function SheetActs({ siteId, sheet, isUnkept }: { siteId: string; sheet: WholeSheet; isUnkept: boolean }) {
 	const mayWrite = useMay('tolerance.write');
 	const queries = useQueryClient();
 	const navigate = useNavigate();
@@ -28,7 +29,7 @@ export function SheetActs({ siteId, sheet }: { siteId: string; sheet: WholeSheet
 	const discard = useMutation({
 		mutationFn: () => client.tolerance.discardDraft({ siteId, sheetId: sheet.sheetId }),
 		onSuccess: async () => {
-			navigate(`/sites/${siteId}/check`);
+			navigate(`/sites/${siteId}/sheets`);
 			await queries.invalidateQueries({ queryKey: api.tolerance.list.key() });
 		},
 	});
@@ -42,7 +43,11 @@ export function SheetActs({ siteId, sheet }: { siteId: string; sheet: WholeSheet
 					<Button isBusy={discard.isPending} onClick={() => discard.mutate()}>
 						Discard the draft
 					</Button>
-					<Button weight="act" onClick={() => setIssuing(true)}>
+					<Button
+						weight="act"
+						whyNot={isUnkept ? 'What you changed is not kept yet. Keep the draft, then issue it.' : null}
+						onClick={() => setIssuing(true)}
+					>
 						Issue …
 					</Button>
 				</>
@@ -64,7 +69,9 @@ export function SheetActs({ siteId, sheet }: { siteId: string; sheet: WholeSheet
 						await queries.invalidateQueries();
 					}}
 					onClose={() => setIssuing(false)}
-				/>
+				>
+					<SheetWeighed siteId={siteId} sheet={sheet.sheet} isDraft />
+				</ReasonDialog>
 			)}
 		</>
 	);

@@ -1,19 +1,27 @@
-import { useSuspenseQueries } from '@tanstack/react-query';
+import { useQueryClient, useSuspenseQueries } from '@tanstack/react-query';
+import { useState } from 'react';
 import { useParams } from 'react-router-dom';
-import { ruleSentence } from '#shared/tolerance/rule-sentence.ts';
+import { extractCaution } from '#shared/tolerance/published-extracts.ts';
+import { SheetForm } from '#src/features/tolerance/sheet-form.tsx';
 import { api } from '#src/lib/api.ts';
 import { counted, isoMoment } from '#src/lib/format.ts';
+import { useMay } from '#src/lib/session.ts';
 import { Headline } from '#src/ui/headline.tsx';
 import { Strip } from '#src/ui/strip.tsx';
+import { RuleTexts } from './rule-texts.tsx';
 import { SheetActs } from './sheet-acts.tsx';
 import { SheetWeighed } from './sheet-weighed.tsx';
 
-/** A tolerance sheet, rule by rule in words: the first that fits decides. */
+/** A tolerance sheet, rule by rule in words: the first that fits decides. A draft is a form for who may write it. */
 export default function SheetPage() {
 	const { siteId = '', sheetId = '' } = useParams();
+	const queries = useQueryClient();
+	const mayWrite = useMay('tolerance.write');
+	const [isUnkept, setUnkept] = useState(false);
 	const [{ data: site }, { data: sheet }] = useSuspenseQueries({
 		queries: [api.site.get.queryOptions({ input: { siteId } }), api.tolerance.get.queryOptions({ input: { siteId, sheetId } })],
 	});
+	const isForm = sheet.state === 'draft' && mayWrite;
 	return (
 		<>
 			<Strip
@@ -26,29 +34,31 @@ export default function SheetPage() {
 			/>
 			<Headline
 				title={sheet.name}
-				acts={<SheetActs siteId={siteId} sheet={sheet} />}
+				acts={<SheetActs siteId={siteId} sheet={sheet} isUnkept={isUnkept} />}
 			>{`${sheet.name}: ${counted(sheet.ruleCount, 'rule')}, ${sheet.decision}`}</Headline>
-			<p className="mt-0 max-w-[75ch]">
-				{sheet.decision === 'guarded'
-					? 'Guarded (JCGM 106, k = 2): within means all of the deviation ± U lies inside its limits, outside means all of it lies beyond one; anything else is too close to call.'
-					: 'Simple: within or outside by the deviation alone. Shared risk: on the limit up to 50 % of such verdicts are wrong.'}{' '}
-				The first rule that fits decides.
-			</p>
-			<ol className="m-0 flex list-none flex-col gap-3 p-0">
-				{sheet.sheet.rules.map((rule, index) => (
-					<li key={rule.id} className="sheet flex gap-4 px-4.5 py-3.5">
-						<span className="w-6 text-right text-second">{index + 1}</span>
-						<span className="min-w-0">
-							<span className="block font-strong">{ruleSentence(rule)}</span>
-							<span className="block text-second">
-								{[rule.source, rule.clause, rule.edition].filter(Boolean).join(', ') || 'No source is named.'}
-							</span>
-						</span>
-					</li>
-				))}
-			</ol>
-			<SheetWeighed siteId={siteId} sheet={sheet.sheet} />
-			<p className="max-w-[75ch] text-second">Check against your contract documents; the engineer of record decides.</p>
+			{isForm ? (
+				<SheetForm
+					key={sheetId}
+					siteId={siteId}
+					sheetId={sheetId}
+					sheet={sheet.sheet}
+					contentSha256={sheet.contentSha256}
+					onKept={() => queries.invalidateQueries({ queryKey: api.tolerance.key() })}
+					onTyped={setUnkept}
+				/>
+			) : (
+				<>
+					<p className="mt-0 max-w-[75ch]">
+						{sheet.decision === 'guarded'
+							? 'Guarded (JCGM 106, k = 2): within means all of the deviation ± U lies inside its limits, outside means all of it lies beyond one; anything else is too close to call.'
+							: 'Simple: within or outside by the deviation alone. Shared risk: on the limit up to 50 % of such verdicts are wrong.'}{' '}
+						The first rule that fits decides.
+					</p>
+					<RuleTexts siteId={siteId} sheet={sheet.sheet} />
+				</>
+			)}
+			<SheetWeighed siteId={siteId} sheet={sheet.sheet} isDraft={sheet.state === 'draft'} />
+			<p className="max-w-[75ch] text-second">{extractCaution}</p>
 		</>
 	);
 }

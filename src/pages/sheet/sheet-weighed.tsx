@@ -1,34 +1,41 @@
 import { useQuery } from '@tanstack/react-query';
 import type { ToleranceSheet } from '#shared/tolerance/sheet-schema.ts';
+import { changeSentence } from '#src/features/tolerance/change-sentences.ts';
+import { NoRule } from '#src/features/tolerance/no-rule.tsx';
 import { api } from '#src/lib/api.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
-import { counted, limitsMm, signedMm } from '#src/lib/format.ts';
+import { counted } from '#src/lib/format.ts';
 import { LoadingLines, Notice } from '#src/ui/notice.tsx';
 
-const shown = 30;
+interface SheetWeighedProps {
+	siteId: string;
+	/** As it is kept. */
+	sheet: ToleranceSheet;
+	/** The form lists what no rule decides by itself. */
+	isDraft: boolean;
+}
 
-/** What a sheet would decide and change on the newest revisions: said before it is issued. */
-export function SheetWeighed({ siteId, sheet }: { siteId: string; sheet: ToleranceSheet }) {
+/** What a sheet as it is kept would change on the newest revisions: said before it is issued. */
+export function SheetWeighed({ siteId, sheet, isDraft }: SheetWeighedProps) {
 	const { data: weight, error } = useQuery(api.tolerance.weigh.queryOptions({ input: { siteId, sheet } }));
 	if (error) return <Notice kind="wrong" title={refusalOf(error).message} />;
 	if (!weight) return <LoadingLines what="What the sheet decides" rows={3} />;
 	return (
-		<section aria-labelledby="sheet-weighed" className="mt-5">
-			<h2 id="sheet-weighed" className="m-0 mb-2 text-h2 font-strong">
-				{weight.changeCount === 0 ? 'No verdict is changed by it' : `${counted(weight.changeCount, 'verdict')} changed by it`}
+		<section aria-labelledby="sheet-weighed" className="mt-5 flex flex-col gap-2">
+			<h2 id="sheet-weighed" className="m-0 text-h2 font-strong">
+				{weight.changeCount === 0
+					? isDraft
+						? 'Issued as it is kept, it would change no verdict'
+						: 'By it no verdict is another than it was'
+					: `${isDraft ? 'Issued as it is kept, it would change' : 'By it'} ${counted(weight.changeCount, 'verdict')}${isDraft ? '' : ' are others than they were'}`}
 			</h2>
-			<ol className="m-0 pl-5 text-second">
-				{weight.decides.map((count, index) => (
-					<li key={sheet.rules[index]?.id ?? index}>decides {counted(count, 'checkpoint')}</li>
-				))}
-			</ol>
-			<p className="mb-0">
-				{weight.undecidedCount === 0
-					? 'Every checkpoint of the newest revisions has a rule.'
-					: `No rule decides ${counted(weight.undecidedCount, 'checkpoint')}: ${[...new Set(weight.undecided.map(({ mark }) => mark))].slice(0, 8).join(', ')}${weight.undecidedCount > 8 ? ' …' : ''}`}
-			</p>
+			{weight.changes.map((group) => (
+				<p key={`${group.was} ${group.is}`} className="m-0 max-w-[75ch]">
+					{changeSentence(group)}
+				</p>
+			))}
 			{weight.faults.map(({ ruleIndex, mark, fault }) => (
-				<p key={`${ruleIndex} ${fault}`} className="mb-0 font-medium">
+				<p key={`${ruleIndex} ${fault}`} className="m-0 font-medium">
 					Rule {ruleIndex + 1}{' '}
 					{fault === 'crossed'
 						? `comes out with its lower limit above its upper one at ${mark}`
@@ -36,15 +43,7 @@ export function SheetWeighed({ siteId, sheet }: { siteId: string; sheet: Toleran
 					.
 				</p>
 			))}
-			<ul className="m-0 mt-2 pl-5">
-				{weight.changes.slice(0, shown).map((change) => (
-					<li key={change.checkpointId}>
-						<b>{change.mark}</b>, {change.label}: {signedMm(change.deviationMm)} mm, was {limitsMm(change.wasMm)}, now{' '}
-						{limitsMm(change.isMm)}: {change.was.replaceAll('-', ' ')} becomes {change.is.replaceAll('-', ' ')}
-					</li>
-				))}
-				{weight.changeCount > shown && <li>and {weight.changeCount - shown} more</li>}
-			</ul>
+			{!isDraft && <NoRule weight={weight} />}
 		</section>
 	);
 }
