@@ -45,8 +45,8 @@ export function LimitFields({ name, legend, mayTurn }: { name: SideName; legend:
 
 function TermFields({ name, of, label }: { name: string; of: TypedLimit['first']['of']; label: string }) {
 	return (
-		<div className="grid grid-cols-2 items-end gap-2.5">
-			<SelectField name={`${name}.of`} label={`${label}: in`} options={terms} />
+		<div className="grid grid-cols-2 items-start gap-2.5">
+			<SelectField name={`${name}.of`} label={`${label} in`} options={terms} />
 			<NumberField name={`${name}.value`} label={of === 'mm' ? 'Millimetres' : 'n'} unit={of === 'mm' ? 'mm' : ''} isOptional />
 		</div>
 	);
