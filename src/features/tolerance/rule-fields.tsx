@@ -63,7 +63,7 @@ export function RuleFields({ index, known }: { index: number; known: KnownWords 
 			</Part>
 			<Part title="How far off may it be">
 				<div className={grid}>
-					<SelectField name={`${name}.reference`} label="Measured from" options={optionsOf(referenceLabels, 'not said')} />
+					<SelectField name={`${name}.reference`} label="Reference" options={optionsOf(referenceLabels, 'not said')} />
 					{isPlan && (
 						<SelectField
 							name={`${name}.shape`}
