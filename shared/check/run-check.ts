@@ -1,5 +1,6 @@
 import type { Finding } from '../fit/fit-schema.ts';
 import { matchPreparedRule, prepareRules } from '../tolerance/match-rule.ts';
+import { apartMm } from './apart.ts';
 import { limitFindings, setupFindings, uncertaintyFindings } from './check-findings.ts';
 import type { CheckInput, CheckInputCheckpoint, CheckInputElement, CheckOutput } from './check-input.ts';
 import { type CheckSummary, type Deviation, verdicts } from './check-schema.ts';
@@ -76,7 +77,7 @@ export function runCheck(input: CheckInput, options: CheckProgress = {}): CheckO
 	};
 }
 
-/** Several set-ups may have measured one place: the one with the smallest U counts, they are never averaged; apart by more than their U together is a finding. */
+/** Several set-ups may have measured one place: the one with the smallest U counts, they are never averaged; apart by more than the U of their difference is a finding. */
 function bestOf(
 	checkpoint: CheckInputCheckpoint,
 	observations: readonly Observation[],
@@ -92,17 +93,13 @@ function bestOf(
 			setupId: observation.setup.setup.id,
 			reason: `${best!.observation.name} of ${best!.observation.setup.setup.name} was measured as well and is better known`,
 		});
-		const apartMm =
-			measured.offsetMm !== null && best!.measured.offsetMm !== null
-				? Math.hypot(measured.offsetMm[0] - best!.measured.offsetMm[0], measured.offsetMm[1] - best!.measured.offsetMm[1])
-				: Math.abs(measured.deviationMm - best!.measured.deviationMm);
-		const togetherMm = (measured.expandedUncertaintyMm ?? Infinity) + (best!.measured.expandedUncertaintyMm ?? Infinity);
-		if (apartMm > togetherMm) {
+		const apart = apartMm({ ...checkpoint, ...best!.measured }, { ...checkpoint, ...measured });
+		if (apart !== null && apart.apartMm > apart.togetherMm) {
 			findings.push({
 				code: 'measured-twice',
 				pairs: [checkpoint.mark],
-				message: `${checkpoint.mark}: ${best!.observation.setup.setup.name} and ${observation.setup.setup.name} are ${apartMm.toFixed(0)} mm apart, more than their uncertainties together (${togetherMm.toFixed(0)} mm).`,
-				evidence: { checkpointId: checkpoint.id, apartMm, togetherMm },
+				message: `${checkpoint.mark}: ${best!.observation.setup.setup.name} and ${observation.setup.setup.name} are ${apart.apartMm.toFixed(0)} mm apart, more than their U together (${apart.togetherMm.toFixed(0)} mm).`,
+				evidence: { checkpointId: checkpoint.id, ...apart },
 			});
 		}
 	}

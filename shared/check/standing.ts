@@ -1,7 +1,7 @@
 import type { Finding } from '../fit/fit-schema.ts';
-import { sigmaAlong } from '../geometry/plan-covariance.ts';
 import { plainMm } from '../tolerance/millimetre-text.ts';
 import type { Stage } from '../tolerance/sheet-schema.ts';
+import { apartMm } from './apart.ts';
 import type { Deviation } from './check-schema.ts';
 import { counted, nameList } from './name-list.ts';
 
@@ -68,39 +68,6 @@ function oncePerSurvey(sorted: readonly Measurement[]): Measurement[] {
 		if (kept === undefined || one.isFitAdopted || !kept.isFitAdopted) bySurvey.set(one.surveyId, one);
 	}
 	return [...bySurvey.values()].sort(byAge);
-}
-
-/** The way a deviation counts; null in plan. */
-function wayOf({ characteristic, direction }: Deviation): readonly [number, number, number] {
-	return characteristic === 'level' ? [0, 0, 1] : (direction ?? [0, 0, 1]);
-}
-
-/**
- * How far apart two measurements of one checkpoint are and what U the difference has, millimetres; null where that cannot be said (a U is
- * unknown, or the design turned its face). Where the design moved between the revisions, its move is taken out: what is compared is where
- * the work was found. Source: JCGM 100, independent measurements, variances added.
- */
-export function apartMm(one: Deviation, other: Deviation): { apartMm: number; togetherMm: number } | null {
-	if (one.deviationMm === null || other.deviationMm === null) return null;
-	if (one.offsetMm !== null && other.offsetMm !== null) {
-		if (one.covarianceMm2 === null || other.covarianceMm2 === null) return null;
-		const apart = [0, 1].map((k) => other.offsetMm![k]! - one.offsetMm![k]! + (other.place[k]! - one.place[k]!) * 1000) as [number, number];
-		const [a, b] = [one.covarianceMm2, other.covarianceMm2];
-		const sum = [
-			[a[0][0] + b[0][0], a[0][1] + b[0][1]],
-			[a[1][0] + b[1][0], a[1][1] + b[1][1]],
-		] as const;
-		return { apartMm: Math.hypot(...apart), togetherMm: 2 * sigmaAlong(sum, apart) };
-	}
-	if (one.expandedUncertaintyMm === null || other.expandedUncertaintyMm === null) return null;
-	const [way, otherWay] = [wayOf(one), wayOf(other)];
-	const cosine = way[0] * otherWay[0] + way[1] * otherWay[1] + way[2] * otherWay[2];
-	if (cosine < 0.9999) return null;
-	const movedMm = 1000 * way.reduce((sum, part, k) => sum + part * (other.place[k]! - one.place[k]!), 0);
-	return {
-		apartMm: Math.abs(other.deviationMm - one.deviationMm + movedMm),
-		togetherMm: Math.hypot(one.expandedUncertaintyMm, other.expandedUncertaintyMm),
-	};
 }
 
 function disagreementWith(later: Measurement, earlier: readonly Measurement[], workedOnAt: number | null): Disagreement | null {

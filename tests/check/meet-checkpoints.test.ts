@@ -208,6 +208,11 @@ describe('several measurements', () => {
 		expect(near.deviations[0]!.deviationMm).toBeCloseTo(3, 5);
 		expect(near.codes).not.toContain('measured-twice');
 		expect(met({ setups, points: points(30) }).codes).toContain('measured-twice');
+		// Beyond the U of the difference, √(U₁² + U₂²), and not only beyond their sum (JCGM 100, 5.1).
+		const one = (setupId: string) => met({ setups, points: [aPoint(at(0.2, 0, 1.5), { setupId })] }).deviations[0]!.expandedUncertaintyMm!;
+		const together = Math.hypot(one('s1'), one('s2'));
+		expect(met({ setups, points: points(together * 0.99) }).codes).not.toContain('measured-twice');
+		expect(met({ setups, points: points(together * 1.01) }).codes).toContain('measured-twice');
 	});
 	it('does not average places that only share a name', () => {
 		const { deviations } = met({ points: [aPoint(at(0.21, 0, 1.5)), aPoint(at(9, 0, 1.5))] });

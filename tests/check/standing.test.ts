@@ -1,7 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { apartMm } from '#shared/check/apart.ts';
 import type { Deviation } from '#shared/check/check-schema.ts';
-import { apartMm, disagreementFindings, type Measurement, standingOf } from '#shared/check/standing.ts';
+import { disagreementFindings, type Measurement, standingOf } from '#shared/check/standing.ts';
 
 const deviation = (over: Partial<Deviation> = {}): Deviation => ({
 	checkpointId: 'k1',
