@@ -8,15 +8,20 @@ import { auditEntries } from '../../server/db/schema/record.ts';
 import { sites } from '../../server/db/schema/site.ts';
 import { aSite } from '../builders/a-site.ts';
 import { asBuilt, issuedSheet, plainSheet } from '../builders/as-built.ts';
+import { checkpointsOfClass, copyModel } from '../builders/copied-model.ts';
 import { followJob } from '../builders/follow-job.ts';
 import { readModel } from '../builders/read-model.ts';
 import { storeControl, storeSurvey } from '../builders/store-points.ts';
 import { type Api, openTestServer, type TestServer } from './harness.ts';
 
 let server: TestServer;
+/** The revision that was read once; each site gets a part of it. */
+let readOnce: string;
 beforeAll(async () => {
 	server = await openTestServer();
-});
+	const { engineer } = await aSite(server);
+	readOnce = (await readModel(server, engineer, 'frame.ifc', file, { newName: 'Frame' })).revision.revisionId;
+}, 180_000);
 afterAll(() => server.close());
 
 const file = readFileSync(new URL('../../fixtures/ifc/made-frame-mm-ifc4x3.ifc', import.meta.url));
@@ -26,8 +31,7 @@ const inDays = (days: number) => new Date(Date.now() + days * 86_400_000);
 async function flaggable() {
 	const site = await aSite(server);
 	const { siteId, engineer, surveyor, companyId, otherCompanyId } = site;
-	const { revision } = await readModel(server, engineer, 'frame.ifc', file, { newName: 'Frame' });
-	const { revisionId, modelId } = revision;
+	const { revisionId, modelId } = await copyModel(server, readOnce, siteId, { IfcColumn: 3, IfcWall: 2 });
 	const checkpoints = await surveyor.api.model.checkpoints({ siteId, revisionId });
 	const elements = await surveyor.api.model.elements({ siteId, revisionId });
 	const kinds = (wanted: string) => {
@@ -42,10 +46,7 @@ async function flaggable() {
 	await pour('1', companyId, 'IfcColumn');
 	await pour('2', otherCompanyId, 'IfcWall');
 	const other = await server.addMember(siteId, ['contractor'], otherCompanyId);
-	const ofClass = (wanted: string) => {
-		const ids = new Set(elements.filter((one) => one.class === wanted).map(({ elementId }) => elementId));
-		return checkpoints.filter(({ elementId }) => ids.has(elementId));
-	};
+	const ofClass = (wanted: string) => checkpointsOfClass(checkpoints, elements, wanted);
 	let sheetId = await issuedSheet(server, engineer);
 	const check = async (off: (checkpoint: Checkpoint) => number, surveyedOn = '2025-11-26', seen = checkpoints) => {
 		const { control, survey } = asBuilt(seen, off);
