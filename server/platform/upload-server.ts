@@ -16,6 +16,9 @@ import { uploadIdPattern } from './uploads.ts';
 
 /** Who may bring any kind of file may begin an upload; the command that takes it asks for the right permission. */
 const anyOf: readonly SitePermission[] = ['model.write', 'control.write', 'survey.write'];
+/** Photos and points of one's own: whoever may speak on a flag brings those, and nothing larger. */
+const besideFlags: SitePermission = 'flag.comment';
+const largestBesideFlagsBytes = 30_000_000;
 /** Left free on the disk beside what was announced. */
 const spareBytes = 500_000_000;
 /** An upload that nobody used for so long is removed at the next start. */
@@ -50,6 +53,11 @@ export function openUploads({ platform, path, largestBytes }: { platform: Platfo
 			const signedIn = asker();
 			const member = await bringer(platform, signedIn, upload.metadata?.siteId);
 			const bytes = upload.size ?? refuse(400, 'Say how long the file is.');
+			if (!bringsAnyFile(member) && bytes > largestBesideFlagsBytes)
+				refuse(
+					413,
+					`${cleanFileName(upload.metadata?.filename)} has ${Math.ceil(bytes / 1e6)} MB; at most ${largestBesideFlagsBytes / 1e6} are taken here. Nothing was kept.`,
+				);
 			await refuseFullDisk(platform.uploadFolder, bytes);
 			const fileName = cleanFileName(upload.metadata?.filename);
 			await platform.db.insert(uploads).values({
@@ -107,9 +115,11 @@ async function bringer(platform: Platform, signedIn: SignedIn, siteId: string | 
 	const site = siteInput.safeParse({ siteId });
 	const member = site.success ? await memberOf(platform.db, signedIn, site.data.siteId, platform.now()) : null;
 	if (member === null) return refuse(404, 'There is no such site, or it is not yours to see.');
-	if (!anyOf.some((permission) => mayWith(member.roles, permission))) return refuse(403, 'Your role on this site does not allow this.');
+	if (!bringsAnyFile(member) && !mayWith(member.roles, besideFlags)) return refuse(403, 'Your role on this site does not allow this.');
 	return member;
 }
+
+const bringsAnyFile = ({ roles }: Member): boolean => anyOf.some((permission) => mayWith(roles, permission));
 
 async function refuseFullDisk(folder: string, bytes: number): Promise<void> {
 	const { bavail, bsize } = await statfs(folder);

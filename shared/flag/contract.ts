@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
 import { deviationSchema } from '../check/check-schema.ts';
 import { characteristic, stage } from '../tolerance/sheet-schema.ts';
-import { closingCause, flagAnswer, flagDecision, flagState, flagVerdict, lapseCause } from './flag-schema.ts';
+import { closingCause, flagAnswer, flagDecision, flagState, flagVerdict, lapseCause, worstDeviation } from './flag-schema.ts';
 
 export const flagSummary = z.object({
 	flagId: z.uuid(),
@@ -22,6 +22,8 @@ export const flagSummary = z.object({
 	/** For a contractor: too close to call is "being measured again", with no clock. */
 	verdict: flagVerdict,
 	worstMm: z.number(),
+	/** The worst place with its sign, for a rod; null: flagged before it was kept. */
+	worst: worstDeviation.nullable(),
 	checkId: z.uuid(),
 	round: z.number().int(),
 	answerBy: z.date().nullable(),
@@ -83,6 +85,30 @@ export const flagEvent = z.object({
 });
 export type FlagEvent = z.infer<typeof flagEvent>;
 
+/** East and north, metres, of a box in plan: smallest, then largest. */
+const planBox = z.tuple([z.number(), z.number(), z.number(), z.number()]);
+
+/** Where the element stands among those of its kind on its storey; design frame. */
+export const flagPlan = z.object({ own: planBox, others: z.array(planBox) });
+export type FlagPlan = z.infer<typeof flagPlan>;
+
+/** Points that a contractor brought, and what a check by them found of the flag's element and kind: beside, never in place. */
+export const broughtPointsSchema = z.object({
+	broughtId: z.uuid(),
+	fileName: z.string(),
+	fileSha256: z.string(),
+	companyName: z.string(),
+	broughtBy: z.string(),
+	broughtAt: z.date(),
+	/** Null: a site engineer has not stored them as a survey yet. */
+	surveyId: z.uuid().nullable(),
+	surveyNumber: z.number().int().nullable(),
+	/** The newest check by that survey; null: none yet. */
+	checkId: z.uuid().nullable(),
+	deviations: z.array(deviationSchema),
+});
+export type BroughtPoints = z.infer<typeof broughtPointsSchema>;
+
 export const flagDetail = flagSummary.extend({
 	points: z.array(flagPoint),
 	history: z.array(flagEvent),
@@ -90,6 +116,13 @@ export const flagDetail = flagSummary.extend({
 	/** Who decides, by name; for "Goes to Ida Roen". */
 	projectEngineers: z.array(z.string()),
 	needsOwnersConsent: z.boolean(),
+	/** Null where the newest revision has the element no more, or no box of it. */
+	plan: flagPlan.nullable(),
+	brought: z.array(broughtPointsSchema),
+	/** Surveys of points that its company has brought: what a contest may name. */
+	ownSurveys: z.array(z.object({ surveyId: z.uuid(), number: z.number().int(), name: z.string() })),
+	/** The asking person's own act, while it can be taken back. */
+	takeBack: z.object({ actId: z.uuid(), until: z.date() }).nullable(),
 });
 /** By name, so that the API's own type stays short enough for the compiler to write down. */
 export interface FlagDetail extends z.infer<typeof flagDetail> {}
@@ -100,7 +133,9 @@ const targets = z
 	.array(z.strictObject({ flagId: z.uuid(), version: z.number().int() }))
 	.min(1, 'Choose a flag first.')
 	.max(1000);
-const acted = z.object({ changed: z.number().int() });
+/** Made by who acts: the same act sent twice is done once. */
+const actId = z.uuid().optional();
+const acted = z.object({ changed: z.number().int(), actId: z.uuid() });
 
 export const shootListEntry = z.object({
 	checkpointId: z.string(),
@@ -127,29 +162,49 @@ export const flagContract = {
 		.output(detailAnswer),
 	answer: base
 		.meta({ permission: 'flag.answer' })
-		.input(siteInput.extend({ flags: targets, answer: flagAnswer }))
+		.input(siteInput.extend({ flags: targets, answer: flagAnswer, actId }))
 		.output(acted),
 	askTime: base
 		.meta({ permission: 'flag.answer' })
-		.input(siteInput.extend({ flags: targets, until: z.date() }))
+		.input(siteInput.extend({ flags: targets, until: z.date(), actId }))
 		.output(acted),
 	putRight: base
 		.meta({ permission: 'flag.answer' })
-		.input(siteInput.extend({ flags: targets }))
+		.input(siteInput.extend({ flags: targets, actId }))
 		.output(acted),
 	/** A site engineer may say that it is to be surveyed again; all else is the project engineer's. */
 	decide: base
 		.meta({ permission: 'flag.decide' })
-		.input(siteInput.extend({ flags: targets, decision: flagDecision }))
+		.input(siteInput.extend({ flags: targets, decision: flagDecision, actId }))
 		.output(acted),
 	grantTime: base
 		.meta({ permission: 'flag.grant' })
-		.input(siteInput.extend({ flags: targets }))
+		.input(siteInput.extend({ flags: targets, actId }))
 		.output(acted),
 	consent: base
 		.meta({ permission: 'flag.consent' })
-		.input(siteInput.extend({ flags: targets, isGiven: z.boolean(), reason: plainText(1000) }))
+		.input(siteInput.extend({ flags: targets, isGiven: z.boolean(), reason: plainText(1000), actId }))
 		.output(acted),
+	/** One's own answer or decision, for three minutes, while nobody has acted on it and nobody was told. */
+	takeBack: base
+		.meta({ permission: 'flag.comment' })
+		.input(siteInput.extend({ actId: z.uuid() }))
+		.output(z.object({ changed: z.number().int() })),
+	/** A contractor's own points beside a contest: the file as it is. */
+	bringPoints: base
+		.meta({ permission: 'flag.answer' })
+		.input(siteInput.extend({ flagId: z.uuid(), uploadId: z.string() }))
+		.output(z.object({ broughtId: z.uuid() })),
+	/** Says which survey the brought points were stored as. It takes no measurement's place and is never published. */
+	storePoints: base
+		.meta({ permission: 'survey.write' })
+		.input(siteInput.extend({ broughtId: z.uuid(), surveyId: z.uuid() }))
+		.output(z.object({})),
+	/** The file that was brought, for who sees its flag. */
+	broughtFile: base
+		.meta({ permission: 'flag.see' })
+		.input(siteInput.extend({ broughtId: z.uuid() }))
+		.output(z.instanceof(Blob)),
 	comment: base
 		.meta({ permission: 'flag.comment' })
 		.input(siteInput.extend({ flagId: z.uuid(), text: plainText(2000) }))

@@ -78,3 +78,19 @@ export type LapseCause = z.infer<typeof lapseCause>;
 export const closingCauses = ['check-within', 'concession', 'taken-as-measured'] as const;
 export const closingCause = z.enum(closingCauses);
 export type ClosingCause = z.infer<typeof closingCause>;
+
+/**
+ * The worst place of a flag as a rod shows it: millimetres with sign, + proud or high, in plan the distance. Its limits: a side without one is null.
+ * The offset (east, north) stands of a plan deviation, the direction (unit, design frame) of a face.
+ */
+export const worstDeviation = z.object({
+	label: z.string(),
+	deviationMm: z.number(),
+	expandedUncertaintyMm: z.number().nullable(),
+	limitsMm: z.tuple([z.number().nullable(), z.number().nullable()]).nullable(),
+	offsetMm: z.tuple([z.number(), z.number()]).nullable(),
+	direction: z.tuple([z.number(), z.number(), z.number()]).nullable(),
+	verdict: z.enum(['within', ...flagVerdicts]),
+	beyondMm: z.number().nullable(),
+});
+export type WorstDeviation = z.infer<typeof worstDeviation>;

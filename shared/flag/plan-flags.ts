@@ -2,12 +2,15 @@ import { rejudge } from '../check/rejudge.ts';
 import type { CheckpointStanding } from '../check/standing.ts';
 import type { Characteristic } from '../tolerance/sheet-schema.ts';
 import type { FlagFinding } from './flag-life.ts';
+import type { WorstDeviation } from './flag-schema.ts';
 
 /** What the published checks together say of one element and kind. */
 export interface KindStanding extends FlagFinding {
 	readonly modelId: string;
 	readonly globalId: string;
 	readonly kind: Characteristic;
+	/** Its worst place, with its sign. */
+	readonly worst: WorstDeviation;
 	/** Checkpoints with a verdict, and those of them that are not within. */
 	readonly pointCount: number;
 	readonly offCount: number;
@@ -61,6 +64,7 @@ function kindStandingOf(group: readonly CheckpointStanding[], off: readonly Chec
 		modelId: worst.modelId,
 		globalId: worst.globalId,
 		kind: worst.newest.deviation.characteristic,
+		worst: worstOf(worst.newest.deviation),
 		verdict,
 		worstMm: awayMm(worst),
 		isInsideAlone: telling.every(({ newest }) => rejudge(newest.deviation, 'simple').verdict === 'within'),
@@ -69,6 +73,13 @@ function kindStandingOf(group: readonly CheckpointStanding[], off: readonly Chec
 		checkId: resting.newest.checkId,
 		surveyId: resting.newest.surveyId,
 	};
+}
+
+/** What a list's rod shows of a deviation; without a verdict it would not be here. */
+function worstOf(deviation: CheckpointStanding['newest']['deviation']): WorstDeviation {
+	const { label, deviationMm, expandedUncertaintyMm, limitsMm, offsetMm, direction, verdict, beyondMm } = deviation;
+	const judged = verdict === 'not-measured' || verdict === 'no-tolerance' ? 'within' : verdict;
+	return { label, deviationMm: deviationMm ?? 0, expandedUncertaintyMm, limitsMm, offsetMm, direction, verdict: judged, beyondMm };
 }
 
 const awayMm = ({ newest }: CheckpointStanding): number => Math.abs(newest.deviation.deviationMm ?? 0);

@@ -1,4 +1,5 @@
 import { generatePath, Link, useParams } from 'react-router-dom';
+import { WaitingStrip } from '#src/features/flag/waiting-strip.tsx';
 import { roleWords } from '#src/features/site/role-words.ts';
 import { SiteLine } from '#src/features/site/site-line.tsx';
 import { useSite } from '#src/lib/session.ts';
@@ -37,6 +38,7 @@ function SiteFrame() {
 						</Link>
 					</Head>
 					<SiteLine siteId={site.siteId} line={site.line} place={place} />
+					<WaitingStrip />
 				</>
 			}
 		/>

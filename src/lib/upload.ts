@@ -6,7 +6,7 @@ export interface UploadWish {
 	siteId: string;
 	userId: string;
 	/** What it is for: a half-sent survey is never taken up again as a model. */
-	purpose: 'model' | 'control' | 'survey' | 'photo';
+	purpose: 'model' | 'control' | 'survey' | 'photo' | 'own-points';
 	/** Sent and whole size, bytes. */
 	onProgress?: (sentBytes: number, wholeBytes: number) => void;
 	/** Aborting keeps what was sent, so that the same file goes on from there. */

@@ -66,10 +66,16 @@ interface SubmitProps {
 	/** Other buttons in the same row. */
 	beside?: ReactNode;
 	whyNot?: string | null;
+	/** On a phone fixed to the foot of the screen, within reach of a thumb. */
+	isAtFoot?: boolean;
 }
 
+/** The bar at a phone's foot: what is beside on the left, the act wide on the right. */
+const footClass =
+	'max-tablet:fixed max-tablet:inset-x-0 max-tablet:bottom-0 max-tablet:z-10 max-tablet:border-t max-tablet:border-rule max-tablet:bg-sheet max-tablet:px-4 max-tablet:pt-2.5 max-tablet:pb-[max(0.625rem,env(safe-area-inset-bottom))] max-tablet:[&>*]:min-h-13 max-tablet:[&>*]:flex-[2]';
+
 /** The button that sends the form; above it what the server refused, where no field is to blame. */
-export function Submit({ children, next, beside, whyNot = null }: SubmitProps) {
+export function Submit({ children, next, beside, whyNot = null, isAtFoot = false }: SubmitProps) {
 	const { isSubmitting, errors } = useFormState();
 	const refusalId = useId();
 	const refused = errors.root?.server?.message;
@@ -80,8 +86,15 @@ export function Submit({ children, next, beside, whyNot = null }: SubmitProps) {
 					{refused}
 				</p>
 			)}
-			<div className="flex flex-wrap gap-2.5">
-				<Button type="submit" weight="act" isBusy={isSubmitting} whyNot={whyNot} aria-describedby={refused ? refusalId : undefined}>
+			<div className={`flex flex-wrap gap-2.5 ${isAtFoot ? footClass : ''}`}>
+				<Button
+					type="submit"
+					weight="act"
+					isBusy={isSubmitting}
+					whyNot={whyNot}
+					aria-describedby={refused ? refusalId : undefined}
+					className={isAtFoot ? 'max-tablet:order-2 max-tablet:flex-[3]' : ''}
+				>
 					{children}
 				</Button>
 				{beside}

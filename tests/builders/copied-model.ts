@@ -1,6 +1,5 @@
 import { randomUUID } from 'node:crypto';
 import { eq, inArray } from 'drizzle-orm';
-import type { Checkpoint } from '#shared/model/model-schema.ts';
 import { checkpoints, elements, models, revisions } from '../../server/db/schema/model.ts';
 import type { TestServer } from '../routes/harness.ts';
 
@@ -36,11 +35,11 @@ export async function copyModel(
 }
 
 /** The checkpoints of elements of this class. */
-export function checkpointsOfClass(
-	checkpointsOfModel: readonly Checkpoint[],
+export function checkpointsOfClass<Point extends { elementId: string }>(
+	points: readonly Point[],
 	elementsOfModel: readonly { elementId: string; class: string }[],
 	wanted: string,
-): Checkpoint[] {
+): Point[] {
 	const ids = new Set(elementsOfModel.filter((one) => one.class === wanted).map(({ elementId }) => elementId));
-	return checkpointsOfModel.filter(({ elementId }) => ids.has(elementId));
+	return points.filter(({ elementId }) => ids.has(elementId));
 }

@@ -1,5 +1,20 @@
 import { sql } from 'drizzle-orm';
-import { boolean, check, foreignKey, index, integer, jsonb, pgEnum, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import {
+	boolean,
+	check,
+	foreignKey,
+	index,
+	integer,
+	jsonb,
+	pgEnum,
+	pgTable,
+	primaryKey,
+	text,
+	unique,
+	uniqueIndex,
+	uuid,
+} from 'drizzle-orm/pg-core';
+import type { FlagLife } from '../../../shared/flag/flag-life.ts';
 import {
 	closingCauses,
 	type FlagAnswer,
@@ -7,6 +22,7 @@ import {
 	flagStates,
 	flagVerdicts,
 	lapseCauses,
+	type WorstDeviation,
 } from '../../../shared/flag/flag-schema.ts';
 import { characteristics } from '../../../shared/tolerance/sheet-schema.ts';
 import { users } from './account.ts';
@@ -15,6 +31,7 @@ import { at, id, millimetres, sha256, siteId } from './columns.ts';
 import { files } from './file.ts';
 import { models } from './model.ts';
 import { companies } from './site.ts';
+import { surveys } from './survey.ts';
 
 export const flagStateEnum = pgEnum('flag_state', flagStates);
 export const flagVerdictEnum = pgEnum('flag_verdict', flagVerdicts);
@@ -44,6 +61,8 @@ export const flags = pgTable(
 		verdict: flagVerdictEnum('verdict').notNull(),
 		worstMm: millimetres('worst_mm').notNull(),
 		isInsideAlone: boolean('is_inside_alone').notNull(),
+		/** The worst of its places with its sign, limits and U; null: flagged before it was kept. */
+		worst: jsonb('worst').$type<WorstDeviation>(),
 		/** The check that its figures come from. */
 		checkId: uuid('check_id').notNull(),
 		/** The check that raised it: with that one withdrawn it lapses. */
@@ -172,5 +191,64 @@ export const flagPhotos = pgTable(
 	(t) => [
 		foreignKey({ columns: [t.siteId, t.flagId], foreignColumns: [flags.siteId, flags.id] }),
 		unique('flag_photos_once').on(t.flagId, t.originalSha256),
+	],
+);
+
+/**
+ * What a person did to a flag and how the flag stood before, so that the same act sent twice is one, and can be taken back for minutes. The id
+ * of an act is the sender's; several flags of one act share it.
+ */
+export const flagActs = pgTable(
+	'flag_acts',
+	{
+		actId: uuid('act_id').notNull(),
+		siteId: siteId(),
+		flagId: uuid('flag_id').notNull(),
+		kind: text('kind').notNull(),
+		actorId: uuid('actor_id')
+			.notNull()
+			.references(() => users.id),
+		actedAt: at('acted_at').notNull(),
+		/** The flag's version after it: any other now says that something has been done since. */
+		versionAfter: integer('version_after').notNull(),
+		/** Its life before. */
+		before: jsonb('before').$type<FlagLife>().notNull(),
+		takenBackAt: at('taken_back_at'),
+	},
+	(t) => [
+		primaryKey({ columns: [t.actId, t.flagId] }),
+		foreignKey({ columns: [t.siteId, t.flagId], foreignColumns: [flags.siteId, flags.id] }),
+		index('flag_acts_flag').on(t.flagId, t.actorId),
+	],
+);
+
+/**
+ * Points of a contractor's own, brought with a contest: the file as it came. A site engineer stores it as a survey like any other and names that
+ * survey here; its figures are shown beside the flag's, never in their place.
+ */
+export const broughtPoints = pgTable(
+	'brought_points',
+	{
+		id: id(),
+		siteId: siteId(),
+		flagId: uuid('flag_id').notNull(),
+		companyId: uuid('company_id').notNull(),
+		fileName: text('file_name').notNull(),
+		fileSha256: sha256('file_sha256')
+			.notNull()
+			.references(() => files.sha256),
+		broughtBy: uuid('brought_by')
+			.notNull()
+			.references(() => users.id),
+		broughtAt: at('brought_at').notNull(),
+		surveyId: uuid('survey_id'),
+		storedBy: uuid('stored_by').references(() => users.id),
+	},
+	(t) => [
+		foreignKey({ columns: [t.siteId, t.flagId], foreignColumns: [flags.siteId, flags.id] }),
+		foreignKey({ columns: [t.siteId, t.companyId], foreignColumns: [companies.siteId, companies.id] }),
+		foreignKey({ columns: [t.siteId, t.surveyId], foreignColumns: [surveys.siteId, surveys.id] }),
+		unique('brought_points_once').on(t.flagId, t.fileSha256),
+		check('brought_points_stored_says_who', sql`${t.surveyId} is null or ${t.storedBy} is not null`),
 	],
 );

@@ -2,6 +2,8 @@ import { and, eq } from 'drizzle-orm';
 import type { Handle, Transaction } from '../../db/database.ts';
 import { checkFits, checks } from '../../db/schema/check.ts';
 import { fits } from '../../db/schema/fit.ts';
+import { broughtPoints } from '../../db/schema/flag.ts';
+import { companies } from '../../db/schema/site.ts';
 import { sheets } from '../../db/schema/tolerance.ts';
 import { audit } from '../../platform/audit.ts';
 import type { Member } from '../../platform/platform.ts';
@@ -26,6 +28,16 @@ export async function whyNotPublished(db: Handle, check: CheckRow): Promise<{ co
 		const why = check.state === 'withdrawn' ? 'was withdrawn; run it again' : check.state === 'failed' ? 'failed' : 'is still computing';
 		return { code: 'not-a-trial', message: `Check ${check.number} ${why}.` };
 	}
+	const brought = await db
+		.select({ companyName: companies.name })
+		.from(broughtPoints)
+		.innerJoin(companies, eq(companies.id, broughtPoints.companyId))
+		.where(and(eq(broughtPoints.siteId, check.siteId), eq(broughtPoints.surveyId, check.surveyId)));
+	if (brought[0] !== undefined)
+		return {
+			code: 'brought-points',
+			message: `Its survey holds points that ${brought[0].companyName} brought: they are shown beside the flag they were brought to, and take no measurement’s place.`,
+		};
 	const used = await db
 		.select({ state: fits.state })
 		.from(checkFits)

@@ -1,15 +1,17 @@
 import { and, asc, eq, inArray } from 'drizzle-orm';
 import { actOnFlag } from '#shared/flag/act-on-flag.ts';
-import type { FlagAct, FlagLife } from '#shared/flag/flag-life.ts';
+import type { FlagLife } from '#shared/flag/flag-life.ts';
 import { maySeeFlag } from '#shared/flag/may-act.ts';
 import type { AuditKind } from '#shared/record/audit-entry.ts';
 import type { Transaction } from '../../db/database.ts';
 import { insertRows } from '../../db/insert-rows.ts';
-import { flagAnswers, flagDecisions, flags } from '../../db/schema/flag.ts';
+import { broughtPoints, flagActs, flagAnswers, flagDecisions, flags } from '../../db/schema/flag.ts';
 import { auditEach } from '../../platform/audit.ts';
+import { postNotices } from '../../platform/notices.ts';
 import type { Member, Platform } from '../../platform/platform.ts';
 import { Conflict, Forbidden, NotFound, Refused } from '../../platform/refuse.ts';
 import { flagMomentOf } from './flag-moment.ts';
+import { noticesOfAct, type PersonsAct } from './flag-notices.ts';
 import { columnsOf, type FlagRow, lifeOf } from './flag-rows.ts';
 
 /** A flag that is acted on, and the version of it that its doer saw. */
@@ -17,8 +19,6 @@ export interface FlagTarget {
 	flagId: string;
 	version: number;
 }
-
-type PersonsAct = Exclude<FlagAct, { kind: 'measured-again' | 'lapse' }>;
 
 const auditKindOf: Record<PersonsAct['kind'], AuditKind> = {
 	answer: 'flag-answered',
@@ -31,15 +31,16 @@ const auditKindOf: Record<PersonsAct['kind'], AuditKind> = {
 
 /**
  * One act on several flags, all or none. NOT_FOUND for one that is not there or not this member's to see, CONFLICT where one was changed since it
- * was looked at, REFUSED with its number where its state does not allow the act.
+ * was looked at, REFUSED with its number where its state does not allow the act. An act that was done already (its receipt was lost on the way)
+ * is answered as it was then.
  */
 export async function actOnFlags(
 	platform: Platform,
 	member: Member,
 	targets: readonly FlagTarget[],
 	act: PersonsAct,
-	consentReason: string | null = null,
-): Promise<{ changed: number }> {
+	{ actId = platform.newId(), consentReason = null }: { actId?: string | undefined; consentReason?: string | null } = {},
+): Promise<{ changed: number; actId: string }> {
 	const seenVersion = new Map(targets.map(({ flagId, version }) => [flagId, version]));
 	return platform.transaction(async (tx) => {
 		const now = platform.now();
@@ -50,7 +51,10 @@ export async function actOnFlags(
 			.orderBy(asc(flags.id))
 			.for('update');
 		if (rows.length < seenVersion.size || rows.some((row) => !maySeeFlag(member, row))) throw new NotFound();
+		const before = await tx.select().from(flagActs).where(eq(flagActs.actId, actId));
+		if (before.length > 0) return doneBefore(before, member, actId);
 		const moment = await flagMomentOf(tx, member.siteId, now);
+		if (act.kind === 'answer' && act.answer.kind === 'contest') await refuseForeignSurvey(tx, member, act.answer.ownSurveyId);
 		const changed = rows
 			.toSorted((a, b) => a.number - b.number)
 			.map((row) => ({ row, after: acted(row, act, member, moment, seenVersion) }));
@@ -64,6 +68,22 @@ export async function actOnFlags(
 			if (updated.length === 0) throw changedMeanwhile(row);
 		}
 		await keepSaid(tx, platform, member, act, changed, consentReason, now);
+		await insertRows(
+			tx,
+			flagActs,
+			changed.map(({ row }) => ({
+				actId,
+				siteId: member.siteId,
+				flagId: row.id,
+				kind: act.kind,
+				actorId: member.userId,
+				actedAt: now,
+				versionAfter: row.version + 1,
+				before: lifeOf(row),
+				takenBackAt: null,
+			})),
+		);
+		await postNotices(tx, { siteId: member.siteId, actId, actorId: member.userId, now }, await noticesOfAct(tx, member, act, changed, now));
 		await auditEach(
 			tx,
 			member,
@@ -82,8 +102,24 @@ export async function actOnFlags(
 			})),
 			now,
 		);
-		return { changed: changed.length };
+		return { changed: changed.length, actId };
 	});
+}
+
+function doneBefore(before: readonly (typeof flagActs.$inferSelect)[], { siteId, userId }: Member, actId: string) {
+	if (before.some((one) => one.siteId !== siteId || one.actorId !== userId)) throw new NotFound();
+	return { changed: before.length, actId };
+}
+
+/** A contest names a survey of the own company's points, no other. */
+async function refuseForeignSurvey(tx: Transaction, { siteId, companyIds }: Member, surveyId: string | null): Promise<void> {
+	if (surveyId === null) return;
+	const owned = await tx
+		.select({ id: broughtPoints.id })
+		.from(broughtPoints)
+		.where(and(eq(broughtPoints.siteId, siteId), eq(broughtPoints.surveyId, surveyId), inArray(broughtPoints.companyId, [...companyIds])));
+	if (owned.length === 0)
+		throw new Refused('not-your-survey', 'This is no survey of points that your company has brought.', 'answer.ownSurveyId');
 }
 
 function acted(

@@ -4,8 +4,10 @@ import { insertRows } from '../../db/insert-rows.ts';
 import { flags } from '../../db/schema/flag.ts';
 import { storableText } from '../../db/storable-text.ts';
 import { auditEach } from '../../platform/audit.ts';
+import { postNotices } from '../../platform/notices.ts';
 import type { Member, Platform } from '../../platform/platform.ts';
 import { Conflict } from '../../platform/refuse.ts';
+import { noticesOfReopening } from './flag-notices.ts';
 import { columnsOf, type FlagRow } from './flag-rows.ts';
 import type { FlagChanges } from './plan-flag-changes.ts';
 
@@ -18,15 +20,27 @@ export async function applyFlagChanges(
 ): Promise<void> {
 	const { siteId } = member;
 	const changedAt = now();
-	for (const { row, after, words } of changed) {
+	for (const { row, after, words, worst } of changed) {
 		const { companyId: _, ...columns } = columnsOf(after);
 		const updated = await tx
 			.update(flags)
-			.set({ ...columns, lapsedWords: words === null ? row.lapsedWords : storableText(words), version: row.version + 1, changedAt })
+			.set({
+				...columns,
+				...(worst && { worst }),
+				lapsedWords: words === null ? row.lapsedWords : storableText(words),
+				version: row.version + 1,
+				changedAt,
+			})
 			.where(and(eq(flags.siteId, siteId), eq(flags.id, row.id), eq(flags.version, row.version)))
 			.returning({ id: flags.id });
 		if (updated.length === 0) throw new Conflict(`Flag ${row.number} was changed a moment ago. Look again.`);
 	}
+	const reopened = changed.filter(({ row, after }) => after.round > row.round);
+	await postNotices(
+		tx,
+		{ siteId, actId: newId(), actorId: member.userId, now: changedAt },
+		await noticesOfReopening(tx, siteId, reopened, changedAt),
+	);
 	const [highest] = await tx
 		.select({ number: max(flags.number) })
 		.from(flags)
@@ -44,6 +58,7 @@ export async function applyFlagChanges(
 			kind,
 			mark,
 			title,
+			worst: standing.worst,
 			raisedCheckId: checkId,
 			raisedAt: changedAt,
 			lapsedWords: null,

@@ -2,6 +2,7 @@ import { and, asc, desc, eq, ne } from 'drizzle-orm';
 import { standingOf } from '#shared/check/standing.ts';
 import { actOnFlag } from '#shared/flag/act-on-flag.ts';
 import type { FlagAct, FlagLife, FlagMoment } from '#shared/flag/flag-life.ts';
+import type { WorstDeviation } from '#shared/flag/flag-schema.ts';
 import { raiseFlag } from '#shared/flag/measured-again.ts';
 import { flagKey, type KindStanding, kindStandings } from '#shared/flag/plan-flags.ts';
 import type { Handle } from '../../db/database.ts';
@@ -28,6 +29,8 @@ export interface ChangedFlag {
 	row: FlagRow;
 	act: Extract<FlagAct, { kind: 'measured-again' | 'lapse' }>;
 	after: FlagLife;
+	/** What was measured, where it was. */
+	worst: WorstDeviation | null;
 	/** Of a lapse: which check, revision or sheet. */
 	words: string | null;
 }
@@ -142,7 +145,7 @@ function byKey(
 
 function measure(changes: FlagChanges, row: FlagRow, standing: KindStanding, moment: FlagMoment): void {
 	const { checkId, verdict, worstMm, isInsideAlone } = standing;
-	act(changes, row, { kind: 'measured-again', finding: { checkId, verdict, worstMm, isInsideAlone } }, null, moment);
+	act(changes, row, { kind: 'measured-again', finding: { checkId, verdict, worstMm, isInsideAlone } }, null, moment, standing.worst);
 }
 
 function lapse(
@@ -155,10 +158,17 @@ function lapse(
 	act(changes, row, { kind: 'lapse', because }, words, moment);
 }
 
-function act(changes: FlagChanges, row: FlagRow, done: ChangedFlag['act'], words: string | null, moment: FlagMoment): void {
+function act(
+	changes: FlagChanges,
+	row: FlagRow,
+	done: ChangedFlag['act'],
+	words: string | null,
+	moment: FlagMoment,
+	worst: WorstDeviation | null = null,
+): void {
 	const outcome = actOnFlag(lifeOf(row), done, 'server', moment);
 	if (!outcome.ok) throw new Error(`Flag ${row.number} does not take what its check says: ${outcome.refusal.message}`);
-	changes.changed.push({ row, act: done, after: outcome.flag, words });
+	changes.changed.push({ row, act: done, after: outcome.flag, words, worst });
 }
 
 async function raiseWhere(

@@ -13,8 +13,11 @@ import { companies, memberships } from '../../db/schema/site.ts';
 import type { Member, Platform } from '../../platform/platform.ts';
 import { NotFound } from '../../platform/refuse.ts';
 import { siteSettingsOf } from '../../platform/site-settings.ts';
+import { broughtTo, ownSurveysOf } from './brought-points.ts';
+import { flagPlanOf } from './flag-plan.ts';
 import { answerOf, decisionOf, type FlagRow } from './flag-rows.ts';
 import { photosOf } from './photos.ts';
+import { takeBackOf } from './take-back.ts';
 
 const consenters = alias(users, 'consenters');
 
@@ -55,6 +58,10 @@ export async function flagDetailOf(platform: Platform, member: Member, flagId: s
 		photos: await photosOf(platform, row.id),
 		projectEngineers: await projectEngineersOf(db, member.siteId, platform.now()),
 		needsOwnersConsent: settings.needsOwnersConsent,
+		plan: await flagPlanOf(db, row),
+		brought: await broughtTo(db, row),
+		ownSurveys: await ownSurveysOf(db, member.siteId, row.companyId),
+		takeBack: await takeBackOf(db, member, row, platform.now()),
 	};
 }
 

@@ -2,48 +2,41 @@ import { useId, useState } from 'react';
 import type { FlagPhoto } from '#shared/flag/contract.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
 import { isoMoment } from '#src/lib/format.ts';
-import { UploadFault, uploadFile } from '#src/lib/upload.ts';
 import { buttonClass } from '#src/ui/button.tsx';
 import { Notice } from '#src/ui/notice.tsx';
-import { Progress } from '#src/ui/progress.tsx';
 
 /** Opens the camera on a phone, a file chooser elsewhere, and sends what was taken. */
 export function CameraButton({
-	siteId,
-	userId,
 	onTaken,
 }: {
-	siteId: string;
-	userId: string;
-	/** The upload's id; throws what the server refuses. */
-	onTaken: (uploadId: string) => Promise<unknown>;
+	/** Sends or keeps the photo; throws what the server refuses. */
+	onTaken: (file: File) => Promise<unknown>;
 }) {
 	const id = useId();
-	const [sent, setSent] = useState<{ done: number; of: number } | null>(null);
+	const [isSending, setIsSending] = useState(false);
 	const [fault, setFault] = useState<string | null>(null);
 	const take = async (file: File): Promise<void> => {
 		setFault(null);
-		setSent({ done: 0, of: file.size });
+		setIsSending(true);
 		try {
-			const uploadId = await uploadFile({ file, siteId, userId, purpose: 'photo', onProgress: (done, of) => setSent({ done, of }) });
-			await onTaken(uploadId);
+			await onTaken(file);
 		} catch (error) {
-			setFault(error instanceof UploadFault ? error.message : refusalOf(error).message);
+			setFault(refusalOf(error).message);
 		} finally {
-			setSent(null);
+			setIsSending(false);
 		}
 	};
 	return (
 		<div className="flex flex-col gap-2">
-			<label htmlFor={id} className={`${buttonClass('quiet')} cursor-pointer has-focus-visible:outline-3`}>
-				Camera
+			<label htmlFor={id} className={`${buttonClass('quiet', 'flex-1')} relative cursor-pointer has-focus-visible:outline-3`}>
+				{isSending ? 'Sending …' : 'Camera'}
 				<input
 					id={id}
 					type="file"
 					accept="image/jpeg,image/png,image/heic,image/heif"
 					capture="environment"
 					className="sr-only"
-					disabled={sent !== null}
+					disabled={isSending}
 					onChange={(event) => {
 						const [file] = event.target.files ?? [];
 						event.target.value = '';
@@ -51,7 +44,6 @@ export function CameraButton({
 					}}
 				/>
 			</label>
-			{sent && <Progress doing="Sending the photo" done={sent.done} of={sent.of} />}
 			{fault && <Notice kind="wrong" title={fault} />}
 		</div>
 	);

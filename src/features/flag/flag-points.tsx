@@ -1,5 +1,4 @@
 import { useRef } from 'react';
-import { directionWords } from '#shared/check/direction-words.ts';
 import { deviationSentence } from '#shared/check/sentence.ts';
 import type { FlagDetail, FlagPoint } from '#shared/flag/contract.ts';
 import { useElementWidth } from '#src/lib/element-width.ts';
@@ -14,7 +13,9 @@ export function FlagPoints({ flag }: { flag: FlagDetail }) {
 	const box = useRef<HTMLDivElement>(null);
 	const widthPx = useElementWidth(box, 330);
 	const now = useNow();
-	const seen = flag.points.filter(({ deviation }) => deviation.deviationMm !== null);
+	const seen = flag.points
+		.filter(({ deviation }) => deviation.deviationMm !== null)
+		.toSorted((a, b) => b.deviation.place[2] - a.deviation.place[2]);
 	const notSeen = flag.points.length - seen.length;
 	if (seen.length === 0) return <Notice kind="empty" title="No published check has measured this any more" />;
 	const scaleMm = rodScaleMm(
@@ -22,17 +23,18 @@ export function FlagPoints({ flag }: { flag: FlagDetail }) {
 		seen.map(({ deviation }) => deviation.deviationMm),
 	);
 	const worst = seen.toSorted((a, b) => Math.abs(b.deviation.deviationMm ?? 0) - Math.abs(a.deviation.deviationMm ?? 0))[0]!;
-	const rodPx = Math.max(110, Math.min(220, widthPx - 190));
+	const sharedHead = sharedHeadOf(seen);
+	const rodPx = Math.max(110, Math.min(sharedHead === null ? 220 : 300, widthPx - (sharedHead === null ? 190 : 170)));
 	return (
 		<div ref={box} className="flex flex-col gap-3">
 			<section className="sheet px-4 py-3" aria-label="What was measured">
+				{sharedHead !== null && <p className="m-0 mb-1 text-small text-second">{sharedHead}</p>}
 				<ul className="m-0 flex list-none flex-col gap-1 p-0">
 					{seen.map((point) => (
-						<PointRow key={point.deviation.checkpointId} point={point} scaleMm={scaleMm} rodPx={rodPx} />
+						<PointRow key={point.deviation.checkpointId} point={point} scaleMm={scaleMm} rodPx={rodPx} isHeightOnly={sharedHead !== null} />
 					))}
 				</ul>
 				<p className="mt-2 mb-0 border-t border-t-hair pt-2">{deviationSentence(worst.deviation)}</p>
-				{toCome(worst) && <p className="m-0 font-strong">{toCome(worst)}</p>}
 				<p className="mt-1 mb-0 text-small text-second">
 					Survey {worst.surveyNumber}, {worst.surveyName}, {calendarDay(worst.measuredOn.toISOString().slice(0, 10), now)}
 					{worst.isFitChecked ? '' : ', on a fit that nobody has checked yet'}
@@ -47,13 +49,31 @@ export function FlagPoints({ flag }: { flag: FlagDetail }) {
 	);
 }
 
-function PointRow({ point, scaleMm, rodPx }: { point: FlagPoint; scaleMm: number; rodPx: number }) {
+const heightPattern = /^(.+), ([\d.]+ m) (above .+)$/;
+
+/** "East face, above its base": what the labels have in common where only their heights differ; else null. */
+function sharedHeadOf(points: readonly FlagPoint[]): string | null {
+	const heads = points.map(({ deviation }) => heightPattern.exec(deviation.label)).map((found) => found && `${found[1]}, ${found[3]}`);
+	return heads[0] != null && heads.every((head) => head === heads[0]) ? heads[0] : null;
+}
+
+interface PointRowProps {
+	point: FlagPoint;
+	scaleMm: number;
+	rodPx: number;
+	/** The rest of its label is said above. */
+	isHeightOnly: boolean;
+}
+
+function PointRow({ point, scaleMm, rodPx, isHeightOnly }: PointRowProps) {
 	const { deviation } = point;
 	const { characteristic, deviationMm, expandedUncertaintyMm } = deviation;
 	const figure = characteristic === 'plan' ? plainMm(deviationMm, expandedUncertaintyMm) : signedMm(deviationMm, expandedUncertaintyMm);
 	return (
 		<li className="flex min-h-9 items-center gap-2">
-			<span className="min-w-0 flex-1 text-small leading-tight text-second">{deviation.label}</span>
+			<span className={`min-w-0 flex-1 leading-tight text-second ${isHeightOnly ? 'whitespace-nowrap' : 'text-small'}`}>
+				{isHeightOnly ? heightPattern.exec(deviation.label)?.[2] : deviation.label}
+			</span>
 			<Rod
 				deviationMm={deviationMm}
 				limitsMm={deviation.limitsMm}
@@ -71,16 +91,6 @@ function PointRow({ point, scaleMm, rodPx }: { point: FlagPoint; scaleMm: number
 			</span>
 		</li>
 	);
-}
-
-/** "To come 23 west": the way it has yet to go; arithmetic, no instruction. Before the pour only. */
-function toCome({ deviation, stage }: FlagPoint): string | null {
-	if (stage !== 'before-pour' || deviation.verdict === 'within') return null;
-	if (deviation.offsetMm !== null) return `To come ${directionWords([0 - deviation.offsetMm[0], 0 - deviation.offsetMm[1]], 0)}`;
-	if (deviation.direction === null || deviation.deviationMm === null) return null;
-	const [east, north] = deviation.direction;
-	if (Math.hypot(east, north) < 0.5) return null;
-	return `To come ${directionWords([-east * deviation.deviationMm, -north * deviation.deviationMm], 0)}`;
 }
 
 function Trend({ point }: { point: FlagPoint }) {

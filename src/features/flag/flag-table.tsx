@@ -1,10 +1,13 @@
 import { type ReactNode, useMemo } from 'react';
 import { Link, useNavigate } from 'react-router-dom';
+import { deviationSentence } from '#shared/check/sentence.ts';
 import type { FlagSummary } from '#shared/flag/contract.ts';
-import { Glyph } from '#src/ui/glyph.tsx';
+import { flagTitle } from '#shared/flag/flag-name.ts';
+import { glyphKindOf, planTurnRad } from '#src/ui/glyph-kind.ts';
+import { Rod, rodScaleMm } from '#src/ui/rod.tsx';
 import { useIsBelow } from '#src/ui/screen-width.ts';
 import { type Column, Table } from '#src/ui/table.tsx';
-import { deadlineWords, flagTitle, offWords, stateWords } from './flag-words.ts';
+import { deadlineWords, offWords, stateWords } from './flag-words.ts';
 
 interface FlagTableProps {
 	siteId: string;
@@ -22,6 +25,14 @@ const keyOf = ({ flagId }: FlagSummary): string => flagId;
 export function FlagTable({ siteId, flags, chosen, onChoose, timeZone, now, empty }: FlagTableProps) {
 	const navigate = useNavigate();
 	const isPhone = useIsBelow('tablet');
+	const scaleMm = useMemo(
+		() =>
+			rodScaleMm(
+				flags.map(({ worst }) => worst?.limitsMm ?? null),
+				flags.map(({ worst }) => worst?.deviationMm ?? null),
+			),
+		[flags],
+	);
 	const columns = useMemo((): Column<FlagSummary>[] => {
 		const toggle = (flagId: string): void => {
 			const next = new Set(chosen);
@@ -63,30 +74,45 @@ export function FlagTable({ siteId, flags, chosen, onChoose, timeZone, now, empt
 						to={`/sites/${siteId}/flags/${flag.flagId}`}
 						className="flex w-0 min-w-full items-center gap-2.5 text-ink no-underline hover:underline"
 					>
-						{/* Which way an element is off is its points' to say: a wedge here could point the wrong way. */}
-						<span className="w-4.5 shrink-0">{flag.verdict !== 'outside' && <Glyph kind="close" />}</span>
-						<span className="min-w-0 leading-tight">
+						<span className="min-w-0 flex-1 leading-tight">
 							<span className="block truncate font-strong">{flagTitle(flag)}</span>
 							<span className="block truncate text-small text-second">
 								{isPhone ? `${offWords(flag)} · ${stateWords(flag, now)}` : `no. ${flag.number}, ${offWords(flag)}`}
 							</span>
 							{isPhone && <span className="block truncate text-small">{deadlineWords(flag, timeZone, now)}</span>}
 						</span>
+						{isPhone && <FlagRod flag={flag} scaleMm={scaleMm} widthPx={84} />}
 					</Link>
 				),
 			},
-			{ key: 'state', head: 'Where it stands', onlyFrom: 'tablet', cell: (flag) => stateWords(flag, now) },
+			{
+				key: 'rod',
+				head: 'Against its limits',
+				onlyFrom: 'tablet',
+				widthPx: 156,
+				cell: (flag) => <FlagRod flag={flag} scaleMm={scaleMm} widthPx={140} />,
+			},
+			{
+				key: 'state',
+				head: 'Where it stands',
+				onlyFrom: 'tablet',
+				widthPx: 190,
+				cell: (flag) => <span className="line-clamp-2 leading-tight whitespace-normal">{stateWords(flag, now)}</span>,
+			},
 			{
 				key: 'deadline',
 				head: 'Answer',
 				onlyFrom: 'tablet',
-				widthPx: 230,
-				cell: (flag) => (
-					<>
-						{deadlineWords(flag, timeZone, now)}
-						{flag.timeAsked !== null && <b className="block text-small">more time asked</b>}
-					</>
-				),
+				widthPx: 170,
+				cell: (flag) => {
+					const [by, distance] = deadlineWords(flag, timeZone, now).split(', ');
+					return (
+						<span className="block leading-tight whitespace-normal">
+							{by}
+							<span className="block text-small">{flag.timeAsked === null ? distance : <b>more time asked</b>}</span>
+						</span>
+					);
+				},
 			},
 			{
 				key: 'pour',
@@ -97,7 +123,7 @@ export function FlagTable({ siteId, flags, chosen, onChoose, timeZone, now, empt
 			},
 			{ key: 'company', head: 'Company', onlyFrom: 'cabin', widthPx: 170, cell: ({ companyName }) => companyName ?? '–' },
 		];
-	}, [chosen, onChoose, flags, siteId, timeZone, now, isPhone]);
+	}, [chosen, onChoose, flags, siteId, timeZone, now, isPhone, scaleMm]);
 	return (
 		<Table
 			caption="Flags"
@@ -108,6 +134,25 @@ export function FlagTable({ siteId, flags, chosen, onChoose, timeZone, now, empt
 			scrollClass="max-h-[max(20rem,calc(100dvh-17rem))]"
 			rowHeightPx={isPhone ? 78 : 58}
 			empty={empty}
+		/>
+	);
+}
+
+/** The worst place with its sign; a dash where it was not kept. */
+function FlagRod({ flag: { worst, kind }, scaleMm, widthPx }: { flag: FlagSummary; scaleMm: number; widthPx: number }) {
+	if (worst === null) return <span className="text-second">–</span>;
+	const judged = { ...worst, characteristic: kind };
+	return (
+		<Rod
+			deviationMm={worst.deviationMm}
+			limitsMm={worst.limitsMm}
+			expandedUncertaintyMm={worst.expandedUncertaintyMm}
+			scaleMm={scaleMm}
+			glyph={glyphKindOf(judged)}
+			sentence={deviationSentence({ ...judged, notMeasuredReason: null })}
+			isPlan={kind === 'plan'}
+			turnRad={planTurnRad(worst.offsetMm)}
+			widthPx={widthPx}
 		/>
 	);
 }

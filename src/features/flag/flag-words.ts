@@ -3,13 +3,6 @@ import { isOverdue } from '#shared/flag/flag-life.ts';
 import { decisionWords } from '#shared/flag/said-words.ts';
 import { distanceInTime, moment, plainMm } from '#src/lib/format.ts';
 
-const kindWords: Record<FlagSummary['kind'], string> = { plan: 'in plan', level: 'level', face: 'faces' };
-
-/** "C/3, ground, faces". */
-export function flagTitle(flag: Pick<FlagSummary, 'title' | 'mark' | 'kind'>): string {
-	return `${flag.title || flag.mark}, ${kindWords[flag.kind]}`;
-}
-
 /** "off by up to 34 mm"; of one that is too close to call only that. */
 export function offWords({ verdict, worstMm }: Pick<FlagSummary, 'verdict' | 'worstMm'>): string {
 	if (verdict === 'outside') return `up to ${plainMm(worstMm)} mm off its place`;
@@ -45,7 +38,7 @@ export function deadlineWords(flag: Pick<FlagSummary, 'state' | 'answerBy'>, tim
 }
 
 /** What lists are narrowed to: what waits for whom. */
-export const flagGroups = ['to answer', 'to decide', 'being measured again', 'decided', 'to measure', 'settled'] as const;
+export const flagGroups = ['to answer', 'to decide', 'to consent', 'being measured again', 'decided', 'to measure', 'settled'] as const;
 export type FlagGroup = (typeof flagGroups)[number];
 
 /** The group a flag stands in at this moment: whose turn it is. */
@@ -57,6 +50,7 @@ export function groupOf(flag: FlagSummary, now: Date): FlagGroup {
 		case 'answered':
 			return 'to decide';
 		case 'decided':
+			if (flag.isConsentAwaited) return 'to consent';
 			return flag.decision?.kind === 'survey-again' ? 'being measured again' : 'decided';
 		case 'put-right':
 			return 'to measure';

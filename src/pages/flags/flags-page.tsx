@@ -21,6 +21,7 @@ export default function FlagsPage() {
 	const site = useSite();
 	const now = useNow();
 	const isContractor = useMay('flag.answer');
+	const mayConsent = useMay('flag.consent');
 	const { data: flags } = useSuspenseQuery(api.flag.list.queryOptions({ input: { siteId } }));
 	const [groupWord, setGroup] = useAddressState('show');
 	const group = flagGroups.find((one) => one === groupWord) ?? null;
@@ -41,7 +42,7 @@ export default function FlagsPage() {
 		<>
 			<Strip items={[counted(flags.length, 'flag'), counts.has('settled') && `${counts.get('settled')} settled`]} />
 			<Headline title="Flags" acts={<ButtonLink to={`/sites/${siteId}/shoot-list`}>Shoot list</ButtonLink>}>
-				{headlineOf(flags, counts, isContractor, site.timeZone, now)}
+				{headlineOf(flags, counts, { isContractor, mayConsent }, site.timeZone, now)}
 			</Headline>
 			{flags.length === 0 ? (
 				<Notice kind="empty" title="No published check has found anything outside its limits">
@@ -81,12 +82,14 @@ export default function FlagsPage() {
 function headlineOf(
 	flags: readonly FlagSummary[],
 	counts: ReadonlyMap<FlagGroup, number>,
-	isContractor: boolean,
+	{ isContractor, mayConsent }: { isContractor: boolean; mayConsent: boolean },
 	timeZone: string,
 	now: Date,
 ): string {
 	if (flags.length === 0) return 'No flags';
 	const [toAnswer, toDecide] = [counts.get('to answer') ?? 0, counts.get('to decide') ?? 0];
+	const toConsent = counts.get('to consent') ?? 0;
+	if (mayConsent && toConsent > 0) return `${counted(toConsent, 'concession')} ${toConsent === 1 ? 'waits' : 'wait'} for your consent`;
 	if (isContractor) {
 		const [first] = flags.filter((flag) => groupOf(flag, now) === 'to answer');
 		if (first?.answerBy) return `${counted(toAnswer, 'flag')} to answer, the first by ${moment(first.answerBy, timeZone, now)}`;
