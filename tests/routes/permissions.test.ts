@@ -121,6 +121,11 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'flag.decide': [siteEngineer, projectEngineer],
 	'flag.grantTime': [projectEngineer],
 	'flag.consent': [ownersRepresentative],
+	// One's own act only: tested in flag-acts.test.ts.
+	'flag.takeBack': [siteEngineer, projectEngineer, contractor, ownersRepresentative],
+	'flag.bringPoints': [contractor],
+	'flag.storePoints': [siteEngineer],
+	'flag.broughtFile': all,
 	'flag.comment': [siteEngineer, projectEngineer, contractor, ownersRepresentative],
 	'flag.addPhoto': [siteEngineer, projectEngineer, contractor, ownersRepresentative],
 	'flag.shootList': all,

@@ -22,7 +22,10 @@ function device(answer: Send) {
 				sent.push(input);
 			},
 		},
-		newId: () => `act ${(n += 1)}`,
+		newId: () => {
+			n += 1;
+			return `act ${n}`;
+		},
 		clock: () => new Date(1_700_000_000_000 + n * 1000),
 	});
 	return { acts, sent, answerWith: (next: Send) => (respond = next) };

@@ -39,7 +39,7 @@ export function FlagPlanPicture({ plan, way, label }: FlagPlanPictureProps) {
 		>
 			<rect x={0.75} y={0.75} width={widthPx - 1.5} height={heightPx - 1.5} className="fill-none stroke-rule" strokeWidth={1.5} />
 			{plan.others.map((box) => (
-				<rect key={box.join()} {...shape(box)} className="fill-hair stroke-second sun:fill-sheet" />
+				<rect key={box.join()} {...shape(box)} className="fill-band stroke-second" />
 			))}
 			<rect {...shape(plan.own)} className="fill-ink" />
 			{turn !== null && (
