@@ -1,5 +1,5 @@
-import type { Vector3 } from '#shared/geometry/frame.ts';
-import { carriedPointCovariance, coverageFactor, fitCovarianceAt } from './carry-point.ts';
+import type { Matrix3, Vector3 } from '#shared/geometry/frame.ts';
+import { coverageFactor, fitCovarianceAt } from './carry-point.ts';
 import { computeFit } from './compute-fit.ts';
 import type { FitInput, FitKind, FitRefusal, FitResult } from './fit-schema.ts';
 
@@ -10,14 +10,14 @@ export interface PlannedCheckpoint {
 	direction: Vector3 | null;
 	/** Upper less lower limit, metres; twice the radius of a disc; null where there is none. */
 	toleranceWidthM: number | null;
+	/** Of a single shot at it, control frame, m². */
+	shotCovariance: Matrix3;
 }
 
 export interface SurveyPlan {
 	fit: FitKind;
 	/** Where targets will stand, control frame, metres, with the σ of the control and of sighting them, metres. */
 	targets: readonly { name: string; place: Vector3; controlSigma: Vector3; surveySigma: Vector3 }[];
-	/** σ of a single checkpoint shot along each axis, metres. */
-	pointSigma: Vector3;
 	/** What the points of a set-up share, metres (pole height, prism constant). */
 	commonM: number;
 	checkpoints: readonly PlannedCheckpoint[];
@@ -60,11 +60,10 @@ export function planSurvey(
 	if (!outcome.ok) return outcome;
 	const fit = outcome.result;
 	const factor = coverageFactor(fit) ?? 2;
-	const point = carriedPointCovariance(fit, plan.pointSigma);
-	const checkpoints = plan.checkpoints.map(({ name, place, direction, toleranceWidthM }): PlannedUncertainty => {
+	const checkpoints = plan.checkpoints.map(({ name, place, direction, toleranceWidthM, shotCovariance }): PlannedUncertainty => {
 		const fromFit = fitCovarianceAt(fit, place);
 		const fitVariance = varianceAlong(fromFit, direction);
-		const own = fromFit.map((row, k) => row.map((value, l) => value + point[k]![l]!));
+		const own = fromFit.map((row, k) => row.map((value, l) => value + shotCovariance[k]![l]!));
 		const standardUncertaintyM = Math.sqrt(varianceAlong(own, direction) + plan.commonM ** 2);
 		return {
 			name,

@@ -45,5 +45,10 @@ function firstIssue(data: unknown): string | null {
 
 function issuesOf(data: unknown): { message: string; path?: unknown[] }[] {
 	if (typeof data !== 'object' || data === null || !('issues' in data) || !Array.isArray(data.issues)) return [];
-	return data.issues.filter((issue): issue is { message: string; path?: unknown[] } => typeof issue?.message === 'string');
+	return data.issues.flatMap((issue: unknown) => {
+		if (typeof issue !== 'object' || issue === null || !('message' in issue) || typeof issue.message !== 'string') return [];
+		// A path that is no list names no field.
+		const path = 'path' in issue && Array.isArray(issue.path) ? issue.path : [];
+		return [{ message: issue.message, path }];
+	});
 }

@@ -161,7 +161,7 @@ describe('the printed fit report', () => {
 		file = join(folder, 'fit.pdf');
 		writeFileSync(file, await writeReport(fitReport(data())));
 		printed = execFileSync('pdftotext', ['-layout', file, '-'], { encoding: 'utf8' });
-	});
+	}, 60_000);
 	const flat = () => printed.replace(/\s+/g, ' ');
 
 	it('has the sections of the trade in their order', () => {

@@ -3,16 +3,22 @@ import type { FitDetail } from '#shared/fit/contract.ts';
 import type { FitPair } from '#shared/fit/fit-schema.ts';
 import { planSurvey } from '#shared/fit/plan-survey.ts';
 import { seededRandom } from '#shared/geometry/seeded-random.ts';
+import { bestAdditions } from '#src/features/fit/best-additions.ts';
+import type { GroupedCheckpoint } from '#src/features/fit/planned-checkpoints.ts';
 import { markedTwice, testStability } from '#src/features/fit/stability.ts';
-import {
-	bestAdditions,
-	expectSurvey,
-	type GroupedCheckpoint,
-	type PlannedInstrument,
-	type PlannedMark,
-} from '#src/features/fit/survey-plan.ts';
+import { expectSurvey, type PlannedInstrument, type PlannedMark, type PlannedStation, stationPlan } from '#src/features/fit/survey-plan.ts';
 
-const instrument: PlannedInstrument = { fit: 'levelled', targetPlanMm: 1, targetHeightMm: 1, shotPlanMm: 1, shotHeightMm: 1, commonMm: 0 };
+const instrument: PlannedInstrument = {
+	fit: 'levelled',
+	distanceMm: 1,
+	distancePpm: 2,
+	angleSec: 5,
+	targetMm: 0.5,
+	shotMm: 1,
+	commonMm: 0,
+	reachM: 1000,
+};
+const stations: PlannedStation[] = [{ name: 'S1', place: [8, 6, 1] }];
 const mark = (name: string, east: number, north: number): PlannedMark => ({
 	name,
 	place: [east, north, 0],
@@ -31,20 +37,9 @@ const at = (east: number, north: number, toleranceWidthM: number | null, group =
 describe('what a survey can be expected to tell', () => {
 	it('counts by kind what could never be decided and what would be doubtful, as Cm says', () => {
 		const checkpoints = [at(5, 5, 0.02), at(5, 5, 0.001), at(5, 5, 0.012), at(400, 400, 0.02), at(5, 5, null, 'slabs')];
-		const outcome = expectSurvey(marks, instrument, checkpoints);
+		const outcome = expectSurvey(marks, instrument, stations, checkpoints);
 		if (!outcome.ok) throw new Error(outcome.refusal.message);
-		const plan = {
-			fit: 'levelled' as const,
-			targets: marks.map(({ name, place }) => ({
-				name,
-				place,
-				controlSigma: [0.001, 0.001, 0.001] as const,
-				surveySigma: [0.001, 0.001, 0.001] as const,
-			})),
-			pointSigma: [0.001, 0.001, 0.001] as const,
-			commonM: 0,
-			checkpoints,
-		};
+		const plan = stationPlan(marks, instrument, stations[0]!, checkpoints);
 		const engine = planSurvey(plan);
 		if (!engine.ok) throw new Error(engine.refusal.message);
 		const cm = engine.checkpoints.flatMap(({ capability }) => capability ?? []);
@@ -65,10 +60,11 @@ describe('what a survey can be expected to tell', () => {
 	it('finds the mark that helps most, as trying each alone does', () => {
 		const unused = [mark('near', 1, 1), mark('far', 60, 60), mark('side', 30, 5)];
 		const checkpoints = [at(50, 50, 0.02), at(40, 55, 0.02), at(2, 2, 0.02)];
-		const [best] = bestAdditions(marks, unused, instrument, checkpoints).filter(({ isKnown }) => isKnown);
+		const [best] = bestAdditions(marks, unused, instrument, stations, checkpoints).filter(({ isKnown }) => isKnown);
 		const worst = (with_: PlannedMark[]) => {
-			const outcome = expectSurvey(with_, instrument, checkpoints);
-			return outcome.ok ? outcome.expected.worstFitMm : Number.POSITIVE_INFINITY;
+			const outcome = expectSurvey(with_, instrument, stations, checkpoints);
+			if (!outcome.ok) return Number.POSITIVE_INFINITY;
+			return Math.max(...outcome.expected.checkpoints.map(({ is }) => 2000 * is.fitUncertaintyM));
 		};
 		const byTrying = unused.map((one) => worst([...marks, one]));
 		expect(best!.afterMm).toBeCloseTo(Math.min(...byTrying), 9);
@@ -76,9 +72,37 @@ describe('what a survey can be expected to tell', () => {
 		expect(best!.beforeMm).toBeCloseTo(worst(marks), 9);
 	});
 
+	it('takes each checkpoint from the station nearest to it, and the marks in its reach', () => {
+		const two: PlannedStation[] = [
+			{ name: 'S1', place: [0, 0, 0] },
+			{ name: 'S2', place: [200, 0, 0] },
+		];
+		const far = [mark('D', 190, 10), mark('E', 210, 10), mark('F', 200, -30)];
+		const outcome = expectSurvey([...marks, ...far], { ...instrument, reachM: 60 }, two, [
+			at(5, 5, 0.02),
+			at(195, 5, 0.02),
+			at(120, 0, 0.02),
+		]);
+		if (!outcome.ok) throw new Error(outcome.refusal.message);
+		expect(outcome.expected.checkpoints.map(({ of, stationName }) => [of.name, stationName])).toEqual([
+			['5 5', 'S1'],
+			['195 5', 'S2'],
+			['120 0', 'S2'],
+		]);
+		expect(outcome.expected.stations.map(({ pairs }) => pairs.map(({ name }) => name).join(''))).toEqual(['ABC', 'DEF']);
+		// Further from its station it is known worse: the distance grows, and what an angle is worth.
+		const [, near, further] = outcome.expected.checkpoints;
+		expect(further!.is.expandedM).toBeGreaterThan(near!.is.expandedM);
+		const short = expectSurvey(marks, { ...instrument, reachM: 10 }, stations, [at(5, 5, 0.02)]);
+		expect(short).toMatchObject({ ok: false, stationName: 'S1' });
+	});
+
 	it('refuses marks that determine nothing', () => {
-		expect(expectSurvey(marks.slice(0, 1), instrument, [at(1, 1, 0.02)])).toMatchObject({ ok: false, refusal: { code: 'too-few-pairs' } });
-		expect(bestAdditions([], marks, instrument, [at(1, 1, 0.02)])).toEqual([]);
+		expect(expectSurvey(marks.slice(0, 1), instrument, stations, [at(1, 1, 0.02)])).toMatchObject({
+			ok: false,
+			refusal: { code: 'too-few-pairs' },
+		});
+		expect(bestAdditions([], marks, instrument, stations, [at(1, 1, 0.02)])).toEqual([]);
 	});
 });
 

@@ -100,6 +100,39 @@ async function show(own: Partial<PairsOfSetup>, mayAdopt = true) {
 const heading = () => screen.getByRole('heading', { level: 1 }).textContent;
 
 describe('the workbench', () => {
+	it('says that nothing checks the fit, holds back by one press the pair it needs least, and takes that back', async () => {
+		await show({ pairs: pairs(8) });
+		const press = await screen.findByRole('button', { name: /^Hold T\d back$/ });
+		const name = press.textContent!.split(' ')[1]!;
+		expect(press.closest('section')?.textContent).toMatch(/worst point error over the targets, 2σ, then [\d.]+ → [\d.]+ mm/);
+		fireEvent.click(press);
+		await waitFor(() => expect(screen.queryByText(/No pair is held back/)).toBeNull());
+		expect(screen.getAllByLabelText<HTMLSelectElement>(`Shelf of ${name}`)[0]!.value).toBe('held-back all');
+		fireEvent.click(screen.getByRole('button', { name: 'Take back' }));
+		await screen.findByRole('button', { name: `Hold ${name} back` });
+	});
+
+	it('says where none can be spared', async () => {
+		await show({ pairs: pairs(3) });
+		await screen.findByText('No pair is held back, and none can be spared');
+	});
+
+	it('asks which target is which mark and why before it gives another label', async () => {
+		await show({ pairs: pairs(8), controlWithoutTarget: ['T20'], targets: pairs(8).map(({ name }) => name) });
+		fireEvent.click(screen.getByRole('button', { name: 'Give a target another label' }));
+		const give = screen.getByRole('button', { name: 'Give it this label' });
+		fireEvent.change(screen.getByLabelText('Target, as in the file'), { target: { value: 'T3' } });
+		fireEvent.change(screen.getByLabelText('Is the mark'), { target: { value: 'T3' } });
+		fireEvent.change(screen.getByLabelText('Reason'), { target: { value: 'Read wrongly in the field book.' } });
+		fireEvent.click(give);
+		await screen.findByText('It is labelled so already.');
+		fireEvent.change(screen.getByLabelText('Is the mark'), { target: { value: 'T20' } });
+		fireEvent.click(give);
+		await waitFor(() => expect(screen.queryByRole('button', { name: 'Give it this label' })).toBeNull());
+		// An act among the others: it can be taken back.
+		expect(screen.getByRole('button', { name: 'Take back' })).toBeTruthy();
+	});
+
 	it('tells the wrong target height, shows before and after, cures by one press and takes it back', async () => {
 		await show({ pairs: pairs(8, 0.095) });
 		const press = await screen.findByRole('button', { name: 'Use T7 in plan only' });

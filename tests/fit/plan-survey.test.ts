@@ -2,7 +2,10 @@ import { describe, expect, it } from 'vitest';
 import { fitCovarianceAt } from '#shared/fit/carry-point.ts';
 import { computeFit } from '#shared/fit/compute-fit.ts';
 import { planSurvey, type SurveyPlan } from '#shared/fit/plan-survey.ts';
+import type { Matrix3 } from '#shared/geometry/frame.ts';
 import { controlSigma, surveyScene, surveySigma, type Triple } from './survey-scene.ts';
+
+const shotCovariance = [0, 1, 2].map((k) => [0, 1, 2].map((l) => (k === l ? surveySigma[k]! ** 2 : 0))) as unknown as Matrix3;
 
 function planOf(seed: number): { plan: SurveyPlan; measured: ReturnType<typeof computeFit> } {
 	const { input, trueControl } = surveyScene(seed, 'levelled', 5, { noise: 0 });
@@ -15,12 +18,11 @@ function planOf(seed: number): { plan: SurveyPlan; measured: ReturnType<typeof c
 				controlSigma,
 				surveySigma: [0.002, 0.002, 0.003] as Triple,
 			})),
-			pointSigma: surveySigma,
 			commonM: 0.002,
 			checkpoints: [
-				{ name: 'near', place: trueControl[0]!, direction: null, toleranceWidthM: 0.02 },
-				{ name: 'level', place: trueControl[1]!, direction: [0, 0, 1], toleranceWidthM: 0.02 },
-				{ name: 'far', place: [trueControl[0]![0] + 200, trueControl[0]![1], 120], direction: null, toleranceWidthM: null },
+				{ name: 'near', place: trueControl[0]!, direction: null, toleranceWidthM: 0.02, shotCovariance },
+				{ name: 'level', place: trueControl[1]!, direction: [0, 0, 1], toleranceWidthM: 0.02, shotCovariance },
+				{ name: 'far', place: [trueControl[0]![0] + 200, trueControl[0]![1], 120], direction: null, toleranceWidthM: null, shotCovariance },
 			],
 		},
 		measured: computeFit(input, { findings: false }),

@@ -16,6 +16,14 @@ describe('a refusal in words', () => {
 		expect(refusalOf(invalid)).toEqual({ code: 'BAD_REQUEST', message: 'Say something here.', where: 'survey.name' });
 	});
 
+	it('names no field where the path of an issue is no list', () => {
+		const odd = new ORPCError('BAD_REQUEST', {
+			message: 'Invalid',
+			data: { issues: [{ message: 'Not an id.', path: 'siteId' }, null, 7] },
+		});
+		expect(refusalOf(odd)).toEqual({ code: 'BAD_REQUEST', message: 'Not an id.', where: null });
+	});
+
 	it('tells no line from a fault of ours, and shows nobody a stack', () => {
 		for (const text of ['Failed to fetch', 'NetworkError when attempting to fetch resource.', 'Load failed'])
 			expect(refusalOf(new TypeError(text)).code).toBe('NO_LINE');

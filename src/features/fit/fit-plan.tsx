@@ -15,6 +15,8 @@ interface FitPlanProps {
 	onChoose: (name: string) => void;
 	/** Below the picture, where it shows another thing than a fit's residuals. */
 	caption?: string;
+	/** Where the instrument will stand, design frame, metres. */
+	stations?: readonly { name: string; place: readonly [number, number, number] }[];
 }
 
 const widthPx = 560;
@@ -26,7 +28,7 @@ const arrowPx = 34;
  * The set-up's targets in plan: where they are, which way each misses (arrows to a stated exaggeration), its ellipse at 95 %,
  * and how well the fit is known about them.
  */
-export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose, caption }: FitPlanProps) {
+export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose, caption, stations = [] }: FitPlanProps) {
 	const scene = useMemo(() => sceneOf(pairs, fit, outline), [pairs, fit, outline]);
 	const { toX, toY, metresPerPx, marks, field, exaggeration } = scene;
 	const bar = roundLength(metresPerPx * 90);
@@ -87,6 +89,14 @@ export function FitPlan({ pairs, fit, grid, outline, chosenName, onChoose, capti
 						)
 					);
 				})}
+				{stations.map(({ name, place: [east, north] }) => (
+					<g key={name} transform={`translate(${px(toX(east))} ${px(toY(north))})`}>
+						<path d="M0 -8L7 5H-7Z" className="fill-ink" />
+						<text x={10} y={5} className="fill-ink text-[13px] font-strong">
+							{name}
+						</text>
+					</g>
+				))}
 				{marks.map((mark) => (
 					// The table beside has the same for the keyboard.
 					<g key={mark.name} onPointerDown={() => onChoose(mark.name)} className="cursor-pointer">

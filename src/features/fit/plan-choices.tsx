@@ -27,30 +27,46 @@ export function PlanChoices({ instrument, onInstrument }: PlanChoicesProps) {
 					<option value="free">free, no compensator</option>
 				</select>
 			</FieldFrame>
-			<Millimetres label="σ target, plan" value={instrument.targetPlanMm} onValue={(targetPlanMm) => put({ targetPlanMm })} />
-			<Millimetres label="σ target, height" value={instrument.targetHeightMm} onValue={(targetHeightMm) => put({ targetHeightMm })} />
-			<Millimetres label="Common part" value={instrument.commonMm} onValue={(commonMm) => put({ commonMm })} mayBeNil />
-			<Millimetres label="σ shot, plan" value={instrument.shotPlanMm} onValue={(shotPlanMm) => put({ shotPlanMm })} />
-			<Millimetres label="σ shot, height" value={instrument.shotHeightMm} onValue={(shotHeightMm) => put({ shotHeightMm })} />
+			<Quantity label="σ distance" unit="mm" value={instrument.distanceMm} onValue={(distanceMm) => put({ distanceMm })} />
+			<Quantity
+				label="and growing with it"
+				unit="ppm"
+				value={instrument.distancePpm}
+				onValue={(distancePpm) => put({ distancePpm })}
+				mayBeNil
+			/>
+			<Quantity label="σ angle" unit="″" value={instrument.angleSec} onValue={(angleSec) => put({ angleSec })} />
+			<Quantity label="σ target on its mark" unit="mm" value={instrument.targetMm} onValue={(targetMm) => put({ targetMm })} mayBeNil />
+			<Quantity label="σ shot, pole and surface" unit="mm" value={instrument.shotMm} onValue={(shotMm) => put({ shotMm })} mayBeNil />
+			<Quantity label="Common part" unit="mm" value={instrument.commonMm} onValue={(commonMm) => put({ commonMm })} mayBeNil />
+			<Quantity label="Sighted no further than" unit="m" value={instrument.reachM} onValue={(reachM) => put({ reachM })} />
 		</div>
 	);
 }
 
-interface MillimetresProps {
+interface QuantityProps {
 	label: string;
+	unit: string;
 	value: number;
 	onValue: (value: number) => void;
 	mayBeNil?: boolean;
+	/** Coordinates may be of any sign and map size. */
+	isCoordinate?: boolean;
 }
 
-function Millimetres({ label, value, onValue, mayBeNil = false }: MillimetresProps) {
+/** A number with its unit that is passed on while it is one that can be computed with. */
+export function Quantity({ label, unit, value, onValue, mayBeNil = false, isCoordinate = false }: QuantityProps) {
 	const id = useId();
-	const [typed, setTyped] = useState(String(value));
+	const [typed, setTyped] = useState(String(value).replace('-', '−'));
 	const number = numberOf(typed, false) ?? Number.NaN;
-	const isFine = (one: number) => one <= 1000 && (mayBeNil ? one >= 0 : one > 0);
-	const error = isFine(number) ? undefined : mayBeNil ? 'From 0 to 1000 mm.' : 'More than 0 mm.';
+	const isFine = (one: number) => (isCoordinate ? Math.abs(one) < 1e8 : one <= 1000 && (mayBeNil ? one >= 0 : one > 0));
+	const error = isFine(number)
+		? undefined
+		: isCoordinate
+			? 'A coordinate, in metres.'
+			: `${mayBeNil ? 'From 0' : 'Over 0'} to 1000 ${unit}.`;
 	return (
-		<FieldFrame id={id} label={`${label}, mm`} error={error}>
+		<FieldFrame id={id} label={`${label}, ${unit}`} error={error}>
 			<input
 				id={id}
 				inputMode="decimal"

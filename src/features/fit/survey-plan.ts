@@ -1,11 +1,8 @@
-import { checkpointLimits } from '#shared/check/judge-deviation.ts';
 import type { FitKind, FitPair, FitRefusal, FitResult } from '#shared/fit/fit-schema.ts';
-import { type PlannedCheckpoint, type PlannedUncertainty, planSurvey, type SurveyPlan } from '#shared/fit/plan-survey.ts';
+import { type PlannedUncertainty, planSurvey, type SurveyPlan } from '#shared/fit/plan-survey.ts';
+import { sightingCovariance, sigmasOf } from '#shared/fit/sighting-covariance.ts';
 import type { Vector3 } from '#shared/geometry/frame.ts';
-import type { StoredCheckpoint, StoredElement } from '#shared/model/contract.ts';
-import { classInWords } from '#shared/tolerance/element-words.ts';
-import { matchPreparedRule, prepareRules } from '#shared/tolerance/match-rule.ts';
-import type { Stage, ToleranceSheet } from '#shared/tolerance/sheet-schema.ts';
+import type { GroupedCheckpoint } from './planned-checkpoints.ts';
 
 /** A mark whose place and σ are known, design frame, metres. */
 export interface PlannedMark {
@@ -15,14 +12,27 @@ export interface PlannedMark {
 	sigmaHeightM: number;
 }
 
-/** What will be used out there; millimetres, one standard deviation. */
+/** Where the instrument will stand, design frame, metres. */
+export interface PlannedStation {
+	name: string;
+	place: Vector3;
+}
+
+/** What will be used out there, one standard deviation each. */
 export interface PlannedInstrument {
 	fit: Extract<FitKind, 'levelled' | 'free'>;
-	targetPlanMm: number;
-	targetHeightMm: number;
-	shotPlanMm: number;
-	shotHeightMm: number;
+	distanceMm: number;
+	distancePpm: number;
+	/** Seconds of arc, directions and zenith angles alike. */
+	angleSec: number;
+	/** A target on its mark. */
+	targetMm: number;
+	/** Pole and surface of a shot. */
+	shotMm: number;
+	/** What all points of a set-up share. */
 	commonMm: number;
+	/** Marks further from a station than this are not sighted from it. */
+	reachM: number;
 }
 
 /** What can be expected of one kind of checkpoint. Millimetres. */
@@ -41,79 +51,57 @@ export interface PlannedGroup {
 	doubtful: number;
 }
 
-export interface ExpectedSurvey {
+/** One checkpoint as it would be known from the station nearest to it. */
+export interface ExpectedCheckpoint {
+	/** Its place in the list that was asked. */
+	key: string;
+	of: GroupedCheckpoint;
+	is: PlannedUncertainty;
+	stationName: string;
+	rangeM: number;
+}
+
+/** What one station could be fitted by. */
+export interface ExpectedStation {
+	name: string;
 	fit: FitResult;
-	/** As pairs for the picture: each mark on its place. */
+	/** As pairs for the picture: each sighted mark on its place. */
 	pairs: FitPair[];
-	groups: PlannedGroup[];
-	worstFitMm: number;
-	neverDecided: number;
-	doubtful: number;
-	withTolerance: number;
 	smallestBlunders: { target: string; metres: number | null }[];
 }
 
-/** A checkpoint with the group it is counted in. */
-export interface GroupedCheckpoint extends PlannedCheckpoint {
-	group: string;
+export interface ExpectedSurvey {
+	stations: ExpectedStation[];
+	checkpoints: ExpectedCheckpoint[];
+	groups: PlannedGroup[];
+	neverDecided: number;
+	doubtful: number;
+	withTolerance: number;
 }
 
-/** The model's checkpoints with the tolerance that the sheet sets for each at a stage. Left-out ones are not looked at. */
-export function plannedCheckpoints(
-	elements: readonly StoredElement[],
-	checkpoints: readonly StoredCheckpoint[],
-	sheet: ToleranceSheet | null,
-	stage: Stage,
-): GroupedCheckpoint[] {
-	const byId = new Map(elements.map((element) => [element.elementId, element]));
-	const rules = prepareRules(sheet?.rules ?? []);
-	const widths = new Map<string, number | null>();
-	return checkpoints.flatMap(({ elementId, characteristic, place, direction, label, requirement }): GroupedCheckpoint[] => {
-		const element = byId.get(elementId);
-		if (!element || requirement === 'left-out') return [];
-		const key = `${elementId} ${characteristic}`;
-		let width = widths.get(key);
-		if (width === undefined) {
-			const { class: ifcClass, storey, tag, mark, sizesM } = element;
-			const matched = matchPreparedRule(rules, { class: ifcClass, characteristic, storey, tag, mark, stage, sizesM });
-			const { limitsMm } = checkpointLimits(matched, sizesM, characteristic === 'plan', () => 0);
-			width = widthOf(limitsMm, characteristic === 'plan');
-			widths.set(key, width);
-		}
-		const group = `${classInWords(element.class)}, ${characteristic}`;
-		return [
-			{ name: `${element.title}, ${label}`, place, direction: directionOf(characteristic, direction), toleranceWidthM: width, group },
-		];
-	});
-}
+const secondsRad = Math.PI / (180 * 3600);
 
-/** Upper less lower limit; of a disc twice its radius; metres. */
-function widthOf(limitsMm: readonly [number | null, number | null] | null, isPlan: boolean): number | null {
-	if (limitsMm === null) return null;
-	const [lower, upper] = limitsMm;
-	if (upper !== null && lower !== null) return (upper - lower) / 1000;
-	return isPlan && upper !== null ? (2 * upper) / 1000 : null;
-}
-
-function directionOf(characteristic: string, direction: Vector3 | null): Vector3 | null {
-	if (characteristic === 'plan') return null;
-	return direction ?? [0, 0, 1];
-}
-
-/** What a survey on these marks can be expected to tell of these checkpoints; a refusal where the marks do not determine the fit. */
+/** What a survey on these marks can be expected to tell of these checkpoints, each from the station nearest to it; the station whose marks do not determine a fit. */
 export function expectSurvey(
 	marks: readonly PlannedMark[],
 	instrument: PlannedInstrument,
+	stations: readonly PlannedStation[],
 	checkpoints: readonly GroupedCheckpoint[],
-): { ok: true; expected: ExpectedSurvey } | { ok: false; refusal: FitRefusal } {
-	const plan = planOf(marks, instrument, checkpoints);
-	const planned = planSurvey(plan);
-	if (!planned.ok) return planned;
-	const groups = groupsOf(checkpoints, planned.checkpoints);
-	const sum = (of: (group: PlannedGroup) => number) => groups.reduce((total, group) => total + of(group), 0);
-	return {
-		ok: true,
-		expected: {
+): { ok: true; expected: ExpectedSurvey } | { ok: false; stationName: string; refusal: FitRefusal } {
+	const seen = seenFrom(stations, checkpoints);
+	const expected: ExpectedSurvey = { stations: [], checkpoints: [], groups: [], neverDecided: 0, doubtful: 0, withTolerance: 0 };
+	for (const [index, station] of stations.entries()) {
+		const own = seen[index] ?? [];
+		const plan = stationPlan(
+			marks,
+			instrument,
+			station,
+			own.map(({ of }) => of),
+		);
+		const planned = planSurvey(plan);
+		if (!planned.ok) return { ok: false, stationName: station.name, refusal: planned.refusal };
+		expected.stations.push({
+			name: station.name,
 			fit: planned.fit,
 			pairs: plan.targets.map(({ name, place, controlSigma, surveySigma }) => ({
 				name,
@@ -122,41 +110,80 @@ export function expectSurvey(
 				surveySigma: [...surveySigma],
 				controlSigma: [...controlSigma],
 			})),
-			groups,
-			worstFitMm: worstFitMm(planned.checkpoints),
-			neverDecided: sum(({ neverDecided }) => neverDecided),
-			doubtful: sum(({ doubtful }) => doubtful),
-			withTolerance: planned.checkpoints.filter(({ capability }) => capability !== null).length,
 			smallestBlunders: planned.smallestBlunders,
-		},
-	};
+		});
+		own.forEach(({ of, key, rangeM }, place) => {
+			const is = planned.checkpoints[place];
+			if (is) expected.checkpoints.push({ key, of, is, stationName: station.name, rangeM });
+		});
+	}
+	expected.groups = groupsOf(expected.checkpoints);
+	for (const { neverDecided, doubtful } of expected.groups) {
+		expected.neverDecided += neverDecided;
+		expected.doubtful += doubtful;
+	}
+	expected.withTolerance = expected.checkpoints.filter(({ is }) => is.capability !== null).length;
+	return { ok: true, expected };
 }
 
-function planOf(marks: readonly PlannedMark[], instrument: PlannedInstrument, checkpoints: readonly PlannedCheckpoint[]): SurveyPlan {
-	const sighted: Vector3 = [instrument.targetPlanMm / 1000, instrument.targetPlanMm / 1000, instrument.targetHeightMm / 1000];
+/** The plan of one station: the marks in its reach, σ by range and angle, and the checkpoints that are seen from it. */
+export function stationPlan(
+	marks: readonly PlannedMark[],
+	instrument: PlannedInstrument,
+	station: PlannedStation,
+	checkpoints: readonly GroupedCheckpoint[],
+): SurveyPlan {
+	const polar = {
+		distanceM: instrument.distanceMm / 1000,
+		distancePpm: instrument.distancePpm,
+		angleRad: instrument.angleSec * secondsRad,
+	};
 	return {
 		fit: instrument.fit,
-		targets: marks.map(({ name, place, sigmaPlanM, sigmaHeightM }) => ({
-			name,
-			place,
-			controlSigma: [sigmaPlanM, sigmaPlanM, sigmaHeightM],
-			surveySigma: sighted,
-		})),
-		pointSigma: [instrument.shotPlanMm / 1000, instrument.shotPlanMm / 1000, instrument.shotHeightMm / 1000],
+		targets: marks
+			.filter(({ place }) => rangeBetween(place, station.place) <= instrument.reachM)
+			.map(({ name, place, sigmaPlanM, sigmaHeightM }) => ({
+				name,
+				place,
+				controlSigma: [sigmaPlanM, sigmaPlanM, sigmaHeightM],
+				surveySigma: sigmasOf(sightingCovariance(polar, station.place, place, instrument.targetMm / 1000)),
+			})),
 		commonM: instrument.commonMm / 1000,
-		checkpoints,
+		checkpoints: checkpoints.map((checkpoint) => ({
+			...checkpoint,
+			shotCovariance: sightingCovariance(polar, station.place, checkpoint.place, instrument.shotMm / 1000),
+		})),
 	};
 }
 
-function groupsOf(checkpoints: readonly GroupedCheckpoint[], planned: readonly PlannedUncertainty[]): PlannedGroup[] {
-	const groups = new Map<string, { of: GroupedCheckpoint; is: PlannedUncertainty }[]>();
+/** The checkpoints by station: each is taken to be shot from the nearest. */
+export function seenFrom(
+	stations: readonly PlannedStation[],
+	checkpoints: readonly GroupedCheckpoint[],
+): { key: string; of: GroupedCheckpoint; rangeM: number }[][] {
+	const seen = stations.map((): { key: string; of: GroupedCheckpoint; rangeM: number }[] => []);
 	checkpoints.forEach((of, index) => {
-		const is = planned[index];
-		if (!is) return;
-		const group = groups.get(of.group);
-		if (group) group.push({ of, is });
-		else groups.set(of.group, [{ of, is }]);
+		let best = { station: -1, rangeM: Number.POSITIVE_INFINITY };
+		stations.forEach(({ place }, station) => {
+			const rangeM = rangeBetween(place, of.place);
+			if (rangeM < best.rangeM) best = { station, rangeM };
+		});
+		seen[best.station]?.push({ key: String(index), of, rangeM: best.rangeM });
 	});
+	return seen;
+}
+
+function rangeBetween(a: Vector3, b: Vector3): number {
+	return Math.hypot(a[0] - b[0], a[1] - b[1], a[2] - b[2]);
+}
+
+function groupsOf(checkpoints: readonly ExpectedCheckpoint[]): PlannedGroup[] {
+	const groups = new Map<string, ExpectedCheckpoint[]>();
+	for (const checkpoint of checkpoints) {
+		const group = groups.get(checkpoint.of.group);
+		if (group) group.push(checkpoint);
+		else groups.set(checkpoint.of.group, [checkpoint]);
+	}
 	return [...groups].map(([name, members]): PlannedGroup => {
 		const expanded = members.map(({ is }) => 1000 * is.expandedM).sort((a, b) => a - b);
 		const widths = members.flatMap(({ of }) => (of.toleranceWidthM === null ? [] : [1000 * of.toleranceWidthM]));
@@ -174,68 +201,7 @@ function groupsOf(checkpoints: readonly GroupedCheckpoint[], planned: readonly P
 	});
 }
 
-function worstFitMm(planned: readonly PlannedUncertainty[]): number {
+/** The worst ± of the fit alone over checkpoints, mm. */
+export function worstFitMm(planned: readonly PlannedUncertainty[]): number {
 	return planned.reduce((worst, { fitUncertaintyM }) => Math.max(worst, 2000 * fitUncertaintyM), 0);
-}
-
-/** One more target: a known mark that is not sighted yet, or a place where one could be set. */
-export interface BestAddition {
-	mark: PlannedMark;
-	isKnown: boolean;
-	/** The worst ± of the fit alone over the checkpoints, mm, without it and with it. */
-	beforeMm: number;
-	afterMm: number;
-}
-
-/** So many checkpoints, those the fit knows worst, stand for all when places are tried. */
-const mostSampled = 60;
-/** Places tried along each side. */
-const gridSteps = 6;
-
-/**
- * Where one more target would help most: every mark not yet sighted and a grid of places about the work are tried, and the best of each
- * kind answered, the most helpful first. Half of the extent beyond the checkpoints is tried too, since a fit is best held from outside.
- */
-export function bestAdditions(
-	marks: readonly PlannedMark[],
-	unused: readonly PlannedMark[],
-	instrument: PlannedInstrument,
-	checkpoints: readonly PlannedCheckpoint[],
-): BestAddition[] {
-	const first = planSurvey(planOf(marks, instrument, checkpoints));
-	if (!first.ok || checkpoints.length === 0) return [];
-	const sample = first.checkpoints
-		.map(({ fitUncertaintyM }, index) => ({ fitUncertaintyM, checkpoint: checkpoints[index] }))
-		.sort((a, b) => b.fitUncertaintyM - a.fitUncertaintyM)
-		.slice(0, mostSampled)
-		.flatMap(({ checkpoint }) => checkpoint ?? []);
-	const beforeMm = worstFitMm(first.checkpoints);
-	const tried = (candidates: readonly PlannedMark[], isKnown: boolean): BestAddition[] => {
-		let best: BestAddition | null = null;
-		for (const mark of candidates) {
-			const planned = planSurvey(planOf([...marks, mark], instrument, sample));
-			if (!planned.ok) continue;
-			const afterMm = worstFitMm(planned.checkpoints);
-			if (best === null || afterMm < best.afterMm) best = { mark, isKnown, beforeMm, afterMm };
-		}
-		return best ? [best] : [];
-	};
-	return [...tried(unused, true), ...tried(placesAbout(checkpoints, marks), false)].sort((a, b) => a.afterMm - b.afterMm);
-}
-
-function placesAbout(checkpoints: readonly PlannedCheckpoint[], marks: readonly PlannedMark[]): PlannedMark[] {
-	const range = (axis: 0 | 1) => {
-		const values = checkpoints.map(({ place }) => place[axis]);
-		const least = values.reduce((a, b) => Math.min(a, b), Number.POSITIVE_INFINITY);
-		const most = values.reduce((a, b) => Math.max(a, b), Number.NEGATIVE_INFINITY);
-		const beyond = (most - least) / 4;
-		return { from: least - beyond, step: (most - least + 2 * beyond) / (gridSteps - 1) };
-	};
-	const [east, north] = [range(0), range(1)];
-	const height = marks.reduce((sum, { place }) => sum + place[2], 0) / Math.max(1, marks.length);
-	const usual = marks[0] ?? { sigmaPlanM: 0.001, sigmaHeightM: 0.001 };
-	return Array.from({ length: gridSteps * gridSteps }, (_, index) => {
-		const place: Vector3 = [east.from + (index % gridSteps) * east.step, north.from + Math.floor(index / gridSteps) * north.step, height];
-		return { name: 'a new mark', place, sigmaPlanM: usual.sigmaPlanM, sigmaHeightM: usual.sigmaHeightM };
-	});
 }
