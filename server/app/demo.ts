@@ -2,7 +2,8 @@ import { and, eq, ne } from 'drizzle-orm';
 import { checks } from '../db/schema/check.ts';
 import { sites } from '../db/schema/site.ts';
 import type { Platform } from '../platform/platform.ts';
-import { demoSentence, seedDemo } from '../scripts/seed.ts';
+import { demoSentence } from '../scripts/demo/people.ts';
+import { seedDemo } from '../scripts/seed.ts';
 
 /** Fills an empty database with the demo site. Answers what to say of it, also where it was made earlier; null where there is none. */
 export async function demoOn(platform: Platform): Promise<string | null> {

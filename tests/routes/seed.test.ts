@@ -2,7 +2,8 @@ import { readFileSync } from 'node:fs';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { CheckDetail } from '#shared/check/contract.ts';
 import { sites } from '../../server/db/schema/site.ts';
-import { demoPassword, seedDemo } from '../../server/scripts/seed.ts';
+import { demoPassword } from '../../server/scripts/demo/people.ts';
+import { seedDemo } from '../../server/scripts/seed.ts';
 import { aSetup, storeSurvey } from '../builders/store-points.ts';
 import { type Api, cookieOf, openTestServer, type TestServer } from './harness.ts';
 
