@@ -68,13 +68,11 @@ export async function seedDemo(platform: Platform): Promise<string | null> {
 	} as const;
 	const asCastCheck = await checked(ground, asCast, day(-5, 14));
 	await publish(ground, asCastCheck, day(-5, 16));
-	await ground
-		.as(people.siteEngineer, day(-4, 8))
-		.check.withdraw({
-			siteId: people.siteId,
-			checkId: asCastCheck,
-			reason: 'Published before the plinths’ list of points was gone through.',
-		});
+	await ground.as(people.siteEngineer, day(-4, 8)).check.withdraw({
+		siteId: people.siteId,
+		checkId: asCastCheck,
+		reason: 'Published before the plinths’ list of points was gone through.',
+	});
 	const again = await check(ground, await newestSurvey(ground, day(-4, 9)), day(-4, 9));
 	await publish(ground, again, day(-1, 9));
 	await flagsMove(ground, day);
@@ -164,7 +162,7 @@ async function flagsMove(ground: DemoGround, day: (days: number, hour: number) =
 		by: day(6, 12),
 	});
 	const plinth = await answer(
-		/plinth/i,
+		/footing/i,
 		{ kind: 'put-right', means: 'repair', how: 'Bush-hammer, bed on 8 mm of non-shrink grout.', by: day(1, 12) },
 		day(-1, 11),
 	);
