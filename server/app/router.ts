@@ -16,6 +16,7 @@ import { toleranceRoutes } from '../features/tolerance/routes.ts';
 import type { RequestContext } from '../platform/guard.ts';
 import { acceptInvitationRoute } from '../workflows/accept-invitation.ts';
 import { foundSiteRoute } from '../workflows/found-site.ts';
+import { issueSheetRoute } from '../workflows/issue-sheet.ts';
 import { publishCheckRoute, publishPlanRoute } from '../workflows/publish-check.ts';
 import { storeControlRoute } from '../workflows/store-control.ts';
 import { storeSurveyRoute } from '../workflows/store-survey.ts';
@@ -31,7 +32,7 @@ export const router = {
 	control: { ...controlRoutes, store: storeControlRoute },
 	survey: { ...surveyRoutes, store: storeSurveyRoute },
 	fit: fitRoutes,
-	tolerance: toleranceRoutes,
+	tolerance: { ...toleranceRoutes, issue: issueSheetRoute },
 	check: { ...checkRoutes, publishPlan: publishPlanRoute, publish: publishCheckRoute, withdraw: withdrawCheckRoute },
 	flag: flagRoutes,
 	pour: pourRoutes,

@@ -1,4 +1,5 @@
 import { and, asc, desc, eq, ne } from 'drizzle-orm';
+import type { Verdict } from '#shared/check/check-schema.ts';
 import { standingOf } from '#shared/check/standing.ts';
 import { actOnFlag } from '#shared/flag/act-on-flag.ts';
 import type { FlagAct, FlagLife, FlagMoment } from '#shared/flag/flag-life.ts';
@@ -112,6 +113,34 @@ export async function changesOfWithdrawing(
 	await raiseWhere(db, siteId, changes, (key) => (freed.has(key) ? known.get(key) : undefined), known, measurements, moment);
 	return changes;
 }
+
+/**
+ * What issuing a sheet does to flags on what published checks measured: those lapse that have no point left off by its limits. `newVerdictOf`
+ * says what a sheet makes of a point, null where it changes nothing; all else waits for a check by the new sheet.
+ */
+export async function changesOfIssuing(
+	db: Handle,
+	siteId: string,
+	newVerdictOf: (modelId: string, checkpointId: string) => { is: Verdict; words: string } | null,
+	moment: FlagMoment,
+): Promise<FlagChanges> {
+	const changes: FlagChanges = { raised: [], changed: [] };
+	const alive = await aliveFlags(db, siteId);
+	const standings = standingOf(await readMeasurements(db, { siteId, globalIds: [...alive.values()].map(({ globalId }) => globalId) }));
+	for (const [key, flag] of alive) {
+		if (flag.state === 'closed') continue;
+		const off = standings.filter(
+			({ modelId, globalId, newest: { deviation } }) =>
+				flagKey({ modelId, globalId, kind: deviation.characteristic }) === key && isOff(deviation.verdict),
+		);
+		const now = off.map(({ modelId, checkpointId }) => newVerdictOf(modelId, checkpointId));
+		const first = now[0];
+		if (first && now.every((one) => one !== null && !isOff(one.is))) lapse(changes, flag, 'limits-changed', first.words, moment);
+	}
+	return changes;
+}
+
+const isOff = (verdict: Verdict): boolean => verdict === 'outside' || verdict === 'too-close-to-call' || verdict === 'undecided';
 
 /** Flags that have not lapsed, by element and kind. */
 async function aliveFlags(db: Handle, siteId: string): Promise<Map<string, FlagRow>> {

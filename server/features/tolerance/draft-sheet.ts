@@ -8,6 +8,7 @@ import { sheets } from '../../db/schema/tolerance.ts';
 import { audit } from '../../platform/audit.ts';
 import type { Member, Platform } from '../../platform/platform.ts';
 import { Conflict, foundOne, Refused } from '../../platform/refuse.ts';
+import { requireSecondFactor } from '../../platform/second-factor.ts';
 
 type SheetRow = typeof sheets.$inferSelect;
 
@@ -70,35 +71,34 @@ export async function discardDraft(platform: Platform, member: Member, sheetId: 
 	return {};
 }
 
-/** From draft to issued, the one before superseded: exactly what was read, or CONFLICT. */
+/** From draft to issued, the one before superseded: exactly what was read, or CONFLICT. The site is locked by the caller. */
 export async function issueDraft(
-	platform: Platform,
+	tx: Transaction,
 	member: Member,
 	{ sheetId, seenSha256, reason }: { sheetId: string; seenSha256: string; reason: string },
+	now: Date,
 ): Promise<{ revision: number }> {
 	const { siteId } = member;
-	return platform.transaction(async (tx) => {
-		await lockSite(tx, siteId);
-		const draft = await draftOf(tx, siteId, sheetId);
-		if (draft.contentSha256 !== seenSha256)
-			throw new Conflict('Someone changed this draft since you read it, so it was not issued. Read it again.');
-		expectSound(draft.sheet);
-		if (draft.sheet.rules.length === 0) throw new Refused('no-rules', 'A sheet without a rule decides nothing. Add one, then issue it.');
-		await tx
-			.update(sheets)
-			.set({ state: 'superseded' })
-			.where(and(eq(sheets.siteId, siteId), eq(sheets.state, 'issued')));
-		const highest = await highestRevision(tx, siteId);
-		// Drafts are numbered when they are begun; what is issued is always the newest.
-		const revision = draft.revision === highest ? draft.revision : highest + 1;
-		await tx
-			.update(sheets)
-			.set({ state: 'issued', revision, issueReason: reason, issuedBy: member.userId, issuedAt: platform.now() })
-			.where(and(eq(sheets.id, sheetId), eq(sheets.state, 'draft')));
-		const data = { name: draft.name, revision, contentSha256: draft.contentSha256, issueReason: reason };
-		await audit(tx, member, { kind: 'sheet-issued', subjectId: sheetId, data });
-		return { revision };
-	});
+	await requireSecondFactor(tx, member);
+	const draft = await draftOf(tx, siteId, sheetId);
+	if (draft.contentSha256 !== seenSha256)
+		throw new Conflict('Someone changed this draft since you read it, so it was not issued. Read it again.');
+	expectSound(draft.sheet);
+	if (draft.sheet.rules.length === 0) throw new Refused('no-rules', 'A sheet without a rule decides nothing. Add one, then issue it.');
+	await tx
+		.update(sheets)
+		.set({ state: 'superseded' })
+		.where(and(eq(sheets.siteId, siteId), eq(sheets.state, 'issued')));
+	const highest = await highestRevision(tx, siteId);
+	// Drafts are numbered when they are begun; what is issued is always the newest.
+	const revision = draft.revision === highest ? draft.revision : highest + 1;
+	await tx
+		.update(sheets)
+		.set({ state: 'issued', revision, issueReason: reason, issuedBy: member.userId, issuedAt: now })
+		.where(and(eq(sheets.id, sheetId), eq(sheets.state, 'draft')));
+	const data = { name: draft.name, revision, contentSha256: draft.contentSha256, issueReason: reason };
+	await audit(tx, member, { kind: 'sheet-issued', subjectId: sheetId, data });
+	return { revision };
 }
 
 async function draftOf(tx: Transaction, siteId: string, sheetId: string): Promise<SheetRow> {

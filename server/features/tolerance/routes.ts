@@ -1,5 +1,5 @@
 import { siteRoutes } from '../../platform/guard.ts';
-import { discardDraft, issueDraft, saveDraft } from './draft-sheet.ts';
+import { discardDraft, saveDraft } from './draft-sheet.ts';
 import { sheetOf, sheetsOf } from './queries.ts';
 import { sheetWeightOf } from './weigh.ts';
 
@@ -11,5 +11,4 @@ export const toleranceRoutes = {
 	discardDraft: siteRoutes.tolerance.discardDraft.handler(({ input, context: { platform, member } }) =>
 		discardDraft(platform, member, input.sheetId),
 	),
-	issue: siteRoutes.tolerance.issue.handler(({ input, context: { platform, member } }) => issueDraft(platform, member, input)),
 };

@@ -1,6 +1,6 @@
 import { and, asc, desc, eq } from 'drizzle-orm';
 import { standingOf } from '#shared/check/standing.ts';
-import { type WeighedCheckpoint, weighSheet } from '#shared/check/weigh-sheet.ts';
+import { type ChangedVerdict, type WeighedCheckpoint, type WeighedSheet, weighSheet } from '#shared/check/weigh-sheet.ts';
 import { gridYawRad } from '#shared/model/grid-yaw.ts';
 import { seesEveryPour } from '#shared/pour/pour-sight.ts';
 import type { SheetWeight } from '#shared/tolerance/contract.ts';
@@ -28,37 +28,7 @@ export async function sheetWeightOf(db: Handle, member: Member, sheet: Tolerance
 		.where(and(eq(checks.siteId, siteId), eq(checks.state, 'trial')))
 		.orderBy(desc(checks.number))
 		.limit(1);
-	const measured = await readMeasurements(db, { siteId, ...(trial && { withCheckId: trial.id }) });
-	const standings = new Map(standingOf(measured).map((one) => [`${one.modelId}\n${one.checkpointId}`, one.newest]));
-	const weights: ReturnType<typeof weighSheet>[] = [];
-	const newest = await db
-		.selectDistinctOn([revisions.modelId], { revision: revisions, building: buildings.name })
-		.from(revisions)
-		.innerJoin(models, eq(models.id, revisions.modelId))
-		.leftJoin(buildings, eq(buildings.id, models.buildingId))
-		.where(and(eq(revisions.siteId, siteId), eq(revisions.state, 'ready')))
-		.orderBy(revisions.modelId, desc(revisions.number));
-	for (const { revision, building } of newest) {
-		const rows = await db
-			.select({ checkpoint: checkpoints, element: elements })
-			.from(checkpoints)
-			.innerJoin(elements, eq(elements.id, checkpoints.elementId))
-			.where(eq(checkpoints.revisionId, revision.id))
-			.orderBy(asc(checkpoints.position));
-		const weighed = rows.map(({ checkpoint, element }): WeighedCheckpoint => {
-			const standing = standings.get(`${revision.modelId}\n${checkpoint.id}`);
-			const { class: className, storey, tag, mark, sizesM } = elementOf(element);
-			return {
-				checkpointId: checkpoint.id,
-				mark: element.title || mark,
-				label: checkpoint.label,
-				subject: { class: className, characteristic: checkpoint.characteristic, storey, building, tag, mark, sizesM },
-				deviation: standing?.deviation ?? null,
-				stage: standing?.stage ?? 'as-cast',
-			};
-		});
-		weights.push(weighSheet(sheet, weighed, gridYawRad(revision.reading?.grid ?? []) ?? 0));
-	}
+	const weights = (await weighModels(db, siteId, sheet, trial?.id)).map(({ weight }) => weight);
 	const undecided = weights.flatMap((weight) => weight.undecided);
 	const changes = seesEveryPour(member.roles) ? weights.flatMap((weight) => weight.changes) : [];
 	return {
@@ -95,4 +65,53 @@ function grouped<T>(all: readonly T[], keyOf: (one: T) => string): T[][] {
 		else group.push(one);
 	}
 	return [...groups.values()].sort((a, b) => b.length - a.length);
+}
+
+/** A sheet held against the newest revision of each model, and against what all published checks (and one trial, where asked) measured last. */
+async function weighModels(
+	db: Handle,
+	siteId: string,
+	sheet: ToleranceSheet,
+	withCheckId?: string,
+): Promise<{ modelId: string; weight: WeighedSheet }[]> {
+	const measured = await readMeasurements(db, { siteId, ...(withCheckId !== undefined && { withCheckId }) });
+	const standings = new Map(standingOf(measured).map((one) => [`${one.modelId}\n${one.checkpointId}`, one.newest]));
+	const weights: { modelId: string; weight: WeighedSheet }[] = [];
+	const newest = await db
+		.selectDistinctOn([revisions.modelId], { revision: revisions, building: buildings.name })
+		.from(revisions)
+		.innerJoin(models, eq(models.id, revisions.modelId))
+		.leftJoin(buildings, eq(buildings.id, models.buildingId))
+		.where(and(eq(revisions.siteId, siteId), eq(revisions.state, 'ready')))
+		.orderBy(revisions.modelId, desc(revisions.number));
+	for (const { revision, building } of newest) {
+		const rows = await db
+			.select({ checkpoint: checkpoints, element: elements })
+			.from(checkpoints)
+			.innerJoin(elements, eq(elements.id, checkpoints.elementId))
+			.where(eq(checkpoints.revisionId, revision.id))
+			.orderBy(asc(checkpoints.position));
+		const weighed = rows.map(({ checkpoint, element }): WeighedCheckpoint => {
+			const standing = standings.get(`${revision.modelId}\n${checkpoint.id}`);
+			const { class: className, storey, tag, mark, sizesM } = elementOf(element);
+			return {
+				checkpointId: checkpoint.id,
+				mark: element.title || mark,
+				label: checkpoint.label,
+				subject: { class: className, characteristic: checkpoint.characteristic, storey, building, tag, mark, sizesM },
+				deviation: standing?.deviation ?? null,
+				stage: standing?.stage ?? 'as-cast',
+			};
+		});
+		weights.push({ modelId: revision.modelId, weight: weighSheet(sheet, weighed, gridYawRad(revision.reading?.grid ?? []) ?? 0) });
+	}
+	return weights;
+}
+
+/** The verdicts of published checks that a sheet would change, by model and checkpoint ("modelId checkpointId"). */
+export async function verdictsChangedBy(db: Handle, siteId: string, sheet: ToleranceSheet): Promise<Map<string, ChangedVerdict>> {
+	const weights = await weighModels(db, siteId, sheet);
+	return new Map(
+		weights.flatMap(({ modelId, weight }) => weight.changes.map((change) => [`${modelId} ${change.checkpointId}`, change] as const)),
+	);
 }
