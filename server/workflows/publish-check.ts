@@ -1,7 +1,7 @@
 import { and, eq, inArray, isNull } from 'drizzle-orm';
 import type { PublishPlan } from '#shared/check/contract.ts';
 import { sha256OfJson } from '#shared/record/sha256.ts';
-import type { Handle } from '../db/database.ts';
+import type { Handle, Transaction } from '../db/database.ts';
 import { lockSite } from '../db/lock-site.ts';
 import { checkFits } from '../db/schema/check.ts';
 import { fits } from '../db/schema/fit.ts';
@@ -12,9 +12,9 @@ import { applyFlagChanges } from '../features/flag/apply-flag-changes.ts';
 import { flagMomentOf } from '../features/flag/flag-moment.ts';
 import { changesOfPublishing, type FlagChanges } from '../features/flag/plan-flag-changes.ts';
 import { siteRoutes } from '../platform/guard.ts';
-import { postMail } from '../platform/post-mail.ts';
-import { Conflict, Refused } from '../platform/refuse.ts';
-import { publishedLetter } from './check-letters.ts';
+import { postNotices } from '../platform/notices.ts';
+import { Conflict, foundOne, Refused } from '../platform/refuse.ts';
+import { publishedSentence } from './check-sentences.ts';
 import { peopleOfCompanies } from './people-concerned.ts';
 
 /** What publishing would do, said before the press. */
@@ -70,21 +70,20 @@ export const publishCheckRoute = siteRoutes.check.publish.handler(async ({ input
 		return { raised: changes.raised.length };
 	});
 
-	async function tellContractors(tx: Parameters<typeof postMail>[0], companyIds: readonly string[], number: number): Promise<void> {
-		const [site] = await tx.select().from(sites).where(eq(sites.id, siteId));
-		if (site === undefined) return;
-		for (const person of await peopleOfCompanies(tx, siteId, [...new Set(companyIds)], now)) {
+	async function tellContractors(tx: Transaction, companyIds: readonly string[], number: number): Promise<void> {
+		const { timeZone } = foundOne(await tx.select({ timeZone: sites.timeZone }).from(sites).where(eq(sites.id, siteId)));
+		const people = await peopleOfCompanies(tx, siteId, [...new Set(companyIds)], now);
+		const told = people.map((person) => {
 			const flags = companyIds.filter((companyId) => person.companyIds.includes(companyId)).length;
-			const letter = publishedLetter({
-				siteName: site.name,
-				timeZone: site.timeZone,
-				number,
-				flags,
-				answerBy,
-				url: `${platform.publicUrl()}/sites/${siteId}/flags`,
-			});
-			await postMail(tx, { to: person.email, letter, now });
-		}
+			return {
+				kind: 'check-published' as const,
+				userIds: [person.userId],
+				subjectId: checkId,
+				sentence: publishedSentence(number, flags, answerBy, timeZone),
+				path: `/sites/${siteId}/flags`,
+			};
+		});
+		await postNotices(tx, { siteId, actId: platform.newId(), actorId: member.userId, now }, told);
 	}
 });
 

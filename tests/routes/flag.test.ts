@@ -3,7 +3,7 @@ import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Checkpoint } from '#shared/model/model-schema.ts';
 import { flags } from '../../server/db/schema/flag.ts';
-import { mails } from '../../server/db/schema/mail.ts';
+import { notices } from '../../server/db/schema/mail.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { sites } from '../../server/db/schema/site.ts';
 import { aSite } from '../builders/a-site.ts';
@@ -80,7 +80,8 @@ async function publish({ siteId, surveyor }: Flaggable, checkId: string, answerB
 }
 const seenBy = async (api: Api, siteId: string) => (await api.flag.list({ siteId })).toSorted((a, b) => a.number - b.number);
 const target = ({ flagId, version }: { flagId: string; version: number }) => ({ flagId, version });
-const lettersTo = async (email: string) => (await server.platform.db.select().from(mails).where(eq(mails.toAddress, email))).length;
+const toldOf = async (userId: string) =>
+	(await server.platform.db.select({ kind: notices.kind }).from(notices).where(eq(notices.userId, userId))).map(({ kind }) => kind).sort();
 
 describe('a check', { timeout: 180_000 }, () => {
 	it('is a trial that contractors do not see, then published with the flags that were said, then withdrawn, told once', async () => {
@@ -112,16 +113,22 @@ describe('a check', { timeout: 180_000 }, () => {
 		expect(Math.round(own!.worstMm)).toBe(34);
 		expect(await seenBy(contractor.api, siteId)).toHaveLength(1);
 		await expect(other.api.flag.get({ siteId, flagId: own!.flagId })).rejects.toMatchObject({ code: 'NOT_FOUND' });
-		expect([await lettersTo(contractor.email), await lettersTo(other.email), await lettersTo(site.owner.email)]).toEqual([1, 1, 0]);
+		const published = ['check-published'];
+		expect([await toldOf(contractor.userId), await toldOf(other.userId), await toldOf(site.owner.userId)]).toEqual([
+			published,
+			published,
+			[],
+		]);
 
 		await expect(engineer.api.check.withdraw({ siteId, checkId, reason: 'x' })).rejects.toMatchObject({ code: 'FORBIDDEN' });
 		expect(await surveyor.api.check.withdraw({ siteId, checkId, reason: 'Wrong prism.' })).toEqual({ lapsed: 2 });
 		expect((await seenBy(engineer.api, siteId)).map(({ state, lapsedWords }) => [state, lapsedWords])).toEqual(
 			Array.from({ length: 2 }, () => ['lapsed', 'Check 1 was withdrawn: Wrong prism.']),
 		);
-		expect([await lettersTo(contractor.email), await lettersTo(engineer.email)]).toEqual([2, 1]);
+		const withdrawn = ['check-withdrawn'];
+		expect([await toldOf(contractor.userId), await toldOf(engineer.userId)]).toEqual([[...published, ...withdrawn], withdrawn]);
 		await expect(surveyor.api.check.withdraw({ siteId, checkId, reason: 'Again.' })).rejects.toMatchObject({ code: 'CONFLICT' });
-		expect(await lettersTo(contractor.email)).toBe(2);
+		expect(await toldOf(contractor.userId)).toHaveLength(2);
 		const kinds = await server.platform.db
 			.select({ kind: auditEntries.kind })
 			.from(auditEntries)

@@ -7,10 +7,10 @@ import { verifyRecords } from '#shared/record/verify-records.ts';
 import { sessions } from '../../server/db/schema/account.ts';
 import { checks } from '../../server/db/schema/check.ts';
 import { fits } from '../../server/db/schema/fit.ts';
-import { holdPoints, pours } from '../../server/db/schema/pour.ts';
+import { holdPoints, pourHolds, pours } from '../../server/db/schema/pour.ts';
 import { auditEntries, sealedRecords } from '../../server/db/schema/record.ts';
 import { aSite } from '../builders/a-site.ts';
-import { asBuilt, issuedSheet } from '../builders/as-built.ts';
+import { asBuilt, issuedSheet, plainSheet } from '../builders/as-built.ts';
 import { followJob } from '../builders/follow-job.ts';
 import { readModel } from '../builders/read-model.ts';
 import { storeControl, storeSurvey } from '../builders/store-points.ts';
@@ -250,5 +250,26 @@ describe('a pour', { timeout: 180_000 }, () => {
 		expect(await foreign.api.pour.list({ siteId })).toEqual([]);
 		expect(await foreign.api.record.list({ siteId })).toMatchObject({ records: [], length });
 		expect((await db.select().from(pours).where(eq(pours.id, pourId)))[0]?.state).toBe('planned');
+	});
+
+	// The last: what it issues stands for the whole site.
+	it('is held at once where a sheet is issued that changes its limits, and by no other', async () => {
+		const pour = await aPour('11');
+		const { siteId, pourId, owner, engineer } = pour;
+		const { db } = server.platform;
+		const { shownSha256 } = await submitted(pour);
+		await owner.api.pour.release({ siteId, pourId, point, statement: 'Released.', shownSha256, conditions: [] });
+		// Asked of the table: reading the pour would look by itself.
+		const holds = () => db.select({ reasons: pourHolds.reasons }).from(pourHolds).where(eq(pourHolds.pourId, pourId));
+		const issue = async (upperMm: number) => {
+			const rules = plainSheet.rules.map((rule) => (rule.id === 'plan' ? rule : { ...rule, lowerMm: -upperMm, upperMm }));
+			const sheet = { ...plainSheet, name: `Sheet of ${upperMm}`, rules };
+			const { sheetId, contentSha256 } = await engineer.api.tolerance.saveDraft({ siteId, sheetId: null, seenSha256: null, sheet });
+			await engineer.api.tolerance.issue({ siteId, sheetId, seenSha256: contentSha256, reason: 'Agreed.' });
+		};
+		await issue(20);
+		expect(await holds()).toEqual([]);
+		await issue(15);
+		expect((await holds()).map(({ reasons }) => reasons.length > 0)).toEqual([true]);
 	});
 });
