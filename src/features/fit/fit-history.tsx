@@ -21,7 +21,7 @@ export function FitHistory({ fits, timeZone, addressOf, shownFitId }: FitHistory
 			<table className="w-full border-collapse">
 				<thead className="border-b border-ink text-small text-second">
 					<tr>
-						{['Fit', 'Pairs', 'rms, mm', 'State', 'By', 'When', 'What changed, and why it was adopted'].map((head, index) => (
+						{['Fit', 'Pairs', 'rms, mm', 'State', 'By and when', 'What changed, and why it was adopted'].map((head, index) => (
 							<th key={head} scope="col" className={`px-3 py-2.5 font-medium ${index === 1 || index === 2 ? 'text-right' : 'text-left'}`}>
 								{head}
 							</th>
@@ -39,12 +39,12 @@ export function FitHistory({ fits, timeZone, addressOf, shownFitId }: FitHistory
 							<td className="px-3 text-right">{fit.pairCount}</td>
 							<td className="px-3 text-right">{(fit.rmsM * 1000).toFixed(1)}</td>
 							<td className={`px-3 whitespace-nowrap ${fit.state === 'adopted' ? 'font-strong' : ''}`}>{stateWords[fit.state]}</td>
-							<td className="px-3 whitespace-nowrap">
+							<td className="px-3 py-2 whitespace-nowrap">
 								{fit.adoptedBy ?? fit.madeBy}
+								<span className="block text-second">{isoMoment(fit.adoptedAt ?? fit.madeAt, timeZone)}</span>
 								{fit.checkedBy && <span className="block text-small text-second">checked by {fit.checkedBy}</span>}
 							</td>
-							<td className="px-3 whitespace-nowrap">{isoMoment(fit.adoptedAt ?? fit.madeAt, timeZone)}</td>
-							<td className="min-w-72 px-3 py-2">
+							<td className="min-w-56 px-3 py-2">
 								{fit.changes.length > 0
 									? fit.changes.join(' ')
 									: index === fits.length - 1

@@ -15,7 +15,7 @@ export function PlanChoices({ instrument, onInstrument }: PlanChoicesProps) {
 	const kindId = useId();
 	const put = (part: Partial<PlannedInstrument>) => onInstrument({ ...instrument, ...part });
 	return (
-		<div className="grid grid-cols-2 gap-3.5 tablet:grid-cols-3">
+		<div className="grid grid-cols-2 items-end gap-3.5 tablet:grid-cols-3">
 			<FieldFrame id={kindId} label="Instrument">
 				<select
 					id={kindId}
