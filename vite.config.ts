@@ -15,6 +15,8 @@ const serverPrograms = {
 	'compute-check.worker': 'server/features/check/compute-check.worker.ts',
 	'copy-photo.worker': 'server/features/flag/copy-photo.worker.ts',
 	measure: 'server/scripts/measure.ts',
+	'add-person': 'server/scripts/add-person.ts',
+	'rotate-key': 'server/scripts/rotate-key.ts',
 };
 
 export default defineConfig(({ mode }) =>

@@ -15,6 +15,7 @@ import { surveyRoutes } from '../features/survey/routes.ts';
 import { toleranceRoutes } from '../features/tolerance/routes.ts';
 import type { RequestContext } from '../platform/guard.ts';
 import { acceptInvitationRoute } from '../workflows/accept-invitation.ts';
+import { boardRoute } from '../workflows/board.ts';
 import { foundSiteRoute } from '../workflows/found-site.ts';
 import { issueSheetRoute } from '../workflows/issue-sheet.ts';
 import { publishCheckRoute, publishPlanRoute } from '../workflows/publish-check.ts';
@@ -25,7 +26,7 @@ import { withdrawCheckRoute } from '../workflows/withdraw-check.ts';
 /** All routes of the contract: one that is missing does not compile. */
 export const router = {
 	account: accountRoutes,
-	site: { ...siteRoutes, found: foundSiteRoute, acceptInvitation: acceptInvitationRoute },
+	site: { ...siteRoutes, found: foundSiteRoute, acceptInvitation: acceptInvitationRoute, board: boardRoute },
 	mail: mailRoutes,
 	job: jobRoutes,
 	model: modelRoutes,

@@ -3,6 +3,7 @@ import { createServer, type Server } from 'node:http';
 import { join } from 'node:path';
 import { connectDatabase } from '../db/connect.ts';
 import type { Connection } from '../db/connection.ts';
+import { sealOpenSecrets } from '../features/account/seal-open-secrets.ts';
 import { deliverNotices } from '../platform/deliver-notices.ts';
 import { diskFiles } from '../platform/disk-files.ts';
 import { type OpenMail, openMail } from '../platform/open-mail.ts';
@@ -14,6 +15,7 @@ import { publishKeys } from '../platform/publish-keys.ts';
 import { openQueue, type Queue } from '../platform/queue.ts';
 import { openRecordJournal } from '../platform/record-journal.ts';
 import { openRecordStore } from '../platform/record-store.ts';
+import { openSecretBox } from '../platform/secret-box.ts';
 import { openSessions } from '../platform/session.ts';
 import { openSigningKeys } from '../platform/signing-keys.ts';
 import { openUploads } from '../platform/upload-server.ts';
@@ -69,6 +71,7 @@ export async function startOn(
 		uploadFolder: join(configuration.dataDir, 'uploads'),
 		jobs: queue.jobs,
 		records: openRecordStore(connection.db, keys.current, journal),
+		secrets: await openSecretBox(configuration.dataDir),
 		mail: { isOn: mail.service !== null, mailbox: mail.mailbox },
 		publicUrl: () => configuration.publicUrl ?? address,
 		now,
@@ -87,6 +90,7 @@ export async function startOn(
 		await publishKeys(platform.db, keys, platform.now());
 		for (const sentence of [...journal.said, ...(await platform.records.compare())]) console.error(sentence);
 		await sessions.deleteExpired();
+		await sealOpenSecrets(platform);
 		await uploads.sweep();
 		const client = await clientOf({ isDevelopment: configuration.isDevelopment, server });
 		closeClient = client.close;

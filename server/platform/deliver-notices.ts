@@ -1,5 +1,7 @@
 import { and, asc, desc, eq, inArray, isNull, lte } from 'drizzle-orm';
-import { noticeUrgencies } from '#shared/mail/notice.ts';
+import { defaultPreferences } from '#shared/account/preferences.ts';
+import { noticeUrgencies, takeBackMs } from '#shared/mail/notice.ts';
+import { beginOfWorkAfter } from '#shared/site/working-time.ts';
 import type { Transaction } from '../db/database.ts';
 import { users } from '../db/schema/account.ts';
 import { notices } from '../db/schema/mail.ts';
@@ -14,7 +16,7 @@ const mostInARound = 500;
 
 /**
  * Turns what is due into letters in the outbox: one a person and site, whatever came together. Who has left the site meanwhile is told
- * nothing more. Answers how many letters were written. In one transaction, so that a notice is mailed once though the server dies in between.
+ * nothing more; who wishes no notices is told only what must be told at once. Answers how many letters were written. In one transaction, so that a notice is mailed once though the server dies in between.
  */
 export async function deliverNotices({
 	transaction,
@@ -49,15 +51,32 @@ function groupedByPerson(due: readonly Due[]): Due[][] {
 	return [...groups.values()];
 }
 
-async function writeLetter(tx: Transaction, due: Due[], publicUrl: string, now: Date): Promise<boolean> {
-	const [{ siteId, userId }] = due as [Due];
-	const [person] = await tx.select({ name: users.name, email: users.email }).from(users).where(eq(users.id, userId));
-	const [site] = await tx.select({ name: sites.name }).from(sites).where(eq(sites.id, siteId));
+async function writeLetter(tx: Transaction, together: Due[], publicUrl: string, now: Date): Promise<boolean> {
+	const [{ siteId, userId }] = together as [Due];
+	const [person] = await tx
+		.select({ name: users.name, email: users.email, preferences: users.preferences })
+		.from(users)
+		.where(eq(users.id, userId));
+	const [site] = await tx
+		.select({ name: sites.name, timeZone: sites.timeZone, calendar: sites.calendar })
+		.from(sites)
+		.where(eq(sites.id, siteId));
 	const isMember = person !== undefined && (await memberOf(tx, { userId, ...person }, siteId, now)) !== null;
 	if (!isMember || site === undefined) {
-		await end(tx, due, 'left-the-site', now);
+		await end(tx, together, 'left-the-site', now);
 		return false;
 	}
+	const wish = person.preferences?.notices ?? defaultPreferences.notices;
+	const unwished = wish === 'none' ? together.filter(({ kind }) => noticeUrgencies[kind] !== 'now') : [];
+	const gathered = wish === 'digest' ? together.filter(isToBeGathered) : [];
+	await end(tx, unwished, 'not-wished', now);
+	for (const { id, leavesAt } of gathered)
+		await tx
+			.update(notices)
+			.set({ leavesAt: beginOfWorkAfter(leavesAt, site.calendar, site.timeZone) })
+			.where(eq(notices.id, id));
+	const due = together.filter((one) => !unwished.includes(one) && !gathered.includes(one));
+	if (due.length === 0) return false;
 	const isAlone = due.length === 1 && noticeUrgencies[due[0]!.kind] !== 'digest';
 	const letter = noticeLetter({ siteName: site.name, notices: due, isAlone, head: await headOf(tx, siteId), publicUrl });
 	await postMail(tx, { to: person.email, letter, now });
@@ -65,7 +84,13 @@ async function writeLetter(tx: Transaction, due: Due[], publicUrl: string, now: 
 	return true;
 }
 
-async function end(tx: Transaction, due: readonly Due[], how: 'mailed' | 'left-the-site', now: Date): Promise<void> {
+/** Of the kinds that leave soon, and not put off to the morning yet. */
+function isToBeGathered({ kind, createdAt, leavesAt }: Due): boolean {
+	return noticeUrgencies[kind] === 'soon' && leavesAt.getTime() - createdAt.getTime() <= takeBackMs;
+}
+
+async function end(tx: Transaction, due: readonly Due[], how: 'mailed' | 'left-the-site' | 'not-wished', now: Date): Promise<void> {
+	if (due.length === 0) return;
 	const ids = due.map(({ id }) => id);
 	await tx.update(notices).set({ endedAt: now, end: how }).where(inArray(notices.id, ids));
 }

@@ -4,6 +4,7 @@ import type { Db, Transaction } from '../db/database.ts';
 import type { Mailbox } from './mail.ts';
 import type { PhotoAddresses } from './photo-addresses.ts';
 import type { RecordStore } from './record-store.ts';
+import type { SecretBox } from './secret-box.ts';
 
 /** What a command may use of the world. One value, made at the start and handed on; tests make their own. */
 export interface Platform {
@@ -19,6 +20,8 @@ export interface Platform {
 	jobs: JobQueue;
 	/** What was signed: sealed, chained, journalled. */
 	records: RecordStore;
+	/** For what must be read again and is nobody’s to read in the database. */
+	secrets: SecretBox;
 	/** Whether mail can be sent at all, and the local fake's mailbox where it stands in for a service. */
 	mail: { isOn: boolean; mailbox: Mailbox | null };
 	/** What links in mails begin with: from the configuration or our own socket, never from a request. */

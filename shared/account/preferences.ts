@@ -9,7 +9,7 @@ export const preferences = z.strictObject({
 	decimalMark: z.enum(['.', ',']),
 	/** Names of days and months. */
 	dateLanguage: z.enum(['en', 'de', 'fr', 'es', 'it', 'pt', 'nl', 'pl']),
-	/** What is told by mail besides what must be told: at once, gathered once a day, or not at all. */
+	/** What is told by mail besides what must be told: each kind in its own time, all gathered once a day, or not at all. */
 	notices: z.enum(['at-once', 'digest', 'none']),
 });
 export type Preferences = z.infer<typeof preferences>;

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
 import { roles } from '../permissions.ts';
+import { boardAnswer } from './board-schema.ts';
 import { emailAddress, peopleContract } from './people-contract.ts';
 import { keptSettings, saveSettingsInput } from './site-settings.ts';
 
@@ -46,6 +47,8 @@ export const siteContract = {
 	/** The founder is site and project engineer of a new site, with a starter sheet issued. */
 	found: base.meta({ permission: 'signed-in' }).input(foundSiteInput).output(siteSummary),
 	get: base.meta({ permission: 'site.see' }).input(siteInput).output(siteDetail),
+	/** What waits for who asks, and what waits on others. */
+	board: base.meta({ permission: 'site.see' }).input(siteInput).output(boardAnswer),
 	settings: base.meta({ permission: 'site.see' }).input(siteInput).output(keptSettings),
 	/** CONFLICT where somebody changed them since that version. */
 	saveSettings: base.meta({ permission: 'site.write' }).input(saveSettingsInput).output(keptSettings),

@@ -41,6 +41,11 @@ export function startColourSet(): void {
 	});
 }
 
+/** Whether a set was chosen on this device. */
+export function hasColourWish(): boolean {
+	return storedWish() !== 'device';
+}
+
 /** Chooses a set for this device. */
 export function chooseColourSet(wish: ColourSetWish): void {
 	wishInMemory = wish;

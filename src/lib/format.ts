@@ -1,4 +1,6 @@
-/** How figures and times are written. Pure: the zone and the present moment are arguments. */
+import { reading } from './reading.ts';
+
+/** How figures and times are written, with the mark and in the language that the person chose. The zone and the present moment are arguments. */
 
 const minus = '\u2212';
 /** Stands where there is no figure. */
@@ -8,8 +10,8 @@ export const noFigure = '–';
 export function signedMm(valueMm: number | null, expandedUncertaintyMm: number | null = null): string {
 	if (valueMm === null || !Number.isFinite(valueMm)) return noFigure;
 	const text = Math.abs(valueMm).toFixed(decimalsFor(expandedUncertaintyMm));
-	if (Number(text) === 0) return text;
-	return (valueMm < 0 ? minus : '+') + text;
+	if (Number(text) === 0) return marked(text);
+	return (valueMm < 0 ? minus : '+') + marked(text);
 }
 
 /** "16", "0.4": a size in millimetres without sign, with as many decimals as U allows. */
@@ -50,7 +52,12 @@ export function metres(valueM: number | null, decimals = 3): string {
 /** Any number with fixed decimals and a real minus, never "−0". */
 export function signedNumber(value: number, decimals: number): string {
 	const text = Math.abs(value).toFixed(decimals);
-	return value < 0 && Number(text) !== 0 ? minus + text : text;
+	return value < 0 && Number(text) !== 0 ? minus + marked(text) : marked(text);
+}
+
+/** A figure's text with the person's decimal mark. */
+export function marked(text: string): string {
+	return reading().decimalMark === '.' ? text : text.replace('.', ',');
 }
 
 /** "1 234": groups of three by a no-break space, from five digits on by habit of the trade's tables, from four here. */
@@ -73,12 +80,13 @@ export function bytes(size: number): string {
 		value /= 1000;
 		unit += 1;
 	}
-	return `${value < 10 && unit > 0 ? value.toFixed(1) : Math.round(value)} ${units[unit]}`;
+	return `${value < 10 && unit > 0 ? marked(value.toFixed(1)) : Math.round(value)} ${units[unit]}`;
 }
 
 /** The parts of a moment in a zone. */
 function partsIn(timeZone: string, at: Date): Record<string, string> {
-	const format = new Intl.DateTimeFormat('en-GB', {
+	const { dateLanguage } = reading();
+	const format = new Intl.DateTimeFormat(dateLanguage === 'en' ? 'en-GB' : dateLanguage, {
 		timeZone,
 		weekday: 'short',
 		year: 'numeric',
@@ -122,7 +130,7 @@ export function isoMoment(at: Date, timeZone: string): string {
 /** A calendar date "2026-12-03" in a sentence: "3 Dec"; with the year where it is not `now`'s. */
 export function calendarDay(isoDate: string, now: Date): string {
 	const [year, month, dayOfMonth] = isoDate.split('-').map(Number);
-	const name = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'][(month ?? 1) - 1];
+	const name = partsIn('UTC', new Date(Date.UTC(year ?? 0, (month ?? 1) - 1, dayOfMonth))).month;
 	return `${dayOfMonth} ${name}${year === now.getUTCFullYear() ? '' : ` ${year}`}`;
 }
 

@@ -1,7 +1,9 @@
 import { randomBytes, randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
+import { defaultPreferences, type Preferences } from '#shared/account/preferences.ts';
 import type { NoticeKind } from '#shared/mail/notice.ts';
+import { users } from '../../server/db/schema/account.ts';
 import { mails, notices } from '../../server/db/schema/mail.ts';
 import { sealedRecords } from '../../server/db/schema/record.ts';
 import { memberships } from '../../server/db/schema/site.ts';
@@ -62,6 +64,34 @@ describe('a notice', () => {
 			);
 		}
 		expect(heard).toEqual(['hold', 'hold', 'hold hold-point-called', 'hold hold-point-called', 'hold hold-point-called digest']);
+	});
+
+	it('is told as its person wishes, but what must be told is told at once', async () => {
+		const { db } = server.platform;
+		const wish = (userId: string, notices: Preferences['notices']) =>
+			db
+				.update(users)
+				.set({ preferences: { ...defaultPreferences, notices } })
+				.where(eq(users.id, userId));
+		await wish(ida.userId, 'digest');
+		await wish(rob.userId, 'none');
+		const both = [ida.userId, rob.userId];
+		await post([notice('hold', both)]);
+		await post([notice('hold-point-called', both)]);
+		await post([notice('flag-answered', both)]);
+		const heard: string[] = [];
+		for (const at of [minutesOn(3), minutesOn(600), wednesdayMorning]) {
+			await deliver(at);
+			const kept = await letters();
+			heard.push(both.map((_, i) => kept.filter(({ toAddress }) => toAddress === [ida, rob][i]?.email).length).join(' '));
+		}
+		expect(heard).toEqual(['1 1', '1 1', '2 1']);
+		const rows = await db.select().from(notices).where(eq(notices.userId, rob.userId));
+		expect(Object.fromEntries(rows.map(({ kind, end }) => [kind, end]))).toEqual({
+			hold: 'mailed',
+			'hold-point-called': 'not-wished',
+			'flag-answered': 'not-wished',
+		});
 	});
 
 	it('is one letter a person with all that came due, each with its place and its deviation', async () => {

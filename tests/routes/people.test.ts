@@ -2,8 +2,11 @@ import { randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Role } from '#shared/permissions.ts';
+import { auditEntries } from '../../server/db/schema/record.ts';
 import { memberships } from '../../server/db/schema/site.ts';
 import { areSeparate, type Held, mayName } from '../../server/features/site/naming.ts';
+import { audit } from '../../server/platform/audit.ts';
+import { memberOf } from '../../server/platform/membership.ts';
 import { cookieOf, type TestServer } from './harness.ts';
 import { type Actor, newEmail, openPeopleSite } from './people-site.ts';
 import { refusalCode as codeOf } from './refusal-code.ts';
@@ -148,6 +151,18 @@ describe('a deputy', () => {
 		await mine.site.acceptInvitation({ token: await tokenFor(deputy.email), newPerson: null });
 		expect(await mine.site.list()).toMatchObject([{ siteId, roles: ['owners-representative'] }]);
 		expect(await codeOf(mine.site.invite(asked('owners-representative')))).toBe('FORBIDDEN');
+		// What is done as a deputy says in whose stead; what the holder does says nothing of the kind.
+		await server.platform.transaction(async (tx) => {
+			const asDeputy = await memberOf(tx, deputy, siteId, server.platform.now());
+			if (asDeputy === null) throw new Error('The deputy is no member.');
+			for (const actor of [asDeputy, { ...on.owner! }])
+				await audit(tx, actor, { kind: 'company-added', subjectId: siteId, data: { name: actor.name } });
+		});
+		const entries = await server.platform.db.select().from(auditEntries).where(eq(auditEntries.kind, 'company-added'));
+		const stead = (name: string) =>
+			entries.find(({ data }) => (data as { name?: string }).name === name)?.data as { asDeputyOf?: string[] };
+		expect(stead('Dina Deputy').asDeputyOf).toEqual([`${on.owner!.name} (owners-representative)`]);
+		expect(stead(on.owner!.name).asDeputyOf).toBeUndefined();
 		// The time is over: the guard asks it at each request.
 		await server.platform.db
 			.update(memberships)

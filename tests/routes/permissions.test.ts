@@ -42,6 +42,7 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'mail.mailbox': 'anybody',
 	'site.list': 'signed in',
 	'site.found': 'signed in',
+	'site.board': all,
 	'site.get': all,
 	'site.settings': all,
 	'site.saveSettings': [projectEngineer],

@@ -23,6 +23,14 @@ const fallbacks: Record<string, unknown> = {
 	token: 'x'.repeat(43),
 	mark: 'C/3',
 	timeZone: 'UTC',
+	startsAt: '07:00',
+	endsAt: '17:00',
+};
+
+/** Whole inputs that no value alone makes: one of several true, and two things where one is too few. */
+const wholes: Record<string, (made: unknown) => unknown> = {
+	kinds: () => ({ plan: true, face: true, level: true }),
+	setups: (made) => (Array.isArray(made) ? [made[0], made[0]] : made),
 };
 
 /**
@@ -36,6 +44,12 @@ export function sampleInput(schema: z.ZodType | undefined, ids: Readonly<Record<
 }
 
 function sampleOf(schema: z.core.$ZodType, name: string, ids: Readonly<Record<string, string>>): unknown {
+	const made = plainSampleOf(schema, name, ids);
+	if (made === undefined || z.safeParse(schema, made).success) return made;
+	return wholes[name]?.(made) ?? made;
+}
+
+function plainSampleOf(schema: z.core.$ZodType, name: string, ids: Readonly<Record<string, string>>): unknown {
 	const inner = (one: unknown, as = name) => sampleOf(one as z.core.$ZodType, as, ids);
 	const { def } = schema._zod;
 	const known = ids[name] ?? fallbacks[name];

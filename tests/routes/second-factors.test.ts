@@ -5,6 +5,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { recoveryCodes, sessions, totps, users } from '../../server/db/schema/account.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { sites } from '../../server/db/schema/site.ts';
+import { sealOpenSecrets } from '../../server/features/account/seal-open-secrets.ts';
 import { hashPassword } from '../../server/platform/password.ts';
 import { cookieOf, openTestServer, type TestServer } from './harness.ts';
 import { refusalCode } from './refusal-code.ts';
@@ -64,6 +65,9 @@ describe('codes of an app', () => {
 		expect(await refusalCode(mine.confirmCodes({ code: '000000' }))).toBe('WRONG');
 		const { recoveryCodes: codes } = await mine.confirmCodes({ code: codeAt(secret) });
 		expect(new Set(codes).size).toBe(10);
+		const [row] = await server.platform.db.select().from(totps).where(eq(totps.userId, person.userId));
+		expect(row?.secret).toMatch(/^sealed1\./);
+		expect(server.platform.secrets.open(row?.secret ?? '', person.userId)).toBe(secret);
 		expect(await refusalCode(mine.beginCodes())).toBe('set-up-already');
 		expect(await refusalCode(server.api().account.signIn({ email: person.email, password }))).toBe('SECOND_FACTOR');
 		const kept = await server.platform.db.select().from(recoveryCodes).where(eq(recoveryCodes.userId, person.userId));
@@ -132,6 +136,28 @@ describe('codes of an app', () => {
 		expect(failed).toHaveLength(10);
 		for (const { siteId, userId, address } of failed)
 			expect({ siteId, userId, address }).toEqual({ siteId: null, userId: null, address: '127.0.0.1' });
+	});
+
+	it('are sealed at the next start where they were kept readable before, and still open', async () => {
+		const { db } = server.platform;
+		const person = await withCodes('Olga Older');
+		await db.update(totps).set({ secret: person.secret }).where(eq(totps.userId, person.userId));
+		expect(await sealOpenSecrets(server.platform)).toBe(1);
+		expect(await sealOpenSecrets(server.platform)).toBe(0);
+		const stepToken = await stepOf(person.email);
+		expect(await refusalCode(server.api().account.signInSecond({ stepToken, code: codeAt(person.secret) }))).toBe('done');
+	});
+
+	it('open nothing with the secret of another person’s row', async () => {
+		const { db } = server.platform;
+		const [one, two] = [await withCodes('Una One'), await withCodes('Tom Two')];
+		const [row] = await db.select().from(totps).where(eq(totps.userId, one.userId));
+		await db
+			.update(totps)
+			.set({ secret: row?.secret ?? '' })
+			.where(eq(totps.userId, two.userId));
+		const stepToken = await stepOf(two.email);
+		expect(await refusalCode(server.api().account.signInSecond({ stepToken, code: codeAt(one.secret) }))).toBe('WRONG');
 	});
 });
 

@@ -7,6 +7,7 @@ import * as checkTables from '../../server/db/schema/check.ts';
 import * as controlTables from '../../server/db/schema/control.ts';
 import * as fileTables from '../../server/db/schema/file.ts';
 import * as fitTables from '../../server/db/schema/fit.ts';
+import * as flagTables from '../../server/db/schema/flag.ts';
 import * as jobTables from '../../server/db/schema/job.ts';
 import * as modelTables from '../../server/db/schema/model.ts';
 import * as pourTables from '../../server/db/schema/pour.ts';
@@ -25,6 +26,7 @@ const tables = [
 	controlTables,
 	fileTables,
 	fitTables,
+	flagTables,
 	jobTables,
 	modelTables,
 	pourTables,

@@ -2,8 +2,8 @@ import { describe, expect, it } from 'vitest';
 import type { Deviation } from '#shared/check/check-schema.ts';
 import type { CheckDetail, CheckHead } from '#shared/check/contract.ts';
 import type { Line } from '#shared/site/contract.ts';
+import { type NextFacts, nextActs } from '#shared/site/next-acts.ts';
 import type { SurveySummary } from '#shared/survey/contract.ts';
-import { type NextFacts, nextActs } from '#src/features/site/next-acts.ts';
 import { knotsOf } from '#src/features/site/site-line.tsx';
 import { homeless, pourStanding } from '#src/pages/board/pour-standing.ts';
 import { knotXs, stringPath } from '#src/ui/line-geometry.ts';
@@ -103,17 +103,6 @@ describe('next for you', () => {
 		expect(look?.why).toBe('6 outside, 2 too close to call.');
 		expect(verbs({ roles: ['contractor'], checks })).toEqual(['Look at check 3']);
 	});
-
-	it('never has more than five', () => {
-		const everything = facts({
-			roles: ['site-engineer', 'project-engineer'],
-			line: states({ model: 'half' }),
-			surveys: [aSurvey([null])],
-			checks: [aHead({ sheet: { sheetId: 't', name: 'C2', revision: 2, decision: 'guarded', isNewest: false } })],
-			pourCount: 0,
-		});
-		expect(nextActs(everything).length).toBe(5);
-	});
 });
 
 const aDeviation = (over: Partial<Deviation>): Deviation => ({
@@ -206,20 +195,16 @@ describe('where a pour stands', () => {
 });
 
 describe('the line', () => {
-	it('leads to the newest check, and leaves flags and records shut with the reason', () => {
+	it('leads to every place, and to the newest check where there is one', () => {
 		const knots = knotsOf('site', { ...states({ check: 'half' }), newestCheckId: 'c3' });
 		expect(knots.map((knot) => knot.to)).toEqual([
 			'/sites/site/model',
 			'/sites/site/control',
 			'/sites/site/surveys',
 			'/sites/site/checks/c3',
-			null,
+			'/sites/site/flags',
 			'/sites/site/pours',
-			null,
-		]);
-		expect(knots.filter((knot) => knot.to === null).map((knot) => knot.whyNot)).toEqual([
-			'Nothing is published yet',
-			'Nothing is published yet',
+			'/sites/site/records',
 		]);
 		expect(knotsOf('site', states()).find((knot) => knot.key === 'check')?.to).toBe('/sites/site/check');
 	});

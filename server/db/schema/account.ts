@@ -61,7 +61,7 @@ export const totps = pgTable('totps', {
 	userId: uuid('user_id')
 		.primaryKey()
 		.references(() => users.id),
-	/** Base32. It must be read to check a code, so it cannot be a hash. */
+	/** It must be read to check a code, so it cannot be a hash: sealed for this person under a key of the data folder. */
 	secret: text('secret').notNull(),
 	createdAt: at('created_at').notNull(),
 	confirmedAt: at('confirmed_at'),

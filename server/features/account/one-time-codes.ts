@@ -13,22 +13,23 @@ import { factorLetter } from './password-letters.ts';
 const periodS = 30;
 const recoveryCount = 10;
 
-type World = Pick<Platform, 'newId' | 'now' | 'publicUrl'>;
+type World = Pick<Platform, 'newId' | 'now' | 'publicUrl' | 'secrets'>;
 
 function codesOf(secret: string, label: string): TOTP {
 	return new TOTP({ issuer: 'Batterboard', label, algorithm: 'SHA1', digits: 6, period: periodS, secret: Secret.fromBase32(secret) });
 }
 
 /** The time step a code is of, or null where it is no code of the moment. */
-function stepOf(secret: string, code: string, now: Date): number | null {
+function stepOf(secret: string | null, code: string, now: Date): number | null {
+	if (secret === null) return null;
 	const delta = codesOf(secret, '').validate({ token: code, timestamp: now.getTime(), window: 1 });
 	return delta === null ? null : Math.floor(now.getTime() / 1000 / periodS) + delta;
 }
 
 /** A new secret of 160 bits, in place of one that was never confirmed. REFUSED where codes are set up already. */
-export async function beginCodes(tx: Transaction, { now }: World, person: SignedIn): Promise<{ secret: string; uri: string }> {
+export async function beginCodes(tx: Transaction, { now, secrets }: World, person: SignedIn): Promise<{ secret: string; uri: string }> {
 	const secret = new Secret({ size: 20 }).base32;
-	const fresh = { secret, createdAt: now(), confirmedAt: null, lastStep: 0 };
+	const fresh = { secret: secrets.seal(secret, person.userId), createdAt: now(), confirmedAt: null, lastStep: 0 };
 	const kept = await tx
 		.insert(totps)
 		.values({ userId: person.userId, ...fresh })
@@ -46,7 +47,7 @@ export async function confirmCodes(tx: Transaction, world: World, person: Signed
 		.from(totps)
 		.where(and(eq(totps.userId, userId), isNull(totps.confirmedAt)));
 	if (row === undefined) throw new Refused('not-begun', 'Begin with a new secret: the one you scanned was replaced or is set up already.');
-	const step = stepOf(row.secret, digitsOf(code), world.now());
+	const step = stepOf(world.secrets.open(row.secret, userId), digitsOf(code), world.now());
 	if (step === null) return null;
 	const confirmed = await tx
 		.update(totps)
@@ -91,7 +92,12 @@ export async function hasCodes(db: Transaction | Platform['db'], userId: string)
 }
 
 /** Uses a code up: of the app (never the same, nor an older one, again) or for recovery. False where it opens nothing. */
-export async function takeFactorCode(tx: Transaction, { now }: Pick<Platform, 'now'>, person: SignedIn, code: string): Promise<boolean> {
+export async function takeFactorCode(
+	tx: Transaction,
+	{ now, secrets }: Pick<Platform, 'now' | 'secrets'>,
+	person: SignedIn,
+	code: string,
+): Promise<boolean> {
 	const { userId } = person;
 	const digits = digitsOf(code);
 	if (/^\d{6}$/.test(digits)) {
@@ -99,7 +105,7 @@ export async function takeFactorCode(tx: Transaction, { now }: Pick<Platform, 'n
 			.select({ secret: totps.secret })
 			.from(totps)
 			.where(and(eq(totps.userId, userId), isNotNull(totps.confirmedAt)));
-		const step = row === undefined ? null : stepOf(row.secret, digits, now());
+		const step = row === undefined ? null : stepOf(secrets.open(row.secret, userId), digits, now());
 		if (step === null) return false;
 		const taken = await tx
 			.update(totps)

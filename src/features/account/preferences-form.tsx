@@ -2,6 +2,7 @@ import { useMutation, useQueryClient, useSuspenseQuery } from '@tanstack/react-q
 import { preferences } from '#shared/account/preferences.ts';
 import { api } from '#src/lib/api.ts';
 import { chooseColourSet } from '#src/lib/colour-set.ts';
+import { chooseReading } from '#src/lib/reading.ts';
 import { SelectField } from '#src/ui/field.tsx';
 import { Form, Submit } from '#src/ui/form.tsx';
 
@@ -10,10 +11,6 @@ const colourSets = [
 	{ value: 'light', label: 'Light' },
 	{ value: 'dark', label: 'Dark' },
 	{ value: 'sun', label: 'Sun: ink on white' },
-];
-const lengths = [
-	{ value: 'mm', label: 'Millimetres' },
-	{ value: 'feet-inches', label: 'Feet and inches, to 1/16' },
 ];
 const marks = [
 	{ value: '.', label: 'Point: 12.5' },
@@ -30,8 +27,8 @@ const languages = [
 	{ value: 'pl', label: 'Polski' },
 ];
 const notices = [
-	{ value: 'at-once', label: 'At once' },
-	{ value: 'digest', label: 'Gathered, once a day' },
+	{ value: 'at-once', label: 'As they come, lesser ones each morning' },
+	{ value: 'digest', label: 'All gathered, each morning' },
 	{ value: 'none', label: 'Only what must be told' },
 ];
 
@@ -43,6 +40,7 @@ export function PreferencesForm() {
 		api.account.savePreferences.mutationOptions({
 			onSuccess: (saved) => {
 				chooseColourSet(saved.colourSet);
+				chooseReading(saved);
 				queries.setQueryData(api.account.preferences.queryKey(), saved);
 			},
 		}),
@@ -50,7 +48,6 @@ export function PreferencesForm() {
 	return (
 		<Form schema={preferences} values={data} onSubmit={save.mutateAsync} className="max-w-120">
 			<SelectField name="colourSet" label="Colours" options={colourSets} />
-			<SelectField name="lengths" label="Lengths and deviations" hint="Shown so; stored and computed in metres." options={lengths} />
 			<SelectField name="decimalMark" label="Decimal mark" options={marks} />
 			<SelectField name="dateLanguage" label="Days and months in" options={languages} />
 			<SelectField name="notices" label="Notices by mail" hint="What stops a pour is always told at once." options={notices} />

@@ -10,10 +10,10 @@ export function frameWords(conversion: MapConversion | null, metresPerUnit: numb
 	const { eastings, northings, orthogonalHeight, xAxisAbscissa, xAxisOrdinate, scale, mapUnitM, crsName } = conversion;
 	const turn = (Math.atan2(xAxisOrdinate, xAxisAbscissa) * 180) / Math.PI;
 	const at = [eastings, northings, orthogonalHeight].map((value) => grouped(value * mapUnitM));
-	return `The model’s origin is at E ${at[0]}, N ${at[1]}, H ${at[2]} m, turned ${Number(signedNumber(turn, 4).replace('\u2212', '-'))}°${crsName ? `, in ${crsName}` : ''}; 1 m of the model is ${Number(((scale * mapUnitM) / metresPerUnit).toPrecision(9))} m on the map.`;
+	return `The model’s origin is at E ${at[0]}, N ${at[1]}, H ${at[2]} m, turned ${Number(turn.toFixed(4))}°${crsName ? `, in ${crsName}` : ''}; 1 m of the model is ${Number(((scale * mapUnitM) / metresPerUnit).toPrecision(9))} m on the map.`;
 }
 
 function grouped(valueM: number): string {
-	const [whole = '', fraction = ''] = signedNumber(valueM, 3).split('.');
+	const [whole = '', fraction = ''] = signedNumber(valueM, 3).split(/[.,]/);
 	return `${whole.replace(/\B(?=(\d{3})+$)/g, '\u00a0')}.${fraction}`;
 }

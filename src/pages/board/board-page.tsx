@@ -2,11 +2,10 @@ import { useQuery, useSuspenseQueries } from '@tanstack/react-query';
 import { Link } from 'react-router-dom';
 import type { CheckDetail } from '#shared/check/contract.ts';
 import { BesideTheLine } from '#src/features/site/beside-the-line.tsx';
-import { nextActs } from '#src/features/site/next-acts.ts';
 import { NextForYou } from '#src/features/site/next-for-you.tsx';
 import { PlacesList } from '#src/features/site/places-list.tsx';
+import { WaitingOnOthers } from '#src/features/site/waiting-on-others.tsx';
 import { api } from '#src/lib/api.ts';
-import { moment } from '#src/lib/format.ts';
 import { useNow } from '#src/lib/now.ts';
 import { useMay, useSite } from '#src/lib/session.ts';
 import { ButtonLink } from '#src/ui/button.tsx';
@@ -22,25 +21,26 @@ export default function BoardPage() {
 	const now = useNow();
 	const { siteId, timeZone, line } = site;
 	const input = { siteId };
-	const [{ data: surveys }, { data: checks }, { data: pours }] = useSuspenseQueries({
-		queries: [api.survey.list.queryOptions({ input }), api.check.list.queryOptions({ input }), api.pour.list.queryOptions({ input })],
+	const [{ data: board }, { data: checks }, { data: pours }] = useSuspenseQueries({
+		queries: [api.site.board.queryOptions({ input }), api.check.list.queryOptions({ input }), api.pour.list.queryOptions({ input })],
 	});
 	// The check's figures are many: the page stands before they come.
 	const judged = checks.find((check) => check.state === 'trial' || check.state === 'published');
 	const detail = useQuery(api.check.get.queryOptions({ input: { siteId, checkId: judged?.checkId ?? '' }, enabled: judged !== undefined }));
 	const check = judged === undefined || detail.isError ? null : detail.data;
 
-	const next = pours.find((pour) => pour.plannedAt !== null && pour.plannedAt > now);
-	const acts = nextActs({ roles: site.roles, line, surveys, checks, pourCount: pours.length });
 	return (
 		<div className="pt-2">
 			{site.isInvented && (
 				<Strip items={[<b key="invented">This site is invented</b>, 'its names and figures are nobody’s; try anything']} />
 			)}
-			<section className="mb-6.5 max-w-[62rem]">
-				<Headline title={site.name}>Next for you</Headline>
-				<NextForYou siteId={siteId} acts={acts} nextPour={next?.plannedAt ? moment(next.plannedAt, timeZone, now) : null} />
-			</section>
+			<div className="mb-6.5 grid gap-x-7 gap-y-4 desk:grid-cols-[minmax(0,62rem)_minmax(18rem,1fr)]">
+				<section>
+					<Headline title={site.name}>Next for you</Headline>
+					<NextForYou siteId={siteId} acts={board.next} timeZone={timeZone} now={now} />
+				</section>
+				<WaitingOnOthers waiting={board.waiting} timeZone={timeZone} now={now} />
+			</div>
 			<section aria-labelledby="pours">
 				<h2 id="pours" className="m-0 mb-1 text-h1-phone font-strong tracking-[-0.015em] tablet:text-h1">
 					Pours, by their concrete

@@ -1,8 +1,7 @@
-import type { CheckHead } from '#shared/check/contract.ts';
-import { mayWith, type Role, type SitePermission } from '#shared/permissions.ts';
-import type { Line } from '#shared/site/contract.ts';
-import type { SurveySummary } from '#shared/survey/contract.ts';
-import { counted } from '#src/lib/format.ts';
+import type { CheckHead } from '../check/contract.ts';
+import { mayWith, type Role, type SitePermission } from '../permissions.ts';
+import type { SurveySummary } from '../survey/contract.ts';
+import type { Line } from './contract.ts';
 
 /** One thing to do: the verb on the button, where it begins, why. */
 export interface NextAct {
@@ -23,11 +22,14 @@ export interface NextFacts {
 	pourCount: number;
 }
 
-const most = 5;
-
-/** At most five acts that wait for this person, the one that holds up most first. Pure. */
+/** What the site's own way asks of this person next, by its places: model, control, surveys, check, pours. Pure. */
 export function nextActs(facts: NextFacts): NextAct[] {
-	return [...beginnings(facts), ...surveyActs(facts), ...checkActs(facts), ...pourActs(facts)].slice(0, most);
+	return [...beginnings(facts), ...surveyActs(facts), ...checkActs(facts), ...pourActs(facts)];
+}
+
+/** "1 flag", "6 flags". */
+export function counted(value: number, one: string, many = `${one}s`): string {
+	return `${value} ${value === 1 ? one : many}`;
 }
 
 function stateOf({ line }: NextFacts, knot: Line['knots'][number]['knot']) {
