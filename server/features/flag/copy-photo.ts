@@ -49,10 +49,19 @@ export async function copyPhoto(bytes: Uint8Array): Promise<PhotoCopy> {
 			`It is ${widthPx} × ${heightPx} pixels; at most ${longestSidePx} on a side and ${mostPixels / 1e6} million in all are taken.`,
 		);
 	try {
-		const source = format === 'heic' ? await decoded(bytes) : sharp(bytes, { limitInputPixels: mostPixels, failOn: 'error' }).rotate();
+		// A HEIC may be coded larger than it is and cut to its size (`clap`): the decoder tells the size it has.
+		const heic = format === 'heic' ? await decoded(bytes) : null;
+		const source = heic?.source ?? sharp(bytes, { limitInputPixels: mostPixels, failOn: 'error' }).rotate();
 		const fitted = source.resize(shownSidePx, shownSidePx, { fit: 'inside', withoutEnlargement: true });
 		const shown = format === 'png' ? await fitted.png().toBuffer() : await fitted.jpeg({ quality: 84 }).toBuffer();
-		return { ok: true, format, widthPx, heightPx, shown, shownType: format === 'png' ? 'image/png' : 'image/jpeg' };
+		return {
+			ok: true,
+			format,
+			widthPx: heic?.widthPx ?? widthPx,
+			heightPx: heic?.heightPx ?? heightPx,
+			shown,
+			shownType: format === 'png' ? 'image/png' : 'image/jpeg',
+		};
 	} catch {
 		return { ok: false, code: 'photo-broken', message: 'This picture begins like one but cannot be read to its end. Nothing was kept.' };
 	}
@@ -83,5 +92,6 @@ function heicSize(bytes: Uint8Array): { widthPx: number; heightPx: number } | nu
 
 async function decoded(bytes: Uint8Array) {
 	const { data, width, height } = await heicDecode({ buffer: Buffer.from(bytes) });
-	return sharp(Buffer.from(data.buffer, data.byteOffset, data.byteLength), { raw: { width, height, channels: 4 } }).removeAlpha();
+	const source = sharp(Buffer.from(data.buffer, data.byteOffset, data.byteLength), { raw: { width, height, channels: 4 } }).removeAlpha();
+	return { source, widthPx: width, heightPx: height };
 }

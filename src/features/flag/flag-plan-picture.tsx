@@ -9,7 +9,8 @@ interface FlagPlanPictureProps {
 }
 
 const [widthPx, heightPx] = [92, 66];
-const marginPx = 7;
+/** Room for the arrow of one that stands at the edge. */
+const marginPx = 13;
 const arrowPx = 21;
 /** So small that a column would be lost in a long building. */
 const smallestPx = 7;
@@ -17,6 +18,7 @@ const smallestPx = 7;
 /** The element among those of its kind, and an arrow the way it is off. North is up. */
 export function FlagPlanPicture({ plan, way, label }: FlagPlanPictureProps) {
 	const boxes = [plan.own, ...plan.others];
+	const middle = (box: FlagPlan['own']) => [(box[0] + box[2]) / 2, (box[1] + box[3]) / 2] as const;
 	const [west, south] = [Math.min(...boxes.map((box) => box[0])), Math.min(...boxes.map((box) => box[1]))];
 	const [east, north] = [Math.max(...boxes.map((box) => box[2])), Math.max(...boxes.map((box) => box[3]))];
 	const pxPerM = Math.min((widthPx - 2 * marginPx) / Math.max(east - west, 0.5), (heightPx - 2 * marginPx) / Math.max(north - south, 0.5));
@@ -24,9 +26,9 @@ export function FlagPlanPicture({ plan, way, label }: FlagPlanPictureProps) {
 	const y = (n: number): number => heightPx / 2 - (n - (north + south) / 2) * pxPerM;
 	const shape = (box: FlagPlan['own']) => {
 		const [w, h] = [Math.max((box[2] - box[0]) * pxPerM, smallestPx), Math.max((box[3] - box[1]) * pxPerM, smallestPx)];
-		return { x: x((box[0] + box[2]) / 2) - w / 2, y: y((box[1] + box[3]) / 2) - h / 2, width: w, height: h };
+		return { x: x(middle(box)[0]) - w / 2, y: y(middle(box)[1]) - h / 2, width: w, height: h };
 	};
-	const [fromX, fromY] = [x((plan.own[0] + plan.own[2]) / 2), y((plan.own[1] + plan.own[3]) / 2)];
+	const [fromX, fromY] = [x(middle(plan.own)[0]), y(middle(plan.own)[1])];
 	const turn = way === null || Math.hypot(...way) === 0 ? null : (-Math.atan2(way[1], way[0]) * 180) / Math.PI;
 	return (
 		<svg
@@ -38,7 +40,7 @@ export function FlagPlanPicture({ plan, way, label }: FlagPlanPictureProps) {
 			className="block shrink-0 overflow-visible"
 		>
 			<rect x={0.75} y={0.75} width={widthPx - 1.5} height={heightPx - 1.5} className="fill-none stroke-rule" strokeWidth={1.5} />
-			{plan.others.map((box) => (
+			{apartOnly(plan.others, plan.own, (box) => [x(middle(box)[0]), y(middle(box)[1])]).map((box) => (
 				<rect key={box.join()} {...shape(box)} className="fill-band stroke-second" />
 			))}
 			<rect {...shape(plan.own)} className="fill-ink" />
@@ -54,4 +56,19 @@ export function FlagPlanPicture({ plan, way, label }: FlagPlanPictureProps) {
 			)}
 		</svg>
 	);
+}
+
+/** Boxes that would be drawn upon one another, as bolts of one group, are drawn once. */
+function apartOnly(
+	others: FlagPlan['others'],
+	own: FlagPlan['own'],
+	placeOf: (box: FlagPlan['own']) => readonly [number, number],
+): FlagPlan['others'] {
+	const kept: FlagPlan['others'] = [];
+	for (const box of others) {
+		const [x, y] = placeOf(box);
+		const isFree = [own, ...kept].every((one) => Math.hypot(placeOf(one)[0] - x, placeOf(one)[1] - y) > smallestPx + 1);
+		if (isFree) kept.push(box);
+	}
+	return kept;
 }

@@ -75,11 +75,10 @@ export function FlagTable({ siteId, flags, chosen, onChoose, timeZone, now, empt
 						className="flex w-0 min-w-full items-center gap-2.5 text-ink no-underline hover:underline"
 					>
 						<span className="min-w-0 flex-1 leading-tight">
-							<span className="block truncate font-strong">{flagTitle(flag)}</span>
+							<span className={`font-strong ${isPhone ? 'line-clamp-2 whitespace-normal' : 'block truncate'}`}>{flagTitle(flag)}</span>
 							<span className="block truncate text-small text-second">
-								{isPhone ? `${offWords(flag)} · ${stateWords(flag, now)}` : `no. ${flag.number}, ${offWords(flag)}`}
+								{isPhone ? phoneWords(flag, timeZone, now) : `no. ${flag.number}, ${offWords(flag)}`}
 							</span>
-							{isPhone && <span className="block truncate text-small">{deadlineWords(flag, timeZone, now)}</span>}
 						</span>
 						{isPhone && <FlagRod flag={flag} scaleMm={scaleMm} widthPx={84} />}
 					</Link>
@@ -87,27 +86,27 @@ export function FlagTable({ siteId, flags, chosen, onChoose, timeZone, now, empt
 			},
 			{
 				key: 'rod',
-				head: 'Against its limits',
+				head: 'Worst',
 				onlyFrom: 'tablet',
-				widthPx: 156,
-				cell: (flag) => <FlagRod flag={flag} scaleMm={scaleMm} widthPx={140} />,
+				widthPx: 120,
+				cell: (flag) => <FlagRod flag={flag} scaleMm={scaleMm} widthPx={104} />,
 			},
 			{
 				key: 'state',
 				head: 'Where it stands',
 				onlyFrom: 'tablet',
-				widthPx: 190,
+				widthPx: 150,
 				cell: (flag) => <span className="line-clamp-2 leading-tight whitespace-normal">{stateWords(flag, now)}</span>,
 			},
 			{
 				key: 'deadline',
 				head: 'Answer',
 				onlyFrom: 'tablet',
-				widthPx: 170,
+				widthPx: 186,
 				cell: (flag) => {
 					const [by, distance] = deadlineWords(flag, timeZone, now).split(', ');
 					return (
-						<span className="block leading-tight whitespace-normal">
+						<span className="block leading-tight">
 							{by}
 							<span className="block text-small">{flag.timeAsked === null ? distance : <b>more time asked</b>}</span>
 						</span>
@@ -155,4 +154,9 @@ function FlagRod({ flag: { worst, kind }, scaleMm, widthPx }: { flag: FlagSummar
 			widthPx={widthPx}
 		/>
 	);
+}
+
+/** The deadline without how far off it is, or where the flag stands: all that a phone's row has room for. */
+function phoneWords(flag: FlagSummary, timeZone: string, now: Date): string {
+	return deadlineWords(flag, timeZone, now).split(', ')[0] || stateWords(flag, now);
 }
