@@ -3,8 +3,10 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { simulatedNoise, simulatedSheet, simulateSurvey } from '#server/scripts/simulate-survey.ts';
 import type { Finding, FitResult } from '#shared/fit/fit-schema.ts';
 import { runCheckCommand } from '../../server/cli/check.ts';
+import { readFileHere } from '../model/read-model-file.ts';
 import { buildPrograms, type Programs } from '../platform/run-program.ts';
 
 /** The command line's `check` as a process: the invented pump house with its planted faults, and files that are refused. */
@@ -98,6 +100,44 @@ describe('check on the command line', { timeout: 120_000 }, () => {
 			const isMeasured = verdict !== 'not-measured';
 			expect([measured !== null, deviationMm !== null, pointCount > 0, setup !== null]).toEqual(new Array(4).fill(isMeasured));
 		}
+	});
+
+	it('gives back what a model’s checkpoints were displaced by, from files alone, each set-up on its own turned and shifted frame', async () => {
+		const model = fixture('ifc/made-frame-metre-ifc4.ifc');
+		const { checkpoints } = await readFileHere(model);
+		const { displaced, setups, points } = simulateSurvey(checkpoints, 7);
+		const targets = setups.flatMap(({ id, pairs }) =>
+			pairs.map(({ name, survey, surveySigma }) => [name, ...survey, ...surveySigma!, id].join(',')),
+		);
+		const control = setups.flatMap(({ pairs }) =>
+			pairs.map(({ name, control: place, controlSigma }) => [name, ...place, controlSigma![0], controlSigma![2]].join(',')),
+		);
+		const observed = points.map(({ name, surveyPoint, sigmaM, setupId }) => [name, ...surveyPoint, ...sigmaM!, setupId].join(','));
+		const header = 'name,x,y,z,sigma_x,sigma_y,sigma_z,setup';
+		const { code, answer } = await check(
+			{
+				'--targets': written('loop-targets.csv', [header, ...targets].join('\n')),
+				'--control': written('loop-control.csv', ['name,easting,northing,height,sigma_plan,sigma_height', ...control].join('\n')),
+				'--points': written('loop-points.csv', [header, ...observed].join('\n')),
+				'--tolerances': written('loop-sheet.json', JSON.stringify(simulatedSheet)),
+				'--fit': 'free',
+				'--common-mm': String(simulatedNoise.commonMm),
+			},
+			model,
+		);
+		expect(code).toBe(0);
+		const result = answer as Answer;
+		expect(result.checkpoints.map(({ id }) => id)).toEqual(checkpoints.map(({ id }) => id));
+		result.checkpoints.forEach(({ deviationMm, uncertaintyMm, offsetMm, verdict }, at) => {
+			const truth = displaced[at]!;
+			const missMm =
+				truth.offsetMm === null
+					? Math.abs(deviationMm! - truth.deviationMm)
+					: Math.hypot(offsetMm![0]! - truth.offsetMm[0], offsetMm![1]! - truth.offsetMm[1]);
+			expect(missMm).toBeLessThan(2.5 * uncertaintyMm!);
+			if (truth.planted === 'inside') expect(verdict).toBe('within');
+			if (truth.planted === 'outside') expect(verdict).toBe('outside');
+		});
 	});
 
 	it('comes to the same from control in the map frame, and from files in US survey feet', async () => {
