@@ -168,8 +168,8 @@ export function simulateSurvey(checkpoints: readonly Checkpoint[], seed: number)
 		const pairs = places.map(
 			(place, at): FitPair => ({
 				name: `${id}T${at + 1}`,
-				survey: plus(toSurvey(place), errors(simulatedNoise.targetM, draw)),
-				control: plus(place, errors(simulatedNoise.controlM, draw)),
+				survey: [...plus(toSurvey(place), errors(simulatedNoise.targetM, draw))],
+				control: [...plus(place, errors(simulatedNoise.controlM, draw))],
 				surveySigma: [...simulatedNoise.targetM],
 				controlSigma: [...simulatedNoise.controlM],
 			}),

@@ -34,10 +34,12 @@ export const noMisses = (): MissCount => ({
 
 /** The misses of one checkpoint over their u: one along its direction; of a mark two, whitened by the factor of Cholesky of its covariance. */
 export function normalisedMisses(
-	{ deviationMm, offsetMm, covarianceMm2, expandedUncertaintyMm }: Pick<
-		Deviation,
-		'deviationMm' | 'offsetMm' | 'covarianceMm2' | 'expandedUncertaintyMm'
-	>,
+	{
+		deviationMm,
+		offsetMm,
+		covarianceMm2,
+		expandedUncertaintyMm,
+	}: Pick<Deviation, 'deviationMm' | 'offsetMm' | 'covarianceMm2' | 'expandedUncertaintyMm'>,
 	truth: Pick<Displaced, 'deviationMm' | 'offsetMm'>,
 ): number[] {
 	if (deviationMm === null) return [];

@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
 import { findingSchema } from '../fit/fit-schema.ts';
 import { decisionRule, stage } from '../tolerance/sheet-schema.ts';
-import { checkSummary, deviationSchema } from './check-schema.ts';
+import { checkSummary, derivedResultSchema, deviationSchema } from './check-schema.ts';
 
 export const checkState = z.enum(['computing', 'trial', 'published', 'withdrawn', 'failed']);
 
@@ -76,6 +76,8 @@ export const checkDetail = checkHead.extend({
 	elements: z.array(checkElement),
 	/** In checkpoint order. For a contractor only those of its own pours. */
 	deviations: z.array(deviationSchema),
+	/** Results from several checkpoints, where the sheet has rules for them. For a contractor only those wholly on its own elements. */
+	derived: z.array(derivedResultSchema),
 	/** Checkpoints that were left out before the check, counted by reason; absent where there are none. */
 	leftOut: z.array(z.object({ reason: z.string(), by: z.string(), count: z.number().int() })).optional(),
 });

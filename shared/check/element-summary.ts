@@ -1,5 +1,6 @@
 import { plainMm } from '../tolerance/millimetre-text.ts';
 import type { Deviation } from './check-schema.ts';
+import type { DerivedRow } from './derived/derived-row.ts';
 import { directionWords } from './direction-words.ts';
 import { decimalsFor } from './sentence.ts';
 
@@ -153,14 +154,31 @@ function planWords(marks: readonly Measured[]): string | null {
 	return phrases.length === 0 ? null : phrases.join(', ');
 }
 
+/** "leans 23 mm east", "section of 400 mm 16 mm too thick": of each kind the one furthest beyond its limits. */
+function derivedWords(rows: readonly DerivedRow[]): string[] {
+	const worst = new Map<string, DerivedRow>();
+	for (const row of rows) {
+		if (row.verdict !== 'outside') continue;
+		const known = worst.get(row.characteristic);
+		if (known === undefined || (row.beyondMm ?? 0) > (known.beyondMm ?? 0)) worst.set(row.characteristic, row);
+	}
+	// A label that begins with marks keeps its letters.
+	const within = ({ characteristic, label }: DerivedRow): string =>
+		/^(section|flatness)/.test(characteristic) ? `${label.charAt(0).toLowerCase()}${label.slice(1)}` : label;
+	return [...worst.values()].map((row) => (row.characteristic === 'plumb' ? row.words : `${within(row)} ${row.words}`));
+}
+
 /**
  * What the deviations of one element say together, in a phrase: "leans east, 23 at the top", "8 low", "5 east, 2 south of its mark".
- * Only what is beyond U; null where nothing is. Millimetres. Deviations without a known U say nothing here.
+ * Only what is beyond U; null where nothing is. Millimetres. Deviations without a known U say nothing here. Of derived results the worst that is
+ * outside of each kind is said, a plumb only where the faces do not say already which way the element leans.
  */
-export function elementSummary(deviations: readonly Part[]): string | null {
+export function elementSummary(deviations: readonly Part[], derived: readonly DerivedRow[] = []): string | null {
 	const faces = measuredOf(deviations, 'face');
+	const lean = leanWords(faces);
 	const phrases = [
-		leanWords(faces) ?? alikeWords(faces, 'proud', 'shy', faces.length > 2 ? ' all round' : ''),
+		...derivedWords(derived.filter(({ characteristic }) => lean === null || characteristic !== 'plumb')),
+		lean ?? alikeWords(faces, 'proud', 'shy', faces.length > 2 ? ' all round' : ''),
 		planWords(measuredOf(deviations, 'plan').filter(({ offsetMm }) => offsetMm !== null)),
 		alikeWords(measuredOf(deviations, 'level'), 'high', 'low', ' on average'),
 	].filter((phrase) => phrase !== null);

@@ -1,4 +1,4 @@
-import type { Deviation } from './check-schema.ts';
+import type { DerivedResult, Deviation } from './check-schema.ts';
 import { counted } from './name-list.ts';
 
 /** What a headline counts: elements where something is off, points elsewhere. */
@@ -11,12 +11,15 @@ export interface HeadlineCounts {
 	readonly withoutRule: number;
 }
 
-/** Counts a check's deviations for its headline. An element counts once, however many of its points are off. */
-export function headlineCounts(deviations: readonly Pick<Deviation, 'elementId' | 'verdict'>[]): HeadlineCounts {
+/** Counts a check's deviations for its headline. An element counts once, however many of its points are off; it is off as well where a derived result is. */
+export function headlineCounts(
+	deviations: readonly Pick<Deviation, 'elementId' | 'verdict'>[],
+	derived: readonly Pick<DerivedResult, 'elementId' | 'verdict'>[] = [],
+): HeadlineCounts {
 	const count = (verdict: Deviation['verdict']): number => deviations.filter((deviation) => deviation.verdict === verdict).length;
 	return {
 		points: deviations.length,
-		elementsOff: new Set(deviations.filter(({ verdict }) => verdict === 'outside').map(({ elementId }) => elementId)).size,
+		elementsOff: new Set([...deviations, ...derived].filter(({ verdict }) => verdict === 'outside').map(({ elementId }) => elementId)).size,
 		tooClose: count('too-close-to-call'),
 		undecided: count('undecided'),
 		notSeen: count('not-measured'),

@@ -55,7 +55,7 @@ export function judgementOf(
 }
 
 /** How far the nearest exceeded limit lies behind the value, millimetres; of a box the worse of its axes. */
-function beyondLimitsMm(
+export function beyondLimitsMm(
 	measured: Pick<MeasuredDeviation, 'deviationMm' | 'offsetMm'>,
 	[lower, upper]: [number | null, number | null],
 	boxYawRad: number | null,

@@ -1,22 +1,18 @@
 import { limitText, plainMm, signedLimitText } from '../tolerance/millimetre-text.ts';
-import type { Stage } from '../tolerance/sheet-schema.ts';
+import type { DerivedCharacteristic, Stage } from '../tolerance/sheet-schema.ts';
 import type { Deviation, Verdict } from './check-schema.ts';
 import { directionWords } from './direction-words.ts';
 
 /** What of a deviation is said. */
 export type SaidDeviation = Pick<
 	Deviation,
-	| 'label'
-	| 'characteristic'
-	| 'deviationMm'
-	| 'offsetMm'
-	| 'limitsMm'
-	| 'expandedUncertaintyMm'
-	| 'verdict'
-	| 'beyondMm'
-	| 'notMeasuredReason'
+	'label' | 'deviationMm' | 'offsetMm' | 'limitsMm' | 'expandedUncertaintyMm' | 'verdict' | 'beyondMm' | 'notMeasuredReason'
 > &
-	Partial<Pick<Deviation, 'boxYawRad'>>;
+	Partial<Pick<Deviation, 'boxYawRad'>> & {
+		readonly characteristic: Deviation['characteristic'] | DerivedCharacteristic;
+		/** How it is off, where its sign alone does not say it: "leans 23 mm east". Derived results have it. */
+		readonly words?: string;
+	};
 
 export interface SentenceOptions {
 	/** Before the pour a plan offset is also said the way it has yet to go: arithmetic, no instruction. */
@@ -56,8 +52,9 @@ export function verdictWords({
 }
 
 /** The deviation with its sign word and unit: "16 mm proud", "8 mm low", "5 east, 2 south of its mark". */
-export function deviationWords({ characteristic, deviationMm, offsetMm, expandedUncertaintyMm }: SaidDeviation): string {
+export function deviationWords({ characteristic, deviationMm, offsetMm, expandedUncertaintyMm, words: said }: SaidDeviation): string {
 	if (deviationMm === null) return 'not measured';
+	if (said !== undefined) return said;
 	const decimals = decimalsFor(expandedUncertaintyMm);
 	if (characteristic === 'plan' && offsetMm !== null) {
 		const way = directionWords(offsetMm, decimals);

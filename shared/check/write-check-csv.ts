@@ -1,4 +1,5 @@
-import type { Deviation } from './check-schema.ts';
+import type { DerivedResult, Deviation } from './check-schema.ts';
+import { derivedRow } from './derived/derived-row.ts';
 
 export interface CsvElement {
 	readonly mark: string;
@@ -49,12 +50,16 @@ function numberCell(value: number | null | undefined, decimals: number): string 
 	return Number(text) === 0 ? (0).toFixed(decimals) : text;
 }
 
+const elementCells = (element: CsvElement | undefined): string[] =>
+	[element?.title, element?.mark, element?.storey, element?.globalId].map((text) => textCell(text ?? ''));
+
 /**
- * A check as CSV (RFC 4180): one row for every checkpoint, decimal points, units in the header, metres to three decimals. Design frame.
+ * A check as CSV (RFC 4180): one row for every checkpoint, then one for every derived result (its checkpoints named in the first cell), decimal points, units in the header, metres to three decimals. Design frame.
  * Text that a spreadsheet would take for a formula is made text.
  */
 export function writeCheckCsv(
 	deviations: readonly Deviation[],
+	derived: readonly DerivedResult[],
 	elementOf: (elementId: string) => CsvElement | undefined,
 	setupNameOf: (setupId: string) => string | undefined = () => undefined,
 ): string {
@@ -62,10 +67,7 @@ export function writeCheckCsv(
 		const element = elementOf(deviation.elementId);
 		return [
 			textCell(deviation.checkpointId),
-			textCell(element?.title ?? ''),
-			textCell(element?.mark ?? ''),
-			textCell(element?.storey ?? ''),
-			textCell(element?.globalId ?? ''),
+			...elementCells(element),
 			deviation.characteristic,
 			textCell(deviation.label),
 			...deviation.place.map((value) => numberCell(value, 3)),
@@ -86,5 +88,30 @@ export function writeCheckCsv(
 			textCell(deviation.notMeasuredReason ?? ''),
 		].join(',');
 	});
-	return `${[header.join(','), ...rows].join('\r\n')}\r\n`;
+	const derivedRows = derived.map((result, index) => {
+		const element = elementOf(result.elementId);
+		const row = derivedRow(result, index);
+		return [
+			textCell(result.from.join(' ')),
+			...elementCells(element),
+			result.characteristic,
+			textCell(row.label),
+			...Array<string>(6).fill(''),
+			numberCell(result.deviationMm, 2),
+			'',
+			'',
+			numberCell(result.uncertaintyMm, 2),
+			numberCell(result.limitsMm?.[0], 2),
+			numberCell(result.limitsMm?.[1], 2),
+			numberCell(row.beyondMm, 2),
+			result.verdict,
+			numberCell(result.conformity, 6),
+			textCell(result.ruleId),
+			'',
+			'',
+			String(result.from.length),
+			'',
+		].join(',');
+	});
+	return `${[header.join(','), ...rows, ...derivedRows].join('\r\n')}\r\n`;
 }

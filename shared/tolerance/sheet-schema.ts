@@ -15,6 +15,7 @@ export const derivedCharacteristics = [
 	'group-turn',
 	'projection',
 ] as const;
+export type DerivedCharacteristic = (typeof derivedCharacteristics)[number];
 
 export const stages = ['before-pour', 'as-cast-shored', 'as-cast', 'later'] as const;
 export const stage = z.enum(stages);

@@ -1,11 +1,14 @@
 import type { Deviation } from '#shared/check/check-schema.ts';
+import type { DerivedCharacteristic } from '#shared/tolerance/sheet-schema.ts';
 
 /** The forms a verdict is drawn in. `plan` is an arrow turned as on the plan; `close` a half-filled diamond; `none` a dash. */
 export const glyphKinds = ['within', 'proud', 'shy', 'plan', 'close', 'none'] as const;
 export type GlyphKind = (typeof glyphKinds)[number];
 
 /** What of a deviation decides its glyph. */
-export type JudgedValue = Pick<Deviation, 'verdict' | 'characteristic' | 'deviationMm' | 'limitsMm'>;
+export type JudgedValue = Pick<Deviation, 'verdict' | 'deviationMm' | 'limitsMm'> & {
+	readonly characteristic: Deviation['characteristic'] | DerivedCharacteristic;
+};
 
 /** The glyph of a judged value. Outside on a line: the wedge points to the limit that is passed, which with limits on one side of 0 need not be the value's sign. */
 export function glyphKindOf({ verdict, characteristic, deviationMm, limitsMm }: JudgedValue): GlyphKind {

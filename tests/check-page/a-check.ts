@@ -93,6 +93,7 @@ export function aCheck(over: Partial<CheckDetail> = {}): CheckDetail {
 		unmatchedPoints: [],
 		elements,
 		deviations,
+		derived: [],
 		...over,
 	};
 }

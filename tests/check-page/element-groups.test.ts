@@ -1,5 +1,8 @@
 import { describe, expect, it } from 'vitest';
-import { type CheckFilter, elementGroups, shownGroups } from '#src/features/check/element-groups.ts';
+import type { CheckDetail } from '#shared/check/contract.ts';
+import { elementSummary } from '#shared/check/element-summary.ts';
+import { checkHeadline, headlineCounts } from '#shared/check/headline.ts';
+import { type CheckFilter, derivedRowsOf, elementGroups, shownGroups } from '#src/features/check/element-groups.ts';
 import { countsOf, offVerdicts, verdictFilters, wordOfFilter } from '#src/features/check/verdict-filter.ts';
 import { aCheck, aFace, pourId } from './a-check.ts';
 
@@ -27,6 +30,43 @@ describe('the table’s elements', () => {
 
 	it('keep the chosen row whatever the filter says, so that a link leads somewhere', () => {
 		expect(shown({ verdicts: ['proud'], storey: 'Ground' }, 'C2-east')).toEqual(['C2-1: C2-east', 'B1-G: B1-east']);
+	});
+});
+
+describe('derived results', () => {
+	const leaning: CheckDetail['derived'][number] = {
+		elementId: aCheck().elements[0]!.elementId,
+		characteristic: 'plumb',
+		label: 'along east over 2.4 m',
+		deviationMm: 23,
+		uncertaintyMm: 3,
+		limitsMm: [-12, 12],
+		ruleId: 'plumb',
+		verdict: 'outside',
+		conformity: 0,
+		from: ['A0-east'],
+	};
+	const check = aCheck({ derived: [leaning, { ...leaning, verdict: 'within', deviationMm: 1, label: 'along north over 2.4 m' }] });
+
+	it('are rows of their element, which is as bad as the worst of all its rows', () => {
+		const withDerived = elementGroups(check, (rows, derived) => elementSummary(rows, derived) ?? '');
+		expect(withDerived.map(({ element, rows }) => [element.mark, rows.length])).toEqual([
+			['C2-1', 1],
+			['A0-G', 3],
+			['B1-G', 2],
+			['D3-G', 2],
+		]);
+		expect(withDerived[1]!.rows.map(({ checkpointId }) => checkpointId)).toEqual(['derived-1', 'A0-east', 'derived-2']);
+		expect(withDerived[1]!.phrase).toMatch(/^leans 23 mm east/);
+		expect(shownGroups(withDerived, { ...all, verdicts: ['proud'] }, null).map(({ element }) => element.mark)).toEqual(['A0-G', 'B1-G']);
+	});
+
+	it('count for the headline as elements off, never as points', () => {
+		expect(checkHeadline(headlineCounts(check.deviations, check.derived))).toBe('3 elements off, 1 point too close to call, 1 not seen');
+	});
+
+	it('have their word on the chip', () => {
+		expect(wordOfFilter('proud', derivedRowsOf(check))).toBe('over its limit');
 	});
 });
 

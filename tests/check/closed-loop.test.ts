@@ -37,7 +37,7 @@ function counted(change?: (input: CheckInput) => CheckInput) {
 	const count = noMisses();
 	for (const seed of seeds) {
 		const { displaced, output } = checked(seed, change);
-		output.deviations.forEach((deviation, index) => countMiss(count, deviation, displaced[index]!));
+		for (const [index, deviation] of output.deviations.entries()) countMiss(count, deviation, displaced[index]!);
 	}
 	return count;
 }

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { CheckInputCheckpoint } from '#shared/check/check-input.ts';
+import type { DerivedResult } from '#shared/check/check-schema.ts';
 import { elementSummary } from '#shared/check/element-summary.ts';
 import { runCheck } from '#shared/check/run-check.ts';
 import { writeCheckCsv } from '#shared/check/write-check-csv.ts';
@@ -64,7 +65,7 @@ describe('an element in a phrase', () => {
 });
 
 describe('a check as CSV', () => {
-	const csv = (mark: string, label = 'East face, 1.5 m above') => {
+	const csv = (mark: string, label = 'East face, 1.5 m above', derived: readonly DerivedResult[] = []) => {
 		const { deviations } = runCheck(
 			aCheck({
 				checkpoints: [aCheckpoint({ label }), aCheckpoint({ id: 'c2', mark: 'x', place: at(9, 9, 9) })],
@@ -74,6 +75,7 @@ describe('a check as CSV', () => {
 		const element = { ...anElement({ mark }), globalId: '=1+1' };
 		return writeCheckCsv(
 			deviations,
+			derived,
 			() => element,
 			() => 'Station 1',
 		).split('\r\n');
@@ -94,6 +96,38 @@ describe('a check as CSV', () => {
 		});
 		expect(Number(row.conformity)).toBeGreaterThan(0.97);
 		expect(second).toContain(',not-measured,,');
+	});
+	it('has a row for every derived result after them, with the checkpoints it is made from', () => {
+		const leaning: DerivedResult = {
+			elementId: 'e1',
+			characteristic: 'plumb',
+			label: 'along east over 2.4 m',
+			deviationMm: -23.04,
+			uncertaintyMm: 3,
+			limitsMm: [-12, 12],
+			ruleId: 'plumb',
+			verdict: 'outside',
+			conformity: 0,
+			from: ['c1', 'c2'],
+		};
+		const [head, , , third, end] = csv('C3-G', 'label', [leaning]);
+		const cells = third!.replace('"Column C/3, ground"', 'title').replace('"Plumb, east–west, over 2.4 m"', 'place').split(',');
+		expect(end).toBe('');
+		expect(cells).toHaveLength(head!.split(',').length);
+		expect(Object.fromEntries(head!.split(',').map((name, k) => [name, cells[k]]))).toMatchObject({
+			checkpoint: 'c1 c2',
+			mark: 'C3-G',
+			characteristic: 'plumb',
+			place: 'place',
+			design_easting_m: '',
+			deviation_mm: '-23.04',
+			uncertainty_mm: '3.00',
+			lower_limit_mm: '-12.00',
+			beyond_mm: '11.04',
+			verdict: 'outside',
+			rule: 'plumb',
+			point_count: '2',
+		});
 	});
 	it.each(['=cmd()', '+1', '-1', '@x', '\t=1', ' =1'])('makes %j no formula', (mark) => {
 		expect(csv(mark)[1]!.includes(`'${mark}`)).toBe(true);

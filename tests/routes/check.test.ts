@@ -2,10 +2,11 @@ import { readFileSync } from 'node:fs';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Checkpoint } from '#shared/model/model-schema.ts';
+import type { ToleranceRule } from '#shared/tolerance/sheet-schema.ts';
 import { deviations } from '../../server/db/schema/check.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { aSite, type BuiltSite } from '../builders/a-site.ts';
-import { asBuilt, issuedSheet, type Off } from '../builders/as-built.ts';
+import { asBuilt, issuedSheet, type Off, plainSheet } from '../builders/as-built.ts';
 import { followJob } from '../builders/follow-job.ts';
 import { readModel } from '../builders/read-model.ts';
 import { aSetup, storeControl, storeSurvey } from '../builders/store-points.ts';
@@ -19,13 +20,22 @@ afterAll(() => server.close());
 
 const fixture = (name: string) => readFileSync(new URL(`../../fixtures/ifc/${name}`, import.meta.url));
 
+/** Two faces together: what is derived is judged as well. */
+const sections: ToleranceRule = { id: 'sections', match: { characteristic: 'section' }, lowerMm: -20, upperMm: 20 };
+
 async function modelled(fileName: string) {
 	const site = await aSite(server);
 	const { end, revision } = await readModel(server, site.engineer, fileName, fixture(fileName), { newName: 'Frame' });
 	expect(end.state).toBe('done');
 	const { revisionId, modelId } = revision;
 	const checkpoints = await site.surveyor.api.model.checkpoints({ siteId: site.siteId, revisionId });
-	return { ...site, revisionId, modelId, checkpoints, sheetId: await issuedSheet(server, site.engineer) };
+	return {
+		...site,
+		revisionId,
+		modelId,
+		checkpoints,
+		sheetId: await issuedSheet(server, site.engineer, { ...plainSheet, rules: [sections, ...plainSheet.rules] }),
+	};
 }
 type Modelled = Awaited<ReturnType<typeof modelled>>;
 
@@ -78,7 +88,15 @@ describe('a check', { timeout: 180_000 }, () => {
 			expect(check.summary).toMatchObject({ outside: 3, within: check.deviations.length - 3, 'not-measured': 0 });
 			expect(check.elements.length).toBe(new Set(check.deviations.map(({ elementId }) => elementId)).size);
 			const csv = await (await site.observer.api.check.csv({ siteId: site.siteId, checkId })).text();
-			expect(csv.trim().split('\r\n')).toHaveLength(check.deviations.length + 1);
+			expect(csv.trim().split('\r\n')).toHaveLength(check.deviations.length + check.derived.length + 1);
+			// The one face that stands out makes its section too thick by as much, and no other.
+			expect(check.derived.length).toBeGreaterThan(20);
+			for (const { characteristic, deviationMm, verdict, from, uncertaintyMm } of check.derived) {
+				const offMm = from.reduce((sum, id) => sum + (planted.get(id) ?? 0), 0);
+				expect([characteristic, verdict]).toEqual(['section', offMm === 0 ? 'within' : 'outside']);
+				expect(Math.abs(deviationMm - offMm)).toBeLessThan(0.04);
+				expect(uncertaintyMm).toBeGreaterThan(0);
+			}
 			const kinds = await server.platform.db
 				.select({ kind: auditEntries.kind })
 				.from(auditEntries)
@@ -208,7 +226,11 @@ describe('a check', { timeout: 180_000 }, () => {
 		expect(seen.deviations).toEqual(check.deviations.filter(({ elementId }) => ownIds.has(elementId)));
 		expect(seen.summary.within).toBe(seen.deviations.length);
 		expect((await contractor.api.check.list({ siteId }))[0]?.summary).toEqual(seen.summary);
-		expect((await (await contractor.api.check.csv(asked)).text()).trim().split('\r\n')).toHaveLength(seen.deviations.length + 1);
+		expect((await (await contractor.api.check.csv(asked)).text()).trim().split('\r\n')).toHaveLength(
+			seen.deviations.length + seen.derived.length + 1,
+		);
+		const ownPoints = new Set(seen.deviations.map(({ checkpointId }) => checkpointId));
+		expect(seen.derived.every(({ from }) => from.every((id) => ownPoints.has(id)))).toBe(true);
 		const whole = await engineer.api.check.get(asked);
 		expect(whole.deviations).toEqual(check.deviations);
 		expect(whole.elements.filter(({ pourIds }) => pourIds.includes(others.pourId)).length).toBe(others.elementCount);

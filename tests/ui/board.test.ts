@@ -132,6 +132,7 @@ const aDeviation = (over: Partial<Deviation>): Deviation => ({
 const aCheck = (deviations: Deviation[], over: Partial<CheckHead> = {}): CheckDetail => ({
 	...aHead(over),
 	findings: [],
+	derived: [],
 	unmatchedPoints: [],
 	elements: [
 		{

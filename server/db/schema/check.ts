@@ -13,7 +13,7 @@ import {
 	unique,
 	uuid,
 } from 'drizzle-orm/pg-core';
-import { type CheckSummary, type Deviation, verdicts } from '../../../shared/check/check-schema.ts';
+import { type CheckSummary, type DerivedResult, type Deviation, verdicts } from '../../../shared/check/check-schema.ts';
 import type { CheckDetail } from '../../../shared/check/contract.ts';
 import type { Finding } from '../../../shared/fit/fit-schema.ts';
 import type { LeftOutCheckpoint } from '../../../shared/model/requirement.ts';
@@ -43,6 +43,8 @@ export const checks = pgTable(
 		jobId: uuid('job_id').references(() => jobs.id),
 		summary: jsonb('summary').$type<CheckSummary>(),
 		findings: jsonb('findings').$type<Finding[]>(),
+		/** Plumb, section, flatness, bolt groups; null: computed before they were kept. */
+		derived: jsonb('derived').$type<DerivedResult[]>(),
 		unmatchedPoints: jsonb('unmatched_points').$type<CheckDetail['unmatchedPoints']>(),
 		/** Checkpoints that were left out before the check, with the reason; null: none. */
 		leftOut: jsonb('left_out').$type<LeftOutCheckpoint[]>(),

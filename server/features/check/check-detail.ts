@@ -35,6 +35,7 @@ export async function checkDetailOf(db: Handle, member: Member, checkId: string)
 		.orderBy(asc(deviations.position));
 	const own = stored.filter(({ checkpoint }) => byId.has(checkpoint.elementId));
 	const shown = new Set(own.map(({ checkpoint }) => checkpoint.elementId));
+	const ownIds = new Set(own.map(({ checkpoint }) => checkpoint.id));
 	return {
 		...head,
 		findings: findingsFor(row.check.findings ?? [], companyIds === null ? null : new Set(seen.map(({ mark }) => mark))),
@@ -54,6 +55,9 @@ export async function checkDetailOf(db: Handle, member: Member, checkId: string)
 					pourIds: pourIdsOf.get(element.globalId) ?? [],
 				}),
 			),
+		derived: (row.check.derived ?? []).filter(
+			({ elementId, from }) => byId.has(elementId) && from.every((checkpointId) => ownIds.has(checkpointId)),
+		),
 		deviations: own.map(({ deviation, checkpoint }) => {
 			const element = foundOne([byId.get(checkpoint.elementId)].filter((one) => one !== undefined));
 			return deviationOf(deviation, checkpointOf(checkpoint, element));

@@ -46,10 +46,10 @@ async function computeCheck(input: CheckJobInput, { platform, report, signal }: 
 	report({ doing: 'Storing the deviations', done: output.deviations.length, of: output.deviations.length });
 	const findings = [...withoutFitFindings(loaded), ...output.findings];
 	await platform.transaction(async (tx) => {
-		const { summary, unmatchedPoints } = output;
+		const { summary, unmatchedPoints, derived } = output;
 		const stored = await tx
 			.update(checks)
-			.set({ state: 'trial', summary, findings, unmatchedPoints })
+			.set({ state: 'trial', summary, findings, unmatchedPoints, derived })
 			.where(and(eq(checks.id, input.checkId), eq(checks.state, 'computing')))
 			.returning({ id: checks.id });
 		if (stored.length === 0) return;

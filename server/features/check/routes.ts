@@ -14,6 +14,7 @@ export const checkRoutes = {
 		const setupNameById = new Map(check.fits.map(({ setupId, setupName }) => [setupId, setupName]));
 		const text = writeCheckCsv(
 			check.deviations,
+			check.derived,
 			(elementId) => elementById.get(elementId),
 			(setupId) => setupNameById.get(setupId),
 		);

@@ -1,6 +1,7 @@
 import { type ReactNode, useRef } from 'react';
 import type { Deviation } from '#shared/check/check-schema.ts';
 import type { CheckElement } from '#shared/check/contract.ts';
+import type { JudgedRow } from '#shared/check/derived/derived-row.ts';
 import { deviationSentence, deviationWords } from '#shared/check/sentence.ts';
 import type { Stage } from '#shared/tolerance/sheet-schema.ts';
 import { useElementWidth } from '#src/lib/element-width.ts';
@@ -39,8 +40,8 @@ export function uncertaintyLine({ standardUncertaintyPartsMm: parts, expandedUnc
 }
 
 /** The sentence, with the verdict at its end in the verdict's weight and colour. */
-function Sentence({ deviation, stage }: { deviation: Deviation; stage: Stage }) {
-	const sentence = deviationSentence(deviation, { stage });
+export function JudgedSentence({ deviation, stage }: { deviation: JudgedRow; stage?: Stage }) {
+	const sentence = deviationSentence(deviation, stage === undefined ? {} : { stage });
 	if (deviation.deviationMm === null) return <p className="m-0">{sentence}</p>;
 	// Label, what it is, what is allowed and known, the verdict: the second and the last carry the weight.
 	const words = deviationWords(deviation);
@@ -108,7 +109,7 @@ export function DeviationCard({ deviation, element, setupName, stage, isFolded =
 				/>
 			</div>
 			<div aria-live="polite">
-				<Sentence deviation={deviation} stage={stage} />
+				<JudgedSentence deviation={deviation} stage={stage} />
 			</div>
 			{isFolded ? (
 				<details>

@@ -1,5 +1,5 @@
 import { memo, useCallback, useMemo } from 'react';
-import type { Deviation } from '#shared/check/check-schema.ts';
+import type { JudgedRow } from '#shared/check/derived/derived-row.ts';
 import { deviationSentence, verdictWords } from '#shared/check/sentence.ts';
 
 import { useColourSet } from '#src/lib/colour-set.ts';
@@ -22,7 +22,7 @@ interface DeviationTableProps {
 }
 
 /** The words of a verdict have its colour only where something is off; the rest is in ink, or recedes. */
-export function verdictClass(deviation: Deviation): string {
+export function verdictClass(deviation: JudgedRow): string {
 	if (deviation.verdict === 'outside') {
 		return `font-strong ${glyphKindOf(deviation) === 'shy' ? 'text-shy-word' : 'text-proud-word'}`;
 	}
@@ -30,7 +30,7 @@ export function verdictClass(deviation: Deviation): string {
 }
 
 /** The figure of a deviation: signed along a line, a distance in plan. */
-export function deviationFigure({ characteristic, deviationMm, expandedUncertaintyMm }: Deviation): string {
+export function deviationFigure({ characteristic, deviationMm, expandedUncertaintyMm }: JudgedRow): string {
 	return characteristic === 'plan' ? plainMm(deviationMm, expandedUncertaintyMm) : signedMm(deviationMm, expandedUncertaintyMm);
 }
 
@@ -41,7 +41,7 @@ export function DeviationRod({
 	widthPx,
 	heightPx,
 }: {
-	deviation: Deviation;
+	deviation: JudgedRow;
 	scaleMm: number;
 	widthPx: number;
 	heightPx: number;
@@ -62,7 +62,7 @@ export function DeviationRod({
 	);
 }
 
-function wideColumns(scaleMm: number, rodPx: number): Column<Deviation>[] {
+function wideColumns(scaleMm: number, rodPx: number): Column<JudgedRow>[] {
 	return [
 		{
 			key: 'where',
@@ -102,7 +102,7 @@ function wideColumns(scaleMm: number, rodPx: number): Column<Deviation>[] {
 	];
 }
 
-function narrowColumns(scaleMm: number): Column<Deviation>[] {
+function narrowColumns(scaleMm: number): Column<JudgedRow>[] {
 	return [
 		{
 			key: 'where',
@@ -134,7 +134,7 @@ function narrowColumns(scaleMm: number): Column<Deviation>[] {
 	];
 }
 
-const keyOf = (row: Deviation): string => row.checkpointId;
+const keyOf = (row: JudgedRow): string => row.checkpointId;
 
 /** The check's table: elements, the worst first, each with what is shown of it. */
 export const DeviationTable = memo(function DeviationTable({ groups, chosenId, onChoose, onOpen, scaleMm, isNarrow }: DeviationTableProps) {
@@ -142,7 +142,7 @@ export const DeviationTable = memo(function DeviationTable({ groups, chosenId, o
 	const rodPx = useColourSet().set === 'sun' ? 138 : 176;
 	const columns = useMemo(() => (isNarrow ? narrowColumns(scaleMm) : wideColumns(scaleMm, rodPx)), [isNarrow, scaleMm, rodPx]);
 	const tableGroups = useMemo(
-		(): TableGroup<Deviation>[] =>
+		(): TableGroup<JudgedRow>[] =>
 			groups.map((group) => ({
 				key: group.key,
 				rows: group.rows,

@@ -1,15 +1,16 @@
 import type { Deviation } from '#shared/check/check-schema.ts';
 import type { CheckDetail, CheckElement } from '#shared/check/contract.ts';
+import { type DerivedRow, derivedRow, type JudgedRow } from '#shared/check/derived/derived-row.ts';
 import { shareOfLimits } from '#src/ui/wide-rod.tsx';
 import { filterOf, type VerdictFilter } from './verdict-filter.ts';
 
-/** The deviations of one element, the worst first. */
+/** The deviations of one element and what is derived from them, the worst first. */
 export interface ElementGroup {
 	readonly key: string;
 	readonly element: CheckElement;
 	/** "leans east, 23 at the top"; empty where there is nothing to say. */
 	readonly phrase: string;
-	readonly rows: readonly Deviation[];
+	readonly rows: readonly JudgedRow[];
 }
 
 /** What is shown of a check. Null: all. */
@@ -32,7 +33,7 @@ const rankOf: Record<Deviation['verdict'], number> = {
 };
 
 /** How bad a deviation is: larger is worse. Within a verdict by the millimetres beyond the limit, else by the share of the limits. */
-function badness({ verdict, beyondMm, deviationMm, limitsMm, characteristic }: Deviation): number {
+function badness({ verdict, beyondMm, deviationMm, limitsMm, characteristic }: JudgedRow): number {
 	const share =
 		deviationMm === null || limitsMm === null ? 0 : Math.abs(shareOfLimits({ deviationMm, limitsMm, isPlan: characteristic === 'plan' }));
 	const within = verdict === 'outside' ? (beyondMm ?? 0) : share;
@@ -40,24 +41,36 @@ function badness({ verdict, beyondMm, deviationMm, limitsMm, characteristic }: D
 }
 
 /** The worst first; equally bad ones in the order of the check. */
-function byBadness(a: Deviation, b: Deviation): number {
+function byBadness(a: JudgedRow, b: JudgedRow): number {
 	return badness(b) - badness(a);
 }
 
-/** Every element with its deviations, the worst element first. Done once a check: filtering keeps the order. */
-export function elementGroups(check: CheckDetail, phraseOf: (element: CheckElement, rows: readonly Deviation[]) => string): ElementGroup[] {
-	const rowsOf = new Map<string, Deviation[]>();
-	for (const deviation of check.deviations) {
-		const rows = rowsOf.get(deviation.elementId);
-		if (rows === undefined) rowsOf.set(deviation.elementId, [deviation]);
-		else rows.push(deviation);
+/** A check's derived results as rows, in its order. */
+export const derivedRowsOf = ({ derived }: CheckDetail): DerivedRow[] => derived.map(derivedRow);
+
+function byElement<Row extends { readonly elementId: string }>(rows: readonly Row[]): Map<string, Row[]> {
+	const of = new Map<string, Row[]>();
+	for (const row of rows) {
+		const own = of.get(row.elementId);
+		if (own === undefined) of.set(row.elementId, [row]);
+		else own.push(row);
 	}
+	return of;
+}
+
+/** Every element with its deviations and what is derived from them, the worst element first. Done once a check: filtering keeps the order. */
+export function elementGroups(
+	check: CheckDetail,
+	phraseOf: (rows: readonly Deviation[], derived: readonly DerivedRow[]) => string,
+): ElementGroup[] {
+	const rowsOf = byElement(check.deviations);
+	const derivedOf = byElement(derivedRowsOf(check));
 	return check.elements
 		.flatMap((element): ElementGroup[] => {
 			const rows = rowsOf.get(element.elementId);
-			return rows === undefined
-				? []
-				: [{ key: element.elementId, element, phrase: phraseOf(element, rows), rows: [...rows].sort(byBadness) }];
+			if (rows === undefined) return [];
+			const derived = derivedOf.get(element.elementId) ?? [];
+			return [{ key: element.elementId, element, phrase: phraseOf(rows, derived), rows: [...rows, ...derived].sort(byBadness) }];
 		})
 		.sort((a, b) => byBadness(a.rows[0]!, b.rows[0]!) || a.element.title.localeCompare(b.element.title, 'en', { numeric: true }));
 }

@@ -1,5 +1,5 @@
 import { memo, useMemo } from 'react';
-import type { Deviation } from '#shared/check/check-schema.ts';
+import type { JudgedRow } from '#shared/check/derived/derived-row.ts';
 import { count } from '#src/lib/format.ts';
 import { Chip } from '#src/ui/chip.tsx';
 import { Glyph } from '#src/ui/glyph.tsx';
@@ -7,7 +7,7 @@ import { countsOf, glyphOfFilter, type VerdictFilter, verdictFilters, wordOfFilt
 
 interface VerdictChipsProps {
 	/** Those that the other filters let through: the chips count these. */
-	deviations: readonly Deviation[];
+	deviations: readonly JudgedRow[];
 	shown: readonly VerdictFilter[];
 	onChange: (shown: readonly VerdictFilter[]) => void;
 }

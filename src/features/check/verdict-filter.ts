@@ -1,4 +1,5 @@
-import type { Deviation } from '#shared/check/check-schema.ts';
+import type { JudgedRow } from '#shared/check/derived/derived-row.ts';
+import { derivedCharacteristics } from '#shared/tolerance/sheet-schema.ts';
 import { type GlyphKind, glyphKindOf } from '#src/ui/glyph-kind.ts';
 
 /** What the chips tell apart: as they stand in the address. */
@@ -11,7 +12,7 @@ export const offVerdicts: readonly VerdictFilter[] = verdictFilters.filter((filt
 const offMeasured: readonly VerdictFilter[] = offVerdicts.filter((filter) => filter !== 'unmeasured');
 
 /** What is shown of a check before anybody chose: what is off; all, where nothing is. */
-export function firstShown(deviations: readonly Deviation[]): readonly VerdictFilter[] {
+export function firstShown(deviations: readonly JudgedRow[]): readonly VerdictFilter[] {
 	const counts = countsOf(deviations);
 	const off = deviations.length - counts.within;
 	if (off === 0) return verdictFilters;
@@ -31,7 +32,7 @@ export const glyphOfFilter: Record<VerdictFilter, GlyphKind> = {
 };
 
 /** The chip a deviation belongs to. */
-export function filterOf(deviation: Deviation): VerdictFilter {
+export function filterOf(deviation: JudgedRow): VerdictFilter {
 	if (deviation.verdict === 'undecided') return 'undecided';
 	if (deviation.verdict === 'no-tolerance') return 'norule';
 	const kind = glyphKindOf(deviation);
@@ -39,19 +40,22 @@ export function filterOf(deviation: Deviation): VerdictFilter {
 }
 
 /** How many there are of each. */
-export function countsOf(deviations: readonly Deviation[]): Record<VerdictFilter, number> {
+export function countsOf(deviations: readonly JudgedRow[]): Record<VerdictFilter, number> {
 	const counts: Record<VerdictFilter, number> = { proud: 0, shy: 0, plan: 0, close: 0, undecided: 0, unmeasured: 0, norule: 0, within: 0 };
 	for (const deviation of deviations) counts[filterOf(deviation)] += 1;
 	return counts;
 }
 
+const isDerived = ({ characteristic }: JudgedRow): boolean => derivedCharacteristics.some((derived) => derived === characteristic);
+
 /** The chip's words. Faces stand proud or shy, levels are high or low: the word follows what is there. */
-export function wordOfFilter(filter: VerdictFilter, deviations: readonly Deviation[]): string {
+export function wordOfFilter(filter: VerdictFilter, deviations: readonly JudgedRow[]): string {
 	if (filter === 'proud' || filter === 'shy') {
 		const off = deviations.filter((deviation) => filterOf(deviation) === filter);
 		const words = [
-			...(off.some((deviation) => deviation.characteristic !== 'level') ? [filter] : []),
+			...(off.some((deviation) => deviation.characteristic !== 'level' && !isDerived(deviation)) ? [filter] : []),
 			...(off.some((deviation) => deviation.characteristic === 'level') ? [filter === 'proud' ? 'high' : 'low'] : []),
+			...(off.some(isDerived) ? [filter === 'proud' ? 'over its limit' : 'under its limit'] : []),
 		];
 		return words.length === 0 ? filter : words.join(' or ');
 	}

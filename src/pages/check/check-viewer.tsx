@@ -81,10 +81,14 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 	const times = useMemo(() => exaggerationOf(allMarks, Math.max(box.max[0] - box.min[0], box.max[1] - box.min[1])), [allMarks, box]);
 	const chosenEntity = view.chosenElement?.entityNumber ?? null;
 
-	const { chosen } = view;
+	const { chosen, chosenId } = view;
 	const frame = useCallback(() => {
-		if (chosen === null) return;
 		const element = elements.find((each) => each.entityNumber === chosenEntity);
+		if (chosen === null) {
+			// A derived result has no place of its own: its element.
+			if (element?.boxM != null) commands.current?.frame(grown(element.boxM, 0.75));
+			return;
+		}
 		const near = grown({ min: chosen.place, max: chosen.place }, 0.75);
 		// A whole slab would frame the whole site: then the place and its surroundings.
 		const isSmall = element?.boxM != null && Math.max(...[0, 1, 2].map((axis) => element.boxM!.max[axis]! - element.boxM!.min[axis]!)) < 9;
@@ -103,7 +107,7 @@ export function CheckViewer({ check, siteId, view, mode, onMode, commands, frame
 		putAwayChosen.current = () => chosenEntity !== null && setPutAway((before) => new Set([...before, chosenEntity]));
 	}, [putAwayChosen, chosenEntity]);
 	useEffect(() => {
-		if (wanted.current === null || wanted.current !== chosen?.checkpointId) return;
+		if (wanted.current === null || wanted.current !== chosenId) return;
 		wanted.current = null;
 		frame();
 	});

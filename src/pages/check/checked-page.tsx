@@ -3,6 +3,7 @@ import { useCallback, useMemo, useRef } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
 import { checkHeadline, headlineCounts } from '#shared/check/headline.ts';
 import { CheckFindings } from '#src/features/check/check-findings.tsx';
+import { DerivedCard } from '#src/features/check/derived-card.tsx';
 import { DeviationCard } from '#src/features/check/deviation-card.tsx';
 import { DeviationTable } from '#src/features/check/deviation-table.tsx';
 import { scaledBy } from '#src/features/check/element-groups.ts';
@@ -88,11 +89,12 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 	const pours = usePoursOf(check, siteId);
 	const headline = useMemo(() => {
 		const pour = pours.find(({ pourId }) => pourId === view.pourId);
-		const ofPour = check.deviations.filter((row) => view.elementById.get(row.elementId)?.pourIds.includes(view.pourId ?? ''));
+		const isOfPour = ({ elementId }: { elementId: string }): boolean =>
+			view.elementById.get(elementId)?.pourIds.includes(view.pourId ?? '') === true;
 		return pour === undefined
-			? checkHeadline(headlineCounts(check.deviations))
-			: checkHeadline(headlineCounts(ofPour), `Pour ${pour.number}`);
-	}, [check.deviations, pours, view.pourId, view.elementById]);
+			? checkHeadline(headlineCounts(check.deviations, check.derived))
+			: checkHeadline(headlineCounts(check.deviations.filter(isOfPour), check.derived.filter(isOfPour)), `Pour ${pour.number}`);
+	}, [check.deviations, check.derived, pours, view.pourId, view.elementById]);
 	const summary = useMemo(() => {
 		const counts = countsOf(view.passing);
 		return `Every deviation against its own limits: ${count(counts.within)} within, ${count(counts.proud + counts.shy + counts.plan)} outside, ${count(counts.close)} too close to call`;
@@ -131,33 +133,38 @@ export function CheckedPage({ check, siteId }: { check: CheckDetail; siteId: str
 			putAwayChosen={putAway}
 		/>
 	);
-	const card = view.chosen && (
+	const acts = (
+		<span className="flex shrink-0 flex-wrap justify-end gap-1.5">
+			{isPhone && phoneView === 'table' ? (
+				<PressChip onPress={() => showOnPhone('plan')} title="Show it on the plan">
+					On plan
+				</PressChip>
+			) : (
+				<>
+					<PressChip onPress={() => frameChosen.current(view.chosenId ?? '')} title="Fill the view with what is chosen (F)">
+						Frame
+					</PressChip>
+					<PressChip onPress={() => putAway.current()} title="Take this element out of the view, until Whole">
+						Put away
+					</PressChip>
+				</>
+			)}
+			{isPhone && <PressChip onPress={view.clear}>Close</PressChip>}
+		</span>
+	);
+	const card = view.chosen ? (
 		<DeviationCard
 			deviation={view.chosen}
 			element={view.chosenElement}
 			stage={check.stage}
 			isFolded={isPhone}
 			setupName={view.chosen.setupId === null ? null : setupNameOf(view.chosen.setupId)}
-			acts={
-				<span className="flex shrink-0 flex-wrap justify-end gap-1.5">
-					{isPhone && phoneView === 'table' ? (
-						<PressChip onPress={() => showOnPhone('plan')} title="Show it on the plan">
-							On plan
-						</PressChip>
-					) : (
-						<>
-							<PressChip onPress={() => frameChosen.current(view.chosenId ?? '')} title="Fill the view with what is chosen (F)">
-								Frame
-							</PressChip>
-							<PressChip onPress={() => putAway.current()} title="Take this element out of the view, until Whole">
-								Put away
-							</PressChip>
-						</>
-					)}
-					{isPhone && <PressChip onPress={view.clear}>Close</PressChip>}
-				</span>
-			}
+			acts={acts}
 		/>
+	) : (
+		view.chosenDerived && (
+			<DerivedCard row={view.chosenDerived} element={view.chosenElement} deviations={check.deviations} onChoose={view.choose} acts={acts} />
+		)
 	);
 	return (
 		<>

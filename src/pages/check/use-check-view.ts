@@ -1,8 +1,9 @@
 import { useCallback, useDeferredValue, useMemo } from 'react';
 import type { CheckDetail } from '#shared/check/contract.ts';
+import type { JudgedRow } from '#shared/check/derived/derived-row.ts';
 import { elementSummary } from '#shared/check/element-summary.ts';
 import { type DeviationMark, drawingOrder, marksOf } from '#src/features/check/deviation-mark.ts';
-import { type CheckFilter, elementGroups, elementPasses, shownGroups } from '#src/features/check/element-groups.ts';
+import { type CheckFilter, derivedRowsOf, elementGroups, elementPasses, shownGroups } from '#src/features/check/element-groups.ts';
 import { filterOf, firstShown, type VerdictFilter, verdictFilters } from '#src/features/check/verdict-filter.ts';
 import { useAddressSet, useAddressState } from '#src/lib/address-state.ts';
 
@@ -12,14 +13,16 @@ export function useCheckView(check: CheckDetail) {
 	const [pourId, setPourId] = useAddressState('pour');
 	const [storey, setStorey] = useAddressState('storey');
 	const [findText, setFind] = useAddressState('find');
-	const fallback = useMemo(() => firstShown(check.deviations), [check.deviations]);
+	const derived = useMemo(() => derivedRowsOf(check), [check]);
+	const judged = useMemo((): readonly JudgedRow[] => [...check.deviations, ...derived], [check.deviations, derived]);
+	const fallback = useMemo(() => firstShown(judged), [judged]);
 	const [verdicts, setVerdicts] = useAddressSet<VerdictFilter>('show', verdictFilters, fallback);
 	const find = findText ?? '';
 	// The field answers at once; the table of thousands follows when there is time.
 	const lateFind = useDeferredValue(find);
 	const verdictKey = verdicts.join();
 
-	const groups = useMemo(() => elementGroups(check, (_, rows) => elementSummary(rows) ?? ''), [check]);
+	const groups = useMemo(() => elementGroups(check, (rows, ofElement) => elementSummary(rows, ofElement) ?? ''), [check]);
 	const filter = useMemo(
 		(): CheckFilter => ({
 			verdicts: verdictKey.split(',').filter((word): word is VerdictFilter => verdictFilters.some((known) => known === word)),
@@ -43,14 +46,16 @@ export function useCheckView(check: CheckDetail) {
 	/** Those that pour, storey and find let through: what the chips count and the wide rod draws. */
 	const passing = useMemo(
 		() =>
-			check.deviations.filter((row) => {
+			judged.filter((row) => {
 				const element = elementById.get(row.elementId);
 				return element === undefined || elementPasses(element, filter);
 			}),
-		[check.deviations, elementById, filter],
+		[judged, elementById, filter],
 	);
 	const marks = useMemo(() => marksOf(check.deviations), [check.deviations]);
 	const chosen = useMemo(() => check.deviations.find((row) => row.checkpointId === chosenId) ?? null, [check.deviations, chosenId]);
+	const chosenDerived = useMemo(() => derived.find((row) => row.checkpointId === chosenId) ?? null, [derived, chosenId]);
+	const chosenElementId = chosen?.elementId ?? chosenDerived?.elementId;
 	const passingIds = useMemo(() => new Set(passing.map((row) => row.checkpointId)), [passing]);
 	const filterById = useMemo(() => new Map(check.deviations.map((row) => [row.checkpointId, filterOf(row)])), [check.deviations]);
 
@@ -73,7 +78,9 @@ export function useCheckView(check: CheckDetail) {
 	return {
 		chosenId,
 		chosen,
-		chosenElement: chosen === null ? null : (elementById.get(chosen.elementId) ?? null),
+		/** A derived result that is chosen: it has no mark of its own, its element is shown. */
+		chosenDerived,
+		chosenElement: chosenElementId === undefined ? null : (elementById.get(chosenElementId) ?? null),
 		choose: setChosenId,
 		clear,
 		verdicts,
