@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { eq } from 'drizzle-orm';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import type { Checkpoint } from '#shared/model/model-schema.ts';
 import type { ToleranceRule } from '#shared/tolerance/sheet-schema.ts';
 import { deviations } from '../../server/db/schema/check.ts';
@@ -8,9 +8,13 @@ import { auditEntries } from '../../server/db/schema/record.ts';
 import { aSite, type BuiltSite } from '../builders/a-site.ts';
 import { asBuilt, issuedSheet, type Off, plainSheet } from '../builders/as-built.ts';
 import { followJob } from '../builders/follow-job.ts';
+import { readInProcess } from '../builders/read-in-process.ts';
 import { readModel } from '../builders/read-model.ts';
 import { aSetup, storeControl, storeSurvey } from '../builders/store-points.ts';
 import { openTestServer, type TestServer } from './harness.ts';
+
+// Not what is tried here, and seconds a time: the process of its own.
+vi.mock('../../server/features/model/read-ifc-in-child.ts', () => ({ readIfcInChild: readInProcess }));
 
 let server: TestServer;
 beforeAll(async () => {

@@ -1,12 +1,17 @@
 import { readFileSync } from 'node:fs';
 import { eq } from 'drizzle-orm';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import type { StoredCheckpoint, StoredElement } from '#shared/model/contract.ts';
+import { pourElements } from '../../server/db/schema/pour.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { aSite, type BuiltSite } from '../builders/a-site.ts';
 import { followJob } from '../builders/follow-job.ts';
+import { readInProcess } from '../builders/read-in-process.ts';
 import { readModel } from '../builders/read-model.ts';
 import { openTestServer, type TestServer } from './harness.ts';
+
+// Not what is tried here, and seconds a time: the process of its own.
+vi.mock('../../server/features/model/read-ifc-in-child.ts', () => ({ readIfcInChild: readInProcess }));
 
 /** What people say of how a model is read: density, unit, map scale, axes, elements known as before. Each takes the next reading. */
 let server: TestServer;
@@ -207,7 +212,7 @@ describe('axes by two picks', { timeout: 120_000 }, () => {
 });
 
 describe('renewed GlobalIds', { timeout: 120_000 }, () => {
-	it('are proposed in bulk, accepted once, and then names, choices, own checkpoints and ids keep', async () => {
+	it('are proposed in bulk, accepted once, and then names, choices, own checkpoints, pours and ids keep', async () => {
 		const { siteId, engineer, surveyor } = site;
 		const { modelId } = first;
 		const newest = (await engineer.api.model.list({ siteId })).find((one) => one.modelId === modelId)!.revisions[0]!;
@@ -233,6 +238,26 @@ describe('renewed GlobalIds', { timeout: 120_000 }, () => {
 			label: 'Jamb',
 			reason: 'Asked.',
 		});
+		const columns = before.elements.filter((one) => one.class === element.class && one.storey === element.storey);
+		const { pourId, elementCount } = await engineer.api.pour.add({
+			siteId,
+			pour: {
+				number: '7',
+				name: 'Columns',
+				companyId: site.companyId,
+				plannedAt: null,
+				modelId,
+				elements: [{ storey: element.storey, class: element.class }],
+			},
+		});
+		expect(elementCount).toBe(columns.length);
+		/** The tags of the pour's elements that a revision has. */
+		const pouredOf = async (elements: readonly StoredElement[]) => {
+			const rows = await server.platform.db.select().from(pourElements).where(eq(pourElements.pourId, pourId));
+			expect(rows).toHaveLength(elementCount);
+			const poured = new Set(rows.map(({ globalId }) => globalId));
+			return elements.filter(({ globalId }) => poured.has(globalId)).map(({ tag }) => tag);
+		};
 		// Every element's GlobalId anew.
 		const renewed = file.replace(
 			/(=IFC(?:COLUMN|WALL|SLAB|BEAM|FOOTING|MECHANICALFASTENER|PILE|PLATE|DISCRETEACCESSORY)\(')([^']{22})'/g,
@@ -245,6 +270,7 @@ describe('renewed GlobalIds', { timeout: 120_000 }, () => {
 		const next = await read('Frame', renewed, { modelId });
 		const stranger = await seen(next.revisionId);
 		expect(stranger.elements.find(({ tag }) => tag === 'C-B2')!.mark).not.toBe('RIVER 2');
+		expect(await pouredOf(stranger.elements)).toEqual([]);
 		const proposed = await site.observer.api.model.sameElements({ siteId, revisionId: next.revisionId });
 		const ofB2 = proposed.find(({ knownAs }) => knownAs === element.globalId)!;
 		expect(ofB2.markBefore).toBe('RIVER 2');
@@ -258,6 +284,7 @@ describe('renewed GlobalIds', { timeout: 120_000 }, () => {
 		);
 		expect(after.checkpoints.find(({ id }) => id === own[0]!.id)).toMatchObject({ requirement: 'left-out' });
 		expect(after.checkpoints.find(({ id }) => id === checkpointId)!.mark).toBe('RIVER 2.X1');
+		expect((await pouredOf(after.elements)).sort()).toEqual(columns.map(({ tag }) => tag).sort());
 		await expect(ask(proposed.length)).rejects.toMatchObject({ data: { code: 'not-newest' } });
 		expect(await auditOf('elements-known-as')).toHaveLength(1);
 	});

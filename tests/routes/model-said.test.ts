@@ -1,15 +1,19 @@
 import { readFileSync } from 'node:fs';
 import { eq } from 'drizzle-orm';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { designToMap, mapFrameOf } from '#shared/control/map-frame.ts';
 import type { StoredCheckpoint, StoredElement } from '#shared/model/contract.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
 import { aSite, type BuiltSite } from '../builders/a-site.ts';
 import { asBuilt, issuedSheet } from '../builders/as-built.ts';
 import { followJob } from '../builders/follow-job.ts';
+import { readInProcess } from '../builders/read-in-process.ts';
 import { readModel } from '../builders/read-model.ts';
 import { storeControl, storeSurvey } from '../builders/store-points.ts';
 import { openTestServer, type TestServer } from './harness.ts';
+
+// Not what is tried here, and seconds a time: the process of its own.
+vi.mock('../../server/features/model/read-ifc-in-child.ts', () => ({ readIfcInChild: readInProcess }));
 
 /** What persons say of a model: left out, renamed, added; in checks, in field lists, and in the next revision. One site for all of it. */
 let server: TestServer;
