@@ -30,6 +30,9 @@ import { watchHolds } from './watch-holds.ts';
 /** One request may take this long to arrive: a model over a site's mobile network. An upload that is cut goes on where it was. */
 const requestTimeoutMs = 30 * 60_000;
 
+/** How long an idle connection is kept: longer than proxies and browsers usually do (60 s), so that it is they who close it and none is reset under a request. */
+const keepAliveMs = 65_000;
+
 /** A server that answers, and works on its jobs. */
 export interface RunningServer {
 	address: string;
@@ -80,7 +83,7 @@ export async function startOn(
 	const sessions = openSessions({ db: platform.db, isSecure: configuration.isCookieSecure, now: platform.now });
 	const beforeLook = () => deliverNotices(platform);
 	const postman = openPostman({ db: platform.db, service: mail.service, beforeLook, now: platform.now });
-	const server = createServer({ requestTimeout: requestTimeoutMs });
+	const server = createServer({ requestTimeout: requestTimeoutMs, keepAliveTimeout: keepAliveMs });
 	const holds = watchHolds(platform);
 	let closeClient = async () => {};
 	let isReady = false;
