@@ -86,7 +86,14 @@ function startChild(timeMs: number, memoryMb: number): ChildProcess {
 	return spawn(
 		'/bin/sh',
 		// Behind the server, which runs in the same machine and has people waiting.
-		['-c', `ulimit -t ${seconds}; exec nice -n ${niceness} "$0" "$@"`, process.execPath, `--max-old-space-size=${heapMb}`, ...execArgv, file],
+		[
+			'-c',
+			`ulimit -t ${seconds}; exec nice -n ${niceness} "$0" "$@"`,
+			process.execPath,
+			`--max-old-space-size=${heapMb}`,
+			...execArgv,
+			file,
+		],
 		{
 			stdio: ['ignore', 'ignore', 'pipe', 'ipc'],
 			serialization: 'advanced',
