@@ -97,7 +97,7 @@ describe('a check as CSV', () => {
 		expect(Number(row.conformity)).toBeGreaterThan(0.97);
 		expect(second).toContain(',not-measured,,');
 	});
-	it('has a row for every derived result after them, with the checkpoints it is made from', () => {
+	it('has a row for every derived result after them, naming its checkpoints', () => {
 		const leaning: DerivedResult = {
 			elementId: 'e1',
 			characteristic: 'plumb',
