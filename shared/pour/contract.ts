@@ -111,7 +111,7 @@ const pourInput = siteInput.extend({ pourId: z.uuid() });
 const pointInput = pourInput.extend({ point: holdPointKind });
 
 export const statementText = plainText(2000);
-export const conditionForm = z.object({
+export const conditionForm = z.strictObject({
 	text: plainText(300),
 	owner: plainText(80),
 	dueAt: z.date().nullable(),
@@ -169,7 +169,7 @@ export const pourContract = {
 		.input(
 			pourInput.extend({
 				at: z.date(),
-				notCast: z.array(z.object({ modelId: z.uuid(), globalId: z.string().max(100) })).max(20_000),
+				notCast: z.array(z.strictObject({ modelId: z.uuid(), globalId: z.string().max(100) })).max(20_000),
 			}),
 		)
 		.output(z.object({ pour: pourAnswer, restPourId: z.uuid().nullable() })),
