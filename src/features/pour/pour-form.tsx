@@ -3,6 +3,7 @@ import { useState } from 'react';
 import { z } from 'zod';
 import { pourForm } from '#shared/pour/contract.ts';
 import { api } from '#src/lib/api.ts';
+import { fieldMoment, siteMoment } from '#src/lib/site-moment.ts';
 import { SelectField, TextField } from '#src/ui/field.tsx';
 import { Form, Submit } from '#src/ui/form.tsx';
 
@@ -12,16 +13,17 @@ interface PourFormProps {
 	modelId: string;
 	/** Which kinds of element stand on which storey, and how many. */
 	kinds: readonly { storey: string; class: string; elementCount: number }[];
+	timeZone: string;
 	onAdded: () => void;
 }
 
 const fields = pourForm.pick({ number: true, name: true, companyId: true }).extend({
-	/** As the browser's own field gives it, local to the device. Empty: not planned yet. */
-	planned: z.union([z.literal(''), z.string().regex(/^\d{4}-\d\d-\d\dT\d\d:\d\d$/, 'Write date and hour.')]),
+	/** By the site's clock. Empty: not planned yet. */
+	planned: z.union([z.literal(''), fieldMoment]),
 });
 
 /** A pour: what is concreted together, by whom and when. */
-export function PourForm({ siteId, companies, modelId, kinds, onAdded }: PourFormProps) {
+export function PourForm({ siteId, companies, modelId, kinds, timeZone, onAdded }: PourFormProps) {
 	const [taken, setTaken] = useState<ReadonlySet<string>>(new Set());
 	const queries = useQueryClient();
 	const add = useMutation(api.pour.add.mutationOptions());
@@ -42,7 +44,7 @@ export function PourForm({ siteId, companies, modelId, kinds, onAdded }: PourFor
 					siteId,
 					pour: {
 						...said,
-						plannedAt: planned === '' ? null : new Date(planned),
+						plannedAt: planned === '' ? null : siteMoment(planned, timeZone),
 						modelId,
 						elements: chosen.map(({ storey, class: elementClass }) => ({ storey, class: elementClass })),
 					},
@@ -82,7 +84,7 @@ export function PourForm({ siteId, companies, modelId, kinds, onAdded }: PourFor
 }
 
 function PlannedField() {
-	return <TextField name="planned" label="Concrete planned" hint="As 2026-12-04T07:00, or empty" isMono />;
+	return <TextField name="planned" type="datetime-local" label="Concrete planned" hint="By the site’s clock; may stay empty" isMono />;
 }
 
 function keyOf({ storey, class: elementClass }: { storey: string; class: string }): string {

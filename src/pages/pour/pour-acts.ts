@@ -1,6 +1,6 @@
 import { mayWith, type Role } from '#shared/permissions.ts';
 import type { PourDetail, ShownHoldPoint } from '#shared/pour/contract.ts';
-import type { HoldPointKind } from '#shared/pour/pour-life.ts';
+import { type HoldPointKind, holdPointKinds } from '#shared/pour/pour-life.ts';
 
 /** What this person may do here: absent is not theirs; a text says why not now; null: it can be done. */
 export interface PourActs {
@@ -9,6 +9,8 @@ export interface PourActs {
 	sign?: string | null;
 	begin?: string | null;
 	end?: null;
+	/** Per hold point: only where something is released there. */
+	withdraw: Partial<Record<HoldPointKind, string | null>>;
 }
 
 interface ActsOf {
@@ -22,7 +24,7 @@ interface ActsOf {
 export function pourActs({ site: { roles }, pour, shown, point }: ActsOf): PourActs {
 	const state = pour.points[point].state;
 	const isReleased = state === 'released' || state === 'released-with-conditions';
-	const acts: PourActs = {};
+	const acts: PourActs = { withdraw: {} };
 	if (mayWith(roles, 'pour.call')) {
 		if (!isReleased || pour.isHeld) acts.call = state === 'submitted' ? 'It is with the owner’s representative.' : null;
 		if (pour.state === 'planned' && point === 'before-pour')
@@ -40,7 +42,14 @@ export function pourActs({ site: { roles }, pour, shown, point }: ActsOf): PourA
 						? null
 						: 'It is not ready: see why below.';
 	}
-	if (mayWith(roles, 'pour.release') && !isReleased)
-		acts.sign = shown.whyNotSign ?? (state === 'submitted' ? null : 'It is not submitted yet.');
+	if (mayWith(roles, 'pour.release')) {
+		if (!isReleased) acts.sign = shown.whyNotSign ?? (state === 'submitted' ? null : 'It is not submitted yet.');
+		for (const kind of holdPointKinds) {
+			if (!['released', 'released-with-conditions'].includes(pour.points[kind].state)) continue;
+			const isCast = pour.state === 'cast' || pour.state === 'cast-in-part';
+			acts.withdraw[kind] =
+				kind === 'before-pour' && isCast ? 'It is cast: its release before the pour is noted, never withdrawn.' : shown.whyNotSign;
+		}
+	}
 	return acts;
 }

@@ -1,17 +1,21 @@
 import { useMutation, useQueryClient, useSuspenseQuery } from '@tanstack/react-query';
 import { useState } from 'react';
-import { Link } from 'react-router-dom';
-import type { HoldPointDetail, PourDetail, ShownHoldPoint } from '#shared/pour/contract.ts';
+import { Link, useNavigate } from 'react-router-dom';
+import type { PourDetail, ShownHoldPoint } from '#shared/pour/contract.ts';
+import type { HoldPointKind } from '#shared/pour/pour-life.ts';
 import { CallForm } from '#src/features/pour/call-form.tsx';
+import { ConcreteForm } from '#src/features/pour/concrete-form.tsx';
+import { ListForm } from '#src/features/pour/list-form.tsx';
 import { holdPointName, holdPointStateWords, pointInHand, pourWord } from '#src/features/pour/pour-words.ts';
 import { ReadinessList } from '#src/features/pour/readiness-list.tsx';
-import { SignForm } from '#src/features/pour/sign-form.tsx';
+import { WitnessPoints } from '#src/features/pour/witness-points.tsx';
 import { ShownPourView } from '#src/features/record/shown-pour.tsx';
+import { useAddressState } from '#src/lib/address-state.ts';
 import { api } from '#src/lib/api.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
 import { counted, moment } from '#src/lib/format.ts';
 import { useNow } from '#src/lib/now.ts';
-import { useAddressId, useSite } from '#src/lib/session.ts';
+import { useAddressId, useMay, useSite } from '#src/lib/session.ts';
 import { Button } from '#src/ui/button.tsx';
 import { Dialog } from '#src/ui/dialog.tsx';
 import { Headline } from '#src/ui/headline.tsx';
@@ -20,6 +24,10 @@ import { Strip } from '#src/ui/strip.tsx';
 import { HoldNotice } from './hold-notice.tsx';
 import { PointCard } from './point-card.tsx';
 import { pourActs } from './pour-acts.ts';
+import { SignDialogBody } from './sign-dialog.tsx';
+import { WithdrawDialogBody } from './withdraw-dialog.tsx';
+
+type Opened = { kind: 'call' | 'sign' | 'begin' | 'end' } | { kind: 'list' | 'withdraw'; point: HoldPointKind };
 
 /** One pour: may it be poured, why or why not, what is signed, and the one thing to do. */
 export default function PourPage() {
@@ -30,14 +38,22 @@ export default function PourPage() {
 	const { data: pour } = useSuspenseQuery(api.pour.get.queryOptions({ input: { siteId, pourId } }));
 	const point = pointInHand(pour);
 	const { data: shown } = useSuspenseQuery(api.pour.shown.queryOptions({ input: { siteId, pourId, point } }));
-	const [open, setOpen] = useState<'call' | 'sign' | null>(null);
+	const navigate = useNavigate();
+	// "Next: pour 8" after a signature leads here with the place to sign open.
+	const [signNow, setSignNow] = useAddressState('sign');
+	const [opened, setOpened] = useState<Opened | null>(null);
 	const queries = useQueryClient();
 	const refresh = () => queries.invalidateQueries({ queryKey: api.pour.key() });
 	const submit = useMutation(api.pour.submit.mutationOptions({ onSettled: refresh }));
-	const begin = useMutation(api.pour.beginConcreting.mutationOptions({ onSettled: refresh }));
-	const end = useMutation(api.pour.endConcreting.mutationOptions({ onSettled: refresh }));
 	const acts = pourActs({ site, pour, shown, point });
-	const fault = submit.error ?? begin.error ?? end.error;
+	const open: Opened | null = opened ?? (signNow !== null && acts.sign === null ? { kind: 'sign' } : null);
+	const close = () => {
+		setOpened(null);
+		setSignNow(null);
+	};
+	const mayGiveNotice = useMay('pour.call') && pour.state === 'planned';
+	const maySayWitness = useMay('pour.witness');
+	const fault = submit.error;
 	const at = (iso: string) => moment(new Date(iso), timeZone, now);
 	return (
 		<>
@@ -58,7 +74,7 @@ export default function PourPage() {
 				acts={
 					<>
 						{acts.call !== undefined && (
-							<Button weight="act" whyNot={acts.call} onClick={() => setOpen('call')}>
+							<Button weight="act" whyNot={acts.call} onClick={() => setOpened({ kind: 'call' })}>
 								Call the hold point
 							</Button>
 						)}
@@ -68,18 +84,18 @@ export default function PourPage() {
 							</Button>
 						)}
 						{acts.sign !== undefined && (
-							<Button weight="act" whyNot={acts.sign} onClick={() => setOpen('sign')}>
+							<Button weight="act" whyNot={acts.sign} onClick={() => setOpened({ kind: 'sign' })}>
 								Decide and sign
 							</Button>
 						)}
 						{acts.begin !== undefined && (
-							<Button whyNot={acts.begin} isBusy={begin.isPending} onClick={() => begin.mutate({ siteId, pourId, at: new Date() })}>
+							<Button whyNot={acts.begin} onClick={() => setOpened({ kind: 'begin' })}>
 								Concrete begins
 							</Button>
 						)}
 						{acts.end !== undefined && (
-							<Button weight="act" isBusy={end.isPending} onClick={() => end.mutate({ siteId, pourId, at: new Date(), notCast: [] })}>
-								Cast, all of it
+							<Button weight="act" onClick={() => setOpened({ kind: 'end' })}>
+								Cast
 							</Button>
 						)}
 					</>
@@ -107,9 +123,18 @@ export default function PourPage() {
 				</section>
 				<div className="grid gap-4 tablet:grid-cols-2">
 					{(['before-pour', 'after-pour'] as const).map((kind) => (
-						<PointCard key={kind} siteId={siteId} pour={pour} point={pour.points[kind]} />
+						<PointCard
+							key={kind}
+							siteId={siteId}
+							pour={pour}
+							point={pour.points[kind]}
+							withdraw={acts.withdraw[kind]}
+							onSetList={() => setOpened({ kind: 'list', point: kind })}
+							onWithdraw={() => setOpened({ kind: 'withdraw', point: kind })}
+						/>
 					))}
 				</div>
+				<WitnessPoints siteId={siteId} pour={pour} mayGiveNotice={mayGiveNotice} maySay={maySayWitness} timeZone={timeZone} now={now} />
 				<section className="sheet px-5 py-5" aria-labelledby="shown">
 					<h2 id="shown" className="m-0 mb-3 text-h2 font-strong">
 						What is signed
@@ -117,14 +142,40 @@ export default function PourPage() {
 					<ShownPourView shown={shown.shown} at={at} />
 				</section>
 			</div>
-			{open === 'call' && (
-				<Dialog isOpen onClose={() => setOpen(null)} title={`Call pour ${pour.number}`}>
-					<CallForm siteId={siteId} pourId={pourId} point={pour.points[point]} onCalled={() => setOpen(null)} />
-				</Dialog>
-			)}
-			{open === 'sign' && (
-				<Dialog isOpen onClose={() => setOpen(null)} title={`Pour ${pour.number}, ${pour.name}: what you sign`}>
-					<SignDialogBody pour={pour} shown={shown} point={pour.points[point]} siteId={siteId} at={at} onSigned={() => setOpen(null)} />
+			{open !== null && (
+				<Dialog isOpen onClose={close} title={dialogTitle(open, pour)}>
+					{open.kind === 'call' && (
+						<CallForm siteId={siteId} pourId={pourId} point={pour.points[point]} timeZone={timeZone} now={now} onCalled={close} />
+					)}
+					{open.kind === 'list' && <ListForm siteId={siteId} pourId={pourId} point={pour.points[open.point]} onSet={close} />}
+					{(open.kind === 'begin' || open.kind === 'end') && (
+						<ConcreteForm
+							siteId={siteId}
+							pourId={pourId}
+							act={open.kind}
+							elements={shown.shown.elements}
+							timeZone={timeZone}
+							now={now}
+							onDone={(restPourId) => {
+								close();
+								if (restPourId !== null) navigate(`/sites/${siteId}/pours/${restPourId}`);
+							}}
+						/>
+					)}
+					{open.kind === 'sign' && (
+						<SignDialogBody
+							pour={pour}
+							shown={shown}
+							point={pour.points[point]}
+							siteId={siteId}
+							at={at}
+							timeZone={timeZone}
+							onClose={close}
+						/>
+					)}
+					{open.kind === 'withdraw' && (
+						<WithdrawDialogBody siteId={siteId} pourId={pourId} point={open.point} timeZone={timeZone} onWithdrawn={close} />
+					)}
 				</Dialog>
 			)}
 		</>
@@ -139,30 +190,20 @@ function headline(pour: PourDetail, { shown }: ShownHoldPoint): string {
 	return shown.isReady ? `${name} is ready, ${state}` : `${name} is not ready`;
 }
 
-interface SignDialogBodyProps {
-	siteId: string;
-	pour: PourDetail;
-	point: HoldPointDetail;
-	shown: ShownHoldPoint;
-	at: (iso: string) => string;
-	onSigned: () => void;
-}
-
-/** What is signed, whole, above the place where one signs. The hash is that of what stood here when the dialog was opened. */
-function SignDialogBody({ siteId, pour, point, shown, at, onSigned }: SignDialogBodyProps) {
-	const [kept] = useState(shown);
-	return (
-		<div className="flex flex-col gap-5">
-			<ShownPourView shown={kept.shown} at={at} />
-			<SignForm
-				siteId={siteId}
-				pourId={pour.pourId}
-				point={point.kind}
-				shownSha256={kept.shownSha256}
-				isReady={kept.shown.isReady}
-				statement={`Pour ${pour.number}, ${pour.name}, is released ${point.kind === 'before-pour' ? 'for concrete' : 'as cast'} as shown.`}
-				onSigned={onSigned}
-			/>
-		</div>
-	);
+function dialogTitle(open: Opened, pour: PourDetail): string {
+	const name = `pour ${pour.number}, ${pour.name}`;
+	switch (open.kind) {
+		case 'call':
+			return `Call ${name}`;
+		case 'list':
+			return `${holdPointName(open.point)}: the list of ${name}`;
+		case 'begin':
+			return `Concrete begins: ${name}`;
+		case 'end':
+			return `Concrete ends: ${name}`;
+		case 'sign':
+			return `Pour ${pour.number}, ${pour.name}: what you sign`;
+		case 'withdraw':
+			return `Withdraw the release of ${name}`;
+	}
 }

@@ -81,6 +81,7 @@ export default function PoursPage() {
 						modelId={model.modelId}
 						revisionId={revision.revisionId}
 						companies={site.companies}
+						timeZone={site.timeZone}
 						onAdded={() => setIsAdding(false)}
 					/>
 				</Dialog>
@@ -94,13 +95,14 @@ interface AddPourProps {
 	modelId: string;
 	revisionId: string;
 	companies: readonly { companyId: string; name: string }[];
+	timeZone: string;
 	onAdded: () => void;
 }
 
-function AddPour({ siteId, modelId, revisionId, companies, onAdded }: AddPourProps) {
+function AddPour({ siteId, modelId, revisionId, companies, timeZone, onAdded }: AddPourProps) {
 	const [{ data: elements }] = useSuspenseQueries({ queries: [api.model.elements.queryOptions({ input: { siteId, revisionId } })] });
 	const kinds = useMemo(() => kindsOf(elements), [elements]);
-	return <PourForm siteId={siteId} companies={companies} modelId={modelId} kinds={kinds} onAdded={onAdded} />;
+	return <PourForm siteId={siteId} companies={companies} modelId={modelId} kinds={kinds} timeZone={timeZone} onAdded={onAdded} />;
 }
 
 function kindsOf(elements: readonly StoredElement[]) {
