@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { base, plainText, siteInput } from '../base-contract.ts';
-import { sha256Text, shownPour } from '../record/sealed-record.ts';
+import { recordedCheckpoint, sha256Text, shownPour } from '../record/sealed-record.ts';
+import { stationStates } from './board-row.ts';
 import { holdPointKinds, holdPointStates, pourStates } from './pour-life.ts';
 
 export const holdPointKind = z.enum(holdPointKinds);
@@ -20,6 +21,27 @@ export const pourSummary = z.object({
 });
 export interface PourSummary extends z.infer<typeof pourSummary> {}
 const summaryAnswer: z.ZodType<PourSummary> = pourSummary;
+
+/** A pour as it stands on the board. */
+export const pourBoardRow = pourSummary.extend({
+	/** Surveyed, checked, flags, released: before the concrete, then after it. */
+	stations: z.array(z.enum(stationStates)).length(8),
+	/** The first station that is not in order; null: all are. */
+	at: z.number().int().nullable(),
+	isTaut: z.boolean(),
+	/** Why, a sentence without full stop, and the hour that ends it. */
+	words: z.string(),
+	moment: z.object({ word: z.enum(['since', 'by', '']), at: z.date() }).nullable(),
+	worst: recordedCheckpoint.nullable(),
+	castAt: z.date().nullable(),
+	hold: z.object({ reasons: z.array(z.string()), raisedAt: z.date(), seenByYouAt: z.date().nullable() }).nullable(),
+	/** Of the release in hand, not met yet. */
+	conditions: z.array(z.object({ text: z.string(), owner: z.string(), dueAt: z.date().nullable() })),
+	signedBy: z.string().nullable(),
+	signedAt: z.date().nullable(),
+});
+export interface PourBoardRow extends z.infer<typeof pourBoardRow> {}
+const boardAnswer: z.ZodType<PourBoardRow> = pourBoardRow;
 
 export const pourForm = z.strictObject({
 	number: plainText(12),
@@ -122,6 +144,8 @@ export const conditionForm = z.strictObject({
 export const pourContract = {
 	/** By planned hour. A contractor sees those of its company. */
 	list: base.meta({ permission: 'pour.see' }).input(siteInput).output(z.array(summaryAnswer)),
+	/** The same pours with where each stands: every figure of all of them is read. */
+	board: base.meta({ permission: 'pour.see' }).input(siteInput).output(z.array(boardAnswer)),
 	add: base
 		.meta({ permission: 'pour.write' })
 		.input(siteInput.extend({ pour: pourForm }))

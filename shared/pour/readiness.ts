@@ -44,6 +44,8 @@ export interface ReadinessFacts {
 
 /** `isGood`: it does not stand in the way. */
 export interface ReadinessSentence {
+	/** What it counts; null: it is of the pour as a whole. */
+	readonly kind: ReadinessKind | null;
 	readonly text: string;
 	readonly isGood: boolean;
 }
@@ -51,6 +53,12 @@ export interface ReadinessSentence {
 export interface Readiness {
 	readonly isReady: boolean;
 	readonly sentences: readonly ReadinessSentence[];
+	/** How many points are of each kind. */
+	readonly counts: Readonly<Partial<Record<ReadinessKind, number>>>;
+	/** Points that this hold point asks for: neither left out nor the concrete's own. */
+	readonly askedCount: number;
+	/** Elements that the newest revision does not have. */
+	readonly goneCount: number;
 }
 
 /** What one checkpoint comes to: `good` kinds let the pour go, the others stand in the way. */
@@ -92,7 +100,7 @@ const kinds = {
 		say: (n: string, marks: string) => `${n} not asked for here: the concrete's own tops are measured after it (${marks}).`,
 	},
 } as const;
-type Kind = keyof typeof kinds;
+export type ReadinessKind = keyof typeof kinds;
 
 /**
  * Why a pour is ready or not, sentence by sentence: every required and sampled checkpoint is within, or its flag is closed; what is not
@@ -101,35 +109,39 @@ type Kind = keyof typeof kinds;
  */
 export function readinessOf(facts: ReadinessFacts): Readiness {
 	const flagsOf = flagsByPlace(facts.flags);
-	const byKind = new Map<Kind, PourCheckpoint[]>();
+	const byKind = new Map<ReadinessKind, PourCheckpoint[]>();
 	for (const checkpoint of facts.checkpoints) {
 		const kind = kindOf(checkpoint, flagsOf.get(placeKey(checkpoint, checkpoint.characteristic)) ?? [], facts.isFitCheckedBySecond);
 		const found = byKind.get(kind);
 		if (found === undefined) byKind.set(kind, [checkpoint]);
 		else found.push(checkpoint);
 	}
-	const sentences = (Object.keys(kinds) as Kind[]).flatMap((kind): ReadinessSentence[] => {
+	const sentences = (Object.keys(kinds) as ReadinessKind[]).flatMap((kind): ReadinessSentence[] => {
 		const found = byKind.get(kind);
 		if (found === undefined) return [];
 		const marks = nameList([...new Set(found.map(({ mark }) => mark))]);
-		return [{ text: kinds[kind].say(counted(found.length, 'point'), marks), isGood: kinds[kind].isGood }];
+		return [{ kind, text: kinds[kind].say(counted(found.length, 'point'), marks), isGood: kinds[kind].isGood }];
 	});
 	if (facts.goneMarks.length > 0)
 		sentences.unshift({
+			kind: null,
 			text: `${counted(facts.goneMarks.length, 'element')} no longer in the newest revision (${nameList(facts.goneMarks)}).`,
 			isGood: false,
 		});
 	const asked = facts.checkpoints.filter(({ isAfterConcrete }) => !isAfterConcrete);
 	if (facts.checkpoints.length === 0)
-		sentences.unshift({ text: 'There is no point to measure on the elements of this pour.', isGood: false });
+		sentences.unshift({ kind: null, text: 'There is no point to measure on the elements of this pour.', isGood: false });
 	else if (asked.length === 0)
 		sentences.unshift({
+			kind: null,
 			text: 'Nothing of it can be measured before the concrete: this hold point rests on its list alone.',
 			isGood: true,
 		});
 	else if (asked.every(({ requirement }) => requirement === 'left-out'))
-		sentences.unshift({ text: 'Every point is left out, so nothing is known of this pour.', isGood: false });
-	return { isReady: sentences.every(({ isGood }) => isGood), sentences };
+		sentences.unshift({ kind: null, text: 'Every point is left out, so nothing is known of this pour.', isGood: false });
+	const counts = Object.fromEntries([...byKind].map(([kind, { length }]) => [kind, length]));
+	const askedCount = asked.filter(({ requirement }) => requirement !== 'left-out').length;
+	return { isReady: sentences.every(({ isGood }) => isGood), sentences, counts, askedCount, goneCount: facts.goneMarks.length };
 }
 
 function placeKey({ modelId, globalId }: { modelId: string; globalId: string }, kind: Characteristic): string {
@@ -148,7 +160,7 @@ function flagsByPlace(flags: readonly PourFlag[]): Map<string, PourFlag[]> {
 }
 
 /** `own`: the flags of the checkpoint's element and kind. */
-function kindOf(checkpoint: PourCheckpoint, own: readonly PourFlag[], isFitCheckedBySecond: boolean): Kind {
+function kindOf(checkpoint: PourCheckpoint, own: readonly PourFlag[], isFitCheckedBySecond: boolean): ReadinessKind {
 	const { requirement, standing } = checkpoint;
 	if (checkpoint.isAfterConcrete) return 'after-concrete';
 	if (requirement === 'left-out') return 'left-out';

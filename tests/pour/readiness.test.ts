@@ -40,7 +40,7 @@ const flag = (state: 'open' | 'closed', kind: 'face' | 'plan' = 'face') => ({ mo
 
 describe('a pour is ready', () => {
 	it('where every asked point is within, sampled ones too, on checked and adopted fits', () => {
-		expect(readinessOf(facts([point(), point({ requirement: 'by-sample' })]))).toEqual({
+		expect(readinessOf(facts([point(), point({ requirement: 'by-sample' })]))).toMatchObject({
 			isReady: true,
 			sentences: [{ text: '2 points within, on adopted fits.', isGood: true }],
 		});
@@ -93,7 +93,7 @@ describe('a pour is ready', () => {
 
 	it('without what the concrete itself makes, and says so', () => {
 		const top = point({ isAfterConcrete: true, standing: null });
-		expect(readinessOf(facts([point(), top])).sentences).toEqual([
+		expect(readinessOf(facts([point(), top])).sentences).toMatchObject([
 			{ text: '1 point within, on adopted fits.', isGood: true },
 			{ text: "1 point not asked for here: the concrete's own tops are measured after it (C/3).", isGood: true },
 		]);

@@ -138,6 +138,7 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'record.get': all,
 	'record.chain': [siteEngineer, projectEngineer, ownersRepresentative, observer],
 	'pour.list': all,
+	'pour.board': all,
 	'pour.add': [projectEngineer],
 	'pour.get': all,
 	'pour.shown': all,

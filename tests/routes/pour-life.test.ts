@@ -101,6 +101,8 @@ describe('a pour', { timeout: 180_000 }, () => {
 		expect(shown.isReady).toBe(true);
 		expect(shown.checkpoints.length).toBeGreaterThan(0);
 		expect(whyNotSign).toBeNull();
+		const onBoard = async () => (await contractor.api.pour.board({ siteId })).find((row) => row.pourId === pourId);
+		expect(await onBoard()).toMatchObject({ at: 3, isTaut: true, words: `Ready; waits for ${owner.name}`, hold: null });
 		await expect(contractor.api.pour.beginConcreting({ siteId, pourId, at: new Date() })).rejects.toMatchObject({
 			message: expect.stringContaining('Do not pour'),
 		});
@@ -119,6 +121,7 @@ describe('a pour', { timeout: 180_000 }, () => {
 			isHeld: false,
 			points: { 'before-pour': { recordId: signed.recordId, signedBy: owner.name } },
 		});
+		expect(await onBoard()).toMatchObject({ at: 4, signedBy: owner.name, conditions: [{ text: 'Bolt caps on' }] });
 		const [met] = detail.points['before-pour'].conditions;
 		await contractor.api.pour.meetCondition({ siteId, pourId, conditionId: met!.conditionId, words: 'Photo 3' });
 		await expect(engineer.api.pour.meetCondition({ siteId, pourId, conditionId: met!.conditionId, words: 'again' })).rejects.toMatchObject({

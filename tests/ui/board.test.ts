@@ -5,7 +5,7 @@ import type { Line } from '#shared/site/contract.ts';
 import { type NextFacts, nextActs } from '#shared/site/next-acts.ts';
 import type { SurveySummary } from '#shared/survey/contract.ts';
 import { knotsOf } from '#src/features/site/site-line.tsx';
-import { homeless, pourStanding } from '#src/pages/board/pour-standing.ts';
+import { homeless } from '#src/pages/board/homeless.ts';
 import { knotXs, stringPath } from '#src/ui/line-geometry.ts';
 
 const states = (over: Partial<Record<Line['knots'][number]['knot'], 'solid' | 'half' | 'open'>> = {}): Line => ({
@@ -149,44 +149,8 @@ const aCheck = (deviations: Deviation[], over: Partial<CheckHead> = {}): CheckDe
 	],
 	deviations,
 });
-const notSeen = aDeviation({ deviationMm: null, measured: null, verdict: 'not-measured' });
 
-describe('where a pour stands', () => {
-	it('hangs at the first station that is not in order', () => {
-		expect(pourStanding('p7', null, true)).toMatchObject({ at: 0, words: 'No survey yet' });
-		expect(pourStanding('p8', aCheck([aDeviation({})]), true)).toMatchObject({ at: 0, words: 'Not in check 3' });
-		const all = pourStanding('p7', aCheck([aDeviation({}), aDeviation({ deviationMm: 16, verdict: 'outside', beyondMm: 6 })]), true);
-		expect(all).toMatchObject({ at: 2, words: '1 element off' });
-		expect(all.stations.slice(0, 4)).toEqual(['solid', 'solid', 'open', 'open']);
-		const some = pourStanding('p7', aCheck([aDeviation({}), notSeen]), true);
-		expect(some).toMatchObject({ at: 0, words: '1 not seen' });
-		expect(some.stations[0]).toBe('half');
-		expect(pourStanding('p7', aCheck([aDeviation({ verdict: 'too-close-to-call', deviationMm: 9 })]), true)).toMatchObject({
-			at: 1,
-			words: '1 point too close',
-		});
-	});
-
-	it('counts a check of what was cast on the span after the concrete', () => {
-		const after = pourStanding('p7', aCheck([aDeviation({})], { stage: 'as-cast' }), true);
-		expect(after.stations).toEqual(['open', 'open', 'open', 'open', 'solid', 'solid', 'open', 'open']);
-		expect(after).toMatchObject({ at: 6, words: 'As cast: all 1 point within' });
-	});
-
-	it('shows as worst what is furthest against its own limits, not what is largest', () => {
-		const wide = aDeviation({ checkpointId: 'wide', deviationMm: 18, limitsMm: [-30, 30] });
-		const narrow = aDeviation({ checkpointId: 'narrow', deviationMm: -6, limitsMm: [-5, 5], verdict: 'outside', beyondMm: 1 });
-		expect(pourStanding('p7', aCheck([wide, narrow]), true).worst?.checkpointId).toBe('narrow');
-		expect(pourStanding('p7', aCheck([notSeen]), true).worst).toBeNull();
-	});
-
-	it('is slack, and says so, where the check is no longer on the newest', () => {
-		expect(pourStanding('p7', aCheck([aDeviation({})]), false)).toMatchObject({
-			isTaut: false,
-			words: 'Check 3 no longer stands on the newest: check again',
-		});
-	});
-
+describe('rows without a home', () => {
 	it('names what belongs to no row', () => {
 		expect(homeless(aCheck([aDeviation({ verdict: 'no-tolerance', limitsMm: null })]))).toEqual([
 			{ words: 'In no pour', why: '1 element' },

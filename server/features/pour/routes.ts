@@ -1,6 +1,7 @@
 import { whyNotSigner } from '#shared/pour/pour-life.ts';
 import { siteRoutes } from '../../platform/guard.ts';
 import { addPour } from './add-pour.ts';
+import { poursBoard } from './board.ts';
 import { beginConcreting, endConcreting, giveNotice, meetCondition, sayWitness, seeHold } from './concrete.ts';
 import { askMore, callPoint, setList, submitPoint } from './hold-point-acts.ts';
 import { holdTouched, touchesOf } from './hold-touched.ts';
@@ -14,6 +15,10 @@ export const pourRoutes = {
 		await holdTouched(platform, member.siteId);
 		return poursOf(platform.db, member);
 	}),
+	board: siteRoutes.pour.board.handler(async ({ context: { platform, member } }) => {
+		await holdTouched(platform, member.siteId);
+		return poursBoard(platform, member);
+	}),
 	add: siteRoutes.pour.add.handler(({ input, context: { platform, member } }) => addPour(platform, member, input.pour)),
 	get: siteRoutes.pour.get.handler(async ({ input, context: { platform, member } }) => {
 		await holdTouched(platform, member.siteId);
@@ -25,7 +30,7 @@ export const pourRoutes = {
 		return {
 			shown,
 			shownSha256: hashOf(shownText(shown)),
-			readiness: [...readiness.sentences],
+			readiness: readiness.sentences.map(({ text, isGood }) => ({ text, isGood })),
 			touches: await touchesOf(platform.db, member.siteId, { recordId: points[point].recordId, present: shown }),
 			whyNotSign: member.roles.includes('owners-representative') ? whyNotSigner(member.userId, preparedBy) : null,
 		};

@@ -43,7 +43,7 @@ export function CallForm({ siteId, pourId, point, timeZone, now, onCalled }: Cal
 				onCalled();
 			}}
 		>
-			<TextField name="readyFrom" type="datetime-local" label="Ready from" hint="By the site’s clock" isMono />
+			<TextField name="readyFrom" type="datetime-local" label="Ready as of" hint="By the site’s clock" isMono />
 			{point.list.length === 0 && <p className="m-0 text-second">The hold-point list has no questions.</p>}
 			{point.list.map(({ question }, index) => (
 				<TextField key={question} name={`answers.${index}.answer`} label={question} />

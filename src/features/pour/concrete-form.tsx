@@ -59,7 +59,7 @@ export function ConcreteForm({ siteId, pourId, act, elements, timeZone, now, onD
 			<TextField
 				name="at"
 				type="datetime-local"
-				label={act === 'begin' ? 'Concrete from' : 'Concrete until'}
+				label={act === 'begin' ? 'Concrete begins' : 'Concrete ends'}
 				hint="By the site’s clock"
 				isMono
 			/>

@@ -36,3 +36,10 @@ export function pourWord({ state, before, isHeld }: Pick<PourSummary, 'state' | 
 	if (before === 'released-with-conditions') return 'Released with conditions';
 	return 'Not released';
 }
+
+/** The contractor's one word: may we pour? */
+export function pourAnswer(pour: Pick<PourSummary, 'state' | 'before' | 'isHeld'>): 'Not released' | 'Released' | 'Hold' | 'Cast' {
+	if (pour.isHeld) return 'Hold';
+	if (pour.state === 'cast' || pour.state === 'cast-in-part') return 'Cast';
+	return pour.before === 'released' || pour.before === 'released-with-conditions' ? 'Released' : 'Not released';
+}

@@ -6,14 +6,17 @@ import { NextForYou } from '#src/features/site/next-for-you.tsx';
 import { PlacesList } from '#src/features/site/places-list.tsx';
 import { WaitingOnOthers } from '#src/features/site/waiting-on-others.tsx';
 import { api } from '#src/lib/api.ts';
+import { refusalOf } from '#src/lib/api-error.ts';
 import { useNow } from '#src/lib/now.ts';
 import { useMay, useSite } from '#src/lib/session.ts';
-import { ButtonLink } from '#src/ui/button.tsx';
+import { Button, ButtonLink } from '#src/ui/button.tsx';
 import { Headline } from '#src/ui/headline.tsx';
-import { Notice } from '#src/ui/notice.tsx';
+import { LoadingLines, Notice } from '#src/ui/notice.tsx';
+import { useIsBelow } from '#src/ui/screen-width.ts';
 import { Strip } from '#src/ui/strip.tsx';
+import { homeless } from './homeless.ts';
+import { MayWePour } from './may-we-pour.tsx';
 import { PourRows } from './pour-rows.tsx';
-import { homeless } from './pour-standing.ts';
 
 /** The site's first page: what waits for one, then the pours by the hour of their concrete. */
 export default function BoardPage() {
@@ -29,6 +32,26 @@ export default function BoardPage() {
 	const detail = useQuery(api.check.get.queryOptions({ input: { siteId, checkId: judged?.checkId ?? '' }, enabled: judged !== undefined }));
 	const check = judged === undefined || detail.isError ? null : detail.data;
 
+	// Where each pour stands takes all its figures: their heads stand before.
+	const board = useQuery(api.pour.board.queryOptions({ input }));
+	const isPhone = useIsBelow('tablet');
+	const isContractor = site.roles.every((role) => role === 'contractor');
+
+	const rows = board.isPending ? (
+		<LoadingLines what="The pours" />
+	) : board.isError ? (
+		<Notice kind="wrong" title={refusalOf(board.error).message} act={<Button onClick={() => board.refetch()}>Try again</Button>}>
+			Where the pours stand could not be read. Nothing was changed.
+		</Notice>
+	) : null;
+	if (isPhone && isContractor)
+		return (
+			<div className="pt-2">
+				{rows ?? <MayWePour siteId={siteId} rows={board.data ?? []} now={now} />}
+				<PlacesList siteId={siteId} line={line} />
+				<BesideTheLine siteId={siteId} />
+			</div>
+		);
 	return (
 		<div className="pt-2">
 			{site.isInvented && (
@@ -48,7 +71,7 @@ export default function BoardPage() {
 				{pours.length === 0 ? (
 					<NoPours siteId={siteId} />
 				) : (
-					<PourRows pours={pours} check={check} isCheckTaut={line.isTaut} timeZone={timeZone} now={now} />
+					(rows ?? <PourRows siteId={siteId} rows={board.data ?? []} timeZone={timeZone} now={now} />)
 				)}
 				{check && <Homeless siteId={siteId} check={check} />}
 			</section>

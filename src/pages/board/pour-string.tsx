@@ -1,5 +1,11 @@
+import type { PourBoardRow } from '#shared/pour/contract.ts';
 import { Knot, Plumb } from '#src/ui/line.tsx';
-import { nextWords, type PourStanding, stationWords } from './pour-standing.ts';
+
+/** The stations of a pour's string: four before the concrete, four after it. */
+const stationWords = ['surveyed', 'checked', 'flags', 'released'] as const;
+
+/** What is to come at each station. */
+export const nextWords = ['to be surveyed', 'to be checked', 'flags to be settled', 'to be released'] as const;
 
 const stateWords = { solid: 'in order', half: 'in hand', open: 'nothing yet' } as const;
 const stringY = 20;
@@ -11,62 +17,51 @@ export function stationXs(widthPx: number): number[] {
 }
 
 interface PourStringProps {
-	/** Null: not known yet; only the string's bed is drawn. */
-	standing: PourStanding | null;
+	standing: Pick<PourBoardRow, 'stations' | 'at' | 'isTaut'>;
+	/** The concrete is in: its form is filled. */
+	isCast: boolean;
 	widthPx: number;
 }
 
 /** A pour's own string in two spans, before and after its concrete, with the plumb at what comes next. */
-export function PourString({ standing, widthPx }: PourStringProps) {
+export function PourString({ standing, isCast, widthPx }: PourStringProps) {
 	const xs = stationXs(widthPx);
 	const stationX = (index: number) => xs[index < 4 ? index : index + 1] ?? 0;
 	const concreteX = xs[4] ?? 0;
 	// On a phone the stations stand close: the concrete must not touch them.
 	const concretePx = Math.min(34, (xs[1] ?? 0) - (xs[0] ?? 0));
 	const from = Math.max(0, (xs[0] ?? 0) - 14);
-	const toX = standing === null ? 0 : stationX(standing.at);
-	// The string is drawn where the check tells of it: one made after the concrete says nothing of what was before.
-	const stringX = standing !== null && standing.at >= 4 ? concreteX + concretePx / 2 : from;
-	const path =
-		standing?.isTaut === false
-			? `M${stringX} ${stringY}Q${(stringX + toX) / 2} ${stringY + Math.min(14, (toX - stringX) / 6)} ${toX} ${stringY}`
-			: `M${stringX} ${stringY}H${toX}`;
-	const dash = standing?.isTaut === false ? '9 6' : undefined;
+	// In order to its end: the string is drawn through, and no plumb hangs.
+	const toX = standing.at === null ? widthPx - from : stationX(standing.at);
+	const path = !standing.isTaut
+		? `M${from} ${stringY}Q${(from + toX) / 2} ${stringY + Math.min(14, (toX - from) / 6)} ${toX} ${stringY}`
+		: `M${from} ${stringY}H${toX}`;
+	const dash = !standing.isTaut ? '9 6' : undefined;
 	return (
-		<svg
-			width={widthPx}
-			height={56}
-			viewBox={`0 0 ${widthPx} 56`}
-			role="img"
-			aria-label={standing === null ? 'Loading' : stringWords(standing)}
-			className="block shrink-0"
-		>
+		<svg width={widthPx} height={56} viewBox={`0 0 ${widthPx} 56`} role="img" aria-label={stringWords(standing)} className="block shrink-0">
 			<path d={`M${from} ${stringY}H${widthPx - from}`} className="stroke-rule" strokeWidth={1.5} />
-			{standing !== null && (
-				<>
-					<path d={path} className="string-edge" strokeDasharray={dash} />
-					<path d={path} className="string-core" strokeDasharray={dash} />
-				</>
-			)}
+			<path d={path} className="string-edge" strokeDasharray={dash} />
+			<path d={path} className="string-core" strokeDasharray={dash} />
 			<rect
 				x={concreteX - concretePx / 2}
 				y={stringY - 9}
 				width={concretePx}
 				height={18}
-				className="fill-ground stroke-ink"
+				className={isCast ? 'fill-second stroke-ink' : 'fill-ground stroke-ink'}
 				strokeWidth={1.5}
 			/>
-			{standing?.stations.map((state, index) => (
+			{standing.stations.map((state, index) => (
 				<Knot key={stationX(index)} state={state} x={stationX(index)} y={stringY} radius={6} />
 			))}
-			{standing !== null && <Plumb x={toX} y={stringY + 7} lengthPx={15} />}
+			{standing.at !== null && <Plumb x={toX} y={stringY + 7} lengthPx={15} />}
 		</svg>
 	);
 }
 
-function stringWords({ stations, at }: PourStanding): string {
+function stringWords({ stations, at }: PourStringProps['standing']): string {
 	const said = (from: number) => stationWords.map((word, index) => `${word} ${stateWords[stations[from + index] ?? 'open']}`).join(', ');
-	return `Next: ${nextWords[at % 4]}${at < 4 ? ' before' : ' after'} the concrete. Before: ${said(0)}. After: ${said(4)}.`;
+	const next = at === null ? 'All in order' : `Next: ${nextWords[at % 4]}${at < 4 ? ' before' : ' after'} the concrete`;
+	return `${next}. Before: ${said(0)}. After: ${said(4)}.`;
 }
 
 /** The stations' words above the rows. */
