@@ -7,6 +7,7 @@ const nothing: LineFacts = {
 	surveyCount: 0,
 	isNewestSurveyFitted: false,
 	newestCheck: null,
+	recordCount: 0,
 	flags: { open: 0, closed: 0 },
 	pours: [],
 };
@@ -55,6 +56,7 @@ describe('the line', () => {
 
 	it('says what the newest check found, no counts where they are not all this person’s to see', () => {
 		expect(knot({ newestCheck: check }, 'check')).toBe('half 4 outside');
+		expect(knot({ recordCount: 8 }, 'records')).toBe('solid 8');
 		expect(knot({ newestCheck: { ...check, state: 'published' } }, 'check')).toBe('solid 4 outside');
 		expect(knot({ newestCheck: { ...check, summary: { ...summary, outside: 0 } } }, 'check')).toBe('half 61 within');
 		expect(knot({ newestCheck: { ...check, state: 'computing', summary: null } }, 'check')).toBe('half computing');

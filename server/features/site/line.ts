@@ -21,6 +21,8 @@ export interface LineFacts {
 	} | null;
 	/** Those the member may see that have not lapsed: still to be settled, and closed. */
 	flags: { open: number; closed: number };
+	/** Of the site's whole chain: its length is no secret, it stands in every mail. */
+	recordCount: number;
 	/** Those the member may see. */
 	pours: { state: 'planned' | 'concreting' | 'cast' | 'cast-in-part'; plannedAt: Date | null }[];
 }
@@ -38,7 +40,7 @@ export function lineOf(facts: LineFacts, now: Date, timeZone: string): Line {
 			{ knot: 'check', ...checkKnot(newestCheck) },
 			{ knot: 'flags', ...flagKnot(facts.flags) },
 			{ knot: 'pours', ...pourKnot(facts.pours, now, timeZone) },
-			{ knot: 'records', state: 'open', figure: '' },
+			{ knot: 'records', ...recordKnot(facts.recordCount) },
 		],
 		newestCheckId: newestCheck?.checkId ?? null,
 		isTaut: newestCheck?.restsOnNewest ?? true,
@@ -82,6 +84,10 @@ function pourKnot(pours: LineFacts['pours'], now: Date, timeZone: string): Knot 
 		.flatMap(({ state, plannedAt }) => (state === 'planned' && plannedAt !== null && plannedAt >= now ? [plannedAt.getTime()] : []))
 		.sort((a, b) => a - b)[0];
 	return { state, figure: coming === undefined ? counted(pours.length, 'pour') : `next ${hourText(new Date(coming), now, timeZone)}` };
+}
+
+function recordKnot(count: number): Knot {
+	return count === 0 ? { state: 'open', figure: '' } : { state: 'solid', figure: String(count) };
 }
 
 const sixDaysMs = 6 * 24 * 3_600_000;

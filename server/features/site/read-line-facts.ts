@@ -8,6 +8,7 @@ import { fits } from '../../db/schema/fit.ts';
 import { flags } from '../../db/schema/flag.ts';
 import { models, revisions } from '../../db/schema/model.ts';
 import { pours } from '../../db/schema/pour.ts';
+import { sealedRecords } from '../../db/schema/record.ts';
 import { setups, surveys } from '../../db/schema/survey.ts';
 import { sheets } from '../../db/schema/tolerance.ts';
 import type { Member } from '../../platform/platform.ts';
@@ -23,6 +24,7 @@ export async function readLineFacts(db: Handle, member: Member): Promise<LineFac
 		...(await surveyFacts(db, siteId)),
 		newestCheck: await newestCheck(db, member, newestControlSetId),
 		flags: await flagsSeen(db, member),
+		recordCount: await recordCount(db, siteId),
 		pours: await poursSeen(db, member),
 	};
 }
@@ -101,6 +103,11 @@ async function newestReadyNumber(db: Handle, modelId: string): Promise<number | 
 		.from(revisions)
 		.where(and(eq(revisions.modelId, modelId), eq(revisions.state, 'ready')));
 	return row?.number ?? null;
+}
+
+async function recordCount(db: Handle, siteId: string): Promise<number> {
+	const [row] = await db.select({ records: count() }).from(sealedRecords).where(eq(sealedRecords.siteId, siteId));
+	return row?.records ?? 0;
 }
 
 async function flagsSeen(db: Handle, member: Member): Promise<LineFacts['flags']> {

@@ -33,21 +33,21 @@ export default function BoardPage() {
 	const check = judged === undefined || detail.isError ? null : detail.data;
 
 	// Where each pour stands takes all its figures: their heads stand before.
-	const board = useQuery(api.pour.board.queryOptions({ input }));
+	const standing = useQuery(api.pour.board.queryOptions({ input }));
 	const isPhone = useIsBelow('tablet');
 	const isContractor = site.roles.every((role) => role === 'contractor');
 
-	const rows = board.isPending ? (
+	const rows = standing.isPending ? (
 		<LoadingLines what="The pours" />
-	) : board.isError ? (
-		<Notice kind="wrong" title={refusalOf(board.error).message} act={<Button onClick={() => board.refetch()}>Try again</Button>}>
+	) : standing.isError ? (
+		<Notice kind="wrong" title={refusalOf(standing.error).message} act={<Button onClick={() => standing.refetch()}>Try again</Button>}>
 			Where the pours stand could not be read. Nothing was changed.
 		</Notice>
 	) : null;
 	if (isPhone && isContractor)
 		return (
 			<div className="pt-2">
-				{rows ?? <MayWePour siteId={siteId} rows={board.data ?? []} now={now} />}
+				{rows ?? <MayWePour siteId={siteId} rows={standing.data ?? []} now={now} />}
 				<PlacesList siteId={siteId} line={line} />
 				<BesideTheLine siteId={siteId} />
 			</div>
@@ -71,7 +71,7 @@ export default function BoardPage() {
 				{pours.length === 0 ? (
 					<NoPours siteId={siteId} />
 				) : (
-					(rows ?? <PourRows siteId={siteId} rows={board.data ?? []} timeZone={timeZone} now={now} />)
+					(rows ?? <PourRows siteId={siteId} rows={standing.data ?? []} timeZone={timeZone} now={now} />)
 				)}
 				{check && <Homeless siteId={siteId} check={check} />}
 			</section>
