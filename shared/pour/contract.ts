@@ -129,6 +129,8 @@ export const shownHoldPoint = z.object({
 export interface ShownHoldPoint extends z.infer<typeof shownHoldPoint> {}
 const shownAnswer: z.ZodType<ShownHoldPoint> = shownHoldPoint;
 
+const elementRefs = z.array(z.strictObject({ modelId: z.uuid(), globalId: z.string().min(1).max(100) })).max(20_000);
+
 const pourInput = siteInput.extend({ pourId: z.uuid() });
 const pointInput = pourInput.extend({ point: holdPointKind });
 
@@ -150,6 +152,16 @@ export const pourContract = {
 		.meta({ permission: 'pour.write' })
 		.input(siteInput.extend({ pour: pourForm }))
 		.output(summaryAnswer),
+	/** Puts elements in and takes others out, until it is submitted. */
+	changeElements: base
+		.meta({ permission: 'pour.write' })
+		.input(pourInput.extend({ add: elementRefs, takeOut: elementRefs }))
+		.output(pourAnswer),
+	/** Whose these elements are, where not the pour's company's; null: the pour's own again. */
+	giveElements: base
+		.meta({ permission: 'pour.write' })
+		.input(pourInput.extend({ elements: elementRefs.min(1, 'Choose at least one element.'), companyId: z.uuid().nullable() }))
+		.output(pourAnswer),
 	get: base.meta({ permission: 'pour.see' }).input(pourInput).output(pourAnswer),
 	/** All that is signed at a hold point, as it stands now. */
 	shown: base.meta({ permission: 'pour.see' }).input(pointInput).output(shownAnswer),

@@ -74,6 +74,8 @@ export const auditKinds = [
 	'flag-points-brought',
 	'flag-points-stored',
 	'pour-added',
+	'pour-elements-changed',
+	'pour-elements-given',
 	'hold-point-list-set',
 	'hold-point-called',
 	'hold-point-submitted',

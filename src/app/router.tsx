@@ -96,6 +96,10 @@ export const routes: RouteObject[] = [
 							sitePage('shoot-list', 'flags', () => import('#src/pages/shoot-list/shoot-list-page.tsx'), { path: 'flags', word: 'Flags' }),
 							sitePage('pours', 'pours', () => import('#src/pages/pours/pours-page.tsx')),
 							sitePage('pours/:pourId', 'pours', () => import('#src/pages/pour/pour-page.tsx'), { path: 'pours', word: 'Pours' }),
+							sitePage('pours/:pourId/elements', 'pours', () => import('#src/pages/pour-elements/pour-elements-page.tsx'), {
+								path: 'pours/:pourId',
+								word: 'Pour',
+							}),
 							sitePage('records', 'records', () => import('#src/pages/records/records-page.tsx')),
 							sitePage('records/:recordId', 'records', () => import('#src/pages/record/record-page.tsx'), {
 								path: 'records',

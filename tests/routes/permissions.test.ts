@@ -140,6 +140,8 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'pour.list': all,
 	'pour.board': all,
 	'pour.add': [projectEngineer],
+	'pour.changeElements': [projectEngineer],
+	'pour.giveElements': [projectEngineer],
 	'pour.get': all,
 	'pour.shown': all,
 	'pour.setList': [projectEngineer],

@@ -45,6 +45,45 @@ describe('pours', () => {
 		expect((await engineer.api.pour.list({ siteId })).map(({ pourId }) => pourId)).toEqual([earlier.pourId, added.pourId, later.pourId]);
 	});
 
+	it('take elements in and out, and give some to another company, until they are submitted', async () => {
+		const { siteId, engineer, companyId, otherCompanyId, contractor } = site;
+		const elements = await engineer.api.model.elements({ siteId, revisionId });
+		const [column] = elements.filter((one) => one.class === 'IfcColumn');
+		const slab = elements.find((one) => one.class === 'IfcSlab')!;
+		const kinds = [{ storey: column!.storey, class: 'IfcColumn' }];
+		const pour = { number: '30', name: 'Columns', companyId, plannedAt: null, modelId, elements: kinds };
+		const { pourId, elementCount } = await engineer.api.pour.add({ siteId, pour });
+		const [first, other] = [
+			{ modelId, globalId: column!.globalId },
+			{ modelId, globalId: slab.globalId },
+		];
+		const changed = await engineer.api.pour.changeElements({ siteId, pourId, add: [other, other, first], takeOut: [] });
+		expect(changed.elementCount).toBe(elementCount + 1);
+		expect((await engineer.api.pour.changeElements({ siteId, pourId, add: [], takeOut: [first] })).elementCount).toBe(elementCount);
+		await engineer.api.pour.giveElements({ siteId, pourId, elements: [other], companyId: otherCompanyId });
+		const { shown } = await engineer.api.pour.shown({ siteId, pourId, point: 'before-pour' });
+		expect(shown.elements.find(({ globalId }) => globalId === slab.globalId)?.company).toBe('Steel Ltd');
+		const asks = [
+			engineer.api.pour.changeElements({ siteId, pourId, add: [{ modelId, globalId: 'nowhere' }], takeOut: [other] }),
+			engineer.api.pour.giveElements({ siteId, pourId, elements: [first], companyId }),
+		];
+		await Promise.all(asks.map((ask) => expect(ask).rejects.toMatchObject({ code: 'REFUSED' })));
+		await expect(contractor.api.pour.changeElements({ siteId, pourId, add: [], takeOut: [other] })).rejects.toMatchObject({
+			code: 'FORBIDDEN',
+		});
+		const { db } = server.platform;
+		const rows = await db.select().from(pourElements).where(eq(pourElements.pourId, pourId));
+		expect(rows).toHaveLength(elementCount);
+		const all = rows.map(({ globalId }) => ({ modelId, globalId }));
+		await expect(engineer.api.pour.changeElements({ siteId, pourId, add: [], takeOut: all })).rejects.toMatchObject({
+			data: { code: 'nothing-left' },
+		});
+		await db.update(holdPoints).set({ state: 'submitted' }).where(eq(holdPoints.pourId, pourId));
+		await expect(engineer.api.pour.changeElements({ siteId, pourId, add: [], takeOut: [other] })).rejects.toMatchObject({
+			data: { code: 'not-now' },
+		});
+	});
+
 	it('are refused with a number that is taken, a kind that is not there, or things of another site; nothing is stored', async () => {
 		const { siteId, engineer } = site;
 		const other = await aSite(server);

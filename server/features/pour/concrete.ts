@@ -182,5 +182,17 @@ export async function meetCondition(
 			.returning({ id: holdPointConditions.id });
 		if (met.length === 0) throw new Conflict('This condition is met already.');
 		await audit(tx, member, { kind: 'condition-met', subjectId: pourId, data: { number: pour.number, condition: condition.text, words } });
+		const now = platform.now();
+		const roles = ['project-engineer', 'owners-representative'] as const;
+		const userIds = await peopleWith(tx, { siteId: member.siteId, roles, now });
+		await postNotices(tx, { siteId: member.siteId, actId: platform.newId(), actorId: member.userId, now }, [
+			{
+				kind: 'condition-met',
+				userIds,
+				subjectId: conditionId,
+				sentence: `Pour ${pour.number}, condition met: ${condition.text}. ${words}`,
+				path: `/sites/${member.siteId}/pours/${pourId}`,
+			},
+		]);
 	});
 }

@@ -2,6 +2,7 @@ import { whyNotSigner } from '#shared/pour/pour-life.ts';
 import { siteRoutes } from '../../platform/guard.ts';
 import { addPour } from './add-pour.ts';
 import { poursBoard } from './board.ts';
+import { changeElements, giveElements } from './change-elements.ts';
 import { beginConcreting, endConcreting, giveNotice, meetCondition, sayWitness, seeHold } from './concrete.ts';
 import { askMore, callPoint, setList, submitPoint } from './hold-point-acts.ts';
 import { holdTouched, touchesOf } from './hold-touched.ts';
@@ -20,6 +21,14 @@ export const pourRoutes = {
 		return poursBoard(platform, member);
 	}),
 	add: siteRoutes.pour.add.handler(({ input, context: { platform, member } }) => addPour(platform, member, input.pour)),
+	changeElements: siteRoutes.pour.changeElements.handler(async ({ input, context: { platform, member } }) => {
+		await changeElements(platform, member, input);
+		return pourDetailOf(platform.db, member, input.pourId);
+	}),
+	giveElements: siteRoutes.pour.giveElements.handler(async ({ input, context: { platform, member } }) => {
+		await giveElements(platform, member, input);
+		return pourDetailOf(platform.db, member, input.pourId);
+	}),
 	get: siteRoutes.pour.get.handler(async ({ input, context: { platform, member } }) => {
 		await holdTouched(platform, member.siteId);
 		return pourDetailOf(platform.db, member, input.pourId);

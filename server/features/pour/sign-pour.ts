@@ -3,17 +3,19 @@ import { eq } from 'drizzle-orm';
 import type { Role } from '#shared/permissions.ts';
 import { actOnPour, type HoldPointKind } from '#shared/pour/pour-life.ts';
 import type { RecordSigner } from '#shared/record/sealed-record.ts';
-import type { Handle } from '../../db/database.ts';
+import type { Handle, Transaction } from '../../db/database.ts';
 import { lockSite } from '../../db/lock-site.ts';
 import { users } from '../../db/schema/account.ts';
 import { holdPointConditions } from '../../db/schema/pour.ts';
 import { sealedRecords } from '../../db/schema/record.ts';
 import { memberships } from '../../db/schema/site.ts';
+import { peopleWith } from '../../platform/membership.ts';
+import { type Notice, postNotices } from '../../platform/notices.ts';
 import type { Member, Platform } from '../../platform/platform.ts';
 import { Conflict, Forbidden, Refused } from '../../platform/refuse.ts';
 import { requireFresh, requireSecondFactor } from '../../platform/second-factor.ts';
 import { applyAct } from './act-on-pour.ts';
-import { loadOwnLife } from './load-pour.ts';
+import { type LoadedLife, loadOwnLife } from './load-pour.ts';
 import { loadShown, shownText } from './load-shown.ts';
 
 /** Raised with every change of what a pour's readiness or verdicts follow from. */
@@ -122,10 +124,45 @@ export async function signDecision(
 				})),
 			);
 		}
+		await tellMore(tx, platform, member, loaded, {
+			isLifted: isRelease && point === 'before-pour' && loaded.hold !== null,
+			conditions: conditions.map(({ text, owner }) => `${text} (${owner})`),
+		});
 		return { recordId, sequence: sealed.sequence, head: sealed.sha256 };
 	});
 	await platform.records.journal(member.siteId);
 	return signed;
+}
+
+/** What a release brings besides itself: the end of a hold to all concerned, its conditions to who meets them. */
+async function tellMore(
+	tx: Transaction,
+	platform: Platform,
+	member: Member,
+	{ pour }: LoadedLife,
+	{ isLifted, conditions }: { isLifted: boolean; conditions: readonly string[] },
+): Promise<void> {
+	const now = platform.now();
+	const about = { subjectId: pour.id, path: `/sites/${member.siteId}/pours/${pour.id}` };
+	const ask = (roles: readonly Role[]) => peopleWith(tx, { siteId: member.siteId, roles, companyId: pour.companyId, now });
+	const told: Notice[] = [];
+	if (isLifted)
+		told.push({
+			...about,
+			kind: 'hold-lifted',
+			userIds: await ask(everybodyConcerned),
+			sentence: `The hold on pour ${pour.number}, ${pour.name}, is lifted: it is released anew.`,
+		});
+	if (conditions.length > 0)
+		told.push({
+			...about,
+			kind: 'condition-set',
+			userIds: await ask(['project-engineer', 'contractor']),
+			sentence: `Pour ${pour.number}, ${pour.name}, is released on condition: ${conditions.join('; ')}.`,
+		});
+	// One id each: a person is told once of a thing in one act, and these are two things.
+	for (const notice of told)
+		await postNotices(tx, { siteId: member.siteId, actId: platform.newId(), actorId: member.userId, now }, [notice]);
 }
 
 /** Takes a release back by a record of its own. Before the concrete the pour is held from then on. */

@@ -60,7 +60,9 @@ export default function PourPage() {
 			<Strip
 				items={[
 					pour.companyName,
-					counted(pour.elementCount, 'element'),
+					<Link key="elements" to={`/sites/${siteId}/pours/${pourId}/elements`} className="text-action underline underline-offset-3">
+						{counted(pour.elementCount, 'element')}
+					</Link>,
 					pour.plannedAt ? `concrete ${moment(pour.plannedAt, timeZone, now)}` : 'not planned',
 					pour.partOf && (
 						<Link key="origin" to={`/sites/${siteId}/pours/${pour.partOf.pourId}`} className="text-action underline underline-offset-3">
