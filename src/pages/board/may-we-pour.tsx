@@ -1,8 +1,9 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import { Link } from 'react-router-dom';
 import type { FlagSummary } from '#shared/flag/contract.ts';
+import { flagTitle } from '#shared/flag/flag-name.ts';
 import type { PourBoardRow } from '#shared/pour/contract.ts';
-import { deadlineWords, flagTitle, offWords } from '#src/features/flag/flag-words.ts';
+import { deadlineWords, offWords } from '#src/features/flag/flag-words.ts';
 import { pourAnswer } from '#src/features/pour/pour-words.ts';
 import { api } from '#src/lib/api.ts';
 import { day, isoMoment, moment } from '#src/lib/format.ts';
