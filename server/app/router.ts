@@ -21,6 +21,7 @@ import { issueSheetRoute } from '../workflows/issue-sheet.ts';
 import { publishCheckRoute, publishPlanRoute } from '../workflows/publish-check.ts';
 import { storeControlRoute } from '../workflows/store-control.ts';
 import { storeSurveyRoute } from '../workflows/store-survey.ts';
+import { takeBackCheckRoute } from '../workflows/take-back-check.ts';
 import { withdrawCheckRoute } from '../workflows/withdraw-check.ts';
 
 /** All routes of the contract: one that is missing does not compile. */
@@ -34,7 +35,13 @@ export const router = {
 	survey: { ...surveyRoutes, store: storeSurveyRoute },
 	fit: fitRoutes,
 	tolerance: { ...toleranceRoutes, issue: issueSheetRoute },
-	check: { ...checkRoutes, publishPlan: publishPlanRoute, publish: publishCheckRoute, withdraw: withdrawCheckRoute },
+	check: {
+		...checkRoutes,
+		publishPlan: publishPlanRoute,
+		publish: publishCheckRoute,
+		takeBack: takeBackCheckRoute,
+		withdraw: withdrawCheckRoute,
+	},
 	flag: flagRoutes,
 	pour: pourRoutes,
 	record: recordRoutes,

@@ -7,7 +7,7 @@ import { checkFits } from '../db/schema/check.ts';
 import { fits } from '../db/schema/fit.ts';
 import { companies, sites } from '../db/schema/site.ts';
 import { setups } from '../db/schema/survey.ts';
-import { checkOf, publishCheck, whyNotPublished } from '../features/check/publish-check.ts';
+import { checkOf, publishCheck, rememberPublishing, whyNotPublished } from '../features/check/publish-check.ts';
 import { applyFlagChanges } from '../features/flag/apply-flag-changes.ts';
 import { flagMomentOf } from '../features/flag/flag-moment.ts';
 import { changesOfPublishing, type FlagChanges } from '../features/flag/plan-flag-changes.ts';
@@ -59,18 +59,21 @@ export const publishCheckRoute = siteRoutes.check.publish.handler(async ({ input
 		const check = await publishCheck(tx, member, checkId, answerBy, now);
 		if (!isAsShown || JSON.stringify(planOf(changes)) !== JSON.stringify(seen))
 			throw new Conflict('The flags have changed since this was shown, so nothing was published. Look again, then publish.');
-		await applyFlagChanges(tx, platform, member, changes);
+		const actId = platform.newId();
+		const { raisedIds } = await applyFlagChanges(tx, platform, member, changes, actId);
+		await rememberPublishing(tx, checkId, { actId, raisedIds, changed: changes.changed.map(({ row }) => row) });
 		const lives = [...changes.raised.map(({ life }) => life), ...changes.changed.map(({ after }) => after)];
 		const concerned = lives.filter(({ isWith, state }) => isWith === 'contractor' && state === 'open');
 		await tellContractors(
 			tx,
 			concerned.flatMap(({ companyId }) => companyId ?? []),
 			check.number,
+			actId,
 		);
 		return { raised: changes.raised.length };
 	});
 
-	async function tellContractors(tx: Transaction, companyIds: readonly string[], number: number): Promise<void> {
+	async function tellContractors(tx: Transaction, companyIds: readonly string[], number: number, actId: string): Promise<void> {
 		const { timeZone } = foundOne(await tx.select({ timeZone: sites.timeZone }).from(sites).where(eq(sites.id, siteId)));
 		const people = await peopleOfCompanies(tx, siteId, [...new Set(companyIds)], now);
 		const told = people.map((person) => {
@@ -83,7 +86,7 @@ export const publishCheckRoute = siteRoutes.check.publish.handler(async ({ input
 				path: `/sites/${siteId}/flags`,
 			};
 		});
-		await postNotices(tx, { siteId, actId: platform.newId(), actorId: member.userId, now }, told);
+		await postNotices(tx, { siteId, actId, actorId: member.userId, now }, told);
 	}
 });
 

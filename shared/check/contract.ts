@@ -80,6 +80,8 @@ export const checkDetail = checkHead.extend({
 	derived: z.array(derivedResultSchema),
 	/** Checkpoints that were left out before the check, counted by reason; absent where there are none. */
 	leftOut: z.array(z.object({ reason: z.string(), by: z.string(), count: z.number().int() })).optional(),
+	/** Until when who published it may take that back; absent for all others, and where it is too late. */
+	takeBackUntil: z.date().optional(),
 });
 /** By name, so that the API's own type stays short enough for the compiler to write down. */
 export interface CheckDetail extends z.infer<typeof checkDetail> {}
@@ -131,6 +133,8 @@ export const checkContract = {
 		.meta({ permission: 'check.publish' })
 		.input(checkInput.extend({ answerBy: z.date(), planSha256: z.string() }))
 		.output(z.object({ raised: z.number().int() })),
+	/** By who published it, within three minutes and while nobody was told: a trial again, its flags gone or as they were. */
+	takeBack: base.meta({ permission: 'check.publish' }).input(checkInput).output(z.object({})),
 	/** Its flags lapse, and each person who had one is told once. */
 	withdraw: base
 		.meta({ permission: 'check.publish' })

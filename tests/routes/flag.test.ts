@@ -1,7 +1,8 @@
 import { readFileSync } from 'node:fs';
-import { eq } from 'drizzle-orm';
+import { and, eq, isNull, ne, or } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Checkpoint } from '#shared/model/model-schema.ts';
+import { checks } from '../../server/db/schema/check.ts';
 import { flags } from '../../server/db/schema/flag.ts';
 import { notices } from '../../server/db/schema/mail.ts';
 import { auditEntries } from '../../server/db/schema/record.ts';
@@ -81,7 +82,14 @@ async function publish({ siteId, surveyor }: Flaggable, checkId: string, answerB
 const seenBy = async (api: Api, siteId: string) => (await api.flag.list({ siteId })).toSorted((a, b) => a.number - b.number);
 const target = ({ flagId, version }: { flagId: string; version: number }) => ({ flagId, version });
 const toldOf = async (userId: string) =>
-	(await server.platform.db.select({ kind: notices.kind }).from(notices).where(eq(notices.userId, userId))).map(({ kind }) => kind).sort();
+	(
+		await server.platform.db
+			.select({ kind: notices.kind })
+			.from(notices)
+			.where(and(eq(notices.userId, userId), or(isNull(notices.end), ne(notices.end, 'taken-back'))))
+	)
+		.map(({ kind }) => kind)
+		.sort();
 
 describe('a check', { timeout: 180_000 }, () => {
 	it('is a trial that contractors do not see, then published with the flags that were said, then withdrawn, told once', async () => {
@@ -120,6 +128,30 @@ describe('a check', { timeout: 180_000 }, () => {
 			[],
 		]);
 
+		// Taken back by who published it, and by nobody else: a trial again without a flag or a notice; then published once more.
+		await expect(engineer.api.check.takeBack({ siteId, checkId })).rejects.toMatchObject({ code: 'FORBIDDEN' });
+		await expect(site.secondSurveyor.api.check.takeBack({ siteId, checkId })).rejects.toMatchObject({
+			data: { code: 'not-yours-to-take-back' },
+		});
+		expect((await surveyor.api.check.get({ siteId, checkId })).takeBackUntil).toBeInstanceOf(Date);
+		await surveyor.api.check.takeBack({ siteId, checkId });
+		expect((await surveyor.api.check.get({ siteId, checkId })).state).toBe('trial');
+		expect(await seenBy(engineer.api, siteId)).toEqual([]);
+		expect(await toldOf(contractor.userId)).toEqual([]);
+		expect(await surveyor.api.check.publishPlan({ siteId, checkId })).toMatchObject({ planSha256: plan.planSha256 });
+		await surveyor.api.check.publish(about);
+		expect(await toldOf(contractor.userId)).toEqual(published);
+		const [answered] = await seenBy(contractor.api, siteId);
+		const answer = { kind: 'put-right' as const, means: 'rework' as const, how: 'Grind.', by: inDays(2) };
+		await contractor.api.flag.answer({ siteId, flags: [target(answered!)], answer });
+		await expect(surveyor.api.check.takeBack({ siteId, checkId })).rejects.toMatchObject({ data: { code: 'flag-acted-on' } });
+		expect((await surveyor.api.check.get({ siteId, checkId })).state).toBe('published');
+		await server.platform.db
+			.update(checks)
+			.set({ publishedAt: new Date(Date.now() - 180_000) })
+			.where(eq(checks.id, checkId));
+		await expect(surveyor.api.check.takeBack({ siteId, checkId })).rejects.toMatchObject({ data: { code: 'too-late' } });
+
 		await expect(engineer.api.check.withdraw({ siteId, checkId, reason: 'x' })).rejects.toMatchObject({ code: 'FORBIDDEN' });
 		expect(await surveyor.api.check.withdraw({ siteId, checkId, reason: 'Wrong prism.' })).toEqual({ lapsed: 2 });
 		expect((await seenBy(engineer.api, siteId)).map(({ state, lapsedWords }) => [state, lapsedWords])).toEqual(
@@ -133,7 +165,14 @@ describe('a check', { timeout: 180_000 }, () => {
 			.select({ kind: auditEntries.kind })
 			.from(auditEntries)
 			.where(eq(auditEntries.subjectId, checkId));
-		expect(kinds.map(({ kind }) => kind).sort()).toEqual(['check-computed', 'check-published', 'check-run', 'check-withdrawn']);
+		expect(kinds.map(({ kind }) => kind).sort()).toEqual([
+			'check-computed',
+			'check-published',
+			'check-published',
+			'check-run',
+			'check-taken-back',
+			'check-withdrawn',
+		]);
 	});
 
 	it('on a fit that is adopted no more, or by a superseded sheet, is not published, and nothing is stored', async () => {

@@ -112,6 +112,7 @@ const mayAsk: Record<string, 'anybody' | 'signed in' | readonly (typeof all)[num
 	'check.run': [siteEngineer],
 	'check.publishPlan': [siteEngineer],
 	'check.publish': [siteEngineer],
+	'check.takeBack': [siteEngineer],
 	'check.withdraw': [siteEngineer],
 	'flag.list': all,
 	'flag.get': all,

@@ -28,6 +28,13 @@ import { sheets } from './tolerance.ts';
 export const checkStateEnum = pgEnum('check_state', ['computing', 'trial', 'published', 'withdrawn', 'failed']);
 export const verdictEnum = pgEnum('verdict', verdicts);
 
+/** The act of publishing: its notices' id, the flags that it raised, and those that it changed as they were. Dates are text in jsonb. */
+export interface PublishedAct {
+	actId: string;
+	raisedIds: string[];
+	changed: (Record<string, unknown> & { id: string; version: number })[];
+}
+
 export const checks = pgTable(
 	'checks',
 	{
@@ -59,6 +66,8 @@ export const checks = pgTable(
 		publishedAt: at('published_at'),
 		/** The contractors' deadline that was said before the press. */
 		answerBy: at('answer_by'),
+		/** What publishing did to the flags, while it can be taken back; null: it cannot. */
+		publishedAct: jsonb('published_act').$type<PublishedAct>(),
 		withdrawnBy: uuid('withdrawn_by').references(() => users.id),
 		withdrawnAt: at('withdrawn_at'),
 		withdrawnReason: text('withdrawn_reason'),

@@ -1,6 +1,7 @@
 import { and, asc, eq, inArray } from 'drizzle-orm';
 import type { CheckDetail, CheckElement } from '#shared/check/contract.ts';
 import type { Finding } from '#shared/fit/fit-schema.ts';
+import { takeBackMs } from '#shared/mail/notice.ts';
 import type { Handle } from '../../db/database.ts';
 import { deviationOf } from '../../db/deviation-rows.ts';
 import { checkpointOf } from '../../db/model-rows.ts';
@@ -40,6 +41,7 @@ export async function checkDetailOf(db: Handle, member: Member, checkId: string)
 		...head,
 		findings: findingsFor(row.check.findings ?? [], companyIds === null ? null : new Set(seen.map(({ mark }) => mark))),
 		...(await leftOutFor(db, row.check, byId)),
+		...takeBackFor(member, row.check),
 		unmatchedPoints: companyIds === null ? (row.check.unmatchedPoints ?? []) : [],
 		elements: seen
 			.filter(({ id }) => shown.has(id))
@@ -63,6 +65,12 @@ export async function checkDetailOf(db: Handle, member: Member, checkId: string)
 			return deviationOf(deviation, checkpointOf(checkpoint, element));
 		}),
 	};
+}
+
+/** Until when the member may take back that they published it: whether it is too late by the clock is the reader's to see. */
+function takeBackFor({ userId }: Member, check: typeof checks.$inferSelect): Pick<CheckDetail, 'takeBackUntil'> {
+	if (check.state !== 'published' || check.publishedBy !== userId || check.publishedAt === null || check.publishedAct === null) return {};
+	return { takeBackUntil: new Date(check.publishedAt.getTime() + takeBackMs) };
 }
 
 /** What was left out of the elements that the member sees, counted by reason and person. */

@@ -1,6 +1,6 @@
 import { and, eq } from 'drizzle-orm';
 import type { Handle, Transaction } from '../../db/database.ts';
-import { checkFits, checks } from '../../db/schema/check.ts';
+import { checkFits, checks, type PublishedAct } from '../../db/schema/check.ts';
 import { fits } from '../../db/schema/fit.ts';
 import { broughtPoints } from '../../db/schema/flag.ts';
 import { companies } from '../../db/schema/site.ts';
@@ -74,6 +74,22 @@ export async function publishCheck(tx: Transaction, member: Member, checkId: str
 		data: { number: check.number, answerBy, inputsSha256: check.inputsSha256 },
 	});
 	return foundOne(published);
+}
+
+/** Keeps what publishing did to the flags, so that it can be taken back. */
+export async function rememberPublishing(tx: Transaction, checkId: string, publishedAct: PublishedAct): Promise<void> {
+	await tx.update(checks).set({ publishedAct }).where(eq(checks.id, checkId));
+}
+
+/** From published to trial again; CONFLICT where someone was quicker. Whether it may be is the caller's to know. */
+export async function unpublishCheck(tx: Transaction, member: Member, { id, number }: CheckRow): Promise<void> {
+	const taken = await tx
+		.update(checks)
+		.set({ state: 'trial', publishedBy: null, publishedAt: null, answerBy: null, publishedAct: null })
+		.where(and(eq(checks.id, id), eq(checks.state, 'published'), eq(checks.publishedBy, member.userId)))
+		.returning({ id: checks.id });
+	if (taken.length === 0) throw new Conflict();
+	await audit(tx, member, { kind: 'check-taken-back', subjectId: id, data: { number } });
 }
 
 /** From published to withdrawn, for good; REFUSED where it is not published, CONFLICT where someone was quicker. */

@@ -11,13 +11,15 @@ import { noticesOfReopening } from './flag-notices.ts';
 import { columnsOf, type FlagRow } from './flag-rows.ts';
 import type { FlagChanges } from './plan-flag-changes.ts';
 
-/** Writes what a check that was published or withdrawn does to the flags, with an audit entry each. The site is locked by the caller. */
+/** Writes what a check that was published or withdrawn does to the flags, with an audit entry each; answers the ids of those raised. The site is locked by the caller. */
 export async function applyFlagChanges(
 	tx: Transaction,
 	{ newId, now }: Pick<Platform, 'newId' | 'now'>,
 	member: Member,
 	{ raised, changed }: FlagChanges,
-): Promise<void> {
+	/** Of what is told: one id for the whole act, so that it can be taken back. */
+	actId: string = newId(),
+): Promise<{ raisedIds: string[] }> {
 	const { siteId } = member;
 	const changedAt = now();
 	for (const { row, after, words, worst } of changed) {
@@ -38,7 +40,7 @@ export async function applyFlagChanges(
 	const reopened = changed.filter(({ row, after }) => after.round > row.round);
 	await postNotices(
 		tx,
-		{ siteId, actId: newId(), actorId: member.userId, now: changedAt },
+		{ siteId, actId, actorId: member.userId, now: changedAt },
 		await noticesOfReopening(tx, siteId, reopened, changedAt),
 	);
 	const [highest] = await tx
@@ -84,4 +86,5 @@ export async function applyFlagChanges(
 		],
 		changedAt,
 	);
+	return { raisedIds: rows.map(({ id }) => id) };
 }

@@ -14,6 +14,7 @@ import { Dialog } from '#src/ui/dialog.tsx';
 import { TextField } from '#src/ui/field.tsx';
 import { Form, Submit } from '#src/ui/form.tsx';
 import { LoadingLines, Notice } from '#src/ui/notice.tsx';
+import { TakeBack } from './take-back.tsx';
 
 /** A trial is published, a published check withdrawn: by a site engineer, with what it does said before the press. */
 export function PublishActs({ check, siteId }: { check: CheckDetail; siteId: string }) {
@@ -32,7 +33,10 @@ export function PublishActs({ check, siteId }: { check: CheckDetail; siteId: str
 					Publish …
 				</Button>
 			) : (
-				<Button onClick={() => ask('withdraw')}>Withdraw …</Button>
+				<>
+					{check.takeBackUntil && <TakeBack siteId={siteId} checkId={check.checkId} until={check.takeBackUntil} onDone={renew} />}
+					<Button onClick={() => ask('withdraw')}>Withdraw …</Button>
+				</>
 			)}
 			{asked === 'publish' && <PublishDialog check={check} siteId={siteId} onClose={() => ask(null)} onDone={renew} />}
 			{asked === 'withdraw' && (

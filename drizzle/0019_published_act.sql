@@ -1,0 +1,1 @@
+ALTER TABLE "checks" ADD COLUMN "published_act" jsonb;
