@@ -158,7 +158,10 @@ describe('a check', { timeout: 180_000 }, () => {
 			Array.from({ length: 2 }, () => ['lapsed', 'Check 1 was withdrawn: Wrong prism.']),
 		);
 		const withdrawn = ['check-withdrawn'];
-		expect([await toldOf(contractor.userId), await toldOf(engineer.userId)]).toEqual([[...published, ...withdrawn], withdrawn]);
+		expect([await toldOf(contractor.userId), await toldOf(engineer.userId)]).toEqual([
+			[...published, ...withdrawn],
+			[...withdrawn, 'flag-answered'],
+		]);
 		await expect(surveyor.api.check.withdraw({ siteId, checkId, reason: 'Again.' })).rejects.toMatchObject({ code: 'CONFLICT' });
 		expect(await toldOf(contractor.userId)).toHaveLength(2);
 		const kinds = await server.platform.db
