@@ -52,12 +52,12 @@ export async function seedDemo(platform: Platform): Promise<string | null> {
 	const formsCheck = await checked(ground, forms, day(-15, 14));
 	await publish(ground, formsCheck, day(-15, 15));
 	await decide(ground, people.projectEngineer, isClose, day(-14, 9), takenAsMeasured('Shot twice more by the mini prism, 4 mm each time.'));
-	await cast(ground, walls, day(-13, 9));
-	await cast(ground, slabs, day(-13, 10));
-	await cast(ground, plinths, day(-12, 9), [
+	await cast(ground, walls, day(-13, 16));
+	await cast(ground, slabs, day(-13, 16));
+	await cast(ground, plinths, day(-12, 16), [
 		{ text: 'Caps on all bolts before the concrete.', owner: 'Fennick Forms', dueAt: day(-11, 7), proof: 'photo of each plinth' },
 	]);
-	await cast(ground, columns, day(-11, 9));
+	await cast(ground, columns, day(-11, 16));
 
 	const asCast = {
 		fileName: 'survey-1.csv',

@@ -12,9 +12,10 @@ export function earliest(times: readonly Date[], after: Date): Date | null {
 }
 
 /** "C/3, A/3 and 2 more". */
-function marksOf(flags: readonly FlagSummary[]): string {
-	const marks = [...new Set(flags.map(({ mark }) => mark))];
-	return marks.length <= 3 ? marks.join(', ') : `${marks.slice(0, 2).join(', ')} and ${marks.length - 2} more`;
+/** By what people call the elements, not by their marks for the field. */
+function titlesOf(flags: readonly FlagSummary[]): string {
+	const titles = [...new Set(flags.map(({ title }) => title))];
+	return titles.length <= 3 ? titles.join('; ') : `${titles.slice(0, 2).join('; ')} and ${titles.length - 2} more`;
 }
 
 /** What is open of the flags, by whose turn it is. Pure. */
@@ -39,7 +40,7 @@ export function flagTasks({ flags, pours, now }: BoardFacts): Task[] {
 		const by = told.by === undefined ? pourOf(some) : told.by;
 		const isBefore = told.by === undefined && by !== null;
 		const path = told.path ?? (some.length === 1 ? `flags/${first.flagId}` : 'flags');
-		const act = { verb: told.verb, path, why: told.why ?? `${marksOf(some)}.`, by, isBefore };
+		const act = { verb: told.verb, path, why: told.why ?? `${titlesOf(some)}.`, by, isBefore };
 		const since = some.map(({ changedAt }) => changedAt).sort((a, b) => a.getTime() - b.getTime())[0] ?? null;
 		tasks.push({ role, ...(company && { company }), act, what: told.what, since });
 	};
@@ -65,7 +66,7 @@ export function flagTasks({ flags, pours, now }: BoardFacts): Task[] {
 		what: `decide ${counted(answered.length, 'answer')}`,
 		why: answered
 			.slice(0, 3)
-			.map(({ mark, answer }) => `${mark}: ${answerWord(answer)}.`)
+			.map(({ title, answer }) => `${title}: ${answerWord(answer)}.`)
 			.join(' '),
 	});
 	const late = withContractor.filter(isRun);
@@ -84,7 +85,7 @@ export function flagTasks({ flags, pours, now }: BoardFacts): Task[] {
 	add(close, 'project-engineer', {
 		verb: `Decide ${counted(close.length, 'open question')}`,
 		what: `decide ${counted(close.length, 'flag')} with the engineers`,
-		why: `Too close to call, undecided or in nobody’s pour: ${marksOf(close)}.`,
+		why: `Too close to call, undecided or in nobody’s pour: ${titlesOf(close)}.`,
 	});
 	const toShoot = flags.filter(
 		({ state, decision }) => state === 'put-right' || (state === 'decided' && decision?.kind === 'survey-again'),

@@ -99,14 +99,14 @@ describe('what waits for whom', () => {
 		const flags = [
 			aFlag(),
 			aFlag({ flagId: 'f2', companyId: 'oster', companyName: 'Oster Steel' }),
-			aFlag({ flagId: 'f3', mark: 'A/3', state: 'answered', answer: { kind: 'concession', why: 'thin' } }),
+			aFlag({ flagId: 'f3', title: 'Column A/3', state: 'answered', answer: { kind: 'concession', why: 'thin' } }),
 			aFlag({ flagId: 'f4', isWith: 'engineers', verdict: 'too-close-to-call' }),
 		];
 		const [act] = boardOf(facts({ roles: ['contractor'], companyIds: ['fennick'], flags })).next;
-		expect(act).toEqual({ verb: 'Answer 1 flag', path: 'flags/f1', why: 'C/3.', by: at('2026-12-05T16:00:00Z'), isBefore: false });
+		expect(act).toEqual({ verb: 'Answer 1 flag', path: 'flags/f1', why: 'Column C/3.', by: at('2026-12-05T16:00:00Z'), isBefore: false });
 		expect(next({ roles: ['project-engineer'], flags })).toEqual(['Decide 1 answer', 'Decide 1 open question']);
 		const [decide] = boardOf(facts({ roles: ['project-engineer'], flags })).next;
-		expect(decide).toMatchObject({ why: 'A/3: a concession asked.', by: at('2026-12-04T07:00:00Z'), isBefore: true });
+		expect(decide).toMatchObject({ why: 'Column A/3: a concession asked.', by: at('2026-12-04T07:00:00Z'), isBefore: true });
 		expect(waiting({ roles: ['project-engineer'], flags })).toEqual(['Fennick Forms: answer 1 flag', 'Oster Steel: answer 1 flag']);
 		expect(next({ roles: ['project-engineer'], flags: [aFlag({ answerBy: at('2026-12-03T07:00:00Z') })] })).toContain(
 			'Decide 1 flag unanswered',

@@ -13,6 +13,8 @@ import { maySeePour } from './policy.ts';
 const before = alias(holdPoints, 'before_point');
 const after = alias(holdPoints, 'after_point');
 
+const isCast = sql`${pours.state} in ('cast', 'cast-in-part')`;
+
 const columns = {
 	pourId: pours.id,
 	number: pours.number,
@@ -27,11 +29,16 @@ const columns = {
 	isHeld: sql<boolean>`exists (select 1 from ${pourHolds} where ${pourHolds.pourId} = ${pours.id} and ${pourHolds.endedAt} is null)`,
 };
 
-/** The pours this member may see, by planned hour; those without one last, then by number. */
+/** The pours this member may see: what is to be poured first, by planned hour, those without one last; then what is cast, the newest first. */
 export async function poursOf(db: Handle, member: Member): Promise<PourSummary[]> {
 	const rows = await summaries(db)
 		.where(eq(pours.siteId, member.siteId))
-		.orderBy(sql`${pours.plannedAt} asc nulls last`, asc(pours.number));
+		.orderBy(
+			sql`${isCast}`,
+			sql`case when ${isCast} then null else ${pours.plannedAt} end asc nulls last`,
+			sql`${pours.plannedAt} desc nulls last`,
+			asc(pours.number),
+		);
 	const others = await db
 		.selectDistinct({ pourId: pourElements.pourId, companyId: pourElements.companyId })
 		.from(pourElements)

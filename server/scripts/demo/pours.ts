@@ -1,8 +1,9 @@
 import type { HoldPointKind } from '#shared/pour/pour-life.ts';
-import { dayMs } from './stage.ts';
 import type { DemoGround } from './story.ts';
 
 /** Pours of the invented site, and their hold points as people go through them. */
+
+const hourMs = 3_600_000;
 
 const formQuestions = ['Forms braced and oiled?', 'Cover and bars as drawn?', 'Clean, free of water?'];
 const castQuestions = ['Curing as agreed?', 'Faces looked over, honeycombing marked?'];
@@ -70,11 +71,11 @@ export async function release(
 	await client.pour.release({ siteId, pourId, point, statement, shownSha256, conditions });
 }
 
-/** Released before the pour, then cast within a day. */
+/** Released at the end of the day before, then cast from seven o'clock. */
 export async function cast(ground: DemoGround, pourId: string, at: Date, conditions: Condition[] = []): Promise<void> {
 	await release(ground, pourId, 'before-pour', at, conditions);
-	const begun = new Date(at.getTime() + dayMs / 2);
-	const over = new Date(at.getTime() + 0.75 * dayMs);
+	const begun = new Date(at.getTime() + 15 * hourMs);
+	const over = new Date(at.getTime() + 19 * hourMs);
 	const { siteId, contractor } = ground.people;
 	await ground.as(contractor, begun).pour.beginConcreting({ siteId, pourId, at: begun });
 	await ground.as(contractor, over).pour.endConcreting({ siteId, pourId, at: over, notCast: [] });
