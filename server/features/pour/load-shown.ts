@@ -71,7 +71,7 @@ export async function loadShown(db: Handle, siteId: string, pourId: string, kind
 			globalId,
 			checkpointId: row.id,
 			characteristic: row.characteristic,
-			mark: mark || title,
+			mark: title || mark,
 			requirement: choice?.requirement ?? 'required',
 			isAfterConcrete: isAfterTheConcrete({ ...row, elementClass: designed.element.class }, kind),
 			standing,

@@ -51,7 +51,7 @@ export async function pourFlags(db: Handle, siteId: string, models: readonly Pou
 				flagId: flag.id,
 				modelId,
 				globalId: flag.globalId,
-				mark: flag.mark || flag.title,
+				mark: flag.title || flag.mark,
 				characteristic: flag.kind,
 				state: flag.state,
 				outcome: outcomeWords(flag),

@@ -23,7 +23,7 @@ export function ShownPourView({ shown, at }: ShownPourProps) {
 			</Part>
 			<Part title={`${counted(elements.length, 'element')} of ${pour.company}`}>
 				<p className="m-0">
-					{elements.map(({ mark, title, company }) => `${mark || title}${company === null ? '' : ` (${company})`}`).join(', ')}
+					{elements.map(({ mark, title, company }) => `${title || mark}${company === null ? '' : ` (${company})`}`).join(', ')}
 				</p>
 			</Part>
 			{concessions.length > 0 && (
