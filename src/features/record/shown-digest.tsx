@@ -1,3 +1,4 @@
+import { nameList } from '#shared/check/name-list.ts';
 import { deviationSentence } from '#shared/check/sentence.ts';
 import type { ShownPour } from '#shared/record/sealed-record.ts';
 import { counted } from '#src/lib/format.ts';
@@ -42,7 +43,7 @@ export function ShownDigest({ shown, changed }: ShownDigestProps) {
 			)}
 			{leftOut.length > 0 && (
 				<Part title="What was left out">
-					<Sentences sentences={leftOut.map(({ label, reason, by }) => `${label}. ${reason} (${by})`)} />
+					<Sentences sentences={leftOutByReason(leftOut)} />
 				</Part>
 			)}
 			<Part title="What changed since last time">
@@ -56,4 +57,17 @@ export function ShownDigest({ shown, changed }: ShownDigestProps) {
 			</Part>
 		</div>
 	);
+}
+
+/** With the same reason by the same person: one sentence. Each place by itself stands in the whole below. */
+function leftOutByReason(leftOut: ShownPour['leftOut']): string[] {
+	const groups = new Map<string, ShownPour['leftOut'][number][]>();
+	for (const place of leftOut) {
+		const why = `${place.reason} (${place.by})`;
+		groups.set(why, [...(groups.get(why) ?? []), place]);
+	}
+	return [...groups].map(([why, places]) => {
+		const elements = [...new Set(places.map(({ label }) => label.split(': ')[0] ?? label))];
+		return `${counted(places.length, 'point')} on ${nameList(elements)}. ${why}`;
+	});
 }
