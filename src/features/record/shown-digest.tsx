@@ -64,7 +64,9 @@ function leftOutByReason(leftOut: ShownPour['leftOut']): string[] {
 	const groups = new Map<string, ShownPour['leftOut'][number][]>();
 	for (const place of leftOut) {
 		const why = `${place.reason} (${place.by})`;
-		groups.set(why, [...(groups.get(why) ?? []), place]);
+		const group = groups.get(why);
+		if (group === undefined) groups.set(why, [place]);
+		else group.push(place);
 	}
 	return [...groups].map(([why, places]) => {
 		const elements = [...new Set(places.map(({ label }) => label.split(': ')[0] ?? label))];
