@@ -1,6 +1,7 @@
 import { type Range, useVirtualizer } from '@tanstack/react-virtual';
 import { type KeyboardEvent, type MouseEvent, type ReactNode, useCallback, useEffect, useMemo, useRef } from 'react';
 import { useIsCoarse } from '#src/lib/coarse-pointer.ts';
+import { scrollStop } from './scroll-stop.ts';
 import { onlyFromClass, type TableColumn } from './table-column.ts';
 import { TableRow } from './table-row.tsx';
 import { linesOf, type RowGroup, rowLineFrom, type Sorting, sortedGroups } from './table-rows.ts';
@@ -107,6 +108,10 @@ export function Table<Row>(props: TableProps<Row>) {
 			if (reached.current === chosenLine) reached.current = null;
 		} else if (!isWindowed && scrollClass !== '') lineElement(box.current, chosenLine)?.scrollIntoView?.({ block: 'nearest' });
 	}, [chosenLine, isWindowed, scrollClass, virtualizer]);
+
+	// Rows that can be chosen are stops themselves.
+	const hasStops = onChoose !== undefined;
+	useEffect(() => (hasStops || lines.length === 0 ? undefined : scrollStop(box.current)), [hasStops, lines]);
 
 	const chooseLine = (index: number) => {
 		const line = lines[index];

@@ -1,11 +1,12 @@
 import { count } from '#src/lib/format.ts';
+import { scrollStop } from '#src/ui/scroll-stop.ts';
 import type { PlannedGroup } from './survey-plan.ts';
 
 /** What each kind of checkpoint could be known to, against the tolerance it has: the kinds that could never be decided first. */
 export function ExpectedTable({ groups }: { groups: readonly PlannedGroup[] }) {
 	const ordered = [...groups].sort((a, b) => (a.capability ?? 1e9) - (b.capability ?? 1e9) || a.name.localeCompare(b.name));
 	return (
-		<div className="sheet overflow-x-auto">
+		<div ref={scrollStop} className="sheet overflow-x-auto">
 			<table className="w-full border-collapse">
 				<thead className="border-b border-ink text-small text-second">
 					<tr>

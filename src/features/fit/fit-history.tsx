@@ -1,6 +1,7 @@
 import { Link } from 'react-router-dom';
 import type { FitSummary } from '#shared/fit/contract.ts';
 import { isoMoment } from '#src/lib/format.ts';
+import { scrollStop } from '#src/ui/scroll-stop.ts';
 import { kindWords } from './fit-words.ts';
 
 interface FitHistoryProps {
@@ -17,7 +18,7 @@ const stateWords: Record<FitSummary['state'], string> = { made: 'made, not adopt
 export function FitHistory({ fits, timeZone, addressOf, shownFitId }: FitHistoryProps) {
 	if (fits.length === 0) return <p className="m-0 text-second">No fit of this set-up has been kept yet.</p>;
 	return (
-		<div className="sheet overflow-x-auto">
+		<div ref={scrollStop} className="sheet overflow-x-auto">
 			<table className="w-full border-collapse">
 				<thead className="border-b border-ink text-small text-second">
 					<tr>

@@ -6,6 +6,7 @@ import { api } from '#src/lib/api.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
 import { noFigure, signedNumber } from '#src/lib/format.ts';
 import { Button } from '#src/ui/button.tsx';
+import { scrollStop } from '#src/ui/scroll-stop.ts';
 import { StandDialog } from './fit-dialogs.tsx';
 
 interface NetworkFitProps {
@@ -38,7 +39,7 @@ export function NetworkFit({ fit: { network, madeWith, setupId, result }, addres
 					`All together: ${chiSquare.statistic.toFixed(1)} on ${result.redundancy} degrees of freedom, 95 % lies between ${chiSquare.lower.toFixed(1)} and ${chiSquare.upper.toFixed(1)}${chiSquare.passes ? '.' : ': the test fails.'}`}
 			</p>
 			{ties.length > 0 && (
-				<div className="overflow-x-auto">
+				<div ref={scrollStop} className="overflow-x-auto">
 					<table className="w-full border-collapse">
 						<caption className="sr-only">
 							Targets that tie this set-up to others; where this set-up puts them less where all put them, mm

@@ -2,6 +2,7 @@ import { type DragEvent, type KeyboardEvent, memo, type ReactNode, useRef, useSt
 import type { PairsOfSetup, Shelf, Shelving } from '#shared/fit/contract.ts';
 import { noFigure, signedNumber } from '#src/lib/format.ts';
 import { Rod, rodScaleMm } from '#src/ui/rod.tsx';
+import { scrollStop } from '#src/ui/scroll-stop.ts';
 import { type Axis, axisNames, type PairFigures, pairSentence } from './pair-figures.ts';
 import type { PairPlace } from './shelves-state.ts';
 
@@ -70,7 +71,7 @@ export function PairTable({ pairs, figures, shelvingOf, mayPart, chosenName, onC
 		if (onMove && pairs.some((pair) => pair.name === name) && shelfOf(name) !== shelf) onMove(name, whole(shelf));
 	};
 	return (
-		<div className="sheet overflow-x-auto">
+		<div ref={scrollStop} className="sheet overflow-x-auto">
 			<table ref={body} className="w-full border-collapse" onKeyDown={step}>
 				<thead className="border-b border-ink text-small text-second">
 					<tr>

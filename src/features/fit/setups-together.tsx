@@ -5,6 +5,7 @@ import { api, client } from '#src/lib/api.ts';
 import { refusalOf } from '#src/lib/api-error.ts';
 import { counted } from '#src/lib/format.ts';
 import { Button } from '#src/ui/button.tsx';
+import { scrollStop } from '#src/ui/scroll-stop.ts';
 
 interface SetupsTogetherProps {
 	siteId: string;
@@ -75,7 +76,7 @@ function setupWords({ name, knownCount, tieCount, standsAlone }: NetworkOutlook[
 
 function TieTable({ outlook: { setups, ties } }: { outlook: NetworkOutlook }) {
 	return (
-		<div className="overflow-x-auto">
+		<div ref={scrollStop} className="overflow-x-auto">
 			<table className="w-full border-collapse">
 				<thead className="border-b border-ink text-small text-second">
 					<tr>

@@ -1,4 +1,5 @@
 import { noFigure, signedMm } from '#src/lib/format.ts';
+import { scrollStop } from '#src/ui/scroll-stop.ts';
 import type { StabilityTest } from './stability.ts';
 
 /** Each mark's movement between two surveys, and the test behind it. */
@@ -6,7 +7,7 @@ export function StabilityTable({ test: { comparison, marks } }: { test: Stabilit
 	const heads = ['Mark', 'East', 'North', 'Level', 'Over its σ', 'Says'];
 	return (
 		<>
-			<div className="sheet overflow-x-auto">
+			<div ref={scrollStop} className="sheet overflow-x-auto">
 				<table className="w-full border-collapse">
 					<thead className="border-b border-ink text-small text-second">
 						<tr>

@@ -1,5 +1,6 @@
 import type { PointTableInspection } from '#shared/survey/inspect-point-table.ts';
 import { type PointField, type PointTableReading, pointFields } from '#shared/survey/point-table-schema.ts';
+import { scrollStop } from '#src/ui/scroll-stop.ts';
 import { fieldWords } from './point-file-reading.ts';
 
 interface ColumnHeadsProps {
@@ -13,7 +14,7 @@ export function ColumnHeads({ inspection, columns, onField }: ColumnHeadsProps) 
 	const fieldOf = new Map(Object.entries(columns).map(([field, column]) => [column, field]));
 	const rows = [0, 1, 2].filter((row) => inspection.columns.some((column) => column.samples[row]));
 	return (
-		<div className="sheet overflow-x-auto">
+		<div ref={scrollStop} className="sheet overflow-x-auto">
 			<table className="w-full border-collapse">
 				<caption className="sr-only">First rows of the file</caption>
 				<thead>
