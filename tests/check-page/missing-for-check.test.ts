@@ -30,7 +30,7 @@ describe('what a check lacks', () => {
 		expect(found.map(({ path, isBar }) => [path, isBar])).toEqual([
 			['model', true],
 			['surveys', true],
-			['', true],
+			['sheets', true],
 		]);
 	});
 
