@@ -42,7 +42,7 @@ test('a new person is invited, comes in on a phone, and gets a new password on a
 	await expect(phone.page.getByText('among the first that anybody would try')).toBeVisible();
 	await phone.page.getByLabel('A password').fill(first);
 	await phone.page.getByRole('button', { name: 'Accept and go in' }).click();
-	await expect(phone.page.getByRole('heading', { name: 'Next for you' })).toBeVisible();
+	await expect(phone.page.getByRole('heading', { name: 'May we pour?' })).toBeVisible();
 	// Another firm's people are not hers to see.
 	await phone.page.goto(`${phone.page.url()}/people`);
 	await expect(phone.page.getByText('(you)')).toBeVisible();
