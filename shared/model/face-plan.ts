@@ -65,20 +65,12 @@ export function isOnFace(plan: FacePlan, u: number, v: number): boolean {
 	return false;
 }
 
-/** Whether the place and eight more on a circle of `marginM` about it all lie on the face: so none falls in an opening, over an edge or on a corner. */
+/** Sixteen directions: between two of them no square corner comes nearer than 0.78 of the radius; between two of eight it would be 0.54. */
+const around = Array.from({ length: 16 }, (_, k) => [Math.cos((k * Math.PI) / 8), Math.sin((k * Math.PI) / 8)] as const);
+
+/** Whether the place and sixteen more on a circle of `marginM` about it all lie on the face: so none falls in an opening, over an edge or on a corner. */
 export function isClear(plan: FacePlan, u: number, v: number, marginM: number): boolean {
-	if (!isOnFace(plan, u, v)) return false;
-	const diagonal = marginM * Math.SQRT1_2;
-	return (
-		isOnFace(plan, u - marginM, v) &&
-		isOnFace(plan, u + marginM, v) &&
-		isOnFace(plan, u, v - marginM) &&
-		isOnFace(plan, u, v + marginM) &&
-		isOnFace(plan, u - diagonal, v - diagonal) &&
-		isOnFace(plan, u + diagonal, v - diagonal) &&
-		isOnFace(plan, u - diagonal, v + diagonal) &&
-		isOnFace(plan, u + diagonal, v + diagonal)
-	);
+	return isOnFace(plan, u, v) && around.every(([du, dv]) => isOnFace(plan, u + marginM * du, v + marginM * dv));
 }
 
 /** The clear place nearest to the wanted one, looked for on a grid over the face; null where there is none. */
