@@ -20,8 +20,7 @@ export function whyNoName(name: string): string | null {
 	if (name.length <= pointTableLimits.nameLength && plainName.test(name)) return null;
 	if (name.length > pointTableLimits.nameLength)
 		return `its name has ${name.length} characters; at most ${pointTableLimits.nameLength} are kept.`;
-	// biome-ignore lint/suspicious/noControlCharactersInRegex: that they are there is what is asked
-	if (/[\u0000-\u001f\u007f-\u009f\ufffd]/.test(name)) return 'its name holds control characters or bytes that are no letters.';
+	if (/[\p{Cc}\ufffd]/u.test(name)) return 'its name holds control characters or bytes that are no letters.';
 	// What a spreadsheet would run when the list is opened there; a sign before a figure ("+0.00", "-2") is a name.
 	if (/^[=@]/.test(name) || /^[+-].*[(!|]/.test(name)) return `its name '${name}' would be a formula in a spreadsheet.`;
 	return null;
