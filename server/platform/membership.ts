@@ -33,6 +33,7 @@ export async function peopleWith(
 	return rows.map(({ userId }) => userId);
 }
 
-function isOnSite(now: Date): SQL | undefined {
+/** Of a membership row: it has begun and has not ended at this time. */
+export function isOnSite(now: Date): SQL | undefined {
 	return and(lte(memberships.fromAt, now), or(isNull(memberships.leftAt), gt(memberships.leftAt, now)));
 }

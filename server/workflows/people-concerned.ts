@@ -1,28 +1,27 @@
-import { and, asc, eq, gt, isNull, lte, or } from 'drizzle-orm';
+import { and, asc, eq } from 'drizzle-orm';
 import type { Role } from '#shared/permissions.ts';
 import type { Handle } from '../db/database.ts';
 import { users } from '../db/schema/account.ts';
 import { memberships } from '../db/schema/site.ts';
+import { isOnSite } from '../platform/membership.ts';
 
-/** A person whom a mail goes to, once, whatever roles they hold. */
+/** A person who is told, once, whatever roles they hold. */
 export interface PersonConcerned {
 	userId: string;
-	name: string;
-	email: string;
 	companyIds: string[];
 	roles: Role[];
 }
 
 async function peopleNow(db: Handle, siteId: string, now: Date): Promise<PersonConcerned[]> {
 	const rows = await db
-		.select({ userId: users.id, name: users.name, email: users.email, role: memberships.role, companyId: memberships.companyId })
+		.select({ userId: users.id, role: memberships.role, companyId: memberships.companyId })
 		.from(memberships)
 		.innerJoin(users, eq(users.id, memberships.userId))
-		.where(and(eq(memberships.siteId, siteId), lte(memberships.fromAt, now), or(isNull(memberships.leftAt), gt(memberships.leftAt, now))))
+		.where(and(eq(memberships.siteId, siteId), isOnSite(now)))
 		.orderBy(asc(users.name), asc(users.id));
 	const people = new Map<string, PersonConcerned>();
-	for (const { userId, name, email, role, companyId } of rows) {
-		const person = people.get(userId) ?? { userId, name, email, companyIds: [], roles: [] };
+	for (const { userId, role, companyId } of rows) {
+		const person = people.get(userId) ?? { userId, companyIds: [], roles: [] };
 		person.roles.push(role);
 		if (role === 'contractor' && companyId !== null) person.companyIds.push(companyId);
 		people.set(userId, person);

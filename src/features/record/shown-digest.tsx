@@ -2,7 +2,7 @@ import { nameList } from '#shared/check/name-list.ts';
 import { deviationSentence } from '#shared/check/sentence.ts';
 import type { ShownPour } from '#shared/record/sealed-record.ts';
 import { counted } from '#src/lib/format.ts';
-import { Part, Sentences } from './shown-pour.tsx';
+import { leftOutByReason, Part, Sentences } from './shown-pour.tsx';
 
 interface ShownDigestProps {
 	shown: ShownPour;
@@ -43,7 +43,7 @@ export function ShownDigest({ shown, changed }: ShownDigestProps) {
 			)}
 			{leftOut.length > 0 && (
 				<Part title="What was left out">
-					<Sentences sentences={leftOutByReason(leftOut)} />
+					<Sentences sentences={leftOutSentences(leftOut)} />
 				</Part>
 			)}
 			<Part title="What changed since last time">
@@ -59,17 +59,10 @@ export function ShownDigest({ shown, changed }: ShownDigestProps) {
 	);
 }
 
-/** With the same reason by the same person: one sentence. Each place by itself stands in the whole below. */
-function leftOutByReason(leftOut: ShownPour['leftOut']): string[] {
-	const groups = new Map<string, ShownPour['leftOut'][number][]>();
-	for (const place of leftOut) {
-		const why = `${place.reason} (${place.by})`;
-		const group = groups.get(why);
-		if (group === undefined) groups.set(why, [place]);
-		else group.push(place);
-	}
-	return [...groups].map(([why, places]) => {
-		const elements = [...new Set(places.map(({ label }) => label.split(': ')[0] ?? label))];
-		return `${counted(places.length, 'point')} on ${nameList(elements)}. ${why}`;
+/** One sentence a reason; each place by itself stands in the whole below. */
+function leftOutSentences(leftOut: ShownPour['leftOut']): string[] {
+	return leftOutByReason(leftOut).map(({ reason, by, labels }) => {
+		const elements = [...new Set(labels.map((label) => label.split(': ')[0] ?? label))];
+		return `${counted(labels.length, 'point')} on ${nameList(elements)}. ${reason} (${by})`;
 	});
 }

@@ -186,14 +186,19 @@ function PointRow({ point, scaleMm }: { point: RecordedCheckpoint; scaleMm: numb
 }
 
 function leftOutSentences(leftOut: ShownPour['leftOut']): string[] {
-	const byReason = new Map<string, { by: string; labels: string[] }>();
+	return leftOutByReason(leftOut).map(
+		({ reason, by, labels }) => `${counted(labels.length, 'point')}: ${reason} (${by}). ${labels.join(', ')}`,
+	);
+}
+
+/** What was left out for the same reason by the same person, together. */
+export function leftOutByReason(leftOut: ShownPour['leftOut']): { reason: string; by: string; labels: string[] }[] {
+	const groups = new Map<string, { reason: string; by: string; labels: string[] }>();
 	for (const { reason, by, label } of leftOut) {
 		const key = `${reason}\n${by}`;
-		const group = byReason.get(key) ?? { by, labels: [] };
-		group.labels.push(label);
-		byReason.set(key, group);
+		const group = groups.get(key);
+		if (group === undefined) groups.set(key, { reason, by, labels: [label] });
+		else group.labels.push(label);
 	}
-	return [...byReason].map(
-		([key, { by, labels }]) => `${counted(labels.length, 'point')}: ${key.split('\n')[0]} (${by}). ${labels.join(', ')}`,
-	);
+	return [...groups.values()];
 }

@@ -1,4 +1,4 @@
-import type { derivedCharacteristics, RuleMatch, Stage } from '#shared/tolerance/sheet-schema.ts';
+import type { Characteristic, RuleMatch, Stage } from '#shared/tolerance/sheet-schema.ts';
 
 /** What a rule can be about, as a person chooses it. */
 export const characteristicLabels: Readonly<Record<NonNullable<RuleMatch['characteristic']>, string>> = {
@@ -15,20 +15,11 @@ export const characteristicLabels: Readonly<Record<NonNullable<RuleMatch['charac
 	projection: 'Projection over the concrete',
 };
 
-const derived: ReadonlySet<string> = new Set<(typeof derivedCharacteristics)[number]>([
-	'plumb',
-	'section',
-	'flatness',
-	'flatness-best-fit',
-	'bolt-distance',
-	'group-shift',
-	'group-turn',
-	'projection',
-]);
+const placed: ReadonlySet<string> = new Set<Characteristic>(['plan', 'level', 'face']);
 
 /** Whether it is reckoned from several checkpoints and not one of its own. */
 export function isDerived(characteristic: string): boolean {
-	return derived.has(characteristic);
+	return characteristic in characteristicLabels && !placed.has(characteristic);
 }
 
 export const stageLabels: Readonly<Record<Stage, string>> = {
