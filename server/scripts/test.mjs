@@ -9,6 +9,8 @@ import { build, install, root } from './prepare.mjs';
 const needed = [
 	{ name: 'chromium', isThere: () => isOnPath('chromium') },
 	{ name: 'poppler-utils', isThere: () => isOnPath('pdfinfo') },
+	{ name: 'openssl', isThere: () => isOnPath('openssl') },
+	{ name: 'python3', isThere: () => isOnPath('python3') },
 	{ name: 'postgresql', isThere: () => existsSync('/usr/lib/postgresql') },
 ];
 const reports = join(root, '.tmp/reports');

@@ -222,13 +222,11 @@ describe('verify of the command line', () => {
 	});
 });
 
-const has = (program: string, ...args: string[]) => spawnSync(program, args).status === 0;
-
 describe('an independent verifier', () => {
 	const text = recordText();
 	const script = new URL('./verify_record.py', import.meta.url).pathname;
 
-	it.skipIf(!has('openssl', 'version') || !has('python3', '--version'))('in Python with openssl agrees, and on a changed one too', () => {
+	it('in Python with openssl agrees, and on a changed one too', () => {
 		const good = pathOf('record.json', text);
 		const run = (file: string) => spawnSync('python3', [script, file, keyFile], { encoding: 'utf8' });
 		expect(run(good)).toMatchObject({ status: 0, stdout: `genuine ${sha256Hex(text)}\n` });
